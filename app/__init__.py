@@ -1,0 +1,1 @@
+"""The workbench: command line, window and everything that talks to a person."""

@@ -1,0 +1,1 @@
+"""Kerfwave core: design, geometry, physics and formats, without a window."""

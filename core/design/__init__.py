@@ -1,0 +1,1 @@
+"""A Design and its parts: frozen, validated, stored as a plain record."""

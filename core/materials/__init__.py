@@ -1,0 +1,1 @@
+"""The stock table: dielectrics, conductors and processes, with their sources."""

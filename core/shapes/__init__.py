@@ -1,0 +1,1 @@
+"""Outlines with true arcs, and their way to and from shapely polygons."""

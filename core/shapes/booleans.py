@@ -1,0 +1,126 @@
+"""Union and difference of regions through shapely, with true arcs put back afterwards."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from math import atan2, hypot, pi, tan
+from typing import TYPE_CHECKING
+
+import shapely
+from shapely.geometry.polygon import orient
+
+from core.errors import LayoutError
+from core.shapes.outline import SAGITTA, Outline, Region, Vertex, arc_centre, polygon
+
+if TYPE_CHECKING:
+    from collections.abc import Sequence
+
+_ON_CIRCLE = 4.0 * SAGITTA  # equal-area points lie within one sagitta of their circle
+
+
+@dataclass(frozen=True)
+class _Circle:
+    x: float
+    y: float
+    radius: float
+
+    def carries(self, point: tuple[float, float]) -> bool:
+        """Tell whether a point lies on the circle, to the accuracy of the facets."""
+        return abs(hypot(point[0] - self.x, point[1] - self.y) - self.radius) < _ON_CIRCLE
+
+
+def union(regions: Sequence[Region]) -> tuple[Region, ...]:
+    """Union of regions as connected regions, largest first, arcs kept.
+
+    Parameters
+    ----------
+    regions : sequence of Region
+        At least one.
+
+    Returns
+    -------
+    tuple of Region
+
+    Raises
+    ------
+    LayoutError
+        If no valid area is left.
+    """
+    merged = shapely.union_all([polygon(region) for region in regions], grid_size=1e-10)
+    parts = [part for part in shapely.get_parts(merged) if isinstance(part, shapely.Polygon)]
+    if not parts or not merged.is_valid:
+        raise LayoutError("the pieces do not add up to a valid outline")
+    circles = tuple({circle for region in regions for circle in _circles(region)})
+    parts.sort(key=lambda part: -part.area)
+    return tuple(_with_arcs(part, circles) for part in parts)
+
+
+def _circles(region: Region) -> list[_Circle]:
+    """All circles that arcs of the region lie on."""
+    found = []
+    for outline in (region.exterior, *region.holes):
+        ring = outline.vertices
+        for start, end in zip(ring, (*ring[1:], ring[0]), strict=True):
+            if start.bulge != 0.0:
+                found.append(_Circle(*arc_centre(start, end)))
+    return found
+
+
+def _with_arcs(part: shapely.Polygon, circles: tuple[_Circle, ...]) -> Region:
+    """Region of a faceted polygon, runs of facets on known circles turned into arcs."""
+    part = orient(part)
+    return Region(
+        _outline_with_arcs(list(part.exterior.coords)[:-1], circles),
+        tuple(_outline_with_arcs(list(ring.coords)[:-1][::-1], circles) for ring in part.interiors),
+    )
+
+
+def _outline_with_arcs(points: list[tuple[float, ...]], circles: tuple[_Circle, ...]) -> Outline:
+    ring = [(point[0], point[1]) for point in points]
+    owners = [_owner(a, b, circles) for a, b in zip(ring, ring[1:] + ring[:1], strict=True)]
+    if owners[0] is not None and all(owner == owners[0] for owner in owners):
+        circle = owners[0]
+        return Outline(
+            (
+                Vertex(circle.x - circle.radius, circle.y, 1.0),
+                Vertex(circle.x + circle.radius, circle.y, 1.0),
+            )
+        )
+    # Start where a run starts, so that no arc is cut at the seam.
+    first = next(i for i in range(len(ring)) if owners[i] is None or owners[i] != owners[i - 1])
+    ring, owners = ring[first:] + ring[:first], owners[first:] + owners[:first]
+    vertices: list[Vertex] = []
+    i = 0
+    while i < len(ring):
+        owner, j = owners[i], i + 1
+        while owner is not None and j < len(ring) and owners[j] == owner:
+            j += 1
+        end = ring[j % len(ring)]
+        bulge = 0.0 if owner is None else _bulge(ring[i], ring[i + 1], end, owner)
+        vertices.append(Vertex(*ring[i], bulge))
+        i = j
+    return Outline(tuple(vertices))
+
+
+def _owner(
+    a: tuple[float, float], b: tuple[float, float], circles: tuple[_Circle, ...]
+) -> _Circle | None:
+    """Circle that the facet from a to b stands for, if any."""
+    for circle in circles:
+        if circle.carries(a) and circle.carries(b):
+            middle = ((a[0] + b[0]) / 2.0, (a[1] + b[1]) / 2.0)
+            if circle.carries(middle):
+                return circle
+    return None
+
+
+def _bulge(
+    start: tuple[float, float], second: tuple[float, float], end: tuple[float, float], on: _Circle
+) -> float:
+    """Bulge of the arc from start to end that sets out towards `second`."""
+    begin = atan2(start[1] - on.y, start[0] - on.x)
+    way = atan2(second[1] - on.y, second[0] - on.x) - begin
+    whole = atan2(end[1] - on.y, end[0] - on.x) - begin
+    counter_clockwise = (way + pi) % (2 * pi) - pi > 0.0
+    turn = whole % (2 * pi) if counter_clockwise else -(-whole % (2 * pi))
+    return tan(turn / 4.0)
