@@ -1,0 +1,88 @@
+"""What a design starts from before it is sized: a scenario of our own, buildable as it stands."""
+
+from __future__ import annotations
+
+from core.design import spelled
+from core.design.feed import Branch, DualEdge, Feed, LeadIn, ProbeFeed, ProbePin
+from core.design.model import Brief, Design, Element
+from core.design.polarisation import Polarisation
+from core.design.stock import DiscGround, Stock
+from core.errors import InputError
+from core.materials.table import folded
+
+FEED_NAMES = ("dual-edge", "probe")
+
+
+def default_design() -> Design:
+    """Complete, buildable design that a new window opens with.
+
+    Returns
+    -------
+    Design
+        A right-hand tape build on polystyrene for 2.32 GHz.
+    """
+    return Design(
+        name="Glider field telemetry",
+        brief=Brief(2.32e9, Polarisation.RHCP, 50.0, 2.0, 3.0),
+        stock=Stock(
+            spacer=spelled.spacer("polystyrene:6mm"),
+            foil=spelled.foil("copper-tape"),
+            ground=DiscGround(0.2),
+        ),
+        element=Element(54e-3, 54e-3),
+        feed=DualEdge(
+            first=Branch(landing=18e-3, gap=7e-3, width=3e-3),
+            second=Branch(landing=18e-3, gap=7e-3, width=3e-3),
+            delay_width=4e-3,
+            delay_length=50e-3,
+            tee=0.0,
+            lead_in=LeadIn(0.0, 4e-3),
+            probe=ProbePin(),
+        ),
+        making=spelled.making("knife"),
+    )
+
+
+def feed_named(text: str, design: Design) -> Feed:
+    """Feed of the named kind, placed on a design's element before any sizing.
+
+    Parameters
+    ----------
+    text : str
+        "dual-edge" or "probe".
+    design : Design
+        Its sides and process give the starting lengths.
+
+    Returns
+    -------
+    DualEdge or ProbeFeed
+
+    Raises
+    ------
+    InputError
+        If the name is not known.
+    """
+    if folded(text) not in map(folded, FEED_NAMES):
+        raise InputError(
+            f"feed: {text[:40]!r} is not taken; accepted: {', '.join(FEED_NAMES)}",
+            field="feed",
+            value=text,
+            allowed=", ".join(FEED_NAMES),
+        )
+    probe = getattr(design.feed, "probe", ProbePin())
+    element, making = design.element, design.making
+    if folded(text) == "probe":
+        side = min(element.width, element.length)
+        return ProbeFeed(side / 5, side / 5, probe)
+    side = min(element.width, element.length)
+    width = max(side / 20, making.narrowest_strip)
+    gap = max(side / 15, making.narrowest_gap, design.stock.height)
+    landing = max(side / 3, width)
+    return DualEdge(
+        first=Branch(landing, gap, width),
+        second=Branch(landing, gap, width),
+        delay_width=width,
+        delay_length=2 * (landing + gap + width / 2),
+        lead_in=LeadIn(0.0, width),
+        probe=probe,
+    )
