@@ -76,3 +76,12 @@ def test_the_path_reader_sees_paths_and_only_those():
         "docs/b.md",
         "e.png",
     ]
+
+
+def test_the_developers_guide_lists_the_rooms_of_core():
+    rows = re.findall(r"^\| (`.*?) \|", (ROOT / "DEVELOPERS.md").read_text("utf-8"), re.MULTILINE)
+    listed = {room for row in rows for room in re.findall(r"`(\w+)`", row)}
+    rooms = {
+        path.stem for path in (ROOT / "core").iterdir() if path.suffix == ".py" or path.is_dir()
+    }
+    assert listed == {room for room in rooms if not room.startswith("__")}
