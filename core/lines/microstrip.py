@@ -6,7 +6,7 @@ Shapes: n frequencies.
 from __future__ import annotations
 
 from dataclasses import dataclass
-from math import cosh, e, exp, inf, log, pi, sqrt, tanh
+from math import exp, inf, log, pi
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
@@ -14,12 +14,12 @@ from scipy.optimize import brentq
 
 from core.constants import FREE_SPACE_IMPEDANCE, SPEED_OF_LIGHT, TWO_PI, VACUUM_PERMEABILITY
 from core.errors import OutOfRangeError
-from core.lines.dispersion import dispersed_permittivity, impedance_rise
+from core.lines.dispersion import dispersed_impedance, dispersed_permittivity
 from core.lines.multilayer import equivalent_layer
+from core.lines.quasi_static import StaticLine, static_line
 from core.lines.stack import Layer, total_thickness
 
-_NARROWEST, _WIDEST = 0.01, 1000.0  # width over height
-_DENSEST = 128.0
+_NARROWEST, _WIDEST = 0.01, 100.0  # width over height, where widths are sought
 
 
 @dataclass(frozen=True, eq=False)
@@ -46,6 +46,10 @@ class LineProperties:
     conductor_attenuation: NDArray[np.float64]
     propagation_constant: NDArray[np.complex128]
     guided_wavelength: NDArray[np.float64]
+
+    def __post_init__(self) -> None:
+        for name in self.__dataclass_fields__:
+            getattr(self, name).setflags(write=False)
 
 
 def line_properties(
@@ -86,7 +90,7 @@ def line_properties(
     Notes
     -----
     Quasi-static values and thickness correction [1]_ (stated: effective permittivity 0.2 %
-    for width 0.01 to 100 heights and permittivity up to 128), several layers through
+    for width 0.01 to 100 heights), several layers through
     `core.lines.multilayer.equivalent_layer`, frequency through `core.lines.dispersion`,
     dielectric loss by filling factor [2]_, conductor loss by current distribution factor
     with roughness [1]_. Conductor loss takes the foil as thicker than three skin depths.
@@ -108,14 +112,11 @@ def line_properties(
     _require(possible, "frequency", frequency, "above 0 Hz")
     substrate = equivalent_layer(width, layers)
     height = substrate.thickness
-    still = _quasi_static(width / height, substrate.eps_r, conductor_thickness / height)
-    normalised = frequencies * height * 1e-6
-    eps_eff = dispersed_permittivity(still.width_ratio, substrate.eps_r, still.eps_eff, normalised)
-    impedance = still.impedance * impedance_rise(
-        still.width_ratio, substrate.eps_r, still.eps_eff, eps_eff, normalised
-    )
+    line = static_line(width / height, substrate.eps_r, conductor_thickness / height)
+    eps_eff = dispersed_permittivity(line, frequencies * height)
+    impedance = dispersed_impedance(line, eps_eff, frequencies * height)
     phase_constant = TWO_PI / SPEED_OF_LIGHT * frequencies * np.sqrt(eps_eff)
-    dielectric = _dielectric_attenuation(substrate, still, eps_eff, phase_constant)
+    dielectric = _dielectric_attenuation(substrate, line, eps_eff, phase_constant)
     conductor = _conductor_attenuation(width, impedance, frequencies, conductivity, roughness)
     return LineProperties(
         characteristic_impedance=impedance,
@@ -167,7 +168,7 @@ def width_for_impedance(
         return log(float(line.characteristic_impedance) / impedance)
 
     _require(0.0 < impedance < inf, "impedance", impedance, "above 0 ohm")
-    narrow, wide = log(_NARROWEST) + 1e-12, log(100.0)
+    narrow, wide = log(_NARROWEST) + 1e-12, log(_WIDEST)
     highest, lowest = impedance * exp(excess(narrow)), impedance * exp(excess(wide))
     if not lowest <= impedance <= highest:
         raise OutOfRangeError(
@@ -180,61 +181,9 @@ def width_for_impedance(
     return height * exp(brentq(excess, narrow, wide, xtol=1e-13, rtol=1e-12))
 
 
-@dataclass(frozen=True)
-class _QuasiStatic:
-    """A line at low frequency."""
-
-    width_ratio: float  # with the allowance for strip thickness
-    impedance: float
-    eps_eff: float
-    filling_factor: float  # share of the field in the substrate
-
-
-def _quasi_static(width_ratio: float, eps_r: float, thickness_ratio: float) -> _QuasiStatic:
-    """Hammerstad and Jensen 1980, equations 1 to 9."""
-    _require(
-        _NARROWEST <= width_ratio <= _WIDEST,
-        "width",
-        width_ratio,
-        f"{_NARROWEST:g} to {_WIDEST:g} times the height of the spacer",
-    )
-    _require(eps_r <= _DENSEST, "eps_r", eps_r, f"1 to {_DENSEST:g}")
-    in_air = 0.0
-    if thickness_ratio > 0.0:
-        coth = 1.0 / tanh(sqrt(6.517 * width_ratio))
-        in_air = thickness_ratio / pi * log(1.0 + 4.0 * e / (thickness_ratio * coth**2))
-    in_substrate = 0.5 * in_air * (1.0 + 1.0 / cosh(sqrt(eps_r - 1.0)))
-    ratio = width_ratio + in_substrate
-    fill = 0.5 * (1.0 + _spread(ratio, eps_r))
-    without_thickness = 1.0 + fill * (eps_r - 1.0)
-    own_impedance = _air_impedance(ratio)
-    air_impedance = _air_impedance(width_ratio + in_air)
-    eps_eff = without_thickness * (air_impedance / own_impedance) ** 2
-    if eps_r > 1.0 + 1e-6:
-        fill = (eps_eff - 1.0) / (eps_r - 1.0)
-    return _QuasiStatic(ratio, own_impedance / sqrt(without_thickness), eps_eff, fill)
-
-
-def _air_impedance(u: float) -> float:
-    """Impedance of a strip `u` heights wide with air below, ohm."""
-    f = 6.0 + (TWO_PI - 6.0) * exp(-((30.666 / u) ** 0.7528))
-    return FREE_SPACE_IMPEDANCE / TWO_PI * log(f / u + sqrt(1.0 + (2.0 / u) ** 2))
-
-
-def _spread(u: float, eps_r: float) -> float:
-    """(1 + 10/u) to the power -a b of Hammerstad and Jensen: 0 very narrow, 1 very wide."""
-    a = (
-        1.0
-        + log((u**4 + (u / 52.0) ** 2) / (u**4 + 0.432)) / 49.0
-        + log(1.0 + (u / 18.1) ** 3) / 18.7
-    )
-    b = 0.564 * ((eps_r - 0.9) / (eps_r + 3.0)) ** 0.053
-    return float((1.0 + 10.0 / u) ** (-a * b))
-
-
 def _dielectric_attenuation(
     substrate: Layer,
-    still: _QuasiStatic,
+    line: StaticLine,
     eps_eff: NDArray[np.float64],
     phase_constant: NDArray[np.float64],
 ) -> NDArray[np.float64]:
@@ -248,7 +197,7 @@ def _dielectric_attenuation(
     if substrate.eps_r > 1.0 + 1e-6:
         fill = (eps_eff - 1.0) / (substrate.eps_r - 1.0)
     else:
-        fill = np.full_like(eps_eff, still.filling_factor)
+        fill = np.full_like(eps_eff, line.filling_factor)
     lossy: NDArray[np.float64] = (
         0.5 * phase_constant * substrate.loss_tangent * substrate.eps_r * fill / eps_eff
     )
@@ -262,7 +211,7 @@ def _conductor_attenuation(
     conductivity: float,
     roughness: float,
 ) -> NDArray[np.float64]:
-    """Hammerstad and Jensen 1980, equations 16 to 18, Np/m."""
+    """Hammerstad and Jensen 1980: current crowding and roughness on the sheet resistance, Np/m."""
     if conductivity == inf:
         return np.zeros_like(frequencies)
     sheet = np.sqrt(pi * VACUUM_PERMEABILITY / conductivity * frequencies)
