@@ -1,0 +1,1 @@
+"""What an antenna does, whichever engine said so."""

@@ -1,0 +1,115 @@
+"""Verdicts against a brief."""
+
+import dataclasses
+
+import numpy as np
+import pytest
+
+from core.design.polarisation import Polarisation
+from core.response.judge import State, judge
+from core.response.model import Mode, PatternCut, Reading, Response, Samples, Trust, TrustLevel
+
+FREQUENCIES = np.linspace(2.2e9, 2.7e9, 101)
+
+
+def response_with(vswr=1.2, e_y=-1j, level=TrustLevel.GOOD):
+    """A response that is the same at all frequencies."""
+    s11 = (vswr - 1.0) / (vswr + 1.0)
+    n = FREQUENCIES.size
+    sweep = Samples(
+        frequency=FREQUENCIES,
+        s11=np.full(n, s11, dtype=complex),
+        z_in=np.full(n, 50.0 * vswr, dtype=complex),
+        e_x=np.full(n, 2.0 + 0j),
+        e_y=np.full(n, 2.0 * e_y),
+        efficiency=np.full(n, 0.87),
+    )
+    theta = np.linspace(-np.pi / 2, np.pi / 2, 181)
+    cut = PatternCut(0.0, theta, 2.0 * np.cos(theta) + 0j, 2.0 * e_y * np.cos(theta))
+    return Response(
+        engine="live",
+        reference_impedance=50.0,
+        sweep=sweep,
+        spot=sweep.at(50),
+        modes=(Mode("along x", 2.40e9, 21.0), Mode("along y", 2.50e9, 22.0)),
+        directivity=8.0,
+        cuts=(cut, cut),
+        front_to_back=None,
+        trust={reading: Trust(level, "the plate is small", "measure it") for reading in Reading},
+    )
+
+
+def verdict(response, reading, polarisation=Polarisation.RHCP, vswr=1.5, ratio=3.0):
+    found = judge(response, polarisation, vswr, ratio)
+    return next(item for item in found if item.reading is reading)
+
+
+def test_every_reading_is_judged_once():
+    readings = [item.reading for item in judge(response_with(), Polarisation.RHCP, 2.0, 3.0)]
+    assert sorted(readings) == sorted(Reading)
+
+
+@pytest.mark.parametrize(("vswr", "state"), [(1.5, State.MET), (1.501, State.MISSED)])
+def test_match_against_its_target(vswr, state):
+    found = verdict(response_with(vswr=vswr), Reading.MATCH)
+    assert found.state is state
+    assert "asked for" in found.sentence
+
+
+def test_a_near_miss_shows_the_digit_that_misses():
+    assert "VSWR 1.501" in verdict(response_with(vswr=1.501), Reading.MATCH).sentence
+
+
+@pytest.mark.parametrize(
+    ("e_y", "polarisation", "state", "text"),
+    [
+        (-1j, Polarisation.RHCP, State.MET, "Right-hand circular, axial ratio 0.00 dB"),
+        (1j, Polarisation.LHCP, State.MET, "Left-hand circular"),
+        (1j, Polarisation.RHCP, State.MISSED, "wrong way: left-hand"),
+        (-2j, Polarisation.RHCP, State.MISSED, "axial ratio 6.02 dB, over the 3 dB"),
+        (0.01j, Polarisation.RHCP, State.MISSED, "All but linear"),
+        (0j, Polarisation.LINEAR, State.MET, "over 60 dB"),
+        (-1j, Polarisation.LINEAR, State.MISSED, "short of the 15 dB"),
+    ],
+)
+def test_polarisation_against_the_brief(e_y, polarisation, state, text):
+    found = verdict(response_with(e_y=e_y), Reading.AXIAL_RATIO, polarisation)
+    assert found.state is state
+    assert text in found.sentence
+
+
+def test_what_the_engine_cannot_vouch_for_is_never_met():
+    found = judge(response_with(level=TrustLevel.UNKNOWN), Polarisation.RHCP, 10.0, 20.0)
+    assert {item.state for item in found} == {State.UNKNOWN}
+    assert all("the plate is small" in item.sentence for item in found)
+    assert all("measure it" in item.sentence for item in found)
+
+
+def test_rough_readings_are_still_judged():
+    found = verdict(response_with(level=TrustLevel.ROUGH), Reading.MATCH)
+    assert found.state is State.MET
+
+
+@pytest.mark.parametrize(
+    ("reading", "text"),
+    [
+        (Reading.GAIN, "Gain 9.0 dBi to right-hand circular waves"),
+        (Reading.EFFICIENCY, "87 %"),
+        (Reading.BANDS, "2.2 GHz to 2.7 GHz (500 MHz or more)"),
+        (Reading.RESONANCE, "2.4 GHz along x (Q 21) and 2.5 GHz along y (Q 22)"),
+        (Reading.PATTERN, "Directivity 9.0 dBi, half-power beam 90°"),
+    ],
+)
+def test_other_readings_are_noted_with_their_numbers(reading, text):
+    found = verdict(response_with(), reading)
+    assert found.state is State.NOTED
+    assert text in found.sentence
+
+
+def test_a_missing_band_is_said():
+    assert "nowhere" in verdict(response_with(vswr=3.0), Reading.BANDS).sentence
+
+
+def test_front_to_back_is_told_where_it_is_known():
+    response = dataclasses.replace(response_with(), front_to_back=100.0)
+    assert "20.0 dB less behind" in verdict(response, Reading.PATTERN).sentence
