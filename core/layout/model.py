@@ -91,15 +91,18 @@ class Mark:
     name : str
     kind : MarkKind
     points : tuple of Point
-        Open polyline, m.
+        Open polyline, m; the one centre of a pad.
     piece : str
         Name of the piece that carries it.
+    diameter : float
+        Of a pad, m; 0 for lines.
     """
 
     name: str
     kind: MarkKind
     points: tuple[Point, ...]
     piece: str
+    diameter: float = 0.0
 
 
 @dataclass(frozen=True)

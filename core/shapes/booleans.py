@@ -15,6 +15,7 @@ from core.shapes.outline import SAGITTA, Outline, Region, Vertex, arc_centre, po
 if TYPE_CHECKING:
     from collections.abc import Sequence
 
+_COLLINEAR = 1e-6  # rad
 _ON_CIRCLE = 4.0 * SAGITTA  # equal-area points lie within one sagitta of their circle
 
 
@@ -99,7 +100,20 @@ def _outline_with_arcs(points: list[tuple[float, ...]], circles: tuple[_Circle, 
         bulge = 0.0 if owner is None else _bulge(ring[i], ring[i + 1], end, owner)
         vertices.append(Vertex(*ring[i], bulge))
         i = j
-    return Outline(tuple(vertices))
+    return Outline(_without_straight_corners(vertices))
+
+
+def _without_straight_corners(ring: list[Vertex]) -> tuple[Vertex, ...]:
+    """Drop the corners between two straight edges of one direction that a union leaves behind."""
+    kept = []
+    for i, here in enumerate(ring):
+        before, after = ring[i - 1], ring[(i + 1) % len(ring)]
+        into, out = (here.x - before.x, here.y - before.y), (after.x - here.x, after.y - here.y)
+        turn = abs(into[0] * out[1] - into[1] * out[0])
+        straight = turn <= _COLLINEAR * hypot(*into) * hypot(*out)
+        if before.bulge != 0.0 or here.bulge != 0.0 or not straight:
+            kept.append(here)
+    return tuple(kept)
 
 
 def _owner(
