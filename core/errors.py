@@ -8,6 +8,7 @@ CoreError
 ├── ModelError            a model cannot answer
 │   └── ConvergenceError  an iteration that did not settle
 └── FileError             a file that cannot be read or written
+    ├── ExistingFileError
     ├── ProjectFormatError
     └── ExportError
 Cancelled                 the user changed their mind; not an error
@@ -101,6 +102,10 @@ class FileError(CoreError):
     def __init__(self, message: str, *, path: Path | None = None) -> None:
         super().__init__(message)
         self.path = path
+
+
+class ExistingFileError(FileError):
+    """A file that is there already and may not be replaced."""
 
 
 class ProjectFormatError(FileError):

@@ -137,7 +137,7 @@ def _part(kind: type, raw: object, path: str) -> Any:  # noqa: ANN401
     fields = {field.name: field for field in dataclasses.fields(kind)}
     extra = set(raw) - set(fields) - ({_TAGS[kind][0]} if kind in _TAGS else set())
     if extra:
-        raise _refused(f"{path}.{min(map(str, extra))}", None, f"only {', '.join(fields)}")
+        raise _refused(f"{path}.{min(map(str, extra))[:40]}", None, f"only {', '.join(fields)}")
     values = {}
     for name, field in fields.items():
         if name in raw:

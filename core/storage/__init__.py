@@ -1,0 +1,1 @@
+"""Project files, and files written whole or not at all."""
