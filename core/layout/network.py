@@ -102,10 +102,15 @@ def _run(points: tuple[Point, ...], width: float, last_width: float | None, mitr
     for i, (a, b) in enumerate(pieces):
         is_last = i == len(pieces) - 1
         own = last_width if is_last and last_width is not None else width
-        if i > 0:
+        if i > 0 and _turns(pieces[i - 1], (a, b)):
             parts.append(Bend(width, mitred and own == width))
         parts.append(Segment(own, _distance(a, b)))
     return tuple(parts)
+
+
+def _turns(before: tuple[Point, Point], after: tuple[Point, Point]) -> bool:
+    (a, b), (_, c) = before, after
+    return abs((b[0] - a[0]) * (c[1] - b[1]) - (b[1] - a[1]) * (c[0] - b[0])) > _TOLERANCE**2
 
 
 def _is_over_ground(design: Design, route: Route) -> bool:

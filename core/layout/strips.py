@@ -38,7 +38,7 @@ def strip_regions(element: Element, feed: DualEdge, route: Route) -> dict[str, R
     half = feed.delay_width / 2
     start, end = route.strip[0], route.strip[-1]
     bottom, right = -element.length / 2, element.width / 2
-    strip = _extended(route.strip, feed.first.width / 2, feed.second.width / 2)
+    strip = _strip_to_branch_edges(route.strip, feed)
     regions = {
         "first branch": Region(
             rectangle(
@@ -61,6 +61,20 @@ def strip_regions(element: Element, feed: DualEdge, route: Route) -> dict[str, R
         lead = _extended(route.lead, 0.0, feed.lead_in.width / 2)
         regions["lead-in"] = Region(_strip_outline(lead, feed.lead_in.width, mitred))
     return regions
+
+
+def _strip_to_branch_edges(points: tuple[Point, ...], feed: DualEdge) -> tuple[Point, ...]:
+    """Delay strip up to the far edge of each branch that it meets at a right angle.
+
+    A detour may come back along a branch's own axis; there it ends on the axis.
+    """
+    along_first = points[0][0] == points[1][0]
+    along_second = points[-1][1] == points[-2][1]
+    return _extended(
+        points,
+        0.0 if along_first else feed.first.width / 2,
+        0.0 if along_second else feed.second.width / 2,
+    )
 
 
 def _extended(points: tuple[Point, ...], before: float, after: float) -> tuple[Point, ...]:

@@ -16,7 +16,8 @@ if TYPE_CHECKING:
     from collections.abc import Sequence
 
 _COLLINEAR = 1e-6  # rad
-_ON_CIRCLE = 4.0 * SAGITTA  # equal-area points lie within one sagitta of their circle
+_FINE = SAGITTA / 50.0  # facets for the union alone: ends of arcs come out this true
+_ON_CIRCLE = 4.0 * _FINE  # equal-area points lie within one sagitta of their circle
 
 
 @dataclass(frozen=True)
@@ -47,7 +48,7 @@ def union(regions: Sequence[Region]) -> tuple[Region, ...]:
     LayoutError
         If no valid area is left.
     """
-    merged = shapely.union_all([polygon(region) for region in regions], grid_size=1e-10)
+    merged = shapely.union_all([polygon(region, _FINE) for region in regions], grid_size=1e-10)
     parts = [part for part in shapely.get_parts(merged) if isinstance(part, shapely.Polygon)]
     if not parts or not merged.is_valid:
         raise LayoutError("the pieces do not add up to a valid outline")
