@@ -46,9 +46,8 @@ class _Unit:
 
 @dataclass(frozen=True)
 class _Kind:
-    """One kind of quantity; the first unit is the one of a bare number."""
+    """Absolute limits of one kind of quantity, in SI, and how it is shown."""
 
-    units: tuple[_Unit, ...]
     minimum: float
     maximum: float
     smallest: float  # below this a value that is not zero is a mistake
@@ -59,89 +58,53 @@ class _Kind:
 _DEGREE: Final = Fraction(math.pi) / 180
 _INCH: Final = Fraction(254, 10_000)  # exact since 1959
 
+# The first unit of a kind is the one of a bare number.
+_UNITS: Final[dict[Quantity, tuple[_Unit, ...]]] = {
+    Quantity.LENGTH: (
+        _Unit("mm", Fraction(1, 1000), ("mm",), shown_from=1e-4),
+        _Unit("cm", Fraction(1, 100), ("cm",)),
+        _Unit("m", Fraction(1), ("m",), shown_from=1.0),
+        _Unit("µm", Fraction(1, 10**6), ("um", "μm", "micron", "microns"), shown_from=1e-7),
+        _Unit("nm", Fraction(1, 10**9), ("nm",), shown_from=0.0),
+        _Unit("in", _INCH, ("in", "inch", "inches", '"', "''")),
+        _Unit("mil", _INCH / 1000, ("mil", "mils", "thou")),
+        _Unit("ft", _INCH * 12, ("ft", "foot", "feet")),
+    ),
+    Quantity.FREQUENCY: (
+        _Unit("GHz", Fraction(10**9), ("ghz",), shown_from=1e9),
+        _Unit("MHz", Fraction(10**6), ("mhz",), shown_from=1e6),
+        _Unit("kHz", Fraction(10**3), ("khz",), shown_from=1e3),
+        _Unit("Hz", Fraction(1), ("hz",), shown_from=0.0),
+    ),
+    Quantity.RESISTANCE: (
+        _Unit("Ω", Fraction(1), ("ohm", "ohms", "ω"), shown_from=0.0),
+        _Unit("kΩ", Fraction(1000), ("kohm", "kohms", "kω"), shown_from=1e4),
+    ),
+    Quantity.RATIO: (
+        _Unit("", Fraction(1), ("", ":1"), shown_from=0.0),
+        _Unit("%", Fraction(1, 100), ("%",)),
+    ),
+    Quantity.DECIBEL: (_Unit("dB", Fraction(1), ("db",), shown_from=0.0),),
+    Quantity.ANGLE: (
+        _Unit("°", _DEGREE, ("°", "deg", "degree", "degrees"), shown_from=0.0),
+        _Unit("rad", Fraction(1), ("rad", "radian", "radians")),
+    ),
+    Quantity.CONDUCTIVITY: (
+        _Unit("S/m", Fraction(1), ("s/m",), shown_from=0.0),
+        _Unit("MS/m", Fraction(10**6), (), shown_from=1e6),  # case tells mega from milli
+    ),
+}
+
 _KINDS: Final[dict[Quantity, _Kind]] = {
-    Quantity.LENGTH: _Kind(
-        units=(
-            _Unit("mm", Fraction(1, 1000), ("mm",), shown_from=1e-4),
-            _Unit("cm", Fraction(1, 100), ("cm",)),
-            _Unit("m", Fraction(1), ("m",), shown_from=1.0),
-            _Unit("µm", Fraction(1, 10**6), ("um", "μm", "micron", "microns"), shown_from=1e-7),
-            _Unit("nm", Fraction(1, 10**9), ("nm",), shown_from=0.0),
-            _Unit("in", _INCH, ("in", "inch", "inches", '"', "''")),
-            _Unit("mil", _INCH / 1000, ("mil", "mils", "thou")),
-            _Unit("ft", _INCH * 12, ("ft", "foot", "feet")),
-        ),
-        minimum=-100.0,
-        maximum=100.0,
-        smallest=1e-9,
-        digits=5,
-        example="43.5 mm",
-    ),
-    Quantity.FREQUENCY: _Kind(
-        units=(
-            _Unit("GHz", Fraction(10**9), ("ghz",), shown_from=1e9),
-            _Unit("MHz", Fraction(10**6), ("mhz",), shown_from=1e6),
-            _Unit("kHz", Fraction(10**3), ("khz",), shown_from=1e3),
-            _Unit("Hz", Fraction(1), ("hz",), shown_from=0.0),
-        ),
-        minimum=1e6,
-        maximum=300e9,
-        smallest=0.0,
-        digits=5,
-        example="2.45 GHz",
-    ),
-    Quantity.RESISTANCE: _Kind(
-        units=(
-            _Unit("Ω", Fraction(1), ("ohm", "ohms", "ω"), shown_from=0.0),
-            _Unit("kΩ", Fraction(1000), ("kohm", "kohms", "kω"), shown_from=1e4),
-        ),
-        minimum=0.0,
-        maximum=1e6,
-        smallest=1e-6,
-        digits=4,
-        example="50 ohm",
-    ),
-    Quantity.RATIO: _Kind(
-        units=(
-            _Unit("", Fraction(1), ("", ":1"), shown_from=0.0),
-            _Unit("%", Fraction(1, 100), ("%",)),
-        ),
-        minimum=0.0,
-        maximum=1e6,
-        smallest=1e-9,
-        digits=4,
-        example="2.2",
-    ),
-    Quantity.DECIBEL: _Kind(
-        units=(_Unit("dB", Fraction(1), ("db",), shown_from=0.0),),
-        minimum=-300.0,
-        maximum=300.0,
-        smallest=0.0,
-        digits=3,
-        example="1.5 dB",
-    ),
+    Quantity.LENGTH: _Kind(-100.0, 100.0, smallest=1e-9, digits=5, example="43.5 mm"),
+    Quantity.FREQUENCY: _Kind(1e6, 300e9, smallest=0.0, digits=5, example="2.45 GHz"),
+    Quantity.RESISTANCE: _Kind(0.0, 1e6, smallest=1e-6, digits=4, example="50 ohm"),
+    Quantity.RATIO: _Kind(0.0, 1e6, smallest=1e-9, digits=4, example="2.2"),
+    Quantity.DECIBEL: _Kind(-300.0, 300.0, smallest=0.0, digits=3, example="1.5 dB"),
     Quantity.ANGLE: _Kind(
-        units=(
-            _Unit("°", _DEGREE, ("°", "deg", "degree", "degrees"), shown_from=0.0),
-            _Unit("rad", Fraction(1), ("rad", "radian", "radians")),
-        ),
-        minimum=-20.0 * math.pi,
-        maximum=20.0 * math.pi,
-        smallest=0.0,
-        digits=4,
-        example="45 deg",
+        -20.0 * math.pi, 20.0 * math.pi, smallest=0.0, digits=4, example="45 deg"
     ),
-    Quantity.CONDUCTIVITY: _Kind(
-        units=(
-            _Unit("S/m", Fraction(1), ("s/m",), shown_from=0.0),
-            _Unit("MS/m", Fraction(10**6), (), shown_from=1e6),  # case tells mega from milli
-        ),
-        minimum=0.0,
-        maximum=1e9,
-        smallest=1e-9,
-        digits=4,
-        example="5.8e7 S/m",
-    ),
+    Quantity.CONDUCTIVITY: _Kind(0.0, 1e9, smallest=1e-9, digits=4, example="5.8e7 S/m"),
 }
 
 _LOOKALIKES: Final = str.maketrans(
@@ -221,7 +184,7 @@ def parse_quantity(
     except _UnreadableError as problem:
         message = f"{where}{_quoted(text)} {problem}; accepted: {allowed}"
         raise UnitError(message, field=field, value=text, allowed=allowed) from None
-    return _checked(value, kind, _quoted(text), field, minimum, maximum, exclusive_minimum)
+    return _checked(value, kind, text, field, minimum, maximum, exclusive_minimum)
 
 
 def check_quantity(
@@ -258,8 +221,7 @@ def check_quantity(
     OutOfRangeError
         If it is not finite or outside the range.
     """
-    given = _number_text(float(value), kind) if math.isfinite(value) else str(float(value))
-    return _checked(float(value), kind, given, field, minimum, maximum, exclusive_minimum)
+    return _checked(float(value), kind, None, field, minimum, maximum, exclusive_minimum)
 
 
 def format_quantity(
@@ -290,10 +252,9 @@ def format_quantity(
     """
     if not math.isfinite(value):
         return "unknown"
-    table = _KINDS[kind]
-    significant = digits or table.digits
-    rounded = 0.0 if abs(value) < table.smallest / 2 else float(f"{value:.{significant}g}")
-    chosen = _fitting_unit(rounded, table) if unit is None else _named_unit(unit, kind)
+    significant = digits or _KINDS[kind].digits
+    rounded = 0.0 if abs(value) < _KINDS[kind].smallest / 2 else float(f"{value:.{significant}g}")
+    chosen = _fitting_unit(rounded, kind) if unit is None else _named_unit(unit, kind)
     # Rounded once, in the unit shown; the rounding above only chooses the unit.
     shown = float(Fraction(float(value)) / chosen.size) if rounded else 0.0
     return _joined(_plain(Decimal(f"{shown:.{significant}g}")), chosen)
@@ -331,7 +292,7 @@ def _read(text: str, kind: Quantity) -> float:
     if match is None:
         raise _UnreadableError(f"is not {_article(kind)}" if text.strip() else "is empty")
     number = _fraction(match) if match["bottom"] else _decimal(match)
-    unit = _find_unit(match["unit"], kind) if match["unit"] else _KINDS[kind].units[0]
+    unit = _find_unit(match["unit"], kind) if match["unit"] else _UNITS[kind][0]
     if unit is None:
         raise _UnreadableError(_unit_complaint(match["unit"], kind))
     signed = -number if match["sign"] == "-" else number
@@ -387,7 +348,7 @@ def _find_unit(spelling: str, kind: Quantity) -> _Unit | None:
     """The unit of this kind that is spelled so."""
     name = spelling.strip().translate(_LOOKALIKES)
     folded = name.rstrip(".").casefold()
-    for unit in _KINDS[kind].units:
+    for unit in _UNITS[kind]:
         if name == unit.label or folded in unit.spellings:
             return unit
     return None
@@ -415,18 +376,18 @@ def _article(kind: Quantity) -> str:
 
 def _accepted_text(kind: Quantity) -> str:
     """What would be accepted, in words."""
-    table = _KINDS[kind]
-    labels = [unit.label for unit in table.units if unit.label]
-    if not table.units[0].label:
-        return f"a plain number such as {table.example}"
+    labels = [unit.label for unit in _UNITS[kind]]
+    example = _KINDS[kind].example
+    if not labels[0]:
+        return f"a plain number such as {example}"
     named = " or ".join(filter(None, [", ".join(labels[:-1]), labels[-1]]))
-    return f"a number in {named} ({labels[0]} if left out), such as {table.example}"
+    return f"a number in {named} ({labels[0]} if left out), such as {example}"
 
 
 def _checked(
     value: float,
     kind: Quantity,
-    given: str,
+    typed: str | None,
     field: str,
     minimum: float | None,
     maximum: float | None,
@@ -441,6 +402,7 @@ def _checked(
         return value
     allowed = _range_text(kind, low, high, exclusive)
     where = f"{field}: " if field else ""
+    given = _quoted(typed) if typed is not None else _number_text(value, kind)
     message = f"{where}{given} is out of range; accepted: {allowed}"
     raise OutOfRangeError(message, field=field, value=value, allowed=allowed)
 
@@ -455,21 +417,23 @@ def _range_text(kind: Quantity, low: float, high: float, exclusive: bool) -> str
 
 
 def _number_text(value: float, kind: Quantity) -> str:
-    """Shortest text of a finite value that reads back to the same float."""
+    """Shortest text that reads back to the same float."""
+    if not math.isfinite(value):
+        return str(value)
     if kind is Quantity.ANGLE:
         degrees = f"{_plain(Decimal(repr(math.degrees(value))))}°"
         return degrees if _read(degrees, kind) == value else f"{value!r} rad"
-    unit = _fitting_unit(value, _KINDS[kind])
+    unit = _fitting_unit(value, kind)
     # Such units are powers of ten, so that the shift keeps the shortest decimal exact.
     number = Decimal(repr(value)) * unit.size.denominator / unit.size.numerator
     return _joined(_plain(number), unit)
 
 
-def _fitting_unit(value: float, table: _Kind) -> _Unit:
+def _fitting_unit(value: float, kind: Quantity) -> _Unit:
     """The unit in which a value of this size is shown; the first one for zero."""
-    shown = [unit for unit in table.units if unit.shown_from is not None]
+    shown = [unit for unit in _UNITS[kind] if unit.shown_from is not None]
     fitting = [unit for unit in shown if abs(value) >= (unit.shown_from or 0.0)]
-    return max(fitting, key=lambda unit: unit.size) if value else table.units[0]
+    return max(fitting, key=lambda unit: unit.size) if value else _UNITS[kind][0]
 
 
 def _plain(number: Decimal) -> str:
