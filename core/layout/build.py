@@ -55,24 +55,53 @@ def build_layout(design: Design) -> Layout:
         If the copper has no valid outline at all.
     """
     feed = design.feed
-    sign = handedness(design)
     route = find_route(design.element, feed, design.making) if isinstance(feed, DualEdge) else None
+    layout, sign = _electrical(design, route), handedness(design)
+    probe = (layout.feed.probe.x * sign, layout.feed.probe.y)
     copper, copper_problems = _top_copper(design, route)
-    probe = route.probe if route is not None else (feed.x, feed.y)  # type: ignore[union-attr]
     pieces = (*plates(design, probe), *copper)
-    findings = (
-        *(route.findings if route else ()),
-        *design_findings(design, route),
-        *copper_problems,
-    )
-    network = feed_network(design, route)
-    dimensions = layout_dimensions(design, route)
-    layout = Layout(
+    layout = replace(
+        layout,
         pieces=pieces,
         holes=_holes(design, probe, pieces),
         marks=_marks(design, probe, pieces),
-        dimensions=dimensions,
-        ports=(Port("coax", probe[0], probe[1], feed.probe.diameter, design.brief.impedance),),
+        dimensions=layout_dimensions(design, route),
+        findings=(
+            *(route.findings if route else ()),
+            *design_findings(design, route),
+            *copper_problems,
+        ),
+    )
+    return layout if sign > 0 else mirrored_drawing(layout)
+
+
+def electrical_layout(design: Design) -> Layout:
+    """Layout with all that the live model reads and nothing drawn: no pieces, no findings.
+
+    Takes a tenth of the time of `build_layout`, for sizing.
+
+    Parameters
+    ----------
+    design : Design
+
+    Returns
+    -------
+    Layout
+    """
+    feed = design.feed
+    route = find_route(design.element, feed, design.making) if isinstance(feed, DualEdge) else None
+    return _electrical(design, route)
+
+
+def _electrical(design: Design, route: Route | None) -> Layout:
+    network = feed_network(design, route)
+    probe = network.probe
+    return Layout(
+        pieces=(),
+        holes=(),
+        marks=(),
+        dimensions=(),
+        ports=(Port("coax", probe.x, probe.y, probe.diameter, design.brief.impedance),),
         element_width=design.element.width,
         element_length=design.element.length,
         ground_reach=ground_reach(design),
@@ -80,9 +109,8 @@ def build_layout(design: Design) -> Layout:
         foil=Foil(design.stock.foil.thickness, design.stock.foil.conductivity),
         feed=network,
         frequency=design.brief.frequency,
-        findings=findings,
+        findings=(),
     )
-    return layout if sign > 0 else _mirrored_drawing(layout)
 
 
 def top_copper(layout: Layout) -> tuple[Region, ...]:
@@ -158,8 +186,18 @@ def _marks(design: Design, probe: Point, pieces: tuple[Piece, ...]) -> tuple[Mar
     return tuple(marks)
 
 
-def _mirrored_drawing(layout: Layout) -> Layout:
-    """Mirror everything drawn in x; the feed network is mirrored where it is made."""
+def mirrored_drawing(layout: Layout) -> Layout:
+    """Mirror everything drawn in x (x to -x).
+
+    Parameters
+    ----------
+    layout : Layout
+
+    Returns
+    -------
+    Layout
+        Its feed network stays as it was: it is mirrored where it is made.
+    """
 
     def flip(point: Point) -> Point:
         return (-point[0], point[1])
@@ -175,7 +213,6 @@ def _mirrored_drawing(layout: Layout) -> Layout:
         dimensions=tuple(
             replace(one, start=flip(one.end), end=flip(one.start)) for one in layout.dimensions
         ),
-        ports=tuple(replace(port, x=-port.x) for port in layout.ports),
         findings=tuple(
             replace(one, location=flip(one.location)) if one.location else one
             for one in layout.findings
