@@ -297,6 +297,6 @@ def test_the_verbs_load_no_qt_when_run():
     code = (
         f"import sys, importlib\nfor n in {names}: importlib.import_module(n)\nprint(*sys.modules)"
     )
-    run = [sys.executable, "-c", code]
-    loaded = subprocess.run(run, cwd=ROOT, capture_output=True, text=True, check=True).stdout
-    assert not QT & {name.split(".")[0] for name in loaded.split()}
+    run = subprocess.run([sys.executable, "-c", code], cwd=ROOT, capture_output=True, text=True)
+    assert run.returncode == 0, run.stderr
+    assert not QT & {name.split(".")[0] for name in run.stdout.split()}
