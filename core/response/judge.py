@@ -96,7 +96,7 @@ def _or_unknown(response: Response, verdict: Verdict) -> Verdict:
     if trust.level is not TrustLevel.UNKNOWN:
         return verdict
     name = verdict.reading.replace("_", " ").capitalize()
-    remedy = f" To know it, {trust.remedy}." if trust.remedy else ""
+    remedy = f" {trust.remedy[0].upper()}{trust.remedy[1:]}." if trust.remedy else ""
     sentence = f"{name} unknown: {trust.reason}.{remedy}"
     return Verdict(verdict.reading, State.UNKNOWN, sentence)
 

@@ -55,7 +55,7 @@ class Trust:
     reason : str
         One sentence part in plain words, with numbers; no full stop.
     remedy : str
-        What would tell, such as "run the field check"; empty where nothing is needed.
+        What would tell, such as "a measurement will tell"; empty where nothing is needed.
     """
 
     level: TrustLevel

@@ -35,7 +35,10 @@ def response_with(vswr=1.2, e_y=-1j, level=TrustLevel.GOOD):
         directivity=8.0,
         cuts=(cut, cut),
         front_to_back=None,
-        trust={reading: Trust(level, "the plate is small", "measure it") for reading in Reading},
+        trust={
+            reading: Trust(level, "the plate is small", "a measurement will tell")
+            for reading in Reading
+        },
     )
 
 
@@ -82,7 +85,7 @@ def test_what_the_engine_cannot_vouch_for_is_never_met():
     found = judge(response_with(level=TrustLevel.UNKNOWN), Polarisation.RHCP, 10.0, 20.0)
     assert {item.state for item in found} == {State.UNKNOWN}
     assert all("the plate is small" in item.sentence for item in found)
-    assert all("measure it" in item.sentence for item in found)
+    assert all("A measurement will tell." in item.sentence for item in found)
 
 
 def test_rough_readings_are_still_judged():

@@ -44,7 +44,10 @@ def make_response(sweep, spot, level=TrustLevel.GOOD):
         directivity=8.0 / 0.9,
         cuts=(cut, dataclasses.replace(cut, phi=np.pi / 2)),
         front_to_back=None,
-        trust={reading: Trust(level, "because of the test", "measure it") for reading in Reading},
+        trust={
+            reading: Trust(level, "because of the test", "a measurement will tell")
+            for reading in Reading
+        },
     )
 
 

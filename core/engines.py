@@ -1,0 +1,19 @@
+"""The engines: ways from a Layout to its Response, by name."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from typing import Final
+
+from numpy.typing import ArrayLike
+
+from core.layout.model import Layout
+from core.live.respond import ENGINE as LIVE
+from core.live.respond import respond as respond_live
+from core.progress import Progress
+from core.response.model import Response
+
+Engine = Callable[[Layout, ArrayLike, Progress], Response]
+"""Takes a layout, frequencies (Hz, rising) and a listener."""
+
+ENGINES: Final[dict[str, Engine]] = {LIVE: respond_live}

@@ -1,0 +1,1 @@
+"""Instant model: design equations, cavity multi-port, branch network."""
