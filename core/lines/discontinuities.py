@@ -17,40 +17,10 @@ from core.constants import FREE_SPACE_IMPEDANCE, SPEED_OF_LIGHT, TWO_PI, VACUUM_
 _EULER = float(np.euler_gamma)
 
 
-def open_end_extension_hammerstad(width: float, height: float, eps_eff: float) -> float:
-    """Apparent lengthening of a strip at an open end, by the short formula.
-
-    Parameters
-    ----------
-    width, height : float
-        Of the strip and of the substrate, m, > 0.
-    eps_eff : float
-        Effective permittivity of the strip, >= 1.
-
-    Returns
-    -------
-    float
-        m.
-
-    Notes
-    -----
-    Stated to 4 % for width over 0.2 heights and substrate permittivity 2 to 50 (range from
-    memory) [1]_. A numerical solution lies above it for wide strips, by a quarter at 8 heights
-    in air.
-
-    References
-    ----------
-    .. [1] E. O. Hammerstad, "Equations for microstrip circuit design", Proc. 5th European
-       Microwave Conf., pp. 268-272, 1975.
-    """
-    u = width / height
-    return 0.412 * height * (eps_eff + 0.3) * (u + 0.264) / ((eps_eff - 0.258) * (u + 0.8))
-
-
 def open_end_extension_kirschning(
     width: float, height: float, eps_r: float, eps_eff: float
 ) -> float:
-    """Apparent lengthening of a strip at an open end, by the long formula.
+    """Apparent lengthening of a strip at an open end.
 
     Parameters
     ----------

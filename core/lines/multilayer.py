@@ -68,7 +68,7 @@ def equivalent_layer(width: float, layers: tuple[Layer, ...]) -> Layer:
         return Layer(height, merged[0].eps_r, merged[0].loss_tangent)
     spatial, weights = _quadrature()
     alpha = 2.0 * spatial / width
-    target = _charge(weights, _stack_response(alpha, merged))[0]
+    target = _capacitance(width, merged)
     tangent = np.tanh(alpha * height)
     eps = series_permittivity(merged) * (1.0 - 1j * series_loss_tangent(merged))
     change = eps
@@ -76,7 +76,7 @@ def equivalent_layer(width: float, layers: tuple[Layer, ...]) -> Layer:
         response: NDArray[np.complex128] = tangent / (tangent + eps)
         charge = _charge(weights, response)
         slope = charge @ (weights @ (response**2 / tangent)) @ charge
-        change = (target - charge[0]) / slope
+        change = (target / pi - charge[0]) / slope
         eps += change
         if abs(change) < 1e-13 * abs(eps):
             return Layer(height, max(float(eps.real), 1.0), max(-float(eps.imag / eps.real), 0.0))
@@ -99,6 +99,12 @@ def _merge_equal(layers: tuple[Layer, ...]) -> tuple[Layer, ...]:
     return tuple(merged)
 
 
+def _capacitance(width: float, layers: tuple[Layer, ...]) -> complex:
+    """Capacitance per length of the strip over the permittivity of vacuum."""
+    spatial, weights = _quadrature()
+    return pi * complex(_charge(weights, _stack_response(2.0 * spatial / width, layers))[0])
+
+
 def _stack_response(
     alpha: NDArray[np.float64], layers: tuple[Layer, ...]
 ) -> NDArray[np.complex128]:
@@ -114,7 +120,7 @@ def _stack_response(
 def _charge(
     weights: NDArray[np.float64], response: NDArray[np.complex128]
 ) -> NDArray[np.complex128]:
-    """Chebyshev coefficients of the charge at unit potential; the first is proportional to C."""
+    """Chebyshev coefficients of the charge at unit potential; pi times the first is C."""
     charge: NDArray[np.complex128] = np.linalg.inv(weights @ response)[0]
     return charge
 

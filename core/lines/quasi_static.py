@@ -80,7 +80,7 @@ def static_line(width_ratio: float, eps_r: float, thickness_ratio: float) -> Sta
     )
     _require(1.0 <= eps_r <= _DENSEST, "relative permittivity", eps_r, f"1 to {_DENSEST:g}")
     extra_in_air = 0.0
-    if thickness_ratio > 0.0:
+    if thickness_ratio > 1e-15:  # a thinner one would divide by nothing
         coth = 1.0 / tanh(sqrt(6.517 * width_ratio))
         extra_in_air = thickness_ratio / pi * log(1.0 + 4.0 * e / (thickness_ratio * coth**2))
     extra = 0.5 * extra_in_air * (1.0 + 1.0 / cosh(sqrt(eps_r - 1.0)))
