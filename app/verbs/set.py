@@ -1,0 +1,83 @@
+"""``kerfwave set``: change parameters of a project, checked like an edit in the window."""
+
+from __future__ import annotations
+
+from enum import Enum
+from typing import TYPE_CHECKING, TextIO
+
+from app.verbs.arguments import BadInputError, VerbParser, add_file, add_json, add_output, load
+from app.verbs.output import json_text, table
+from core.design.edit import Parameter, parameters, with_texts
+from core.design.record import to_record
+from core.storage.project import write_project
+from core.units import exact_text
+
+if TYPE_CHECKING:
+    from argparse import Namespace
+
+    from core.design.model import Design
+
+
+def add(parser: VerbParser) -> None:
+    """Declare the words that the verb takes."""
+    add_file(parser)
+    parser.add_argument(
+        "changes",
+        metavar="KEY=VALUE",
+        nargs="+",
+        help="dotted name and new value, such as element.length=41.5mm, "
+        'stock.spacer="air:10mm + card:1mm", stock.ground=disc:200mm, feed=probe',
+    )
+    add_output(parser, "write the changed project there and leave FILE as it is")
+    add_json(parser)
+
+
+def run(words: Namespace, out: TextIO) -> None:
+    """Change the project, write it and print what changed."""
+    before = load(words.file)
+    after = with_texts(before, _pairs(words.changes))
+    goal = words.output or words.file
+    in_place = goal.exists() and goal.samefile(words.file)
+    write_project(goal, after, replace=in_place or words.replace)
+    if words.json:
+        changed = [row[0] for row in _differences(before, after)]
+        out.write(json_text({"file": str(goal), "changed": changed, "design": to_record(after)}))
+        return
+    nothing = "nothing changed: these are the values already\n"
+    out.write(table(_differences(before, after)) or nothing)
+    out.write(f"written to {goal}\n")
+
+
+def _pairs(changes: list[str]) -> list[tuple[str, str]]:
+    """Keys and values; a key without a value, or given twice, is refused."""
+    pairs: dict[str, str] = {}
+    for change in changes:
+        key, equals, value = change.partition("=")
+        key = key.strip()
+        if not equals or not key:
+            raise BadInputError(
+                f"{change[:40]!r} is no change; accepted: KEY=VALUE, such as element.length=41.5mm"
+            )
+        if key in pairs:
+            raise BadInputError(f"{key[:40]!r} is given twice; accepted: each key once")
+        pairs[key] = value
+    return list(pairs.items())
+
+
+def _differences(before: Design, after: Design) -> list[tuple[str, str]]:
+    """Changed keys with their old and new values, in the order of the job."""
+    old = {parameter.key: _shown(parameter) for parameter in parameters(before)}
+    new = {parameter.key: _shown(parameter) for parameter in parameters(after)}
+    keys = [*new, *(key for key in old if key not in new)]
+    return [
+        (key, f"{old.get(key, '(none)')} -> {new.get(key, '(none)')}")
+        for key in keys
+        if old.get(key) != new.get(key)
+    ]
+
+
+def _shown(parameter: Parameter) -> str:
+    value, spec = parameter.value, parameter.spec
+    if spec is not None and isinstance(value, float | int):
+        return exact_text(value, spec.kind)
+    return str(value.value) if isinstance(value, Enum) else repr(value)
