@@ -1,0 +1,1 @@
+"""Sheets and parts to bytes, one module per file format."""
