@@ -223,7 +223,8 @@ def contact_of(landing: Landing, element: ElementModes) -> Contact:
     Returns
     -------
     Contact
-        A probe inside becomes a flat strip across x with the same self-inductance [1]_.
+        A contact that would hang over its side is moved onto it. A probe inside becomes a
+        flat strip along x with the same self-inductance [1]_.
 
     References
     ----------
@@ -233,11 +234,18 @@ def contact_of(landing: Landing, element: ElementModes) -> Contact:
     width, length = element.x.length, element.y.length
     x, y = landing.x / width + 0.5, landing.y / length + 0.5
     if landing.side == "x":
-        return Contact(round(x), y, 0.0, landing.width / length)
+        part = min(landing.width / length, 1.0)
+        return Contact(_clipped(round(x), 0.0), _clipped(y, part), 0.0, part)
     if landing.side == "y":
-        return Contact(x, round(y), landing.width / width, 0.0)
+        part = min(landing.width / width, 1.0)
+        return Contact(_clipped(x, part), _clipped(round(y), 0.0), part, 0.0)
     strip = STRIP_FOR_ROUND * landing.width / 2.0
-    return Contact(x, y, strip / element.x.effective_length, 0.0)
+    return Contact(_clipped(x, 0.0), _clipped(y, 0.0), strip / element.x.effective_length, 0.0)
+
+
+def _clipped(middle: float, width: float) -> float:
+    """The middle nearest to a wanted one with which a contact stays on its side."""
+    return min(max(middle, width / 2.0), 1.0 - width / 2.0)
 
 
 def _shape(contact: Contact, orders: Floats) -> Floats:
