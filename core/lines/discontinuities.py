@@ -9,12 +9,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from math import atan, exp, hypot, log, sqrt
 
-import numpy as np
-from numpy.typing import NDArray
-
-from core.constants import FREE_SPACE_IMPEDANCE, SPEED_OF_LIGHT, TWO_PI, VACUUM_PERMEABILITY
-
-_EULER = float(np.euler_gamma)
+from core.constants import FREE_SPACE_IMPEDANCE, TWO_PI, VACUUM_PERMEABILITY
 
 
 def open_end_extension_kirschning(
@@ -253,34 +248,3 @@ def pin_inductance(radius: float, height: float) -> float:
         / TWO_PI
         * (height * log((height + slant) / radius) + 1.5 * (radius - slant))
     )
-
-
-def probe_reactance(
-    radius: float, height: float, eps_r: float, frequency: NDArray[np.float64]
-) -> NDArray[np.float64]:
-    """Series reactance of a probe between wide parallel plates.
-
-    Parameters
-    ----------
-    radius, height : float
-        Of the probe and of the spacer, m, > 0.
-    eps_r : float
-        Spacer, >= 1.
-    frequency : (n,) ndarray of float
-        Hz, > 0.
-
-    Returns
-    -------
-    (n,) ndarray of float
-        ohm.
-
-    Notes
-    -----
-    Small-radius limit of the field of a uniform current between parallel plates (common form
-    in the literature on probe-fed elements, from memory): within 1 % of the Bessel function
-    for a radius under 0.02 wavelength in the spacer.
-    """
-    wavenumber = TWO_PI / SPEED_OF_LIGHT * frequency
-    logarithm = np.log(2.0 / (wavenumber * radius * sqrt(eps_r))) - _EULER
-    reactance: NDArray[np.float64] = FREE_SPACE_IMPEDANCE / TWO_PI * height * wavenumber * logarithm
-    return reactance

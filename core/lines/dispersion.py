@@ -79,7 +79,7 @@ def dispersed_impedance(
     is where foam and card lie. A line in air has no dispersion at all, so below a
     permittivity of 1.3 the logarithm of the rise is taken as proportional to the
     permittivity less one. Against a full-wave solution this stays within 1.5 % up to 39 GHz mm,
-    where the formula used as printed is 19 % off (docs/models/lines.md).
+    where the formula used as printed is up to 30 % off (docs/models/lines.md).
 
     References
     ----------

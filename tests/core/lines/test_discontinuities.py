@@ -132,7 +132,9 @@ def test_pin_inductance_against_the_mutual_inductance_integral(radius):
     assert pin_inductance(radius, 1.0) == pytest.approx(neumann + fitted, rel=1e-6)
 
 
-@pytest.mark.parametrize("row", table("probe_reactance.toml")["rows"], ids=lambda row: row["id"])
+@pytest.mark.parametrize(
+    "row", table("probe_between_plates.toml")["rows"], ids=lambda row: row["id"]
+)
 def test_published_probe_reactance(row):
     found = probe_reactance(
         row["radius_mm"] * 1e-3,
