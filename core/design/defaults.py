@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from core.design import spelled
 from core.design.feed import Branch, DualEdge, Feed, LeadIn, ProbeFeed, ProbePin
-from core.design.model import Brief, Design, Element
+from core.design.model import Brief, Design, Element, Making
 from core.design.polarisation import Polarisation
 from core.design.stock import DiscGround, Stock
 from core.errors import InputError
@@ -43,15 +43,19 @@ def default_design() -> Design:
     )
 
 
-def feed_named(text: str, design: Design) -> Feed:
-    """Feed of the named kind, placed on a design's element before any sizing.
+def feed_named(text: str, element: Element, making: Making, height: float, probe: ProbePin) -> Feed:
+    """Feed of the named kind, placed on an element before any sizing.
 
     Parameters
     ----------
     text : str
         "dual-edge" or "probe".
-    design : Design
-        Its sides and process give the starting lengths.
+    element : Element
+    making : Making
+        Its narrowest strip and gap are kept to.
+    height : float
+        Of the spacer, m: the strips keep this far from the element.
+    probe : ProbePin
 
     Returns
     -------
@@ -69,14 +73,11 @@ def feed_named(text: str, design: Design) -> Feed:
             value=text,
             allowed=", ".join(FEED_NAMES),
         )
-    probe = getattr(design.feed, "probe", ProbePin())
-    element, making = design.element, design.making
-    if folded(text) == "probe":
-        side = min(element.width, element.length)
-        return ProbeFeed(side / 5, side / 5, probe)
     side = min(element.width, element.length)
+    if folded(text) == "probe":
+        return ProbeFeed(side / 5, side / 5, probe)
     width = max(side / 20, making.narrowest_strip)
-    gap = max(side / 15, making.narrowest_gap, design.stock.height)
+    gap = max(side / 15, making.narrowest_gap, height)
     landing = max(side / 3, width)
     return DualEdge(
         first=Branch(landing, gap, width),

@@ -250,7 +250,9 @@ def _whole_part(design: Design, key: str, text: str) -> Design | None:
         "stock.ground": lambda: spelled.ground(text),
         "stock.foil": lambda: spelled.foil(text),
         "element": lambda: spelled.element(text),
-        "feed": lambda: defaults.feed_named(text, design),
+        "feed": lambda: defaults.feed_named(
+            text, design.element, design.making, design.stock.height, design.feed.probe
+        ),
         "feed.lead_in.bends": lambda: spelled.bends(text),
     }
     if key == "feed.lead_in.bends" and not hasattr(design.feed, "lead_in"):
