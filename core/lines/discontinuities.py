@@ -127,34 +127,6 @@ def mitred_bend(width: float, height: float, eps_r: float) -> BendCircuit:
     )
 
 
-def optimum_mitre(width: float, height: float) -> float:
-    """Share of the corner's diagonal to cut off a right-angle bend for the best match.
-
-    Parameters
-    ----------
-    width, height : float
-        Of the strip and of the substrate, m, > 0.
-
-    Returns
-    -------
-    float
-        Cut length over diagonal, 0.52 for a wide strip; limited to the 0.98 that leaves the
-        corner joined.
-
-    Notes
-    -----
-    Stated for width from a quarter of the height up and permittivity up to 25 [1]_ (from
-    memory).
-
-    References
-    ----------
-    .. [1] R. J. P. Douville and D. S. James, "Experimental study of symmetric microstrip bends
-       and their compensation", IEEE Trans. Microwave Theory Tech., vol. 26, no. 3,
-       pp. 175-182, Mar. 1978.
-    """
-    return min(0.52 + 0.65 * exp(-1.35 * width / height), 0.98)
-
-
 @dataclass(frozen=True)
 class TeePlanes:
     """Where the three strips of a tee begin electrically.

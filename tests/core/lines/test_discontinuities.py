@@ -13,7 +13,6 @@ from core.constants import FREE_SPACE_IMPEDANCE, VACUUM_PERMEABILITY
 from core.lines.discontinuities import (
     mitred_bend,
     open_end_extension_kirschning,
-    optimum_mitre,
     pin_inductance,
     square_bend,
     tee_planes,
@@ -88,16 +87,6 @@ def test_mitring_matches_the_bend(ratio, eps_r):
     )
     assert square < mitred < 1.0
     assert mitred > 0.55
-
-
-@pytest.mark.parametrize("row", table("mitred_bend.toml")["rows"], ids=lambda row: row["id"])
-def test_published_mitre(row):
-    found = 100.0 * optimum_mitre(row["width_over_height"], 1.0)
-    assert found == pytest.approx(row["mitre_percent"], abs=0.05)  # as printed
-
-
-def test_a_mitre_never_cuts_the_strip_through():
-    assert optimum_mitre(0.1, 1.0) == 0.98
 
 
 def test_a_weak_side_arm_leaves_the_through_line_alone():

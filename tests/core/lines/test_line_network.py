@@ -9,13 +9,11 @@ import pytest
 from numpy.testing import assert_allclose
 from skrf import Frequency
 from skrf.media import DefinedGammaZ0
-from skrf.network import a2s, s2a, s2y
+from skrf.network import a2s, s2a
 
 from core.lines.microstrip import line_properties, width_for_impedance
 from core.lines.network import (
-    admittance_matrix,
     cascade,
-    input_impedance,
     line_two_port,
     series_two_port,
     shunt_two_port,
@@ -32,6 +30,10 @@ LINE = line_properties(
 def matrix(two_port):
     parts = np.broadcast_arrays(two_port.a, two_port.b, two_port.c, two_port.d)
     return np.moveaxis(np.array(parts, dtype=complex).reshape(2, 2, -1), -1, 0)
+
+
+def input_impedance(two_port, load):
+    return (two_port.a * load + two_port.b) / (two_port.c * load + two_port.d)
 
 
 def pieces():
@@ -52,11 +54,6 @@ def test_a_cascade_is_the_matrix_product():
     assert_allclose(whole, np.broadcast_to(one, whole.shape) @ two @ three @ four, rtol=1e-12)
 
 
-def test_admittances_agree_with_scikit_rf():
-    two_port = cascade(*pieces())
-    assert_allclose(admittance_matrix(two_port), s2y(a2s(matrix(two_port))), rtol=1e-9)
-
-
 def test_a_line_agrees_with_scikit_rf():
     media = DefinedGammaZ0(
         Frequency.from_f(FREQUENCY, unit="Hz"),
@@ -73,11 +70,12 @@ def test_line_taken_away_undoes_line_added():
     assert_allclose(back, np.broadcast_to(np.eye(2), back.shape), atol=1e-12)
 
 
-def test_a_lossless_cascade_is_reciprocal_and_passes_no_power_to_itself():
+def test_a_lossless_cascade_is_reciprocal_and_keeps_all_power():
     lossless = line_properties(3e-3, (Layer(1.6e-3, 4.4),), FREQUENCY)
     two_port = cascade(line_two_port(lossless, 0.02), shunt_two_port(2j * pi * FREQUENCY * 1e-12))
     assert_allclose(two_port.a * two_port.d - two_port.b * two_port.c, 1.0, rtol=1e-12)
-    assert_allclose(admittance_matrix(two_port).real, 0.0, atol=1e-15)
+    scattering = a2s(matrix(two_port))
+    assert_allclose(np.sum(abs(scattering) ** 2, axis=1), 1.0, rtol=1e-9)
 
 
 def test_open_and_shorted_lines():
