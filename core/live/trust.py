@@ -81,10 +81,8 @@ def _broken_limits(layout: Layout) -> list[str]:
             f"up to {THICKEST:g}"
         )
     if reach < SHORTEST_REACH * wavelength:
-        broken.append(
-            f"the ground plate reaches {_mm(reach)} beyond the element and equations need "
-            f"half a wavelength, {_mm(SHORTEST_REACH * wavelength)}"
-        )
+        needed = _mm(SHORTEST_REACH * wavelength)
+        broken.append(f"{_reach_text(reach)} and equations need half a wavelength, {needed}")
     if clearance < height:
         broken.append(
             f"a strip runs {_mm(clearance)} from the element, nearer than the spacer is "
@@ -99,7 +97,7 @@ def _resonance_reason(layout: Layout, shift: float) -> str:
     wavelength = SPEED_OF_LIGHT / layout.frequency
     reason = f"two published end extensions put the resonance {_percent(shift)} apart"
     if layout.height > THICKEST * wavelength:
-        reason += ", and measured elements on thick spacers lie 5 to 17 % below"
+        reason += ", and measured elements on thick spacers lie up to 17 % below"
     return reason
 
 
@@ -107,10 +105,7 @@ def _pattern_trust(layout: Layout) -> Trust:
     wavelength = SPEED_OF_LIGHT / layout.frequency
     if layout.ground_reach >= SHORTEST_REACH * wavelength:
         return Trust(TrustLevel.ROUGH, "slots over an endless ground plane, nothing behind it")
-    reason = (
-        f"the ground plate reaches {_mm(layout.ground_reach)} beyond the element and the "
-        f"pattern is that of an endless one"
-    )
+    reason = f"{_reach_text(layout.ground_reach)} and the pattern is that of an endless one"
     return Trust(TrustLevel.UNKNOWN, reason, _REMEDY)
 
 
@@ -133,6 +128,12 @@ def _resistance_spread(element: ElementModes) -> float:
         slots = edge_resistance(mode.width, mode.length, mode.frequency)
         spread = max(spread, abs(slots / (2.0 * mode.losses.space * reactance) - 1.0))
     return spread
+
+
+def _reach_text(reach: float) -> str:
+    if reach < 0.0:
+        return f"the element reaches {_mm(-reach)} beyond the ground plate"
+    return f"the ground plate reaches {_mm(reach)} beyond the element"
 
 
 def _percent(part: float) -> str:
