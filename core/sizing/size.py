@@ -42,6 +42,8 @@ GOAL_AXIAL_RATIO_DB = 1.5
 _REFLECTION_SCALE = 0.2  # |S11| of VSWR 1.5
 _CROSS_SCALE = 0.0862  # wrong-hand over right-hand field at 1.5 dB
 _AIM = 0.35  # of the goals: where a search is done
+_PATIENCE = 250  # evaluations after which reaching the goals is enough
+_LIMIT = 650  # evaluations after which no new search begins: about a second
 _SIDE_WEIGHT = 0.15  # of the frequencies beside the brief's: prefers the wider band
 _REFUSED = 1e3  # added to the cost of what cannot be made
 _BESIDE = 0.004  # relative distance of those frequencies
@@ -115,14 +117,16 @@ def size(
     """
     search = _Search(design)
     starts = [search.found(box, box.start) for box in _boxes(design, keep_element)]
-    starts.sort(key=lambda start: start.cost)
+    starts.sort(key=lambda start: (len(start.turns), start.cost))  # simple ones first
     best = starts[0]
     for number, start in enumerate(starts):
         progress.step(number, len(starts))
         found = search.improved(start, progress)
         if found.cost < best.cost:
             best = found
-        if best.cost <= _AIM:
+        if best.cost <= (_AIM if search.evaluations < _PATIENCE else 1.0):
+            break
+        if search.evaluations > _LIMIT:
             break
     progress.step(len(starts), len(starts))
     sized = _with_fitted_ground(best.design) if fit_ground else best.design

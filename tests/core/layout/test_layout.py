@@ -17,10 +17,29 @@ from core.shapes.outline import polygon
 MM = 1e-3
 
 
+def plain_design() -> Design:
+    """Round numbers, so that lengths in the tests can be added up by eye."""
+    return with_texts(
+        default_design(),
+        [
+            ("stock.ground", "disc:200mm"),
+            ("element", "rect:54mmx54mm"),
+            ("feed.first.landing", "18mm"),
+            ("feed.second.landing", "18mm"),
+            ("feed.first.width", "3mm"),
+            ("feed.second.width", "3mm"),
+            ("feed.delay_width", "4mm"),
+            ("feed.delay_length", "50mm"),
+            ("feed.tee", "0"),
+            ("feed.lead_in.width", "4mm"),
+        ],
+    )
+
+
 def changed(**changes: str) -> Design:
-    """Default design with changes; double underscores stand for dots."""
+    """Plain design with changes; double underscores stand for dots."""
     texts = [(key.replace("__", "."), text) for key, text in changes.items()]
-    return with_texts(default_design(), texts)
+    return with_texts(plain_design(), texts)
 
 
 def codes(layout: Layout) -> set[str]:
@@ -41,7 +60,7 @@ def dual_edge_designs(draw: st.DrawFn) -> Design:
         return f"{draw(st.floats(low, high)):.6f} mm"
 
     return with_texts(
-        default_design(),
+        plain_design(),
         [
             ("brief.polarisation", draw(st.sampled_from(["rhcp", "lhcp"]))),
             ("element", f"rect:{mm(30, 70)}x{mm(30, 70)}"),
@@ -108,7 +127,7 @@ def test_left_hand_is_the_mirror_image(design: Design) -> None:
 
 
 def test_right_hand_layout_has_the_delayed_branch_on_the_right() -> None:
-    layout = build_layout(default_design())
+    layout = build_layout(plain_design())
     first, second = layout.feed.landings
     assert (first.side, second.side) == ("y", "x")
     assert first.y == -layout.element_length / 2
@@ -204,7 +223,7 @@ def test_strip_beyond_the_plate_is_a_warning_only() -> None:
 
 
 def test_ground_reach_is_to_the_nearest_rim() -> None:
-    layout = build_layout(default_design())
+    layout = build_layout(plain_design())
     assert layout.ground_reach == pytest.approx(0.1 - math.hypot(27 * MM, 27 * MM))
 
 
@@ -229,7 +248,7 @@ def test_sliding_tee_splits_the_strip() -> None:
 
 def test_lead_in_turns_as_told() -> None:
     layout = build_layout(changed(feed__lead_in__length="20mm", feed__lead_in__bends="12mm left"))
-    start = build_layout(default_design()).ports[0]
+    start = build_layout(plain_design()).ports[0]
     port = layout.ports[0]
     assert port.x - start.x == pytest.approx(8 * MM)  # walking down, left is towards +x
     assert port.y - start.y == pytest.approx(-12 * MM)
