@@ -97,6 +97,16 @@ def test_a_weak_side_arm_leaves_the_through_line_alone():
     assert abs(planes.through_a) < 1e-4
 
 
+@pytest.mark.parametrize("row", ELECTROSTATIC["tees"], ids=case)
+def test_tee_of_equal_strips_against_electrostatics(row):
+    """What the planes take off the three strips is the charge they miss, within 14 %."""
+    line = static_line(row["width_over_height"], row["eps_r"], 0.0)
+    arm = (line.impedance, line.eps_eff)
+    planes = tee_planes(1.0, arm, arm, arm)
+    taken_off = planes.through_a + planes.through_b + planes.side
+    assert taken_off == pytest.approx(row["missing_over_height"], rel=0.14)
+
+
 def test_tee_planes_swap_with_the_arms_and_scale():
     one = tee_planes(1.0, (50.0, 1.9), (70.0, 1.8), (100.0, 1.7))
     two = tee_planes(1e-3, (70.0, 1.8), (50.0, 1.9), (100.0, 1.7))
