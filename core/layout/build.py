@@ -6,6 +6,7 @@ from dataclasses import replace
 from typing import TYPE_CHECKING
 
 from core.design.feed import DualEdge
+from core.errors import LayoutError
 from core.layout.buildable import copper_findings, design_findings
 from core.layout.dimensions import layout_dimensions
 from core.layout.model import (
@@ -48,11 +49,6 @@ def build_layout(design: Design) -> Layout:
     -------
     Layout
         What cannot be made is in its findings; nothing is clipped.
-
-    Raises
-    ------
-    LayoutError
-        If the copper has no valid outline at all.
     """
     feed = design.feed
     route = find_route(design.element, feed, design.making) if isinstance(feed, DualEdge) else None
@@ -139,10 +135,20 @@ def _top_copper(
     if route is not None and isinstance(design.feed, DualEdge):
         strips = strip_regions(design.element, design.feed, route)
         findings = copper_findings(design, route, strips)
-        for i, region in enumerate(union(list(strips.values()))):
-            name = BRANCHES if i == 0 else f"{BRANCHES} {i + 1}"
+        for name, region in _joined_strips(strips).items():
             pieces.append(Piece(name, Role.TOP_COPPER, region, z, foil.thickness, foil.name))
     return tuple(pieces), findings
+
+
+def _joined_strips(strips: dict[str, Region]) -> dict[str, Region]:
+    """Strips as one piece; apart, where one runs into itself, which is refused elsewhere."""
+    try:
+        joined = union(list(strips.values()))
+    except LayoutError:
+        return strips
+    return {
+        BRANCHES if i == 0 else f"{BRANCHES} {i + 1}": region for i, region in enumerate(joined)
+    }
 
 
 def _holes(design: Design, probe: Point, pieces: tuple[Piece, ...]) -> tuple[Hole, ...]:

@@ -102,66 +102,24 @@ def _dual_edge_dimensions(
     start, end = route.strip[0], route.strip[-1]
     half = feed.delay_width / 2
     corner: Point = (right, bottom)
-    inner_x, inner_y = start[0] - feed.first.width / 2, end[1] + feed.second.width / 2
-    found = [
-        Dimension(
-            "feed.first.landing",
-            "first landing",
-            (start[0], bottom),
-            corner,
-            route.first_landing,
-            out,
-        ),
-        Dimension(
-            "feed.second.landing",
-            "second landing",
-            corner,
-            (right, end[1]),
-            route.second_landing,
-            out,
-        ),
-        Dimension(
-            "feed.first.gap",
-            "first gap",
-            (inner_x, bottom),
-            (inner_x, start[1] + half),
-            feed.first.gap,
-            -out / 2,
-        ),
-        Dimension(
-            "feed.second.gap",
-            "second gap",
-            (right, inner_y),
-            (end[0] - half, inner_y),
-            feed.second.gap,
-            out / 2,
-        ),
-        Dimension(
-            "feed.delay_width",
+    x, y = start[0] - feed.first.width / 2, end[1] + feed.second.width / 2
+    first_gap, second_gap = feed.first.gap, feed.second.gap
+    rows: list[tuple[str, str, Point, Point, float, float]] = [
+        ("first.landing", "first landing", (start[0], bottom), corner, route.first_landing, out),
+        ("second.landing", "second landing", corner, (right, end[1]), route.second_landing, out),
+        ("first.gap", "first gap", (x, bottom), (x, start[1] + half), first_gap, -out / 2),
+        ("second.gap", "second gap", (right, y), (end[0] - half, y), second_gap, out / 2),
+        (
+            "delay_width",
             "delay strip width",
             (end[0] - half, end[1]),
             (end[0] + half, end[1]),
             feed.delay_width,
             -out / 2,
         ),
-        Dimension(
-            "feed.delay_length",
-            "delay strip length",
-            start,
-            end,
-            route.strip_length,
-            -out,
-        ),
+        ("delay_length", "delay strip length", start, end, route.strip_length, -out),
     ]
     if len(route.lead) > 1:
-        found.append(
-            Dimension(
-                "feed.lead_in.length",
-                "lead-in length",
-                route.lead[0],
-                route.lead[-1],
-                feed.lead_in.length,
-                -out,
-            )
-        )
-    return found
+        lead = feed.lead_in.length
+        rows.append(("lead_in.length", "lead-in length", route.lead[0], route.lead[-1], lead, -out))
+    return [Dimension(f"feed.{row[0]}", *row[1:]) for row in rows]

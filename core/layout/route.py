@@ -257,12 +257,13 @@ def _lead_points(
             )
             break
         here = _stepped(here, direction, bend.distance - walked)
-        points.append(here)
+        if here != points[-1]:  # a bend right at the tee only sets the way
+            points.append(here)
         walked = bend.distance
         x, y = direction
         direction = (-y, x) if bend.turn is Turn.LEFT else (y, -x)
-    points.append(_stepped(here, direction, lead.length - walked))
-    return tuple(points)
+    end = _stepped(here, direction, lead.length - walked)
+    return (*points, end) if end != points[-1] else tuple(points)
 
 
 def _stepped(point: Point, direction: Point, distance: float) -> Point:

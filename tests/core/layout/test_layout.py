@@ -261,3 +261,26 @@ def test_mitre_takes_half_the_corner_diagonal(corners: str) -> None:
     square = copper(build_layout(changed(feed__delay_length="54mm"))).area
     cut = 0.5 * (4 * MM) ** 2 if corners == "mitred" else 0.0
     assert square - area == pytest.approx(cut, abs=1e-10)
+
+
+def test_strip_that_runs_into_itself_is_drawn_and_refused() -> None:
+    design = changed(
+        feed__first__gap="0.9mm",
+        feed__first__landing="1.5mm",
+        feed__delay_width="12mm",
+        feed__corners="mitred",
+        feed__delay_length="60mm",
+        feed__lead_in__length="40mm",
+        feed__lead_in__bends="2mm left, 3mm left, 4mm left",
+    )
+    layout = build_layout(design)
+    assert has_refusal(layout.findings)
+    assert any(piece.role is Role.TOP_COPPER for piece in layout.pieces[-3:])
+
+
+@settings(max_examples=100, deadline=None)
+@given(dual_edge_designs())
+def test_any_design_has_a_layout(design: Design) -> None:
+    layout = build_layout(design)
+    assert {piece.name for piece in layout.pieces} >= {"ground plate", "element"}
+    assert all(finding.message.endswith(".") for finding in layout.findings)
