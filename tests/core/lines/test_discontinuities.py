@@ -79,7 +79,7 @@ def test_mitred_corner_capacitance_against_electrostatics(row):
 @pytest.mark.parametrize("eps_r", [2.5, 4.4, 9.8])
 @pytest.mark.parametrize("ratio", [1.0, 2.0, 4.0])
 def test_mitring_matches_the_bend(ratio, eps_r):
-    """Half a corner is closer to the line's impedance than the whole one: 30 to 110 %."""
+    """Half a corner comes closer to the impedance of the line than the whole one does."""
     line = static_line(ratio, eps_r, 0.0).impedance
     mitred, square = (
         np.sqrt(max(2.0 * bend.arm_inductance, 0.0) / bend.capacitance) / line

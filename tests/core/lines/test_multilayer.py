@@ -11,6 +11,7 @@ from scipy.sparse import coo_array, diags_array
 from scipy.sparse.linalg import spsolve
 
 from core.constants import FREE_SPACE_IMPEDANCE
+from core.errors import ConvergenceError
 from core.lines import multilayer
 from core.lines.multilayer import equivalent_layer
 from core.lines.quasi_static import static_line
@@ -108,6 +109,14 @@ def test_scaling_all_lengths_changes_nothing(ratio, stack, factor):
     width = ratio * height(stack)
     one, two = equivalent_layer(width, stack), equivalent_layer(width * factor, scaled)
     assert two.eps_r == pytest.approx(one.eps_r, rel=1e-10)
+
+
+def test_a_search_that_does_not_settle_is_an_error(monkeypatch):
+    monkeypatch.setattr(multilayer, "_NEWTON_STEPS", 1)
+    with pytest.raises(ConvergenceError, match="2 layers did not settle") as error:
+        equivalent_layer(1.2345, (Layer(0.5), Layer(0.5, 9.0)))
+    assert error.value.iterations == 1
+    assert error.value.residual > 0.0
 
 
 def graded(inner, outer):
