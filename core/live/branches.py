@@ -81,8 +81,8 @@ def build_branches(
     width at a corner counts by these lengths alone. A probe under the element has its
     inductance in the element's cavity, one under a strip its own.
     """
-    runs = (feed.trunk, *feed.arms)
-    widths = {part.width for run in runs for part in run if isinstance(part, Segment)}
+    parts = {part for run in (feed.trunk, *feed.arms) for part in run}
+    widths = {part.width for part in parts if isinstance(part, Segment)}
     lines = {
         width: line_properties(
             width,
@@ -99,11 +99,12 @@ def build_branches(
     height = total_thickness(stack)
     planes = _planes(feed, lines, height)
     omega = TWO_PI * frequencies
+    bends = {part: _bend(part, stack, omega) for part in parts if isinstance(part, Bend)}
     pin = _reactive(omega * pin_inductance(feed.probe.diameter / 2.0, height))
-    trunk = _two_ports(feed.trunk, 0.0, planes.side, lines, stack, omega)
+    trunk = _two_ports(feed.trunk, 0.0, planes.side, lines, bends)
     starts = (planes.through_a, planes.through_b)
     arms = [
-        _two_ports(arm, start, 0.0, lines, stack, omega)
+        _two_ports(arm, start, 0.0, lines, bends)
         for arm, start in zip(feed.arms, starts, strict=False)
     ]
     return Branches(
@@ -130,14 +131,13 @@ def _two_ports(
     cut_start: float,
     cut_end: float,
     lines: dict[float, LineProperties],
-    stack: tuple[Layer, ...],
-    omega: Floats,
+    bends: dict[Bend, TwoPort],
 ) -> list[TwoPort]:
     """Two-ports of the parts of a run, without what is cut off its ends."""
     parts = []
     for i, part in enumerate(run):
         if isinstance(part, Bend):
-            parts.append(_bend(part, stack, omega))
+            parts.append(bends[part])
             continue
         before = cut_start if i == 0 else _half_corner(run, i - 1, i - 2)
         after = cut_end if i == len(run) - 1 else _half_corner(run, i + 1, i + 2)

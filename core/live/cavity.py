@@ -36,7 +36,7 @@ Y_MODE: Final = 1
 
 _KEPT: Final = 4  # orders along each side kept apart: 0 to 3
 _SUMMED: Final = 16  # orders along each side in the terms that fall fast: 1e-5 is left out
-_PERIODS: Final = 16.0  # of a contact's own spectrum in the static sum: 1e-4 is left out
+_PERIODS: Final = 10.0  # of a contact's own spectrum in the static sum: 2e-4 is left out
 _MOST_TERMS: Final = 2048
 
 

@@ -91,7 +91,7 @@ def element_modes(
     -----
     Physical sides go into the quality factors, as published; with the effective area in the
     capacitance the edge resistance by radiation then agrees with that of two slots within
-    13 % (docs/models/element.md).
+    12 % up to 0.06 wavelength of height, 20 % at 0.12 (docs/models/element.md).
     """
     substrate = Layer(
         total_thickness(stack), series_permittivity(stack), series_loss_tangent(stack)
