@@ -26,6 +26,7 @@ if TYPE_CHECKING:
 
 PROGRAM: Final = "kerfwave"
 VERBS: Final = {
+    "show": "all parameters with units, what follows from them, and what can't be built",
     "set": "change parameters of a project by their dotted names",
     "line": "one microstrip line: impedance and loss, or the width for an impedance",
 }

@@ -4,12 +4,17 @@ from __future__ import annotations
 
 import json
 import math
+from enum import Enum
 from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
+from core.units import exact_text
+
 if TYPE_CHECKING:
     from collections.abc import Iterable, Mapping
+
+    from core.design.edit import Parameter
 
 
 def table(rows: Iterable[tuple[str, ...]], indent: str = "") -> str:
@@ -22,6 +27,14 @@ def table(rows: Iterable[tuple[str, ...]], indent: str = "") -> str:
         cells = [cell.ljust(width) for cell, width in zip(row, widths, strict=False)]
         lines.append(f"{indent}{'  '.join(cells)}".rstrip())
     return "".join(f"{line}\n" for line in lines)
+
+
+def value_text(parameter: Parameter) -> str:
+    """Value of a parameter, written so that `kerfwave set` reads it back the same."""
+    value, spec = parameter.value, parameter.spec
+    if spec is not None and isinstance(value, float | int):
+        return exact_text(value, spec.kind)
+    return str(value.value) if isinstance(value, Enum) else str(value)
 
 
 def json_text(record: Mapping[str, Any]) -> str:

@@ -2,15 +2,13 @@
 
 from __future__ import annotations
 
-from enum import Enum
 from typing import TYPE_CHECKING, TextIO
 
 from app.verbs.arguments import BadInputError, VerbParser, add_file, add_json, add_output, load
-from app.verbs.output import json_text, table
-from core.design.edit import Parameter, parameters, with_texts
+from app.verbs.output import json_text, table, value_text
+from core.design.edit import parameters, with_texts
 from core.design.record import to_record
 from core.storage.project import write_project
-from core.units import exact_text
 
 if TYPE_CHECKING:
     from argparse import Namespace
@@ -66,18 +64,11 @@ def _pairs(changes: list[str]) -> list[tuple[str, str]]:
 
 def _differences(before: Design, after: Design) -> list[tuple[str, str]]:
     """Changed keys with their old and new values, in the order of the job."""
-    old = {parameter.key: _shown(parameter) for parameter in parameters(before)}
-    new = {parameter.key: _shown(parameter) for parameter in parameters(after)}
+    old = {parameter.key: value_text(parameter) for parameter in parameters(before)}
+    new = {parameter.key: value_text(parameter) for parameter in parameters(after)}
     keys = [*new, *(key for key in old if key not in new)]
     return [
         (key, f"{old.get(key, '(none)')} -> {new.get(key, '(none)')}")
         for key in keys
         if old.get(key) != new.get(key)
     ]
-
-
-def _shown(parameter: Parameter) -> str:
-    value, spec = parameter.value, parameter.spec
-    if spec is not None and isinstance(value, float | int):
-        return exact_text(value, spec.kind)
-    return str(value.value) if isinstance(value, Enum) else repr(value)

@@ -8,10 +8,10 @@ from importlib.metadata import version
 from pathlib import Path
 
 import pytest
+from sample_designs import tape_design
 
 from app import command
 from app.command import VERBS, main
-from core.design.defaults import default_design
 from core.errors import ModelError
 from core.storage.project import write_project
 
@@ -24,7 +24,7 @@ def project(tmp_path, monkeypatch):
     """A good project by a short name, in the folder that the test runs in."""
     monkeypatch.chdir(tmp_path)
     monkeypatch.delenv("KERFWAVE_TRACEBACK", raising=False)
-    write_project(Path("a.kerf"), default_design(), replace=False)
+    write_project(Path("a.kerf"), tape_design(), replace=False)
     return Path("a.kerf")
 
 
@@ -73,7 +73,7 @@ def test_every_verb_tells_what_it_takes(capsys, verb, word):
 @pytest.mark.parametrize(
     ("words", "said"),
     [
-        (["lin"], "kerfwave: 'lin' is no verb (did you mean line?); accepted: set, "),
+        (["lin"], "kerfwave: 'lin' is no verb (did you mean line?); accepted: "),
         (["SET"], "kerfwave: 'SET' is no verb (did you mean set?)"),
         (["frobnicate"], "kerfwave: 'frobnicate' is no verb; accepted: "),
         (["frob" * 2000], "is no verb; accepted: "),

@@ -4,14 +4,14 @@ import json
 from pathlib import Path
 
 import pytest
+from sample_designs import tape_design
 
 from app.command import main
-from core.design.defaults import default_design
 from core.design.edit import value_at, with_texts
 from core.design.record import from_record
 from core.storage.project import read_project, write_project
 
-DESIGN = default_design()
+DESIGN = tape_design()
 
 
 @pytest.fixture
