@@ -45,6 +45,7 @@ _AIM = 0.35  # of the goals: where a search is done
 _PATIENCE = 250  # evaluations after which reaching the goals is enough
 _LIMIT = 650  # evaluations after which no new search begins: about a second
 _SIDE_WEIGHT = 0.15  # of the frequencies beside the brief's: prefers the wider band
+_ROOMY = 1.5  # times the seed's sides: larger than any that are tried
 _REFUSED = 1e3  # added to the cost of what cannot be made
 _BESIDE = 0.004  # relative distance of those frequencies
 _MOST_TRIES = 40  # evaluations of the gradient in one search
@@ -115,6 +116,8 @@ def size(
     right-hand field, at the brief's frequency and, lightly, at two beside it, from a few
     starting points: branches near the corner, at mid-side, with a lead-in.
     """
+    if fit_ground:  # out of the way while the sides are found
+        design = _with_fitted_ground(design, _ROOMY)
     search = _Search(design)
     starts = [search.found(box, box.start) for box in _boxes(design, keep_element)]
     starts.sort(key=lambda start: (len(start.turns), start.cost))  # simple ones first
@@ -264,10 +267,10 @@ def _lead_room(design: Design, side: float) -> float:
     return low
 
 
-def _with_fitted_ground(design: Design) -> Design:
+def _with_fitted_ground(design: Design, spare: float = 1.0) -> Design:
     """Ground plate that reaches half a wavelength beyond the element and covers the strips."""
     reach = 0.5 * SPEED_OF_LIGHT / design.brief.frequency
-    longest = max(design.element.width, design.element.length)
+    longest = spare * max(design.element.width, design.element.length)
     wanted = ceil((longest + 2.0 * reach) * 1e3 + 1.0) / 1e3  # whole millimetres
     ground = design.stock.ground
     shape = (
