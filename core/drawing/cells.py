@@ -156,4 +156,4 @@ def _size(part: Part) -> str:
 
 
 def _length(value: float) -> str:
-    return format_quantity(value, Quantity.LENGTH)
+    return format_quantity(value, Quantity.LENGTH).replace(" ", "\u00a0")  # never broken

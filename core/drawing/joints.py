@@ -20,12 +20,14 @@ _SMALL: Final = 2.2e-3
 _BETWEEN: Final = 12e-3  # from block to block on the map, as on the pages
 
 
-def joint_marks(block: Block) -> list[Ink]:
+def joint_marks(block: Block, first: int) -> list[Ink]:
     """Crosses, letters and trim lines in the overlaps of a block, in its own place.
 
     Parameters
     ----------
     block : Block
+    first : int
+        Number of its first letter: 0 is A.
 
     Returns
     -------
@@ -44,7 +46,7 @@ def joint_marks(block: Block) -> list[Ink]:
         *(((x, box.bottom), (x, box.top)) for box in rows for x in across),
         *(((box.left, y), (box.right, y)) for y in along[::-1] for box in columns),
     ]
-    for number, ((x0, y0), (x1, y1)) in enumerate(joints):
+    for number, ((x0, y0), (x1, y1)) in enumerate(joints, first):
         for part in (0.25, 0.75):
             inks += _cross(x0 + part * (x1 - x0), y0 + part * (y1 - y0), _name(number))
     return inks

@@ -17,6 +17,7 @@ _WIDTHS: Final = (
     *(500, 613, 635, 550, 635, 615, 352, 635, 634, 278, 278, 579, 278, 974, 634, 612),
     *(635, 635, 411, 521, 392, 634, 592, 818, 592, 592, 525, 636, 337, 636, 838),
 )
+_NO_BREAK: Final = "\u00a0"
 _WIDEST: Final = 1100  # for letters beyond ASCII: rather too much room than too little
 
 
@@ -51,10 +52,10 @@ def wrapped(text: str, height: float, width: float) -> list[str]:
     Returns
     -------
     list of str
-        Words that are too long are broken too.
+        Broken at spaces, no-break ones excepted; words that are too long are broken too.
     """
     lines = [""]
-    for word in text.split():
+    for word in text.split(" "):
         rest = word
         if lines[-1] and text_width(f"{lines[-1]} {word}", height) <= width:
             lines[-1] += f" {word}"
@@ -94,7 +95,7 @@ def fitting_height(text: str, height: float, width: float) -> float:
 
 def _width(letter: str) -> int:
     """Advance width of a letter, thousandths of the body."""
-    plain = unicodedata.normalize("NFD", letter)[0]  # É is as wide as E
+    plain = unicodedata.normalize("NFD", letter)[0].replace(_NO_BREAK, " ")  # É is as wide as E
     if " " <= plain <= "~":
         return _WIDTHS[ord(plain) - ord(" ")]
     return 0 if unicodedata.combining(letter) else _WIDEST

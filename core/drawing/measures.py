@@ -130,26 +130,16 @@ def dimension_lines(dimensions: Iterable[Dimension], box: Box) -> tuple[list[Ink
             side = _side_of(dimension, box)
             sides[side].append(_entry(dimension, side, box))
     inks: list[Ink] = []
-    reach = dict.fromkeys(_Side, 0.0)
-    spans = [(box.left, box.right), (box.bottom, box.top)]
-    for side, entries in sides.items():
-        placed = _in_lanes(entries)
-        for entry in placed:
-            inks += _drawn(entry, placed, side, box)
-            reach[side] = max(reach[side], _FIRST + (entry.lane + 1) * _PITCH)
-            axis = 0 if side.upright else 1
-            low, high = spans[axis]
-            spans[axis] = (
-                min(low, entry.middle - entry.half),
-                max(high, entry.middle + entry.half),
-            )
-    (left, right), (bottom, top) = spans
-    return inks, Box(
-        min(left, box.left - reach[_Side.LEFT]),
-        min(bottom, box.bottom - reach[_Side.BOTTOM]),
-        max(right, box.right + reach[_Side.RIGHT]),
-        max(top, box.top + reach[_Side.TOP]),
-    )
+    around = box
+    for upright in (True, False):
+        taken = around  # texts beside the part keep clear of those above and below it
+        for side in (side for side in _Side if side.upright is upright):
+            placed = _in_lanes(sides[side])
+            first = _first(placed, side, box, taken)
+            for entry in placed:
+                inks += _drawn(entry, placed, side, box, first)
+                around = _with(around, entry, side, box, first)
+    return inks, around
 
 
 def _side_of(dimension: Dimension, box: Box) -> _Side:
@@ -208,13 +198,40 @@ def _in_lanes(entries: list[_Entry]) -> list[_Entry]:
     return placed
 
 
-def _drawn(entry: _Entry, all_entries: list[_Entry], side: _Side, box: Box) -> list[Ink]:
+def _first(placed: list[_Entry], side: _Side, box: Box, taken: Box) -> float:
+    """How far out the first lane begins."""
+    if side.upright or all(
+        box.bottom <= entry.middle - entry.half and entry.middle + entry.half <= box.top
+        for entry in placed
+    ):
+        return _FIRST
+    beyond = taken.right - box.right if side is _Side.RIGHT else box.left - taken.left
+    return max(_FIRST, beyond)
+
+
+def _with(around: Box, entry: _Entry, side: _Side, box: Box, first: float) -> Box:
+    """Bounds that hold an entry too."""
+    out = first + (entry.lane + 1) * _PITCH
+    low = _point(entry.middle - entry.half, out, side, box)
+    high = _point(entry.middle + entry.half, out, side, box)
+    return Box(
+        min(around.left, low[0]),
+        min(around.bottom, low[1]),
+        max(around.right, high[0]),
+        max(around.top, high[1]),
+    )
+
+
+def _drawn(
+    entry: _Entry, all_entries: list[_Entry], side: _Side, box: Box, first: float
+) -> list[Ink]:
     """Line with ticks, text on it, and the lines from the part out to it."""
-    level = _level(entry.lane, side)
+    level = _level(entry.lane, side, first)
     lines = [[(entry.start, level), (entry.end, level)]]
     for u, depth in ((entry.start, entry.start_depth), (entry.end, entry.end_depth)):
         lines.append([(u - _TICK, level - _TICK), (u + _TICK, level + _TICK)])
-        lines += _reaching_out(u, depth, level + _TICK, _texts_passed(u, entry, all_entries, side))
+        gaps = _texts_passed(u, entry, all_entries, side, first)
+        lines += _reaching_out(u, depth, level + (0.0 if side.text_outside else _TICK), gaps)
     inks = [
         Ink(Purpose.DIMENSION, Line(tuple(_point(u, v, side, box) for u, v in line)))
         for line in lines
@@ -224,20 +241,20 @@ def _drawn(entry: _Entry, all_entries: list[_Entry], side: _Side, box: Box) -> l
     return [*inks, Ink(Purpose.DIMENSION, text)]
 
 
-def _level(lane: int, side: _Side) -> float:
+def _level(lane: int, side: _Side, first: float) -> float:
     """Distance (v) of the dimension line in a lane."""
-    return _FIRST + lane * _PITCH + (0.8e-3 if side.text_outside else _PITCH - 0.8e-3)
+    return first + lane * _PITCH + (0.8e-3 if side.text_outside else _PITCH - 0.8e-3)
 
 
 def _texts_passed(
-    u: float, entry: _Entry, all_entries: list[_Entry], side: _Side
+    u: float, entry: _Entry, all_entries: list[_Entry], side: _Side, first: float
 ) -> list[tuple[float, float]]:
     """Spans of v, rising, in which a line outwards at u would run through a text."""
     passed = set()
     for other in all_entries:
         own = other is entry and not side.text_outside
         if (other.lane < entry.lane or own) and abs(u - other.middle) < other.text_half:
-            level = _level(other.lane, side)
+            level = _level(other.lane, side, first)
             far = level + (_PITCH - 0.8e-3 if side.text_outside else 0.0)
             near = level if side.text_outside else level - _PITCH + 0.8e-3
             passed.add((near, far))

@@ -29,6 +29,7 @@ _COLUMN: Final = 58e-3  # where the text begins, right of the square
 _SMALL: Final = 2.2e-3
 _PITCH: Final = 3.1e-3
 _BAND: Final = 5.5e-3  # of the title block, across its foot
+_LOUD: Final = 3.6e-3
 _SENSES: Final = {
     Polarisation.LINEAR: "linear polarisation",
     Polarisation.RHCP: "right-hand circular (RHCP)",
@@ -57,7 +58,7 @@ def title_block(
     """
     left, right = MARGIN, paper.width - MARGIN
     bottom, top = MARGIN, MARGIN + TITLE_HEIGHT
-    room = (right - left) / 2 - 3e-3
+    room, other_room = 0.58 * (right - left), 0.4 * (right - left) - 4e-3
     side = "MIRRORED, seen from behind" if mirrored else "Seen from the front"
     identity = (
         f"Revision {design.revision}, code {short_code(design)}: "
@@ -70,21 +71,21 @@ def title_block(
         Ink(Purpose.FRAME, Line(((left, bottom + _BAND), (right, bottom + _BAND)))),
         _fitted(left + 2e-3, top - 4.2e-3, design.name, 3.4e-3, room),
         _fitted(left + 2e-3, top - 8.1e-3, identity, 2.3e-3, room),
-        _fitted(right - 2e-3, top - 4.2e-3, place, 2.3e-3, room, Anchor.END),
+        _fitted(right - 2e-3, top - 4.2e-3, place, 2.3e-3, other_room, Anchor.END),
         _fitted(
             right - 2e-3,
             top - 8.1e-3,
             f"{side}. Print at 100 %, actual size.",
             2.3e-3,
-            room,
+            other_room,
             Anchor.END,
         ),
     ]
-    words = "Field-checked" if field_checked else NOT_CHECKED
-    height = 2.6e-3 if field_checked else 3.6e-3
-    baseline = bottom + (_BAND - CAP_HEIGHT * height) / 2
-    purpose = Purpose.NOTES if field_checked else Purpose.WARNING
-    return [*inks, Ink(purpose, Text(middle[0], baseline, words, height, Anchor.MIDDLE))]
+    words = [*(["MIRRORED"] if mirrored else []), "field-checked" if field_checked else NOT_CHECKED]
+    baseline = bottom + (_BAND - CAP_HEIGHT * _LOUD) / 2
+    purpose = Purpose.NOTES if field_checked and not mirrored else Purpose.WARNING
+    text = Text(middle[0], baseline, ", ".join(words), _LOUD, Anchor.MIDDLE)
+    return [*inks, Ink(purpose, text)]
 
 
 def notes_cell(design: Design, layout: Layout, mirrored: bool) -> Cell:
@@ -124,7 +125,7 @@ def _texts(design: Design, layout: Layout, mirrored: bool) -> list[tuple[Purpose
         "Before cutting, check the print: the rules along two edges must measure 100 mm, "
         "the square 50 mm each way.",
         f"{_facing(mirrored)} {_stack(design)}",
-        f"Made with {design.making.process}, edges true to "
+        f"Process: {design.making.process}, edges true to "
         f"{_length(design.making.tolerance)}. Connector "
         f"{format_quantity(design.brief.impedance, Quantity.RESISTANCE)}.",
     ]

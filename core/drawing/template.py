@@ -136,13 +136,14 @@ def _with_map(blocks: tuple[Block, ...]) -> tuple[Block, ...]:
 
 
 def _sheets(job: _Job, paper: Paper, blocks: tuple[Block, ...]) -> tuple[Sheet, ...]:
-    total = _pages(blocks)
+    total, joints = _pages(blocks), 0
     sheets: list[Sheet] = []
     for block in blocks:
         inks = [
             ink.moved(placed.x, placed.y) for placed in block.placed for ink in placed.cell.inks
         ]
-        inks += joint_marks(block)
+        inks += joint_marks(block, joints)
+        joints += block.joints
         for tile in block.tiles:
             place = f"Page {len(sheets) + 1} of {total}"
             if len(block.tiles) > 1:

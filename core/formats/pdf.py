@@ -47,6 +47,7 @@ def pdf_bytes(sheets: Sequence[Sheet]) -> bytes:
     canvas = Canvas(buffer, pdfVersion=(1, 6), invariant=True, initialFontName=initial)
     canvas.setViewerPreference("PrintScaling", "None")
     canvas.setTitle(sheets[0].title)
+    canvas.setCreator("Kerfwave")
     canvas.setAuthor("")
     for sheet in sheets:
         canvas.setPageSize((sheet.box.width * _POINT, sheet.box.length * _POINT))

@@ -1,9 +1,9 @@
-"""Union and difference of regions through shapely, with true arcs put back afterwards."""
+"""Union and growth of regions through shapely, with true arcs put back afterwards."""
 
 from __future__ import annotations
 
 from dataclasses import dataclass
-from math import atan2, hypot, pi, tan
+from math import atan2, copysign, hypot, pi, tan
 from typing import TYPE_CHECKING
 
 import shapely
@@ -11,12 +11,14 @@ from shapely.geometry.polygon import orient
 
 from core.errors import LayoutError
 from core.shapes.outline import SAGITTA, Outline, Region, Vertex, arc_centre, polygon
+from core.units import Quantity, format_quantity
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
 
 _COLLINEAR = 1e-6  # rad
 _FINE = SAGITTA / 50.0  # facets for the union alone: ends of arcs come out this true
+_NEAR = 4.0  # times the growth: a corner that fills up lies nearer than this to an open gap
 _ON_CIRCLE = 4.0 * _FINE  # equal-area points lie within one sagitta of their circle
 
 
@@ -48,7 +50,10 @@ def union(regions: Sequence[Region]) -> tuple[Region, ...]:
     LayoutError
         If no valid area is left.
     """
-    merged = shapely.union_all([polygon(region, _FINE) for region in regions], grid_size=1e-10)
+    try:
+        merged = shapely.union_all([polygon(region, _FINE) for region in regions], grid_size=1e-10)
+    except shapely.GEOSException as error:  # an outline that crosses itself
+        raise LayoutError("the pieces do not add up to a valid outline") from error
     parts = [part for part in shapely.get_parts(merged) if isinstance(part, shapely.Polygon)]
     if not parts or not merged.is_valid:
         raise LayoutError("the pieces do not add up to a valid outline")
@@ -57,14 +62,67 @@ def union(regions: Sequence[Region]) -> tuple[Region, ...]:
     return tuple(_with_arcs(part, circles) for part in parts)
 
 
-def _circles(region: Region) -> list[_Circle]:
-    """All circles that arcs of the region lie on."""
+def grown(regions: Sequence[Region], by: float) -> tuple[Region, ...]:
+    """Regions grown by the same distance on every side, corners kept sharp, arcs kept.
+
+    Parameters
+    ----------
+    regions : sequence of Region
+        At least one.
+    by : float
+        m, >= 0.
+
+    Returns
+    -------
+    tuple of Region
+        Connected regions, largest first.
+
+    Raises
+    ------
+    LayoutError
+        If growth closes a gap; the message says where.
+    """
+    if by == 0.0:
+        return tuple(regions)
+    _refuse_closed_gaps(regions, by)
+    copper = shapely.union_all([polygon(region, _FINE) for region in regions])
+    parts = list(shapely.get_parts(copper.buffer(by, join_style="mitre")))
+    circles = tuple({circle for region in regions for circle in _circles(region, by)})
+    parts.sort(key=lambda part: -part.area)
+    return tuple(_with_arcs(part, circles) for part in parts)
+
+
+def _refuse_closed_gaps(regions: Sequence[Region], by: float) -> None:
+    """Refuse growth after which some gap is far from every gap that is left.
+
+    Sharp inner corners fill up a little too, but next to a gap that stays open.
+    """
+    copper = shapely.union_all([polygon(region) for region in regions])
+    room = shapely.box(*copper.bounds).buffer(8.0 * by, join_style="mitre")
+    gaps = room.difference(copper)
+    left = gaps.buffer(-by, join_style="mitre").buffer((1.0 + _NEAR) * by)
+    lost = gaps.difference(left)
+    if not lost.is_empty:
+        place = max(shapely.get_parts(lost), key=lambda part: part.area).representative_point()
+        size, x, y = (format_quantity(v, Quantity.LENGTH) for v in (by, place.x, place.y))
+        raise LayoutError(
+            f"copper grown by {size} on every side closes the gap at x {x}, y {y}; "
+            "accepted: less than half of the gap",
+            field="making.undercut",
+        )
+
+
+def _circles(region: Region, by: float = 0.0) -> list[_Circle]:
+    """All circles that arcs of the region lie on once it has grown."""
     found = []
-    for outline in (region.exterior, *region.holes):
+    for outline, outwards in ((region.exterior, 1.0), *((hole, -1.0) for hole in region.holes)):
         ring = outline.vertices
         for start, end in zip(ring, (*ring[1:], ring[0]), strict=True):
             if start.bulge != 0.0:
-                found.append(_Circle(*arc_centre(start, end)))
+                x, y, radius = arc_centre(start, end)
+                radius += copysign(by, start.bulge * outwards)
+                if radius > 0.0:
+                    found.append(_Circle(x, y, radius))
     return found
 
 
