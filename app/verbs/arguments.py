@@ -79,6 +79,14 @@ def quantity(
     return read
 
 
+def whole_number(text: str) -> int:
+    """Read a whole number, for an option."""
+    if not re.fullmatch(r"[+-]?[0-9]{1,9}", text.strip()):
+        shown = repr(text[:_LONGEST_QUOTE])
+        raise argparse.ArgumentTypeError(f"{shown} is no whole number; accepted: such as 201")
+    return int(text)
+
+
 def add_file(parser: VerbParser) -> None:
     """Give a verb the project file that it works on."""
     parser.add_argument("file", metavar="FILE", type=Path, help="project file (.kerf)")
