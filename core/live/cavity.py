@@ -38,6 +38,7 @@ _KEPT: Final = 4  # orders along each side kept apart: 0 to 3
 _SUMMED: Final = 16  # orders along each side in the terms that fall fast: 1e-5 is left out
 _PERIODS: Final = 10.0  # of a contact's own spectrum in the static sum: 2e-4 is left out
 _MOST_TERMS: Final = 2048
+_TINY: Final = 1e-9  # stands for 0 in sin(x)/x, where that is 1 to the last digit
 
 
 @dataclass(frozen=True)
@@ -258,7 +259,10 @@ def _shape(contact: Contact, orders: Floats) -> Floats:
 def _side_shape(position: float, width: float, orders: Floats) -> Floats:
     """Cosines along one side, averaged over a width."""
     cosines = np.cos(orders * (pi * position))
-    return np.asarray(cosines * np.sinc(orders * (width / 2.0)) if width else cosines)
+    if not width:
+        return np.asarray(cosines)
+    half = np.maximum(orders * (pi * width / 2.0), _TINY)
+    return np.asarray(cosines * (np.sin(half) / half))
 
 
 def _dampings(natural: Floats, element: ElementModes) -> tuple[Floats, Floats]:

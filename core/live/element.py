@@ -13,8 +13,6 @@ from math import pi, sqrt
 from typing import TYPE_CHECKING, Final
 
 import numpy as np
-from numpy.polynomial.legendre import leggauss
-from scipy.special import j0
 
 from core.constants import (
     FREE_SPACE_IMPEDANCE,
@@ -22,6 +20,7 @@ from core.constants import (
     TWO_PI,
     VACUUM_PERMEABILITY,
 )
+from core.live.slots import slot_conductances
 
 if TYPE_CHECKING:
     from numpy.typing import ArrayLike, NDArray
@@ -31,7 +30,6 @@ if TYPE_CHECKING:
 _A2: Final = -0.16605  # Jackson and Alexopoulos 1991
 _A4: Final = 0.00761
 _C2: Final = -0.0914153
-_QUADRATURE_POINTS: Final = 48  # 1e-12 of the slot integrals up to two wavelengths of width
 
 
 def effective_permittivity(width_ratio: float, eps_r: float) -> float:
@@ -197,11 +195,6 @@ class QualityFactors:
         radiated = 1.0 / (self.space * self.surface_efficiency)
         return 1.0 / (radiated + 1.0 / self.conductor + 1.0 / self.dielectric)
 
-    @property
-    def space_share(self) -> float:
-        """Share of the lost power that is radiated into space, 0 to 1."""
-        return self.total / self.space
-
 
 def quality_factors(
     width: float,
@@ -240,55 +233,28 @@ def quality_factors(
     Notes
     -----
     Radiation from the current of the mode on a thin substrate, as a dipole times a factor for
-    its size [1]_. Conductor loss on two thick plates; roughness as in `core.lines`.
+    its size [1]_. Conductor loss on two thick plates, with roughness [2]_.
 
     References
     ----------
     .. [1] D. R. Jackson and N. G. Alexopoulos, "Simple approximate formulas for input
        resistance, bandwidth, and efficiency of a resonant rectangular patch", IEEE Trans.
        Antennas Propag., vol. 39, no. 3, pp. 407-410, Mar. 1991.
+    .. [2] E. Hammerstad and O. Jensen, "Accurate models for microstrip computer-aided
+       design", IEEE MTT-S Int. Microwave Symp. Digest, pp. 407-409, 1980, eq. 18.
     """
     wavelength = SPEED_OF_LIGHT / frequency
     spread = float(_size_factor(width, length, frequency)) * _substrate_factor(eps_r)
     space = 3.0 / 16.0 * eps_r / spread * length / width * wavelength / height
     electrical_height = TWO_PI * height / wavelength
     trapped = 0.75 * pi * electrical_height / _substrate_factor(eps_r) * (1.0 - 1.0 / eps_r) ** 3
-    sheet = surface_resistance(frequency, conductivity, roughness)
+    sheet = _surface_resistance(frequency, conductivity, roughness)
     return QualityFactors(
         space=space,
         surface_efficiency=1.0 / (1.0 + trapped),
         conductor=FREE_SPACE_IMPEDANCE * electrical_height / (2.0 * sheet) if sheet else np.inf,
         dielectric=1.0 / loss_tangent if loss_tangent else np.inf,
     )
-
-
-def surface_resistance(frequency: float, conductivity: float, roughness: float = 0.0) -> float:
-    """Resistance of a square of thick rough metal.
-
-    Parameters
-    ----------
-    frequency : float
-        Hz, > 0.
-    conductivity : float
-        S/m, > 0; infinite for a perfect conductor.
-    roughness : float
-        Root mean square, m, >= 0.
-
-    Returns
-    -------
-    float
-        Ohm.
-
-    References
-    ----------
-    .. [1] E. Hammerstad and O. Jensen, "Accurate models for microstrip computer-aided
-       design", IEEE MTT-S Int. Microwave Symp. Digest, pp. 407-409, 1980, eq. 18.
-    """
-    if np.isinf(conductivity):
-        return 0.0
-    smooth = sqrt(pi * frequency * VACUUM_PERMEABILITY / conductivity)
-    skin_depth = 1.0 / (conductivity * smooth)
-    return float(smooth * (1.0 + 2.0 / pi * np.arctan(1.4 * (roughness / skin_depth) ** 2)))
 
 
 def broadside_directivity(
@@ -359,46 +325,6 @@ def edge_resistance(width: float, length: float, frequency: float) -> float:
     return 1.0 / (2.0 * (own + mutual))
 
 
-def slot_conductances(width: float, spacing: float, frequency: float) -> tuple[float, float]:
-    """Conductance of one radiating slot, and the mutual conductance of two.
-
-    Parameters
-    ----------
-    width : float
-        Of each slot, m, > 0.
-    spacing : float
-        Between the slots, m, > 0.
-    frequency : float
-        Hz, > 0.
-
-    Returns
-    -------
-    own, mutual : float
-        S.
-
-    Notes
-    -----
-    Gauss-Legendre quadrature of the integrals as printed [1]_, with 120 pi ohm for the
-    impedance of free space replaced by its value.
-
-    References
-    ----------
-    .. [1] C. A. Balanis, *Antenna Theory*, 4th ed., Wiley, 2016, eqs. 14-12 and 14-18a.
-    """
-    wavenumber = TWO_PI * frequency / SPEED_OF_LIGHT
-    # From 0 to pi/2, twice: the integrands are even about the middle.
-    theta = (_NODES + 1.0) * pi / 4.0
-    half = wavenumber * width / 2.0
-    power = (half * np.sinc(half / pi * np.cos(theta))) ** 2 * np.sin(theta) ** 3
-    weights = _WEIGHTS * pi / 4.0 * 2.0 / (pi * FREE_SPACE_IMPEDANCE)
-    own = weights @ power
-    mutual = weights @ (power * j0(wavenumber * spacing * np.sin(theta)))
-    return float(own), float(mutual)
-
-
-_NODES, _WEIGHTS = leggauss(_QUADRATURE_POINTS)
-
-
 def _substrate_factor(eps_r: float) -> float:
     """Space wave of a horizontal dipole on a thin substrate, c1 of Jackson and Alexopoulos."""
     return 1.0 - 1.0 / eps_r + 0.4 / eps_r**2
@@ -415,3 +341,12 @@ def _size_factor(width: float, length: float, frequency: ArrayLike) -> Floats:
         + _C2 / 5.0 * along
         + _A2 * _C2 / 70.0 * across * along
     )
+
+
+def _surface_resistance(frequency: float, conductivity: float, roughness: float) -> float:
+    """Resistance of a square of thick rough metal, ohm; Hammerstad and Jensen 1980, eq. 18."""
+    if np.isinf(conductivity):
+        return 0.0
+    smooth = sqrt(pi * frequency * VACUUM_PERMEABILITY / conductivity)
+    skin_depth = 1.0 / (conductivity * smooth)
+    return float(smooth * (1.0 + 2.0 / pi * np.arctan(1.4 * (roughness / skin_depth) ** 2)))

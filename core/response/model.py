@@ -12,7 +12,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from core.response.bands import Band, band_under
-from core.response.polarisation import axial_ratio_db, circular_components, intended_power
+from core.response.polarisation import axial_ratio_db, intended_power
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
@@ -175,12 +175,6 @@ class PatternCut:
     def gain_dbi(self) -> Floats:
         """Total gain, dBi."""
         return _decibels(np.abs(self.e_theta) ** 2 + np.abs(self.e_phi) ** 2)
-
-    @property
-    def circular_gains_dbi(self) -> tuple[Floats, Floats]:
-        """Gain to right-hand and to left-hand waves, dBi."""
-        right, left = circular_components(self.e_theta, self.e_phi)
-        return _decibels(np.abs(right) ** 2), _decibels(np.abs(left) ** 2)
 
     @property
     def beamwidth(self) -> float:

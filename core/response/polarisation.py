@@ -48,8 +48,8 @@ def circular_components(e_x: ArrayLike, e_y: ArrayLike) -> tuple[Complexes, Comp
     return (x + 1j * y) / np.sqrt(2.0), (x - 1j * y) / np.sqrt(2.0)
 
 
-def axial_ratio(e_x: ArrayLike, e_y: ArrayLike) -> Floats:
-    """Axial ratio of the polarisation ellipse, as an amplitude ratio.
+def axial_ratio_db(e_x: ArrayLike, e_y: ArrayLike) -> Floats:
+    """Axial ratio of the polarisation ellipse in decibels.
 
     Parameters
     ----------
@@ -59,7 +59,7 @@ def axial_ratio(e_x: ArrayLike, e_y: ArrayLike) -> Floats:
     Returns
     -------
     (...,) ndarray of float
-        >= 1; infinite for a linear wave; not a number where both components vanish.
+        dB, >= 0; infinite for a linear wave, not a number where both components vanish.
 
     Notes
     -----
@@ -75,23 +75,7 @@ def axial_ratio(e_x: ArrayLike, e_y: ArrayLike) -> Floats:
     total = np.abs(right) + np.abs(left)
     with np.errstate(divide="ignore", invalid="ignore"):
         ratio = total / (2.0 * np.abs(np.imag(x * np.conj(y))) / total)
-    return np.asarray(np.maximum(ratio, 1.0))
-
-
-def axial_ratio_db(e_x: ArrayLike, e_y: ArrayLike) -> Floats:
-    """Axial ratio of the polarisation ellipse in decibels.
-
-    Parameters
-    ----------
-    e_x, e_y : (...,) array_like of complex
-        Components along x and y, any common scale.
-
-    Returns
-    -------
-    (...,) ndarray of float
-        dB, >= 0; infinite for a linear wave.
-    """
-    return np.asarray(20.0 * np.log10(axial_ratio(e_x, e_y)))
+    return np.asarray(20.0 * np.log10(np.maximum(ratio, 1.0)))
 
 
 def sense(e_x: complex, e_y: complex, intended: Polarisation) -> Polarisation | None:

@@ -11,8 +11,11 @@ from hypothesis import strategies as st
 from scipy.optimize import fsolve
 
 from core.constants import SPEED_OF_LIGHT
+from core.design.defaults import default_design
+from core.design.edit import with_texts
 from core.design.polarisation import Polarisation
 from core.engines import ENGINES
+from core.layout.build import build_layout
 from core.layout.model import Bend, Foil, Segment
 from core.lines.stack import Layer
 from core.live.modes import element_modes
@@ -341,3 +344,17 @@ def test_vswr_band_of_a_linear_element(probe_fed):
     expected = bands()["linear_vswr_2"]
     assert band.width / samples.frequency[i] * quality == pytest.approx(expected, rel=0.03)
     assert samples.axial_ratio_db[i] > 40.0
+
+
+@pytest.mark.parametrize("feed", [(), (("feed.lead_in.length", "20 mm"), ("feed.tee", "9 mm"))])
+def test_the_layout_of_the_other_sense_answers_as_the_mirror_image(feed):
+    design = with_texts(default_design(), feed)
+    left = with_texts(design, [("brief.polarisation", "lhcp")])
+    one, other = (respond(build_layout(d), FREQUENCIES, SILENT) for d in (design, left))
+    assert other.sweep.s11 == pytest.approx(one.sweep.s11, rel=1e-9)
+    assert other.sweep.axial_ratio_db == pytest.approx(one.sweep.axial_ratio_db, rel=1e-9)
+    right = one.sweep.gain_dbi(Polarisation.RHCP)
+    assert other.sweep.gain_dbi(Polarisation.LHCP) == pytest.approx(right, rel=1e-9)
+    assert other.spot.efficiency == pytest.approx(one.spot.efficiency, rel=1e-9)
+    assert other.beamwidth == pytest.approx(one.beamwidth, rel=1e-9)
+    assert other.trust == one.trust

@@ -126,12 +126,3 @@ def test_a_beam_that_never_falls_is_as_wide_as_the_cut():
     theta = np.linspace(-np.pi / 2, np.pi / 2, 91)
     cut = PatternCut(0.0, theta, np.ones_like(theta) + 0j, np.zeros_like(theta) + 0j)
     assert cut.beamwidth == pytest.approx(np.pi)
-
-
-def test_circular_gains_of_a_cut():
-    theta = np.array([-0.1, 0.0, 0.1])
-    cut = PatternCut(0.0, theta, np.ones(3) + 0j, np.full(3, -1j))
-    right, left = cut.circular_gains_dbi
-    assert right == pytest.approx(np.full(3, 3.0103), abs=1e-4)
-    assert np.all(np.isneginf(left))
-    assert cut.gain_dbi == pytest.approx(right)
