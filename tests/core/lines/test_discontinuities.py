@@ -63,17 +63,19 @@ def test_open_end_scales_with_the_height():
 
 @pytest.mark.parametrize("row", ELECTROSTATIC["corners"], ids=case)
 def test_corner_capacitance_against_electrostatics(row):
-    """Within 11 % from one height of width; narrow corners in air lie outside the fit."""
+    """The fit is up to a tenth low for narrow strips on dense boards and as much high for wide."""
     bend = square_bend(row["width_over_height"] * 1e-3, 1e-3, row["eps_r"])
-    expected = row["capacitance_pf_per_m"] * 1e-15
-    assert bend.capacitance == pytest.approx(expected, rel=0.11)
+    found = bend.capacitance / (row["capacitance_pf_per_m"] * 1e-15)
+    low, high = {1.0: (0.89, 1.10), 2.0: (0.95, 1.05), 4.0: (1.03, 1.10)}[row["width_over_height"]]
+    assert low < found < high
 
 
 @pytest.mark.parametrize("row", ELECTROSTATIC["mitred_corners"], ids=case)
 def test_mitred_corner_capacitance_against_electrostatics(row):
     bend = mitred_bend(row["width_over_height"] * 1e-3, 1e-3, row["eps_r"])
-    expected = row["capacitance_pf_per_m"] * 1e-15
-    assert bend.capacitance == pytest.approx(expected, rel=0.14)
+    found = bend.capacitance / (row["capacitance_pf_per_m"] * 1e-15)
+    low, high = {2.0: (1.09, 1.14), 4.0: (0.97, 1.03)}[row["width_over_height"]]
+    assert low < found < high
 
 
 @pytest.mark.parametrize("eps_r", [2.5, 4.4, 9.8])
@@ -105,6 +107,33 @@ def test_tee_of_equal_strips_against_electrostatics(row):
     planes = tee_planes(1.0, arm, arm, arm)
     taken_off = planes.through_a + planes.through_b + planes.side
     assert taken_off == pytest.approx(row["missing_over_height"], rel=0.14)
+
+
+@pytest.mark.parametrize("row", ELECTROSTATIC["unequal_tees"], ids=case)
+def test_tee_with_a_narrow_side_arm_against_electrostatics(row):
+    """The published shunt susceptance, which the program leaves out, is needed here (memory)."""
+    eps_r = row["eps_r"]
+    through = static_line(row["width_over_height"], eps_r, 0.0)
+    side = static_line(row["side_over_height"], eps_r, 0.0)
+    arm = (through.impedance, through.eps_eff)
+    planes = tee_planes(1.0, arm, arm, (side.impedance, side.eps_eff))
+    ratio = through.impedance / side.impedance
+    bracket = (
+        1.0
+        + 0.9 * np.log(ratio)
+        - 4.4 * np.exp(-1.3 * ratio)
+        - 20.0 * (side.impedance / FREE_SPACE_IMPEDANCE) ** 2
+    )
+    # Charge per volt over vacuum permittivity, as that of the planes below.
+    plate = FREE_SPACE_IMPEDANCE / through.impedance / np.sqrt(through.eps_eff)
+    shunt = 5.5 * plate * np.sqrt(through.eps_eff) / (2.0 * pi) * (eps_r + 2.0) / eps_r
+    shunt *= FREE_SPACE_IMPEDANCE / side.impedance * 0.055 * ratio * bracket
+    per_length = [
+        FREE_SPACE_IMPEDANCE * np.sqrt(line.eps_eff) / line.impedance for line in (through, side)
+    ]
+    taken_off = 2.0 * planes.through_a * per_length[0] + planes.side * per_length[1] - shunt
+    found = taken_off / per_length[1]
+    assert found == pytest.approx(row["missing_over_height"], rel=0.1)
 
 
 def test_tee_planes_swap_with_the_arms_and_scale():

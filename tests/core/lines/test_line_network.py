@@ -54,6 +54,12 @@ def test_a_cascade_is_the_matrix_product():
     assert_allclose(whole, np.broadcast_to(one, whole.shape) @ two @ three @ four, rtol=1e-12)
 
 
+def test_parts_may_be_cascaded_in_groups():
+    one, two, three, four = pieces()
+    grouped = cascade(cascade(one, two), cascade(three, four))
+    assert_allclose(matrix(grouped), matrix(cascade(one, two, three, four)), rtol=1e-10)
+
+
 def test_a_line_agrees_with_scikit_rf():
     media = DefinedGammaZ0(
         Frequency.from_f(FREQUENCY, unit="Hz"),
