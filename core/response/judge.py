@@ -215,8 +215,7 @@ def _beside(value: float, target: float) -> str:
     """A value with as many digits as it takes to see which side of the target it is on."""
     if np.isinf(value):
         return "infinite"
-    for digits in (2, 3, 4):
-        text = f"{value:.{digits}f}"
-        if (float(text) <= target) == (value <= target):
-            return text
-    return repr(value)
+    texts = (f"{value:.{digits}f}" for digits in (2, 3, 4))
+    return next(
+        (text for text in texts if (float(text) <= target) == (value <= target)), repr(value)
+    )

@@ -63,6 +63,14 @@ def test_a_near_miss_shows_the_digit_that_misses():
     assert "VSWR 1.501" in verdict(response_with(vswr=1.501), Reading.MATCH).sentence
 
 
+def test_a_dead_short_is_missed_in_words():
+    response = response_with()
+    spot = dataclasses.replace(response.spot, s11=np.array(-1.0 + 0j))
+    found = verdict(dataclasses.replace(response, spot=spot), Reading.MATCH)
+    assert found.state is State.MISSED
+    assert "VSWR infinite" in found.sentence
+
+
 @pytest.mark.parametrize(
     ("e_y", "polarisation", "state", "text"),
     [
