@@ -92,7 +92,9 @@ def main() -> None:
     met = sum(one.met for one in sizings)
     text = HEAD + "\n".join(lines) + f"\n\n{met} of {len(lines)} met.\n"
     Path("docs/sizing.md").write_text(text, encoding="utf-8")
-    print(f"{met} of {len(lines)} met; median {median(seconds):.2f} s, longest {max(seconds):.2f} s")
+    print(
+        f"{met} of {len(lines)} met; median {median(seconds):.2f} s, longest {max(seconds):.2f} s"
+    )
 
 
 if __name__ == "__main__":
