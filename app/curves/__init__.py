@@ -1,0 +1,1 @@
+"""Curves, Smith chart and pattern as widgets."""

@@ -1,0 +1,49 @@
+"""Preferences, made from the table of settings; each takes effect at once."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from PySide6.QtWidgets import QCheckBox, QComboBox, QDialog, QDialogButtonBox, QFormLayout
+
+from app.settings import SETTINGS
+
+if TYPE_CHECKING:
+    from PySide6.QtWidgets import QWidget
+
+    from app.settings import Setting, Settings
+
+
+class PreferencesDialog(QDialog):
+    """One row for each setting that is shown."""
+
+    def __init__(self, settings: Settings, parent: QWidget) -> None:
+        super().__init__(parent)
+        self.setWindowTitle("Preferences")
+        self._settings = settings
+        form = QFormLayout(self)
+        self.editors: dict[str, QWidget] = {}
+        for row in SETTINGS:
+            if row.shown:
+                self.editors[row.key] = self._editor(row)
+                form.addRow(row.label, self.editors[row.key])
+        buttons = QDialogButtonBox(QDialogButtonBox.StandardButton.Close)
+        buttons.rejected.connect(self.reject)
+        form.addRow(buttons)
+
+    def _editor(self, row: Setting) -> QWidget:
+        value = self._settings.value(row.key)
+        if isinstance(row.default, bool):
+            box = QCheckBox()
+            box.setChecked(value)
+            box.toggled.connect(lambda on: self._settings.set(row.key, on))
+            editor: QWidget = box
+        else:
+            choice = QComboBox()
+            choice.addItems([str(one) for one in row.allowed])
+            choice.setCurrentText(value)
+            choice.textActivated.connect(lambda text: self._settings.set(row.key, text))
+            editor = choice
+        editor.setAccessibleName(row.label)
+        editor.setToolTip(row.help)
+        return editor

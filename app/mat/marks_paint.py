@@ -1,0 +1,125 @@
+"""Dimensions, handles and words on the Mat."""
+
+from __future__ import annotations
+
+from math import atan2, copysign, degrees, hypot
+from typing import TYPE_CHECKING
+
+from PySide6.QtCore import QLineF, QPointF, QRectF, Qt
+from PySide6.QtGui import QPainter, QPen, QPolygonF
+
+from app import theme
+from core.units import Quantity, format_quantity
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
+
+    from app.mat.camera import Camera
+    from app.mat.handles import Handle
+    from app.theme import Theme
+    from core.layout.model import Dimension
+
+DRAWN = 8.0  # pixels of a handle as drawn
+REACH = 12.0  # pixels round its middle in which it is hit: 24 across
+
+
+def paint_dimension(
+    painter: QPainter, one: Dimension, camera: Camera, shades: Theme, *, always: bool
+) -> None:
+    """Dimension line with its value, left out where it would not fit."""
+    start, end = QPointF(*camera.to_screen(*one.start)), QPointF(*camera.to_screen(*one.end))
+    along = end - start
+    span = hypot(along.x(), along.y())
+    words = format_quantity(one.value, Quantity.LENGTH, digits=4)
+    room = painter.fontMetrics().horizontalAdvance(words) + 10
+    if span < 2.0 or (span < room and not always):
+        return
+    way = along / span
+    # Left of the direction in the Mat's frame, where y points up, is this way on the screen.
+    side = QPointF(way.y(), -way.x())
+    off = one.offset * camera.scale
+    if abs(off) < span / 2:  # beside its object: near enough to be read with it, not on it
+        off = copysign(min(max(abs(off), 16.0), 46.0), off)
+    shift, reach = side * off, side * copysign(5.0, off)
+    back = side * copysign(min(abs(off), 20.0), off)
+    line = QLineF(start + shift, end + shift)
+    lines = [line, *(QLineF(p + shift - back, p + shift + reach) for p in (start, end))]
+    arrows = [_arrow(line.p1(), way), _arrow(line.p2(), way * -1.0)]
+    painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+    for name, width in ((shades.mat_halo, 3.0), (shades.mat_ink, 1.0)):
+        painter.setPen(QPen(theme.colour(name, 190), width))
+        painter.drawLines(lines)
+        painter.setBrush(theme.colour(name))
+        for arrow in arrows:
+            painter.drawPolygon(arrow)
+    paint_tag(painter, line.center(), words, shades, _readable(degrees(atan2(way.y(), way.x()))))
+
+
+def paint_tag(
+    painter: QPainter, centre: QPointF, words: str, shades: Theme, angle: float = 0.0
+) -> None:
+    """Words on a small plate, readable on whatever lies below."""
+    metrics = painter.fontMetrics()
+    size = QRectF(0, 0, metrics.horizontalAdvance(words) + 8, metrics.height() + 1)
+    size.moveCenter(QPointF(0, 0))
+    painter.save()
+    painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+    painter.translate(centre)
+    painter.rotate(angle)
+    painter.setPen(Qt.PenStyle.NoPen)
+    painter.setBrush(theme.colour(shades.mat_halo, 225))
+    painter.drawRoundedRect(size, 3, 3)
+    painter.setPen(theme.colour(shades.mat_ink))
+    painter.drawText(size, Qt.AlignmentFlag.AlignCenter, words)
+    painter.restore()
+
+
+def paint_handle(
+    painter: QPainter, handle: Handle, centre: QPointF, shades: Theme, *, active: bool, focus: bool
+) -> None:
+    """Handle, 8 pixels across; the one in use is larger, the one with the focus ringed."""
+    half = DRAWN / 2 + (1.5 if active else 0.0)
+    painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+    if focus:
+        painter.setPen(QPen(theme.colour(shades.mat_halo), 4.0))
+        painter.setBrush(Qt.BrushStyle.NoBrush)
+        painter.drawEllipse(centre, REACH - 2, REACH - 2)
+        painter.setPen(QPen(theme.colour(shades.ghost), 2.0))
+        painter.drawEllipse(centre, REACH - 2, REACH - 2)
+    painter.setPen(QPen(theme.colour(shades.handle_edge), 1.3))
+    painter.setBrush(theme.colour(shades.ghost if active else shades.handle))
+    box = QRectF(centre.x() - half, centre.y() - half, 2 * half, 2 * half)
+    if handle.rail or len(handle.pulls) > 1:
+        painter.drawEllipse(box)
+    else:
+        painter.drawRoundedRect(box, 1.5, 1.5)
+
+
+def apart(
+    handles: tuple[Handle, ...],
+    pixels: Callable[[Handle], tuple[float, float]],
+    kept: frozenset[str],
+) -> tuple[Handle, ...]:
+    """Handles that do not crowd one that matters more; `kept` ones stay whatever happens."""
+    places: list[tuple[float, float]] = []
+    chosen = []
+    for handle in handles:
+        x, y = pixels(handle)
+        crowded = any(abs(x - a) < 2 * REACH and abs(y - b) < 2 * REACH for a, b in places)
+        if not crowded or handle.name in kept:
+            chosen.append(handle)
+        if not crowded:
+            places.append((x, y))
+    return tuple(chosen)
+
+
+def _arrow(tip: QPointF, way: QPointF) -> QPolygonF:
+    side = QPointF(-way.y(), way.x())
+    return QPolygonF([tip, tip + way * 6.0 + side * 2.2, tip + way * 6.0 - side * 2.2])
+
+
+def _readable(angle: float) -> float:
+    """Angle of text that is never upside down."""
+    if angle > 90.0 + 1e-6:
+        return angle - 180.0
+    return angle + 180.0 if angle < -90.0 + 1e-6 else angle

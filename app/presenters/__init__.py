@@ -1,0 +1,1 @@
+"""From the document to what a panel shows, and from what it asks to an edit."""

@@ -1,0 +1,155 @@
+"""What the antenna will do, in sentences, and what stands in the way of making it."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+from core.design.polarisation import Polarisation
+from core.findings import Severity
+from core.materials.cautions import cautions_for
+from core.materials.table import dielectrics
+from core.response.judge import State
+from core.response.model import Reading
+
+if TYPE_CHECKING:
+    from app.evaluation import Evaluation
+    from core.design.model import Design
+    from core.response.judge import Verdict
+    from core.response.model import Response
+
+_ENGINES = {"live": "live model, by equations", "field": "field solver"}
+_NAMES = {
+    Reading.RESONANCE: "resonance",
+    Reading.MATCH: "match",
+    Reading.AXIAL_RATIO: "axial ratio",
+    Reading.GAIN: "gain",
+    Reading.EFFICIENCY: "efficiency",
+    Reading.BANDS: "bands",
+    Reading.PATTERN: "pattern",
+}
+_ASKED = (Reading.MATCH, Reading.AXIAL_RATIO)
+
+
+@dataclass(frozen=True)
+class Line:
+    """One line: the icon that goes before it, what the icon means, and the words.
+
+    Attributes
+    ----------
+    icon : str
+        Name in the assets: met, missed, unknown, noted, refusal, warning, note.
+    words : str
+    field : str
+        Where a press on it leads; empty for a line that leads nowhere.
+    tip : str
+    """
+
+    icon: str
+    words: str
+    field: str = ""
+    tip: str = ""
+
+
+@dataclass(frozen=True)
+class ReadingsState:
+    """What the Readings show.
+
+    Attributes
+    ----------
+    engine : str
+    lines, findings, cautions : tuple of Line
+    is_stale : bool
+        The lines belong to the last layout that could be drawn.
+    can_size : bool
+        Whether sizing is offered.
+    proposal : str
+        What a sizing proposes, in words; empty without one.
+    busy : str
+        What is being worked on; empty where nothing is.
+    """
+
+    engine: str
+    lines: tuple[Line, ...]
+    findings: tuple[Line, ...]
+    cautions: tuple[Line, ...]
+    is_stale: bool = False
+    can_size: bool = False
+    proposal: str = ""
+    busy: str = ""
+
+
+def readings_state(current: Evaluation, drawn: Evaluation) -> ReadingsState:
+    """Readings of the current design, or of the last one that had any."""
+    shown = current if current.response is not None else drawn
+    lines: tuple[Line, ...] = ()
+    engine = ""
+    if shown.response is not None:
+        lines = verdict_lines(shown.response, shown.verdicts)
+        name = shown.response.engine
+        engine = _ENGINES.get(name, name)
+    met = [one.state is State.MET for one in shown.verdicts if one.reading in _ASKED]
+    return ReadingsState(
+        engine=engine,
+        lines=lines,
+        findings=_finding_lines(current),
+        cautions=caution_lines(current.design),
+        is_stale=shown is not current,
+        can_size=not (met and all(met)) or not current.is_buildable,
+    )
+
+
+def verdict_lines(response: Response, verdicts: tuple[Verdict, ...]) -> tuple[Line, ...]:
+    """Sentences, those that are unknown for the same reason joined into one."""
+    lines: list[Line] = []
+    unknown: dict[str, list[Reading]] = {}
+    for verdict in verdicts:
+        if verdict.state is State.UNKNOWN:
+            trust = response.trust[verdict.reading]
+            remedy = f" {trust.remedy[:1].upper()}{trust.remedy[1:]}." if trust.remedy else ""
+            unknown.setdefault(f"{trust.reason}.{remedy}", []).append(verdict.reading)
+    told: set[str] = set()
+    for verdict in verdicts:
+        trust = response.trust[verdict.reading]
+        if verdict.state is not State.UNKNOWN:
+            tip = f"{_NAMES[verdict.reading].capitalize()}: {trust.level}. {trust.reason}."
+            lines.append(Line(verdict.state.value, verdict.sentence, tip=tip))
+            continue
+        reason = next(one for one, readings in unknown.items() if verdict.reading in readings)
+        if reason not in told:
+            told.add(reason)
+            words = _listed([_NAMES[reading] for reading in unknown[reason]])
+            lines.append(Line("unknown", f"{words.capitalize()} unknown: {reason}"))
+    return tuple(lines)
+
+
+def caution_lines(design: Design) -> tuple[Line, ...]:
+    """Cautions for the process and the stock."""
+    occasions = {design.making.process}
+    table = dielectrics()
+    for layer in design.stock.spacer:
+        material = table.get(layer.material)
+        if material is not None and material.melts:
+            occasions.add("heat")
+        if material is not None and material.drinks_water:
+            occasions.add("water")
+    lines = [Line("warning", f"{one.topic}: {one.text}") for one in cautions_for(occasions)]
+    if design.brief.polarisation is not Polarisation.LINEAR:
+        words = "Opposite senses barely hear each other, and a reflector reverses the sense. "
+        lines.append(Line("note", words + "Circular to linear costs 3 dB."))
+    return tuple(lines)
+
+
+def _finding_lines(current: Evaluation) -> tuple[Line, ...]:
+    """What cannot be made first, then warnings, then notes."""
+    order = list(Severity)
+    lines = []
+    if current.problem:
+        lines.append(Line("refusal", current.problem, current.problem_field))
+    for one in sorted(current.findings, key=lambda finding: order.index(finding.severity)):
+        lines.append(Line(one.severity.value, one.message, one.field, one.remedy))
+    return tuple(lines)
+
+
+def _listed(words: list[str]) -> str:
+    return " and ".join(filter(None, [", ".join(words[:-1]), words[-1]]))

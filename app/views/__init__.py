@@ -1,0 +1,1 @@
+"""Thin widgets: they show a state and say what the user asked."""

@@ -1,0 +1,163 @@
+"""The Readings: sentences, what stands in the way, cautions, and the offer to size."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from PySide6.QtCore import Qt, Signal
+from PySide6.QtWidgets import (
+    QFrame,
+    QGraphicsOpacityEffect,
+    QHBoxLayout,
+    QLabel,
+    QPushButton,
+    QToolButton,
+    QVBoxLayout,
+    QWidget,
+)
+
+from app.views.lines import LineList
+
+if TYPE_CHECKING:
+    from app.presenters.readings import ReadingsState
+
+_FEW = 3  # findings shown before the rest is asked for
+
+
+class ReadingsView(QFrame):
+    """Never scrolls away: long lists fold."""
+
+    field_asked = Signal(str)
+    size_asked = Signal()
+    accepted = Signal()
+    discarded = Signal()
+    stopped = Signal()
+
+    def __init__(self) -> None:
+        super().__init__()
+        self.setObjectName("panel")
+        self.setAccessibleName("Readings panel")
+        title = QLabel("Readings")
+        title.setObjectName("title")
+        self._engine = QLabel()
+        self._engine.setObjectName("muted")
+        self._engine.setAccessibleName("Engine of the readings")
+        head = QHBoxLayout()
+        head.addWidget(title)
+        head.addWidget(self._engine, 1, Qt.AlignmentFlag.AlignRight)
+        self.lines = LineList("Readings")
+        self.findings = LineList("What stands in the way")
+        self.cautions = LineList("Cautions")
+        self.findings.asked.connect(self.field_asked)
+        self._more = _fold("More findings")
+        self._more.toggled.connect(lambda _open: self._show_findings())
+        self._caution_fold = _fold("Cautions")
+        self._caution_fold.toggled.connect(self.cautions.setVisible)
+        self.cautions.hide()
+        self._offer = _Offer()
+        self._offer.size_asked.connect(self.size_asked)
+        self._offer.accepted.connect(self.accepted)
+        self._offer.discarded.connect(self.discarded)
+        self._offer.stopped.connect(self.stopped)
+        self._state: ReadingsState | None = None
+        self._faded = False
+        layout = QVBoxLayout(self)
+        layout.setContentsMargins(10, 7, 10, 8)
+        layout.setSpacing(6)
+        layout.addLayout(head)
+        for widget in (
+            self.lines, self._offer, self.findings, self._more, self._caution_fold, self.cautions,
+        ):  # fmt: skip
+            layout.addWidget(widget)
+
+    def show_state(self, state: ReadingsState) -> None:
+        before, self._state = self._state, state
+        engine = "of the last layout that could be drawn" if state.is_stale else state.engine
+        if self._engine.text() != engine:
+            self._engine.setText(engine)
+        self.lines.show_lines(state.lines)
+        self._fade(state.is_stale)
+        self._offer.show_state(state)
+        if before is None or before.findings != state.findings:
+            self._show_findings()
+        if before is None or before.cautions != state.cautions:
+            self._caution_fold.setText(f"Cautions for this build ({len(state.cautions)})")
+            self.cautions.show_lines(state.cautions)
+
+    def _show_findings(self) -> None:
+        if self._state is None:
+            return
+        found = self._state.findings
+        is_open = self._more.isChecked()
+        self.findings.show_lines(found if is_open else found[:_FEW])
+        self._more.setVisible(len(found) > _FEW)
+        rest = len(found) - _FEW
+        self._more.setText("Fewer" if is_open else f"{rest} more")
+
+    def _fade(self, is_stale: bool) -> None:
+        if is_stale == self._faded:
+            return
+        self._faded = is_stale
+        effect = None
+        if is_stale:
+            effect = QGraphicsOpacityEffect(self.lines)
+            effect.setOpacity(0.4)
+        self.lines.setGraphicsEffect(effect)  # type: ignore[arg-type]
+
+
+class _Offer(QWidget):
+    """One button that sizes to the brief; then what it proposes, to take or leave."""
+
+    size_asked = Signal()
+    accepted = Signal()
+    discarded = Signal()
+    stopped = Signal()
+
+    def __init__(self) -> None:
+        super().__init__()
+        self.setAccessibleName("Sizing")
+        self.size_button = QPushButton("Size to this brief")
+        self.size_button.setToolTip("Find lengths that meet the brief; shown first, one undo step")
+        self._words = QLabel()
+        self._words.setWordWrap(True)
+        self._words.setAccessibleName("Proposed sizing")
+        self.accept_button, self.discard_button = QPushButton("Accept"), QPushButton("Discard")
+        self.stop_button = QPushButton("Stop")
+        buttons = QHBoxLayout()
+        buttons.setContentsMargins(0, 0, 0, 0)
+        for button, signal in (
+            (self.size_button, self.size_asked),
+            (self.accept_button, self.accepted),
+            (self.discard_button, self.discarded),
+            (self.stop_button, self.stopped),
+        ):
+            button.setAccessibleName(button.text())
+            button.clicked.connect(signal)
+            buttons.addWidget(button)
+        buttons.addStretch(1)
+        layout = QVBoxLayout(self)
+        layout.setContentsMargins(0, 0, 0, 0)
+        layout.setSpacing(4)
+        layout.addWidget(self._words)
+        layout.addLayout(buttons)
+
+    def show_state(self, state: ReadingsState) -> None:
+        words = state.busy or state.proposal
+        if self._words.text() != words:
+            self._words.setText(words)
+        offers = state.can_size and not words
+        self.setVisible(bool(words) or offers)
+        self._words.setVisible(bool(words))
+        self.size_button.setVisible(offers)
+        self.accept_button.setVisible(bool(state.proposal) and not state.busy)
+        self.discard_button.setVisible(bool(state.proposal) and not state.busy)
+        self.stop_button.setVisible(bool(state.busy))
+
+
+def _fold(name: str) -> QToolButton:
+    button = QToolButton()
+    button.setCheckable(True)
+    button.setText(name)
+    button.setAccessibleName(name)
+    button.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+    return button

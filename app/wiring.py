@@ -1,0 +1,129 @@
+"""Which signal of the window goes where."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from PySide6.QtCore import Qt
+
+from app.mat.plan_view import copper_bounds
+
+if TYPE_CHECKING:
+    from app.main_window import MainWindow
+
+_KEYS = """<p><b>On the Mat</b></p>
+<p>Drag a white handle, or go to it with Tab and move it with the arrow keys: 0.1 mm a press,
+1 mm with Shift, 0.01 mm with Ctrl. Esc puts a drag back.</p>
+<p>Wheel: zoom at the pointer. Middle button, Space or the bare mat: pan. Ctrl+0: the whole
+plate. Ctrl+2: the copper. Ctrl+1: true size.</p>
+<p><b>In a field</b></p>
+<p>Type a length as you write it: 41.5, 41.5 mm, 4.15 cm, 1 5/8 in, 62 mil. Enter takes it, Esc
+takes it back, the up and down keys step it.</p>"""
+_ABOUT = """<p><b>Kerfwave</b></p><p>A workbench for laying out, exporting and correcting hand-built
+and etched patch antennas. Free software under the MIT licence.</p>"""
+
+
+def connect_views(window: MainWindow) -> None:
+    """What the user asks in a panel, to its presenter."""
+    cards, mat, hand = window.cards, window.mat, window.mat_presenter
+    cards.edited.connect(window.cards_presenter.edit)
+    cards.stepped.connect(window.cards_presenter.step)
+    cards.acted.connect(window.cards_presenter.act)
+    cards.opened.connect(lambda name: window.settings.set("open_card", name))
+    for view in (mat.plan, mat.edge):
+        view.pull_started.connect(hand.start_pull)
+        view.pulled.connect(hand.pull)
+        view.pull_ended.connect(hand.end_pull)
+        view.pull_cancelled.connect(hand.cancel_pull)
+        view.nudged.connect(hand.nudge)
+    mat.plan.pointed.connect(window.show_place)
+    mat.spacing_taken.connect(hand.take_slider)
+    mat.spacing_set.connect(hand.set_spacing)
+    readings = window.readings
+    readings.field_asked.connect(cards.focus_field)
+    readings.size_asked.connect(window.sizing.start)
+    readings.accepted.connect(window.sizing.accept)
+    readings.discarded.connect(window.sizing.discard)
+    readings.stopped.connect(window.sizing.discard)
+    window.curves.chosen.connect(lambda name: window.settings.set("curve", name))
+    window.curves.match_as_chosen.connect(lambda name: window.settings.set("match_as", name))
+    window.notices.closed.connect(
+        lambda name: window.settings.set("hints_seen", True) if name == "hints" else None
+    )
+    window.notices.pressed.connect(
+        lambda name, _: window.files.save_as() if name == "save-failed" else None
+    )
+    window.settings.changed.connect(lambda key, _: _on_setting(window, key))
+    window.document.stack.cleanChanged.connect(lambda _: window.show_name())
+    window.document.design_changed.connect(lambda _: window.show_name())
+    window.document.path_changed.connect(lambda _: window.show_name())
+
+
+def connect_actions(window: MainWindow) -> None:
+    """Commands of the table, to what does them."""
+    plan, stack, settings = window.mat.plan, window.document.stack, window.settings
+    deeds = {
+        "new": window.files.new,
+        "open": window.files.ask_open,
+        "save": window.files.save,
+        "save-as": window.files.save_as,
+        "template": window.show_export,
+        "quit": window.close,
+        "undo": stack.undo,
+        "redo": stack.redo,
+        "size": window.sizing.start,
+        "preferences": window.show_preferences,
+        "zoom-in": lambda: plan.zoom(1.25),
+        "zoom-out": lambda: plan.zoom(0.8),
+        "fit": plan.fit,
+        "fit-copper": lambda: plan.fit_to(copper_bounds(plan.state.layout)),
+        "true-size": lambda: plan.zoom(
+            window.screen().physicalDotsPerInch() / 0.0254 / plan.camera.scale
+        ),
+        "dimensions": lambda: settings.set(
+            "dimensions", window.window_actions["dimensions"].isChecked()
+        ),
+        "full-screen": lambda: window.setWindowState(
+            window.windowState() ^ Qt.WindowState.WindowFullScreen
+        ),
+        "keys": lambda: window.asker.tell("Keys and gestures", _KEYS),
+        "about": lambda: window.asker.tell("About Kerfwave", _ABOUT),
+    }
+    for name, deed in deeds.items():
+        window.window_actions[name].triggered.connect(lambda _=False, do=deed: do())
+    window.window_actions["dimensions"].setChecked(settings.value("dimensions"))
+    undo, redo = window.window_actions["undo"], window.window_actions["redo"]
+    for action, can, text, changed, word in (
+        (undo, stack.canUndoChanged, stack.undoTextChanged, stack.canUndo(), "Undo"),
+        (redo, stack.canRedoChanged, stack.redoTextChanged, stack.canRedo(), "Redo"),
+    ):
+        action.setEnabled(changed)
+        can.connect(action.setEnabled)
+        text.connect(lambda what, one=action, verb=word: _name_step(one, verb, what))
+
+
+def place_words(point: object) -> str:
+    """Where the pointer is, in millimetres and inches."""
+    if not isinstance(point, tuple):
+        return ""
+    x, y = point
+    metric = ", ".join(f"{value * 1e3:.2f}".replace("-", "−") for value in (x, y))
+    inches = ", ".join(f"{value / 0.0254:.3f}".replace("-", "−") for value in (x, y))
+    return f"{metric} mm     {inches} in"
+
+
+def _name_step(action: object, verb: str, what: str) -> None:
+    words = f"&{verb} {what[:1].lower()}{what[1:]}" if what else f"&{verb}"
+    if action.text() != words:  # type: ignore[attr-defined]
+        action.setText(words)  # type: ignore[attr-defined]
+
+
+def _on_setting(window: MainWindow, key: str) -> None:
+    if key == "match_as":
+        window.curves.show_match_as(window.settings.value(key))
+        window.readings_presenter.show()
+    elif key == "dimensions":
+        shown = window.settings.value(key)
+        window.window_actions[key].setChecked(shown)
+        window.mat.plan.shows_dimensions = shown
+        window.mat.plan.update()
