@@ -26,6 +26,7 @@ if TYPE_CHECKING:
 
 PROGRAM: Final = "kerfwave"
 VERBS: Final = {
+    "size": "from a brief and the stock at hand to a sized project",
     "show": "all parameters with units, what follows from them, and what can't be built",
     "set": "change parameters of a project by their dotted names",
     "readings": "what the antenna does over frequency, held against its brief",

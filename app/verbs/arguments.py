@@ -5,11 +5,13 @@ from __future__ import annotations
 import argparse
 import difflib
 import re
+from enum import Enum
 from pathlib import Path
 from typing import TYPE_CHECKING, NoReturn, TypeVar
 
 from core.design.spelled import spacer
 from core.errors import FileError, InputError
+from core.materials.table import folded
 from core.storage.project import read_project
 from core.units import parse_quantity
 
@@ -21,6 +23,7 @@ if TYPE_CHECKING:
     from core.units import Quantity
 
 _T = TypeVar("_T")
+_E = TypeVar("_E", bound=Enum)
 _NEGATIVE = re.compile(r"[-−][.,]?\d")
 _LONGEST_QUOTE = 40
 
@@ -68,15 +71,36 @@ def unknown_word(word: str, known: Iterable[str], what: str) -> str:
     return f"{quoted} is no {what}{hint}; accepted: {', '.join(known)}"
 
 
+def taken_by(read: Callable[[str], _T]) -> Callable[[str], _T]:
+    """Reader for an option out of one that raises InputError; the words are kept."""
+
+    def read_option(text: str) -> _T:
+        try:
+            return read(text)
+        except InputError as error:
+            raise argparse.ArgumentTypeError(str(error)) from None
+
+    return read_option
+
+
+def word(kind: type[_E]) -> Callable[[str], _E]:
+    """Reader of one of a few words, however it is spelled."""
+
+    def read(text: str) -> _E:
+        for member in kind:
+            if folded(str(member.value)) == folded(text):
+                return member
+        words = [str(member.value) for member in kind]
+        raise argparse.ArgumentTypeError(unknown_word(text, words, "choice"))
+
+    return read
+
+
 def quantity(
     kind: Quantity, minimum: float | None = None, maximum: float | None = None
 ) -> Callable[[str], float]:
     """Reader of one quantity, for an option; SI."""
-
-    def read(text: str) -> float:
-        return _said(lambda: parse_quantity(text, kind, minimum=minimum, maximum=maximum))
-
-    return read
+    return taken_by(lambda text: parse_quantity(text, kind, minimum=minimum, maximum=maximum))
 
 
 def whole_number(text: str) -> int:
@@ -110,7 +134,7 @@ def add_spacer(parser: VerbParser, help_text: str, *, required: bool = False) ->
         metavar="MATERIAL:THICKNESS",
         nargs="+",
         action="extend",
-        type=lambda text: _said(lambda: spacer(text)),
+        type=taken_by(spacer),
         required=required,
         help=help_text,
     )
@@ -127,14 +151,6 @@ def load(path: Path) -> Design:
         return read_project(path)
     except FileError as error:
         raise BadInputError(str(error)) from error
-
-
-def _said(read: Callable[[], _T]) -> _T:
-    """What is read, or a refusal whose words argparse passes on."""
-    try:
-        return read()
-    except InputError as error:
-        raise argparse.ArgumentTypeError(str(error)) from None
 
 
 def _joined_negatives(words: Sequence[str]) -> list[str]:

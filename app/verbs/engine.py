@@ -1,12 +1,17 @@
-"""The choice of an engine, for the verbs that ask one."""
+"""The choice of an engine, and how far its answer can be trusted."""
 
 from __future__ import annotations
 
 import argparse
+from typing import TYPE_CHECKING, Any
 
 from app.verbs.arguments import VerbParser, unknown_word
+from app.verbs.output import table
 from core.engines import ENGINES
 from core.materials.table import folded
+
+if TYPE_CHECKING:
+    from core.response.model import Response, Trust
 
 
 def add_engine(parser: VerbParser) -> None:
@@ -18,6 +23,34 @@ def add_engine(parser: VerbParser) -> None:
         default=next(iter(ENGINES)),
         help=f"what works it out: {' or '.join(ENGINES)}",
     )
+
+
+def trust_record(response: Response) -> dict[str, dict[str, Any]]:
+    """How far each reading can be trusted, for programs."""
+    return {
+        reading.value: {
+            "level": trust.level.value,
+            "reason": trust.reason,
+            "remedy": trust.remedy or None,
+        }
+        for reading, trust in response.trust.items()
+    }
+
+
+def trust_text(response: Response) -> str:
+    """How far each reading can be trusted, those alike in one line."""
+    alike: dict[Trust, list[str]] = {}
+    for reading, trust in response.trust.items():
+        alike.setdefault(trust, []).append(reading.replace("_", " "))
+    rows = [
+        (trust.level.value, f"{', '.join(names)}: {trust.reason}{_cure(trust)}")
+        for trust, names in alike.items()
+    ]
+    return f"How far to trust this\n{table(rows, '  ')}"
+
+
+def _cure(trust: Trust) -> str:
+    return f"; {trust.remedy}" if trust.remedy else ""
 
 
 def _engine(text: str) -> str:

@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Any, Final, TextIO
 import numpy as np
 
 from app.verbs.arguments import VerbParser, add_file, add_json, load, quantity, whole_number
-from app.verbs.engine import add_engine
+from app.verbs.engine import add_engine, trust_record, trust_text
 from app.verbs.findings import findings_record, findings_text
 from app.verbs.output import json_text, table
 from core.design.polarisation import Polarisation
@@ -26,7 +26,7 @@ if TYPE_CHECKING:
     from core.findings import Finding
     from core.response.bands import Band
     from core.response.judge import Verdict
-    from core.response.model import Response, Trust
+    from core.response.model import Response
 
 _MARKS: Final = {
     State.MET: "met",
@@ -105,10 +105,7 @@ def _record(response: Response, brief: Brief) -> dict[str, Any]:
         "directivity_dbi": 10.0 * np.log10(response.directivity),
         "beamwidth_deg": np.degrees(response.beamwidth),
         "front_to_back_db": None if behind is None else 10.0 * np.log10(behind),
-        "trust": {
-            reading: {"level": trust.level, "reason": trust.reason, "remedy": trust.remedy}
-            for reading, trust in response.trust.items()
-        },
+        "trust": trust_record(response),
     }
 
 
@@ -127,7 +124,7 @@ def _text(
     parts = [
         f"{design.name}, by the {response.engine} model, {low} to {high}\nBrief: {_asked(brief)}\n",
         table((_MARKS[one.state], _sentence(one)) for one in verdicts),
-        f"How far to trust this\n{table(_trust_rows(response), '  ')}",
+        trust_text(response),
         findings_text(findings),
     ]
     return "\n".join(part for part in parts if part)
@@ -147,18 +144,3 @@ def _sentence(verdict: Verdict) -> str:
     if verdict.state is not State.UNKNOWN:
         return verdict.sentence
     return f"{verdict.reading.replace('_', ' ').capitalize()}: not known, for the reason below."
-
-
-def _trust_rows(response: Response) -> list[tuple[str, str]]:
-    """Readings with the same trust for the same reason, in one line."""
-    alike: dict[Trust, list[str]] = {}
-    for reading, trust in response.trust.items():
-        alike.setdefault(trust, []).append(reading.replace("_", " "))
-    return [
-        (trust.level, f"{', '.join(names)}: {trust.reason}{_cure(trust)}")
-        for trust, names in alike.items()
-    ]
-
-
-def _cure(trust: Trust) -> str:
-    return f"; {trust.remedy}" if trust.remedy else ""
