@@ -117,7 +117,7 @@ def test_where_equations_cannot_tell_that_is_said(sized, capsys):
 def test_a_brief_that_cannot_be_met_says_why(sized):
     told = sized("--element", "rect:20mmx70mm", "--feed", "probe")
     assert told["met"] is False
-    assert told["reason"].startswith("Best found: VSWR ")
+    assert "best found" in told["reason"].casefold()
     assert told["vswr"] > 1.5 or told["axial_ratio_db"] > 1.5
 
 
