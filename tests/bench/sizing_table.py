@@ -34,19 +34,36 @@ STOCKS = (  # spacer, process; thickness in wavelengths where it scales with the
     ("FR-4:1.6mm", None, "toner-etch"),
     ("low-loss:1.524mm", None, "board-house"),
 )
-FEEDS = (("dual-edge", "rhcp"), ("dual-edge", "lhcp"), ("probe", "rhcp"), ("probe", "lhcp"), ("probe", "linear"))  # fmt: skip
+FEEDS = (
+    ("dual-edge", "rhcp"),
+    ("dual-edge", "lhcp"),
+    ("probe", "rhcp"),
+    ("probe", "lhcp"),
+    ("probe", "linear"),
+)
 
 HEAD = """# Sizes by the live model
 
 Written by `tests/bench/sizing_table.py`. Each row is one call of the sizing, ground plate
 fitted half a wavelength beyond the element; VSWR and axial ratio (dB) are the live model's own
 estimate at the frequency, `trust` is what it says of its match: where it reads unknown, nobody
-should cut by it. The field solver judges and corrects these. FR-4 at 5.8 and 10 GHz stands here
-to show the limits, not as advice.
+should cut by it. A full-wave solution has not judged these yet. FR-4 at 5.8 and 10 GHz stands
+here to show the limits, not as advice. Two branches with linear polarisation are refused.
 
-| frequency | spacer | process | feed | polarisation | met | VSWR | axial ratio | trust in match | evaluations | what stood in the way |
-|---|---|---|---|---|---|---|---|---|---|---|
 """
+COLUMNS = (
+    "frequency",
+    "spacer",
+    "process",
+    "feed",
+    "polarisation",
+    "met",
+    "VSWR",
+    "axial ratio",
+    "trust in match",
+    "evaluations",
+    "what stood in the way",
+)
 
 
 def spacer_text(spacer: str, thickness: float | None, frequency: float) -> str:
@@ -90,7 +107,8 @@ def main() -> None:
                 lines.append(line)
                 sizings.append(sizing)
     met = sum(one.met for one in sizings)
-    text = HEAD + "\n".join(lines) + f"\n\n{met} of {len(lines)} met.\n"
+    head = [f"| {' | '.join(COLUMNS)} |", "|" + "---|" * len(COLUMNS)]
+    text = HEAD + "\n".join([*head, *lines]) + f"\n\n{met} of {len(lines)} met.\n"
     Path("docs/sizing.md").write_text(text, encoding="utf-8")
     print(
         f"{met} of {len(lines)} met; median {median(seconds):.2f} s, longest {max(seconds):.2f} s"
