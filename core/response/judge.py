@@ -1,6 +1,7 @@
 """A response held against its brief, in sentences.
 
-A reading that its engine cannot vouch for is judged unknown, never met.
+A reading that its engine cannot vouch for is judged unknown, never met; one that it only
+estimates is likely at best.
 """
 
 from __future__ import annotations
@@ -31,6 +32,7 @@ class State(StrEnum):
     """How a reading stands against the brief."""
 
     MET = "met"
+    LIKELY = "likely"  # met by an estimate that is good to a few per cent
     MISSED = "missed"
     UNKNOWN = "unknown"
     NOTED = "noted"  # the brief asks nothing of it
@@ -76,7 +78,8 @@ def judge(
     -------
     tuple of Verdict
         In the order match, polarisation, gain, efficiency, bands, resonance, pattern. The
-        state is never "met" or "missed" where the engine calls the reading unknown.
+        state is never "met" or "missed" where the engine calls the reading unknown, and never
+        "met" where it calls it rough.
     """
     verdicts = (
         _match(response, vswr_target),
@@ -87,14 +90,19 @@ def judge(
         _resonance(response),
         _pattern(response),
     )
-    return tuple(_or_unknown(response, verdict) for verdict in verdicts)
+    return tuple(_as_trusted(response, verdict) for verdict in verdicts)
 
 
-def _or_unknown(response: Response, verdict: Verdict) -> Verdict:
-    """The verdict, or why there can be none."""
+def _as_trusted(response: Response, verdict: Verdict) -> Verdict:
+    """The verdict, called an estimate where it is rough, or why there can be none."""
     trust = response.trust[verdict.reading]
-    if trust.level is not TrustLevel.UNKNOWN:
+    if trust.level is TrustLevel.GOOD or (
+        trust.level is TrustLevel.ROUGH and verdict.state is State.NOTED
+    ):
         return verdict
+    if trust.level is TrustLevel.ROUGH:
+        state = State.LIKELY if verdict.state is State.MET else verdict.state
+        return Verdict(verdict.reading, state, f"Estimate: {verdict.sentence}")
     name = verdict.reading.replace("_", " ").capitalize()
     remedy = f" {trust.remedy[0].upper()}{trust.remedy[1:]}." if trust.remedy else ""
     sentence = f"{name} unknown: {trust.reason}.{remedy}"
@@ -180,7 +188,11 @@ def _resonance(response: Response) -> Verdict:
         for mode in response.modes
     ]
     listed = " and ".join(modes)
-    return Verdict(Reading.RESONANCE, State.NOTED, f"The element resonates at {listed}.")
+    sentence = f"The element resonates at {listed}."
+    trust = response.trust[Reading.RESONANCE]
+    if trust.level is TrustLevel.ROUGH:
+        sentence += f" {trust.reason[:1].upper()}{trust.reason[1:]}."
+    return Verdict(Reading.RESONANCE, State.NOTED, sentence)
 
 
 def _pattern(response: Response) -> Verdict:

@@ -96,9 +96,15 @@ def test_what_the_engine_cannot_vouch_for_is_never_met():
     assert all("A measurement will tell." in item.sentence for item in found)
 
 
-def test_rough_readings_are_still_judged():
-    found = verdict(response_with(level=TrustLevel.ROUGH), Reading.MATCH)
-    assert found.state is State.MET
+def test_rough_readings_are_likely_at_best():
+    response = response_with(level=TrustLevel.ROUGH)
+    found = verdict(response, Reading.MATCH)
+    assert found.state is State.LIKELY
+    assert found.sentence.startswith("Estimate: VSWR")
+    assert verdict(response_with(vswr=9.0, level=TrustLevel.ROUGH), Reading.MATCH).state is (
+        State.MISSED
+    )
+    assert "The plate is small." in verdict(response, Reading.RESONANCE).sentence
 
 
 @pytest.mark.parametrize(
