@@ -30,6 +30,7 @@ VERBS: Final = {
     "show": "all parameters with units, what follows from them, and what can't be built",
     "set": "change parameters of a project by their dotted names",
     "readings": "what the antenna does over frequency, held against its brief",
+    "export": "write template, artwork and cut list",
     "line": "one microstrip line: impedance and loss, or the width for an impedance",
 }
 _DONE, _FAILED, _BAD_INPUT, _INTERRUPTED = 0, 1, 2, 130

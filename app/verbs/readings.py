@@ -30,6 +30,7 @@ if TYPE_CHECKING:
 
 _MARKS: Final = {
     State.MET: "met",
+    State.LIKELY: "likely",
     State.MISSED: "missed",
     State.UNKNOWN: "unknown",
     State.NOTED: "",
