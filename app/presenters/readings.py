@@ -38,7 +38,7 @@ class Line:
     Attributes
     ----------
     icon : str
-        Name in the assets: met, missed, unknown, noted, refusal, warning, note.
+        Name in the assets: met, likely, missed, unknown, noted, refusal, warning, note.
     words : str
     field : str
         Where a press on it leads; empty for a line that leads nowhere.
@@ -88,7 +88,7 @@ def readings_state(current: Evaluation, drawn: Evaluation) -> ReadingsState:
         lines = verdict_lines(shown.response, shown.verdicts)
         name = shown.response.engine
         engine = _ENGINES.get(name, name)
-    met = [one.state is State.MET for one in shown.verdicts if one.reading in _ASKED]
+    met = [one.state in (State.MET, State.LIKELY) for one in shown.verdicts if one.reading in _ASKED]
     return ReadingsState(
         engine=engine,
         lines=lines,

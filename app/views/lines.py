@@ -18,6 +18,7 @@ if TYPE_CHECKING:
 _WRAP = int(Qt.TextFlag.TextWordWrap.value) | int(Qt.AlignmentFlag.AlignTop.value)
 _TINTS = {
     "met": "good",
+    "likely": "good",
     "missed": "bad",
     "unknown": "unknown",
     "noted": "muted",

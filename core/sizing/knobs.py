@@ -261,7 +261,8 @@ class _DualEdge:
         first = rounding(_landing(values[2], width, first_width))
         second = rounding(_landing(values[3], length, second_width))
         gaps = feed.first.gap + feed.second.gap
-        delay_length = first + second + gaps + delay_width  # exactly the way round the corner
+        # Exactly the way round the corner.
+        delay_length = rounding(first + second + gaps + delay_width)
         lead = LeadIn(0.0, delay_width)
         if len(values) > 8:
             lead = LeadIn(rounding(values[8]), rounding(values[9]), feed.lead_in.bends)

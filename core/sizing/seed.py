@@ -122,7 +122,7 @@ def _gap(brief: Brief, stock: Stock, making: Making, pin: ProbePin) -> float:
     thin = height * brief.frequency / SPEED_OF_LIGHT <= THICKEST
     clear = making.narrowest_gap + (pin.pad - making.narrowest_strip) / 2
     gap = max(making.narrowest_gap, clear, height if thin else height / 4)
-    return ceil(gap / GRID - 1e-6) * GRID
+    return on_grid(ceil(gap / GRID - 1e-6) * GRID)
 
 
 def _pin(side: float) -> ProbePin:
