@@ -39,9 +39,9 @@ def open_workbench(path: Path | None) -> int:
     problems = [_problem(platform) for platform in platforms]
     if problems and all(problems):
         raise StartError(problems[0])
-    # Loaded last, so that verbs and refusals never wait for Qt.
-    window = importlib.import_module("app.window")
-    return int(window.run(path))
+    from app.window import run  # noqa: PLC0415 - verbs and refusals never wait for Qt
+
+    return run(path)
 
 
 def _wanted_platforms() -> list[str]:

@@ -78,28 +78,16 @@ def write_project(path: Path, design: Design, *, replace: bool) -> None:
     ExistingFileError
         If there is a file already and it may not be replaced.
     FileError
-        If it cannot be written. What was there before is untouched.
-    """
-    write_atomically(path, project_bytes(design), replace=replace)
-
-
-def project_bytes(design: Design) -> bytes:
-    """What a project file of this design holds, read back before it is handed out.
-
-    Parameters
-    ----------
-    design : Design
-
-    Returns
-    -------
-    bytes
-        UTF-8.
-
-    Raises
-    ------
+        If it cannot be written.
     CoreError
-        If it would not give the same design again.
+        If it would not give the same design again. In each case what was there before is
+        untouched.
     """
+    write_atomically(path, _project_bytes(design), replace=replace)
+
+
+def _project_bytes(design: Design) -> bytes:
+    """What the file holds, read back before it is handed out."""
     record = {_VERSION_KEY: _SCHEMA, _DESIGN_KEY: to_record(design)}
     data = (json.dumps(record, indent=2, ensure_ascii=False) + "\n").encode()
     try:

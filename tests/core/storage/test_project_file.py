@@ -7,14 +7,15 @@ import os
 import pytest
 from design_strategies import designs
 from hypothesis import HealthCheck, given, settings
+from sample_designs import tape_design
 
-from core.design.defaults import default_design
 from core.design.edit import with_text
+from core.design.record import to_record
 from core.errors import CoreError, ExistingFileError, FileError, ProjectFormatError
-from core.storage.project import project_bytes, read_project, write_project
+from core.storage.project import read_project, write_project
 
-DESIGN = default_design()
-GOOD = project_bytes(DESIGN)
+DESIGN = tape_design()
+GOOD = json.dumps({"kerfwave": 1, "design": to_record(DESIGN)}).encode()
 LARGEST = 5_000_000
 
 
@@ -77,7 +78,7 @@ def test_a_byte_order_mark_does_no_harm(path):
         (GOOD[:200], "is damaged at line"),
         (GOOD + b"{}", "is damaged at line"),
         (b"\x89PNG\r\n\x1a\n", "is not UTF-8 text (byte 1)"),
-        (GOOD.replace(b"Glider", b"Gl\xffder"), "is not UTF-8 text (byte"),
+        (GOOD.replace(b"Mast", b"M\xffst"), "is not UTF-8 text (byte"),
         (b"[]", "is not a Kerfwave project; accepted"),
         (b"17", "is not a Kerfwave project"),
         (b'{"design": {}}', "is not a Kerfwave project"),
@@ -99,7 +100,7 @@ def test_a_byte_order_mark_does_no_harm(path):
         (GOOD.replace(b"0.054", b"9" * 5000), "is too large a number"),
         (GOOD.replace(b"0.054", b"9" * 300), "width: "),
         (changed("design.name", "two\nlines"), "name: "),
-        (GOOD.replace(b"Glider", b"\\ud800"), "name: "),
+        (GOOD.replace(b"Mast", b"\\ud800"), "name: "),
         (GOOD.replace(b'"length"', b'"width"'), "is damaged: 'width' stands there twice"),
         (changed("design.brief.polarisation", "linear"), "make circular polarisation only"),
         (changed("design.brief.polarisation", []), "brief.polarisation: '[]' is not taken"),
