@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Final
 
 from core.drawing.cells import Cell, part_cell
 from core.drawing.joints import joint_marks, map_cell
@@ -13,10 +13,13 @@ from core.drawing.parts import parts
 from core.drawing.plan import Block, Tile, on_one_page, plan
 from core.drawing.rules import rule_across, rule_along
 from core.drawing.sheet import Ink, Sheet, grouped
+from core.errors import ExportError
 
 if TYPE_CHECKING:
     from core.design.model import Design
     from core.layout.model import Layout
+
+MOST_PAGES: Final = 200
 
 
 @dataclass(frozen=True)
@@ -63,6 +66,11 @@ def template_pages(
     -------
     tuple of Sheet
         Same size each, x and y in m from the lower left corner of the paper.
+
+    Raises
+    ------
+    ExportError
+        If it would take more than `MOST_PAGES` pages.
     """
     job = _Job(design, layout, field_checked, mirrored)
     cells = job.cells()
@@ -74,6 +82,11 @@ def template_pages(
     with_map = [cells[0], map_cell(), *cells[1:]]
     plans = [(one, plan(with_map, one.window.width, one.window.length)) for one in papers]
     chosen, blocks = min(plans, key=lambda one: (_pages(one[1]), _joints(one[1])))
+    if _pages(blocks) > MOST_PAGES:
+        raise ExportError(
+            f"the template would take {_pages(blocks)} pages of {paper.name}; "
+            f"accepted: up to {MOST_PAGES}, so take a larger paper or the one sheet of the SVG"
+        )
     return _sheets(job, chosen, _with_map(blocks))
 
 

@@ -13,6 +13,7 @@ from core.drawing.lettering import text_width
 from core.drawing.paper import MARGIN, PAPERS
 from core.drawing.sheet import Anchor, Area, Circle, Line, Purpose, Text
 from core.drawing.template import template_pages, template_sheet
+from core.errors import ExportError
 from core.layout.build import build_layout, top_copper
 from core.shapes.outline import Region, facets, polygon
 
@@ -221,6 +222,14 @@ def test_a_checked_layout_does_not_say_otherwise():
 )
 def test_pages_are_few(name, paper, count):
     assert len(pages(name, paper)) == count
+
+
+def test_a_roomful_of_pages_is_refused_and_says_what_would_do():
+    design = changed(("stock.ground", "rect:3mx3m"))
+    layout = build_layout(design)
+    with pytest.raises(ExportError, match=r"pages of A4; accepted: up to 200.*larger paper"):
+        template_pages(design, layout, A4)
+    assert template_sheet(design, layout, A4).box.width > 3.0
 
 
 def test_a_single_sheet_takes_the_paper_where_it_fits_and_its_own_size_where_not():
