@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
-from math import ceil
+from math import ceil, hypot
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -33,6 +33,7 @@ if TYPE_CHECKING:
     from numpy.typing import NDArray
 
     from core.design.model import Design
+    from core.design.stock import Ground
     from core.response.model import Samples
 
     Floats = NDArray[np.float64]
@@ -270,15 +271,17 @@ def _lead_room(design: Design, side: float) -> float:
 def _with_fitted_ground(design: Design, spare: float = 1.0) -> Design:
     """Ground plate that reaches half a wavelength beyond the element and covers the strips."""
     reach = 0.5 * SPEED_OF_LIGHT / design.brief.frequency
-    longest = spare * max(design.element.width, design.element.length)
-    wanted = ceil((longest + 2.0 * reach) * 1e3 + 1.0) / 1e3  # whole millimetres
-    ground = design.stock.ground
-    shape = (
-        RectangleGround(wanted, wanted)
-        if isinstance(ground, RectangleGround)
-        else DiscGround(ceil(wanted * 2**0.5 * 1e3) / 1e3)
-    )
+    width, length = spare * design.element.width, spare * design.element.length
+    if isinstance(design.stock.ground, DiscGround):
+        shape: Ground = DiscGround(_whole_mm(hypot(width, length) + 2.0 * reach))
+    else:
+        shape = RectangleGround(_whole_mm(width + 2.0 * reach), _whole_mm(length + 2.0 * reach))
     return replace(design, stock=replace(design.stock, ground=shape))
+
+
+def _whole_mm(length: float) -> float:
+    """Round up to the millimetre, with one to spare."""
+    return (ceil(length * 1e3) + 1) / 1e3
 
 
 def _sizing(design: Design, best: _Found, evaluations: int) -> Sizing:
