@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING, Any, Final
 from app.verbs.output import table
 from core.constants import SPEED_OF_LIGHT
 from core.design.feed import DualEdge
-from core.errors import OutOfRangeError
+from core.errors import LayoutError, OutOfRangeError
 from core.layout.build import top_copper
 from core.layout.model import Role
 from core.lines.microstrip import line_properties
@@ -24,6 +24,7 @@ if TYPE_CHECKING:
     from core.design.model import Design
     from core.layout.model import Layout
     from core.live.modes import SideMode
+    from core.shapes.outline import Region
 
 _ROUTED: Final = (
     ("feed.first.landing", "first_landing_m", "first landing as routed"),
@@ -148,15 +149,20 @@ def _seeds(layout: Layout, eps_r: float) -> Iterator[Fact]:
 
 
 def _areas(layout: Layout) -> Iterator[Fact]:
-    if not layout.pieces:  # there is no outline, as a finding says
-        return
+    try:
+        top = _area(top_copper(layout))
+    except LayoutError:
+        top = math.nan  # copper that runs into itself has none, as a finding says
     ground = [one.region for one in layout.pieces if one.role is Role.GROUND_COPPER]
-    for key, label, regions in (
-        ("top_copper", "copper in front", top_copper(layout)),
-        ("ground_copper", "copper of the ground", ground),
+    for key, label, area in (
+        ("top_copper_area_m2", "copper in front", top),
+        ("ground_copper_area_m2", "copper of the ground", _area(ground)),
     ):
-        area = sum(polygon(region).area for region in regions)
-        yield Fact(f"{key}_area_m2", label, area, f"{area * 1e4:.5g} cm²")
+        yield Fact(key, label, area, f"{area * 1e4:.5g} cm²" if math.isfinite(area) else "unknown")
+
+
+def _area(regions: Iterable[Region]) -> float:
+    return sum(polygon(region).area for region in regions)
 
 
 def _side(name: str, mode: SideMode) -> Group:
@@ -189,7 +195,7 @@ def _strips(design: Design, layout: Layout) -> Iterator[Group]:
     strips = [
         ("first branch", feed.first.width, feed.first.gap),
         ("second branch", feed.second.width, feed.second.gap),
-        ("delay strip", feed.delay_width, drawn.get("feed.delay_length", feed.delay_length)),
+        ("delay strip", feed.delay_width, drawn["feed.delay_length"]),
         ("lead-in", feed.lead_in.width, feed.lead_in.length),
     ]
     for name, width, length in strips:

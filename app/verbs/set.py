@@ -5,13 +5,16 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, TextIO
 
 from app.verbs.arguments import BadInputError, VerbParser, add_file, add_json, add_output, load
+from app.verbs.findings import findings_record, findings_text
 from app.verbs.output import json_text, table, value_text
 from core.design.edit import parameters, with_texts
 from core.design.record import to_record
+from core.layout.build import build_layout
 from core.storage.project import write_project
 
 if TYPE_CHECKING:
     from argparse import Namespace
+    from pathlib import Path
 
     from core.design.model import Design
 
@@ -34,16 +37,29 @@ def run(words: Namespace, out: TextIO) -> None:
     """Change the project, write it and print what changed."""
     before = load(words.file)
     after = with_texts(before, _pairs(words.changes))
+    findings = build_layout(after).findings
     goal = words.output or words.file
-    in_place = goal.exists() and goal.samefile(words.file)
-    write_project(goal, after, replace=in_place or words.replace)
+    write_project(goal, after, replace=words.replace or _is_same_file(goal, words.file))
     if words.json:
-        changed = [row[0] for row in _differences(before, after)]
-        out.write(json_text({"file": str(goal), "changed": changed, "design": to_record(after)}))
+        record = {
+            "file": str(goal),
+            "changed": [row[0] for row in _differences(before, after)],
+            "design": to_record(after),
+            "findings": findings_record(findings),
+        }
+        out.write(json_text(record))
         return
     nothing = "nothing changed: these are the values already\n"
     out.write(table(_differences(before, after)) or nothing)
+    out.write(findings_text(findings))
     out.write(f"written to {goal}\n")
+
+
+def _is_same_file(goal: Path, file: Path) -> bool:
+    try:
+        return goal.samefile(file)
+    except OSError:  # there is no such goal yet, or it has no name that could be
+        return False
 
 
 def _pairs(changes: list[str]) -> list[tuple[str, str]]:

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
 from typing import TYPE_CHECKING, Any, TextIO
 
 import shapely
@@ -13,9 +12,8 @@ from app.verbs.findings import findings_record, findings_text
 from app.verbs.output import json_text, table, value_text
 from core.design.edit import parameters
 from core.design.record import short_code, to_record
-from core.errors import LayoutError
-from core.findings import Finding, Severity, has_refusal
-from core.layout.build import build_layout, electrical_layout
+from core.findings import has_refusal
+from core.layout.build import build_layout
 from core.layout.model import Role
 from core.shapes.outline import polygon
 
@@ -36,21 +34,12 @@ def add(parser: VerbParser) -> None:
 def run(words: Namespace, out: TextIO) -> None:
     """Print the project."""
     design = load(words.file)
-    layout = _layout(design)
+    layout = build_layout(design)
     derived = derive(design, layout)
     if words.json:
         out.write(json_text(_record(design, layout, derived)))
     else:
         out.write(_text(design, layout, derived))
-
-
-def _layout(design: Design) -> Layout:
-    """Layout of a design; where it has no outline at all, that is what can't be built."""
-    try:
-        return build_layout(design)
-    except LayoutError as error:
-        finding = Finding("no-outline", Severity.REFUSAL, f"{error}.", error.field)
-        return replace(electrical_layout(design), findings=(finding,))
 
 
 def _text(design: Design, layout: Layout, derived: Derived) -> str:

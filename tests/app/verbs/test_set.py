@@ -57,6 +57,15 @@ def test_parts_that_go_and_come_are_shown(project, capsys):
     assert any(line.split() == ["feed.tee", "0", "mm", "->", "(none)"] for line in lines)
 
 
+def test_what_can_no_longer_be_built_is_said_at_once(project, capsys):
+    assert main(["set", "a.kerf", "feed.first.width=0.5mm"]) == 0
+    out = capsys.readouterr().out
+    assert "can't be built: The first branch is 0.5 mm wide; knife cuts nothing narrower" in out
+    assert main(["set", "a.kerf", "feed.first.width=0.6mm", "--json"]) == 0
+    codes = [one["code"] for one in json.loads(capsys.readouterr().out)["findings"]]
+    assert "strip-too-narrow" in codes
+
+
 def test_values_that_were_so_already_are_said_to_be(project, capsys):
     assert main(["set", "a.kerf", "element.length=5.4cm"]) == 0
     assert "nothing changed" in capsys.readouterr().out

@@ -14,7 +14,6 @@ from sample_designs import tape_design
 from app.command import main
 from core.design.edit import parameters, with_texts
 from core.design.record import from_record
-from core.errors import LayoutError
 from core.storage.project import write_project
 
 SPEED_OF_LIGHT = 299_792_458.0
@@ -188,16 +187,10 @@ def test_text_lists_every_parameter_as_it_can_be_typed(show):
     assert "nothing keeps this from being built" in text
 
 
-def test_a_shape_without_an_outline_is_a_finding(show, monkeypatch):
-    def fails(design):
-        raise LayoutError("the strips cross", field="feed.tee")
-
-    monkeypatch.setattr("app.verbs.show.build_layout", fails)
-    told = show()
-    assert told["layout"] == []
-    (finding,) = told["findings"]
-    assert (finding["code"], finding["field"]) == ("no-outline", "feed.tee")
-    assert "can't be built: the strips cross." in show(text=True)
+def test_copper_that_runs_into_itself_has_no_area(show):
+    told = show("feed.lead_in.length=60mm", "feed.lead_in.bends=5mm left, 10mm left, 15mm left")
+    assert told["derived"]["top_copper_area_m2"] is None or told["findings"]
+    assert "refusal" in {one["severity"] for one in told["findings"]}
 
 
 @settings(
