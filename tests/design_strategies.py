@@ -33,8 +33,9 @@ FINEST = 1e-9  # what lies closer to zero is refused as a mistake
 
 
 def text(longest):
-    letters = st.characters(codec="utf-8").filter(str.isprintable)
-    return st.text(letters, max_size=longest)
+    """Printable text: no control characters, no separators but the space."""
+    letters = st.characters(codec="utf-8", exclude_categories=("C", "Z"))
+    return st.text(letters | st.just(" "), max_size=longest)
 
 
 def number(spec):
