@@ -10,7 +10,6 @@ from math import exp, inf, log, pi
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
-from scipy.optimize import brentq
 
 from core.constants import FREE_SPACE_IMPEDANCE, SPEED_OF_LIGHT, TWO_PI, VACUUM_PERMEABILITY
 from core.errors import OutOfRangeError
@@ -159,6 +158,9 @@ def width_for_impedance(
         If no width between 0.01 and 100 heights has that impedance; the message gives what
         can be reached.
     """
+    # Loaded here, because it takes longer than a whole evaluation of a design.
+    from scipy.optimize import brentq  # noqa: PLC0415
+
     height = total_thickness(layers)
 
     def excess(log_ratio: float) -> float:
