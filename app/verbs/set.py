@@ -10,6 +10,7 @@ from app.verbs.output import json_text, table, value_text
 from core.design.edit import parameters, with_texts
 from core.design.record import to_record
 from core.layout.build import build_layout
+from core.materials.table import folded
 from core.storage.project import write_project
 
 if TYPE_CHECKING:
@@ -64,7 +65,7 @@ def _is_same_file(goal: Path, file: Path) -> bool:
 
 def _pairs(changes: list[str]) -> list[tuple[str, str]]:
     """Keys and values; a key without a value, or given twice, is refused."""
-    pairs: dict[str, str] = {}
+    pairs: dict[str, tuple[str, str]] = {}
     for change in changes:
         key, equals, value = change.partition("=")
         key = key.strip()
@@ -72,10 +73,10 @@ def _pairs(changes: list[str]) -> list[tuple[str, str]]:
             raise BadInputError(
                 f"{change[:40]!r} is no change; accepted: KEY=VALUE, such as element.length=41.5mm"
             )
-        if key in pairs:
+        if folded(key) in pairs:
             raise BadInputError(f"{key[:40]!r} is given twice; accepted: each key once")
-        pairs[key] = value
-    return list(pairs.items())
+        pairs[folded(key)] = key, value
+    return list(pairs.values())
 
 
 def _differences(before: Design, after: Design) -> list[tuple[str, str]]:

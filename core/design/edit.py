@@ -117,7 +117,7 @@ def with_text(design: Design, key: str, text: str) -> Design:
     ----------
     design : Design
     key : str
-        Dotted name.
+        Dotted name; case, spaces, hyphens and underscores do not matter.
     text : str
 
     Returns
@@ -129,7 +129,7 @@ def with_text(design: Design, key: str, text: str) -> Design:
     InputError
         If there is no such name, or the text is not taken.
     """
-    key = key.strip()
+    key = _known_name(design, key.strip())
     whole = _whole_part(design, key, text)
     if whole is not None:
         return whole
@@ -194,6 +194,18 @@ def _walk(part: Any, prefix: str) -> Iterator[Parameter]:  # noqa: ANN401
             spec = field.metadata.get("spec")
             label = spec.label if spec else field.name.replace("_", " ").capitalize()
             yield Parameter(key, label, value, spec)
+
+
+def _known_name(design: Design, typed: str) -> str:
+    """Dotted name of a parameter or a whole part that is typed in other letters."""
+    wanted = folded(typed)
+    for parameter in parameters(design):
+        name = parameter.key
+        while name:
+            if folded(name) == wanted:
+                return name
+            name = name.rpartition(".")[0]
+    return typed
 
 
 def _spec(design: Design, key: str) -> Spec | None:

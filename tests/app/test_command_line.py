@@ -165,6 +165,33 @@ def test_the_module_and_the_script_are_the_same_command(project):
     assert json.loads(by_module.stdout)["width_m"] == 0.003
 
 
+def test_verbs_load_no_qt_when_they_work(project):
+    runs = [
+        ["size", "--feed", "probe", "-o", "p.kerf"],
+        ["set", "a.kerf", "element.width=53mm"],
+        ["show", "a.kerf"],
+        ["readings", "a.kerf"],
+        ["export", "a.kerf", "--as", "template-svg", "template-pdf", "artwork-dxf", "cutlist-csv"],
+        LINE,
+    ]
+    assert {words[0] for words in runs} == VERBS.keys()
+    code = (
+        "import sys\nfrom app.command import main\n"
+        f"assert [main(words) for words in {runs}] == [0] * {len(runs)}\n"
+        "print('PySide6' in sys.modules or 'pyqtgraph' in sys.modules)"
+    )
+    done = subprocess.run(
+        [sys.executable, "-c", code],
+        cwd=project.parent,
+        env={**os.environ, "PYTHONPATH": str(ROOT)},
+        capture_output=True,
+        text=True,
+        check=False,
+    )
+    assert done.stderr == ""
+    assert done.stdout.splitlines()[-1] == "False"
+
+
 def test_a_process_passes_the_exit_status_on(project):
     done = started("set", "none.kerf", "a=1", cwd=project.parent)
     assert done.returncode == 2

@@ -50,6 +50,26 @@ def test_changes_that_need_each_other_are_taken_in_any_order(project):
     assert value_at(read_project(project), "brief.polarisation").value == "linear"
 
 
+@pytest.mark.parametrize("key", ["Element.Length", "ELEMENT.length", " element.length "])
+def test_names_fold_case(project, key):
+    assert main(["set", "a.kerf", f"{key}=41.5mm"]) == 0
+    assert read_project(project).element.length == 0.0415
+
+
+@pytest.mark.parametrize(
+    "change", ["feed.delay-length=60mm", "Feed.Delay Length=60mm", "feed.delaylength=6cm"]
+)
+def test_names_fold_hyphens_and_spaces(project, change):
+    assert main(["set", "a.kerf", change]) == 0
+    assert read_project(project).feed.delay_length == 0.06
+
+
+def test_whole_parts_fold_too(project):
+    assert main(["set", "a.kerf", "Stock.Spacer.1=Card:1mm", "STOCK.ground=Disc:30cm"]) == 0
+    stock = read_project(project).stock
+    assert (stock.spacer[0].material, stock.ground.diameter) == ("card", 0.3)
+
+
 def test_parts_that_go_and_come_are_shown(project, capsys):
     assert main(["set", "a.kerf", "feed=probe"]) == 0
     lines = capsys.readouterr().out.splitlines()
@@ -119,6 +139,7 @@ def test_another_file_needs_leave(project, capsys):
         (["brief.polarisation=diagonal"], "'diagonal' is not taken; accepted: linear, rhcp, lhcp"),
         (["brief.polarisation=linear"], "dual-edge branches make circular polarisation only"),
         (["name=a\nb"], "name: 'a\\nb' is not taken; accepted: up to 60 printable"),
+        (["element.length=3", "Element.Length=4"], "'Element.Length' is given twice; accepted: "),
         (["element.length=3", "element.length=4"], "'element.length' is given twice; accepted: "),
         (["element.length=41mm", "element.width=x"], "element.width: 'x' is not a length"),
     ],
