@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Final
 
 from core.drawing.cells import Cell
-from core.drawing.plan import OVERLAP, Block, joint_bands
+from core.drawing.plan import OVERLAP, Block, Tile, joint_bands
 from core.drawing.sheet import Anchor, Area, Box, Circle, Ink, Line, Purpose, Text
 from core.shapes.outline import Outline, Vertex, rectangle
 
@@ -17,22 +17,29 @@ MAP_BOX: Final = Box(0.0, 0.0, 80e-3, 46e-3)
 _ARM: Final = 3e-3  # of a registration cross
 _LETTER: Final = 3e-3
 _SMALL: Final = 2.2e-3
+_HOW: Final = (
+    "How the pages go together",
+    "Cut one sheet on the dashed line, lay it",
+    "on the other: crosses over crosses, A on A.",
+)
 _BETWEEN: Final = 12e-3  # from block to block on the map, as on the pages
 
 
-def joint_marks(block: Block, first: int) -> list[Ink]:
-    """Crosses, letters and trim lines in the overlaps of a block, in its own place.
+def joint_marks(block: Block, tile: Tile, first: int) -> list[Ink]:
+    """Crosses, letters and trim lines in the overlaps that a tile shows, in the block's place.
 
     Parameters
     ----------
     block : Block
+    tile : Tile
+        One of its tiles.
     first : int
-        Number of its first letter: 0 is A.
+        Number of the block's first letter: 0 is A.
 
     Returns
     -------
     list of Ink
-        Drawn once; each sheet that shows an overlap shows the very same marks.
+        The very same ones for each tile that shows an overlap.
     """
     across, along = joint_bands(block)
     boxes = [tile.box for tile in block.tiles]
@@ -48,8 +55,16 @@ def joint_marks(block: Block, first: int) -> list[Ink]:
     ]
     for number, ((x0, y0), (x1, y1)) in enumerate(joints, first):
         for part in (0.25, 0.75):
-            inks += _cross(x0 + part * (x1 - x0), y0 + part * (y1 - y0), _name(number))
+            x, y = x0 + part * (x1 - x0), y0 + part * (y1 - y0)
+            if _near(tile.box, x, y):
+                inks += _cross(x, y, _name(number))
     return inks
+
+
+def _near(box: Box, x: float, y: float) -> bool:
+    """Whether a cross at (x, y) may reach into a box."""
+    room = 3.0 * _ARM
+    return box.left - room < x < box.right + room and box.bottom - room < y < box.top + room
 
 
 def _cross(x: float, y: float, name: str) -> list[Ink]:
@@ -81,16 +96,10 @@ def map_cell(blocks: Sequence[Block] = ()) -> Cell:
     Cell
         Always of the same size.
     """
+    lines = _HOW if any(block.joints for block in blocks) else _HOW[:1]
     inks = [
-        Ink(Purpose.NOTES, Text(0.0, MAP_BOX.top - 2.4e-3, "How the pages go together", _SMALL)),
-        Ink(
-            Purpose.NOTES,
-            Text(0.0, MAP_BOX.top - 5.6e-3, "Cut one sheet on the dashed line, lay it", _SMALL),
-        ),
-        Ink(
-            Purpose.NOTES,
-            Text(0.0, MAP_BOX.top - 8.6e-3, "on the other: crosses over crosses, A on A.", _SMALL),
-        ),
+        Ink(Purpose.NOTES, Text(0.0, MAP_BOX.top - 2.4e-3 - 3.1e-3 * i, line, _SMALL))
+        for i, line in enumerate(lines)
     ]
     room_width, room_length = MAP_BOX.width, MAP_BOX.length - 12e-3
     boxes = [_bounds(block) for block in blocks]

@@ -155,15 +155,15 @@ def _sheets(job: _Job, paper: Paper, blocks: tuple[Block, ...]) -> tuple[Sheet, 
         inks = [
             ink.moved(placed.x, placed.y) for placed in block.placed for ink in placed.cell.inks
         ]
-        inks += joint_marks(block, joints)
-        joints += block.joints
         for tile in block.tiles:
             place = f"Page {len(sheets) + 1} of {total}"
             if len(block.tiles) > 1:
                 name = block.placed[0].cell.name
                 place += f": {name}, row {tile.row} of {block.rows}, "
                 place += f"column {tile.column} of {block.columns}"
-            sheets.append(_page(job, paper, inks, tile, place, len(block.tiles) > 1))
+            shown = [*inks, *joint_marks(block, tile, joints)]
+            sheets.append(_page(job, paper, shown, tile, place, len(block.tiles) > 1))
+        joints += block.joints
     return tuple(sheets)
 
 
