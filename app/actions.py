@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 from PySide6.QtGui import QAction, QKeySequence
 
 if TYPE_CHECKING:
+    from PySide6.QtGui import QUndoStack
     from PySide6.QtWidgets import QMenu, QWidget
 
 _STANDARD = QKeySequence.StandardKey
@@ -61,11 +62,13 @@ COMMANDS = (
 MENUS = ("&File", "&Edit", "&View", "&Help")
 
 
-def make_actions(owner: QWidget) -> dict[str, QAction]:
-    """Actions of all commands, by id."""
+def make_actions(owner: QWidget, stack: QUndoStack) -> dict[str, QAction]:
+    """Actions of all commands, by id; the stack names what undo and redo would do."""
+    makers = {"undo": stack.createUndoAction, "redo": stack.createRedoAction}
     actions = {}
     for row in COMMANDS:
-        action = QAction(row.text, owner)
+        maker = makers.get(row.id)
+        action = QAction(row.text, owner) if maker is None else maker(owner, row.text)
         action.setObjectName(row.id)
         action.setShortcuts([QKeySequence(key) for key in row.keys])
         action.setToolTip(row.tip)

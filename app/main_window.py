@@ -21,6 +21,7 @@ from app.presenters.files import Asker, FilesPresenter
 from app.presenters.mat_presenter import MatPresenter
 from app.presenters.readings_presenter import ReadingsPresenter
 from app.presenters.sizing import SizingPresenter
+from app.recovery import Recovery
 from app.views.card_column import CardColumn
 from app.views.header import Header
 from app.views.notice_bar import NoticeBar
@@ -45,13 +46,19 @@ class WindowAsks(Asker, Protocol):
 class MainWindow(QMainWindow):
     """The one window of the workbench."""
 
-    def __init__(self, settings: Settings, runner: Runner, asker: WindowAsks | None = None) -> None:
+    def __init__(
+        self,
+        settings: Settings,
+        runner: Runner,
+        folder: Path,
+        asker: WindowAsks | None = None,
+    ) -> None:
         super().__init__()
         self.settings, self.runner = settings, runner
         self.asker: WindowAsks = asker or _own_asker(self)
         self.document = Document(default_design())
         self.pipeline = Pipeline(self.document)
-        self.window_actions = make_actions(self)
+        self.window_actions = make_actions(self, self.document.stack)
         self._make_views()
         self._make_presenters()
         self._lay_out()
@@ -59,14 +66,14 @@ class MainWindow(QMainWindow):
         connect_actions(self)
         add_file_menus(self.header.menus["&File"], settings, self.files)
         self.setAcceptDrops(True)
-        self._show_name()
+        self.show_name()
         self.resize(QSize(1280, 720))
         geometry = QByteArray.fromBase64(settings.value("geometry").encode())
         if not geometry.isEmpty():
             self.restoreGeometry(geometry)
         self.mat.plan.setFocus()
-        if not settings.value("hints_seen"):
-            self.notices.tell("hints")
+        self.recovery = Recovery(self.document, folder)
+        self._tell_first()
 
     def show_export(self) -> None:
         dialog = ExportDialog(
@@ -94,7 +101,16 @@ class MainWindow(QMainWindow):
         geometry = bytes(self.saveGeometry().toBase64().data()).decode()
         self.settings.set("geometry", geometry)
         self.runner.close()
+        self.recovery.close()
         super().closeEvent(event)
+
+    def _tell_first(self) -> None:
+        """Unsaved work that was found goes before the hints of a first start."""
+        left = self.recovery.left
+        if left is not None:
+            self.notices.tell("recovered", name=left.name or "A design")
+        elif not self.settings.value("hints_seen"):
+            self.notices.tell("hints")
 
     def _make_views(self) -> None:
         settings = self.settings
@@ -150,16 +166,16 @@ class MainWindow(QMainWindow):
         self.statusBar().setSizeGripEnabled(False)
 
     def show_place(self, point: object) -> None:
+        """Say where the pointer is on the Mat."""
         self.place.setText(place_words(point))
 
-    def _show_name(self) -> None:
+    def show_name(self) -> None:
+        """Say whose design is on the bench, and whether it is saved."""
         name = self.files.name
         self.setWindowTitle(f"{name}[*] — Kerfwave")
         self.setWindowModified(self.document.is_modified)
         unsaved = " · not saved" if self.document.is_modified else ""
         self.header.show_name(f"{self.document.design.name}{unsaved}")
-
-    show_name = _show_name
 
 
 def _own_asker(window: MainWindow) -> WindowAsks:

@@ -2,21 +2,22 @@
 
 from __future__ import annotations
 
+import gc
 import sys
 from importlib.resources import files
-from typing import TYPE_CHECKING
+from pathlib import Path
 
-from PySide6.QtCore import QSettings
+from PySide6.QtCore import QSettings, QStandardPaths
 from PySide6.QtGui import QIcon
 from PySide6.QtWidgets import QApplication
 
 from app import theme
+from app.crash import CrashGuard
 from app.jobs.runner import JobRunner
 from app.main_window import MainWindow
 from app.settings import Settings
 
-if TYPE_CHECKING:
-    from pathlib import Path
+_STATE = QStandardPaths.StandardLocation.GenericStateLocation
 
 
 def run(path: Path | None) -> int:
@@ -29,10 +30,15 @@ def run(path: Path | None) -> int:
         QSettings(QSettings.Format.IniFormat, QSettings.Scope.UserScope, "kerfwave", "kerfwave")
     )
     dress(app, settings)
-    window = MainWindow(settings, JobRunner())
+    folder = Path(QStandardPaths.writableLocation(_STATE)) / "kerfwave"
+    window = MainWindow(settings, JobRunner(), folder)
+    CrashGuard(window.recovery, window.notices, folder / "errors.log").install()
     if path is not None:
         window.files.open(path)
     window.show()
+    # What was loaded so far stays; without it, sweeps for garbage are too short to be felt.
+    gc.collect()
+    gc.freeze()
     return app.exec()
 
 

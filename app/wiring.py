@@ -50,9 +50,7 @@ def connect_views(window: MainWindow) -> None:
     window.notices.closed.connect(
         lambda name: window.settings.set("hints_seen", True) if name == "hints" else None
     )
-    window.notices.pressed.connect(
-        lambda name, _: window.files.save_as() if name == "save-failed" else None
-    )
+    window.notices.pressed.connect(lambda name, button: _on_notice(window, name, button))
     window.settings.changed.connect(lambda key, _: _on_setting(window, key))
     window.document.stack.cleanChanged.connect(lambda _: window.show_name())
     window.document.design_changed.connect(lambda _: window.show_name())
@@ -61,7 +59,7 @@ def connect_views(window: MainWindow) -> None:
 
 def connect_actions(window: MainWindow) -> None:
     """Commands of the table, to what does them."""
-    plan, stack, settings = window.mat.plan, window.document.stack, window.settings
+    plan, settings = window.mat.plan, window.settings
     deeds = {
         "new": window.files.new,
         "open": window.files.ask_open,
@@ -69,8 +67,6 @@ def connect_actions(window: MainWindow) -> None:
         "save-as": window.files.save_as,
         "template": window.show_export,
         "quit": window.close,
-        "undo": stack.undo,
-        "redo": stack.redo,
         "size": window.sizing.start,
         "preferences": window.show_preferences,
         "zoom-in": lambda: plan.zoom(1.25),
@@ -92,14 +88,6 @@ def connect_actions(window: MainWindow) -> None:
     for name, deed in deeds.items():
         window.window_actions[name].triggered.connect(lambda _=False, do=deed: do())
     window.window_actions["dimensions"].setChecked(settings.value("dimensions"))
-    undo, redo = window.window_actions["undo"], window.window_actions["redo"]
-    for action, can, text, changed, word in (
-        (undo, stack.canUndoChanged, stack.undoTextChanged, stack.canUndo(), "Undo"),
-        (redo, stack.canRedoChanged, stack.redoTextChanged, stack.canRedo(), "Redo"),
-    ):
-        action.setEnabled(changed)
-        can.connect(action.setEnabled)
-        text.connect(lambda what, one=action, verb=word: _name_step(one, verb, what))
 
 
 def place_words(point: object) -> str:
@@ -112,10 +100,14 @@ def place_words(point: object) -> str:
     return f"{metric} mm     {inches} in"
 
 
-def _name_step(action: object, verb: str, what: str) -> None:
-    words = f"&{verb} {what[:1].lower()}{what[1:]}" if what else f"&{verb}"
-    if action.text() != words:  # type: ignore[attr-defined]
-        action.setText(words)  # type: ignore[attr-defined]
+def _on_notice(window: MainWindow, name: str, button: str) -> None:
+    """Buttons of the notices."""
+    deeds = {
+        ("save-failed", "Save as…"): window.files.save_as,
+        ("recovered", "Restore"): window.recovery.restore,
+        ("recovered", "Delete"): window.recovery.forget,
+    }
+    deeds[(name, button)]()
 
 
 def _on_setting(window: MainWindow, key: str) -> None:

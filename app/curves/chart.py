@@ -6,11 +6,12 @@ from typing import TYPE_CHECKING, Any
 
 import numpy as np
 from PySide6.QtCore import QPointF, QRectF, QSize, Qt
-from PySide6.QtGui import QPainter, QPen, QPixmap, QPolygonF
+from PySide6.QtGui import QPainter, QPen, QPolygonF
 from PySide6.QtWidgets import QWidget
 
 from app import theme
 from app.curves.state import ESTIMATE, OLD, ChartState
+from app.views.kept import KeptPicture
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
@@ -31,7 +32,7 @@ class Chart(QWidget):
         self.setMouseTracking(True)
         self.setAccessibleName(name)
         self._state: ChartState | None = None
-        self._still: tuple[object, QPixmap] | None = None
+        self._still = KeptPicture()
 
     def show_state(self, state: ChartState | None) -> None:
         self._state = state
@@ -51,7 +52,8 @@ class Chart(QWidget):
     def paintEvent(self, _event: QPaintEvent) -> None:
         painter = QPainter(self)
         shades = theme.theme_of(self)
-        painter.drawPixmap(0, 0, self._still_part(shades))
+        key = (self.size(), self.devicePixelRatioF(), shades.name, self.font(), self.still_key())
+        painter.drawPixmap(0, 0, self._still.shown(self, key, self._paint_background))
         painter.setRenderHint(QPainter.RenderHint.Antialiasing)
         if self._state is not None:
             if self._state.is_stale:
@@ -63,6 +65,11 @@ class Chart(QWidget):
             painter.setPen(QPen(theme.colour(shades.focus), 1.5))
             painter.setBrush(Qt.BrushStyle.NoBrush)
             painter.drawRoundedRect(QRectF(self.rect()).adjusted(1, 1, -1, -1), 4, 4)
+
+    def _paint_background(self, painter: QPainter) -> None:
+        shades = theme.theme_of(self)
+        painter.fillRect(self.rect(), theme.colour(shades.plot))
+        self.paint_still(painter, shades)
 
     def still_key(self) -> object:
         """What the background depends on, besides the size and the colours."""
@@ -100,20 +107,6 @@ class Chart(QWidget):
         painter.setBrush(theme.colour(shades.plot, 235))
         painter.drawRoundedRect(box, 4, 4)
         painter.drawText(box, Qt.AlignmentFlag.AlignCenter, words)
-
-    def _still_part(self, shades: Theme) -> QPixmap:
-        ratio = self.devicePixelRatioF()
-        key = (self.size(), ratio, shades.name, self.font(), self.still_key())
-        if self._still is None or self._still[0] != key:
-            picture = QPixmap(self.size() * ratio)
-            picture.setDevicePixelRatio(ratio)
-            picture.fill(theme.colour(shades.plot))
-            painter = QPainter(picture)
-            painter.setFont(self.font())
-            self.paint_still(painter, shades)
-            painter.end()
-            self._still = (key, picture)
-        return self._still[1]
 
 
 def polygon(across: NDArray[Any], down: NDArray[Any]) -> QPolygonF:

@@ -33,25 +33,24 @@ def paint_mat(painter: QPainter, area: QRect, camera: Camera, shades: Theme) -> 
 def paint_plate(painter: QPainter, layout: Layout, camera: Camera, shades: Theme) -> None:
     """Ground plate and what lies on it; the copper's rim looks out all round."""
     painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+    rim = QPen(theme.colour(shades.copper_light), 1.2)
     for piece in layout.pieces:
         if piece.role is Role.TOP_COPPER:
             continue
         path = on_screen(Region(piece.region.exterior), camera)  # the pin's holes lie hidden
         if piece.role is Role.GROUND_COPPER:
-            for spread, alpha in ((7.0, 22), (4.0, 30), (2.0, 40)):
-                painter.setPen(QPen(theme.colour(shades.shade, alpha), spread * 2))
-                painter.setBrush(Qt.BrushStyle.NoBrush)
-                painter.drawPath(path.translated(1.5, 2.5))
-            painter.setPen(QPen(theme.colour(shades.copper_light), 1.2))
+            painter.fillPath(path.translated(1.0, 5.0), theme.colour(shades.shade, 45))
+            painter.fillPath(path.translated(1.0, 2.5), theme.colour(shades.shade, 60))
+            painter.setPen(rim)
             painter.setBrush(theme.colour(shades.plate))
             painter.drawPath(path)
+            bare = path
         else:
-            painter.setPen(QPen(theme.colour(shades.plate), 4.0))
-            painter.setBrush(theme.spacer_colour(piece.material, shades))
-            painter.drawPath(path)
-            painter.setPen(QPen(theme.colour(shades.copper_light), 1.2))
-            painter.setBrush(Qt.BrushStyle.NoBrush)
-            painter.drawPath(path)
+            painter.fillPath(path, theme.spacer_colour(piece.material, shades))
+    painter.setBrush(Qt.BrushStyle.NoBrush)
+    for pen in (QPen(theme.colour(shades.plate), 4.0), rim):
+        painter.setPen(pen)
+        painter.drawPath(bare)
 
 
 def plate_key(layout: Layout) -> tuple[object, ...]:

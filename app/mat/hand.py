@@ -232,9 +232,8 @@ class Hand:
     def _choose_next(self, step: int) -> bool:
         """Go to the next handle; False past the last, so that the focus moves on."""
         names = [one.name for one in self._view.state.handles]
-        if self._chosen not in names:
-            return False
-        place = names.index(self._chosen) + step
+        # With none chosen yet, Tab goes to the first one and Shift+Tab leaves.
+        place = (names.index(self._chosen) if self._chosen in names else -1) + step
         if not 0 <= place < len(names):
             return False
         self._choose(names[place])

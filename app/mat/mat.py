@@ -25,9 +25,9 @@ class Mat(QFrame):
         super().__init__()
         self.setObjectName("panel")
         self.plan, self.edge = PlanView(), EdgeView()
-        self._slider = QSlider(Qt.Orientation.Vertical)
-        self._slider.setAccessibleName("Spacing")
-        self._slider.setToolTip("Thickness of the thickest layer")
+        self.slider = QSlider(Qt.Orientation.Vertical)
+        self.slider.setAccessibleName("Spacing")
+        self.slider.setToolTip("Thickness of the thickest layer")
         self._label = QLabel()
         self._label.setObjectName("muted")
         self._label.setAlignment(Qt.AlignmentFlag.AlignHCenter)
@@ -39,7 +39,7 @@ class Mat(QFrame):
         column.setContentsMargins(4, 2, 4, 2)
         column.setSpacing(2)
         column.addWidget(self._label)
-        column.addWidget(self._slider, 1, Qt.AlignmentFlag.AlignHCenter)
+        column.addWidget(self.slider, 1, Qt.AlignmentFlag.AlignHCenter)
         low = QHBoxLayout()
         low.setContentsMargins(0, 0, 0, 0)
         low.setSpacing(0)
@@ -57,20 +57,20 @@ class Mat(QFrame):
 
     def show_edge(self, state: EdgeState) -> None:
         self.edge.show_state(state)
-        with QSignalBlocker(self._slider):
-            if not self._slider.isSliderDown():
-                self._slider.setRange(1, round(state.widest / SLIDER_STEP))
-                self._slider.setSingleStep(2)
-                self._slider.setPageStep(20)
-            self._slider.setValue(round(state.spacing / SLIDER_STEP))
+        with QSignalBlocker(self.slider):
+            if not self.slider.isSliderDown():
+                self.slider.setRange(1, round(state.widest / SLIDER_STEP))
+                self.slider.setSingleStep(2)
+                self.slider.setPageStep(20)
+            self.slider.setValue(round(state.spacing / SLIDER_STEP))
         self._label.setText(state.spacing_words)
 
     def _connect(self) -> None:
         self.plan.camera_changed.connect(self.edge.show_camera)
         self.edge.looked.connect(self._on_edge_looked)
         self.edge.zoomed.connect(self._on_edge_zoomed)
-        self._slider.sliderPressed.connect(self.spacing_taken)
-        self._slider.valueChanged.connect(self._on_slider)
+        self.slider.sliderPressed.connect(self.spacing_taken)
+        self.slider.valueChanged.connect(self._on_slider)
 
     def _on_edge_looked(self, camera: Camera) -> None:
         self.plan.look(camera)

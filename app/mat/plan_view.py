@@ -6,7 +6,7 @@ from dataclasses import dataclass, field
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QEvent, QPointF, QRect, QSize, Qt, Signal
-from PySide6.QtGui import QPainter, QPixmap
+from PySide6.QtGui import QPainter, QPolygonF
 from PySide6.QtWidgets import QWidget
 
 from app import theme
@@ -16,6 +16,7 @@ from app.mat.ground_paint import paint_mat, paint_plate, paint_ruler, plate_key
 from app.mat.hand import Hand
 from app.mat.marks_paint import paint_dimension, paint_handle, paint_tag
 from app.mat.paths import MM, region_path
+from app.views.kept import KeptPicture
 from core.layout.model import Role
 
 if TYPE_CHECKING:
@@ -81,7 +82,8 @@ class PlanView(QWidget):
         self.camera = Camera(2000.0, 0.0, 0.0)
         self.shows_dimensions = True
         self._follows_fit = True
-        self._still: tuple[object, QPixmap] | None = None
+        self._bench, self._plate = KeptPicture(), KeptPicture()
+        self._plate_seen: object = None
 
     @property
     def ruler(self) -> int:
@@ -94,12 +96,11 @@ class PlanView(QWidget):
         return self.rect().adjusted(self.ruler, self.ruler, 0, 0)
 
     def show_state(self, state: PlanState) -> None:
-        is_first = self.state.layout is None
-        self.state = state
-        if is_first:
+        before, self.state = self.state, state
+        if before.layout is None:
             self.fit()
         self.hand.follow()
-        self.update()
+        self.update(self._changed(before))
 
     def look(self, camera: Camera, *, fit: bool = False) -> None:
         """Look from elsewhere; `fit` keeps following the window's size."""
@@ -154,9 +155,9 @@ class PlanView(QWidget):
     def paintEvent(self, _event: QPaintEvent) -> None:
         painter = QPainter(self)
         shades = theme.theme_of(self)
-        painter.drawPixmap(0, 0, self._still_part())
+        self._paint_below(painter, shades)
         layout, area = self.state.layout, self.area
-        painter.setClipRect(area)
+        painter.setClipRect(area, Qt.ClipOperation.IntersectClip)
         if layout is not None:
             paint_copper(painter, layout, self.camera, shades, stale=self.state.is_stale)
             paint_ghost(painter, self.state.ghost, self.camera, shades)
@@ -167,29 +168,51 @@ class PlanView(QWidget):
         place = QPointF(area.left() + 8 + width / 2, area.bottom() - painter.fontMetrics().height())
         paint_tag(painter, place, note, shades)
 
-    def _still_part(self) -> QPixmap:
-        """Mat, plate and rulers, painted again only when one of them has changed."""
-        layout, shades = self.state.layout, theme.theme_of(self)
-        below = () if layout is None else plate_key(layout)
-        key = (self.size(), self.camera, shades.name, self.devicePixelRatioF(), self.font(), below)
-        if self._still is None or self._still[0] != key:
-            ratio = self.devicePixelRatioF()
-            picture = QPixmap(self.size() * ratio)
-            picture.setDevicePixelRatio(ratio)
-            painter = QPainter(picture)
-            painter.setFont(self.font())
-            paint_mat(painter, self.rect(), self.camera, shades)
+    def _changed(self, before: PlanState) -> QRect:
+        """Pixels that differ from an older state: all where more than copper has changed."""
+        old, new = before.layout, self.state.layout
+        if old is None or new is None or plate_key(old) != plate_key(new):
+            return self.rect()
+        if (before.is_stale, before.ghost) != (self.state.is_stale, self.state.ghost):
+            return self.rect()
+        points = [self.pixels(one) for one in set(before.handles) ^ set(self.state.handles)]
+        for layout in (old, new):
+            low_x, low_y, high_x, high_y = copper_bounds(layout)
+            points += [self.camera.to_screen(low_x, low_y), self.camera.to_screen(high_x, high_y)]
+        box = QPolygonF([QPointF(*point) for point in points]).boundingRect().toAlignedRect()
+        spare = self.fontMetrics().height() * 8  # for dimensions and the words at a handle
+        return box.adjusted(-spare, -spare, spare, spare)
+
+    def _paint_below(self, painter: QPainter, shades: Theme) -> None:
+        """Mat, rulers and plate, kept as pictures while they stay as they are."""
+        layout = self.state.layout
+        look = (self.size(), self.camera, shades.name, self.devicePixelRatioF(), self.font())
+        bench = self._bench.shown(self, look, self._paint_bench)
+        key = (look, () if layout is None else plate_key(layout))
+
+        def paint(onto: QPainter) -> None:
+            onto.drawPixmap(0, 0, bench)
+            onto.setClipRect(self.area, Qt.ClipOperation.IntersectClip)
             if layout is not None:
-                paint_plate(painter, layout, self.camera, shades)
-            thick = self.ruler
-            top = QRect(thick, 0, self.width() - thick, thick)
-            side = QRect(0, thick, thick, self.height() - thick)
-            paint_ruler(painter, top, self.camera, shades, upright=False)
-            paint_ruler(painter, side, self.camera, shades, upright=True)
-            painter.fillRect(0, 0, thick, thick, theme.colour(shades.ruler))
-            painter.end()
-            self._still = (key, picture)
-        return self._still[1]
+                paint_plate(onto, layout, self.camera, shades)
+
+        # A plate that changes at every paint, as in a drag, is not worth a picture.
+        if self._plate_seen == key:
+            painter.drawPixmap(0, 0, self._plate.shown(self, key, paint))
+        else:
+            self._plate_seen = key
+            painter.save()
+            paint(painter)
+            painter.restore()
+
+    def _paint_bench(self, painter: QPainter) -> None:
+        shades, thick = theme.theme_of(self), self.ruler
+        paint_mat(painter, self.rect(), self.camera, shades)
+        top = QRect(thick, 0, self.width() - thick, thick)
+        side = QRect(0, thick, thick, self.height() - thick)
+        paint_ruler(painter, top, self.camera, shades, upright=False)
+        paint_ruler(painter, side, self.camera, shades, upright=True)
+        painter.fillRect(0, 0, thick, thick, theme.colour(shades.ruler))
 
     def _paint_dimensions(self, painter: QPainter, layout: Layout) -> None:
         shown = self.hand.shown_handle

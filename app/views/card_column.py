@@ -67,6 +67,10 @@ class CardColumn(QScrollArea):
                     QTimer.singleShot(0, self, self._show_focus)
                     return
 
+    @property
+    def all_cards(self) -> tuple[Card, ...]:
+        return tuple(self._cards.values())
+
     def card(self, name: str) -> Card:
         return self._cards[name]
 

@@ -54,11 +54,11 @@ class ReadingsView(QFrame):
         self._caution_fold = _fold("Cautions")
         self._caution_fold.toggled.connect(self.cautions.setVisible)
         self.cautions.hide()
-        self._offer = _Offer()
-        self._offer.size_asked.connect(self.size_asked)
-        self._offer.accepted.connect(self.accepted)
-        self._offer.discarded.connect(self.discarded)
-        self._offer.stopped.connect(self.stopped)
+        self.offer = _Offer()
+        self.offer.size_asked.connect(self.size_asked)
+        self.offer.accepted.connect(self.accepted)
+        self.offer.discarded.connect(self.discarded)
+        self.offer.stopped.connect(self.stopped)
         self._state: ReadingsState | None = None
         self._faded = False
         layout = QVBoxLayout(self)
@@ -66,7 +66,7 @@ class ReadingsView(QFrame):
         layout.setSpacing(6)
         layout.addLayout(head)
         for widget in (
-            self.lines, self._offer, self.findings, self._more, self._caution_fold, self.cautions,
+            self.lines, self.offer, self.findings, self._more, self._caution_fold, self.cautions,
         ):  # fmt: skip
             layout.addWidget(widget)
 
@@ -77,7 +77,7 @@ class ReadingsView(QFrame):
             self._engine.setText(engine)
         self.lines.show_lines(state.lines)
         self._fade(state.is_stale)
-        self._offer.show_state(state)
+        self.offer.show_state(state)
         if before is None or before.findings != state.findings:
             self._show_findings()
         if before is None or before.cautions != state.cautions:
@@ -140,6 +140,11 @@ class _Offer(QWidget):
         layout.setSpacing(4)
         layout.addWidget(self._words)
         layout.addLayout(buttons)
+
+    @property
+    def words(self) -> str:
+        """What is told about a sizing; empty where nothing is."""
+        return self._words.text()
 
     def show_state(self, state: ReadingsState) -> None:
         words = state.busy or state.proposal

@@ -4,6 +4,7 @@ Run with the project's Python: python tests/bench/drag_step.py [WIDTHxHEIGHT]. W
 it paints offscreen. Budget: median 16 ms, 99th percentile 33 ms.
 """
 
+import gc
 import os
 import sys
 import tempfile
@@ -49,7 +50,7 @@ def send(widget, kind, place, button, buttons):
 
 
 def drag(window, app, name):
-    """Seconds of each step of a drag on a handle."""
+    """Seconds of each step of a drag on a handle: on the clock, and at work."""
     view = window.mat.edge if name.endswith("thickness") else window.mat.plan
     handle = next(one for one in view.state.handles if one.name == name)
     start = QPointF(*view.pixels(handle))
@@ -61,13 +62,13 @@ def drag(window, app, name):
     for i in range(STEPS):
         place = start + QPointF(9 * np.sin((i + 1) / 9), 7 * np.sin((i + 1) / 7))
         before = [one.count for one in paints]
-        begin = time.perf_counter()
+        begin, worked = time.perf_counter(), time.thread_time()
         send(view, QEvent.Type.MouseMove, place, none, left)
         # Qt paints some milliseconds after it is asked to; that wait counts.
         while not all(one.count > old for one, old in zip(paints, before, strict=True)):
             app.processEvents()
             assert time.perf_counter() - begin < 1.0, "not painted"
-        seconds.append(time.perf_counter() - begin)
+        seconds.append((time.perf_counter() - begin, time.thread_time() - worked))
     send(view, QEvent.Type.MouseButtonRelease, place, left, none)
     app.processEvents()
     return seconds
@@ -80,17 +81,21 @@ def main():
         store = QSettings(str(Path(folder) / "settings.ini"), QSettings.Format.IniFormat)
         settings = Settings(store)
         dress(app, settings)
-        window = MainWindow(settings, InlineRunner())
+        window = MainWindow(settings, InlineRunner(), Path(folder))
         window.resize(int(width), int(height))
         window.show()
         app.processEvents()
+        gc.collect()
+        gc.freeze()  # as the workbench does when it has started
         for name in (*HANDLES, "stock.spacer.1.thickness"):
             seconds = drag(window, app, name)
-            middle, high = np.percentile(seconds, [50, 99]) * 1e3
+            whole, work = np.array(seconds).T * 1e3
+            middle, high = np.percentile(whole, [50, 99])
             verdict = "within" if middle <= 16.0 and high <= 33.0 else "OVER"
             print(
                 f"{app.platformName()} {width}x{height} {name:<26} "  # noqa: T201
-                f"median {middle:5.1f} ms, 99 % {high:5.1f} ms, {verdict} the budget"
+                f"median {middle:5.1f} ms, 99 % {high:5.1f} ms, {verdict} the budget; "
+                f"of it work {np.median(work):5.1f} ms"
             )
         window.document.stack.setClean()
         window.close()

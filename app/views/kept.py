@@ -1,0 +1,36 @@
+"""A picture that is painted once and kept until what it shows has changed."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from PySide6.QtGui import QPainter, QPixmap
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
+
+    from PySide6.QtWidgets import QWidget
+
+
+class KeptPicture:
+    """Picture as large as its widget, sharp at its scale."""
+
+    def __init__(self) -> None:
+        self._key: object = None
+        self._picture = QPixmap()
+
+    def has(self, key: object) -> bool:
+        return self._key == key
+
+    def shown(self, widget: QWidget, key: object, paint: Callable[[QPainter], None]) -> QPixmap:
+        """Return the picture of this key, painted anew where it is another's."""
+        if self._key != key:
+            ratio = widget.devicePixelRatioF()
+            self._picture = QPixmap(widget.size() * ratio)
+            self._picture.setDevicePixelRatio(ratio)
+            painter = QPainter(self._picture)
+            painter.setFont(widget.font())
+            paint(painter)
+            painter.end()
+            self._key = key
+        return self._picture
