@@ -63,6 +63,8 @@ class Making(Checked):
         What the ground plate needs beyond the copper, m.
     undercut : float
         Allowance that artwork is grown by on every side, m.
+    turnover : float
+        Foil of a rectangular ground plate that is folded back round its rim, m; none at 0.
     """
 
     process: str
@@ -71,6 +73,7 @@ class Making(Checked):
     narrowest_gap: float = metres("Narrowest gap", 0.0, 50e-3)
     edge_margin: float = metres("Margin of the ground plate", 0.0, 0.1)
     undercut: float = metres("Undercut allowance", 0.0, 2e-3, 0.0)
+    turnover: float = metres("Foil turned over the rim", 0.0, 50e-3, 0.0)
 
 
 @dataclass(frozen=True)

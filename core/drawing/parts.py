@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING
 from core.drawing.sheet import Box
 from core.layout.build import mirrored_drawing, top_copper
 from core.layout.model import Dimension, Hole, Layout, Mark, Piece, Role
+from core.shapes.booleans import union
 from core.shapes.outline import Outline, Region, arc_centre, polygon
 
 if TYPE_CHECKING:
@@ -77,7 +78,7 @@ def parts(layout: Layout, mirrored: bool = False) -> tuple[Part, ...]:
     spacers = [piece for piece in shown.pieces if piece.role is Role.SPACER and piece.cut]
     found = [
         _part(shown, copper, top_copper(shown), on_ground=False),
-        *(_part(shown, [piece], (piece.region,), on_ground=True) for piece in ground),
+        *(_part(shown, [piece], _with_flaps(piece), on_ground=True) for piece in ground),
     ]
     for piece in spacers:
         part = _part(shown, [piece], (piece.region,), on_ground=None)
@@ -89,6 +90,11 @@ def parts(layout: Layout, mirrored: bool = False) -> tuple[Part, ...]:
         else:
             found.append(part)
     return tuple(found)
+
+
+def _with_flaps(piece: Piece) -> tuple[Region, ...]:
+    """Piece as it is cut, before its flaps are turned over."""
+    return union([piece.region, *piece.flaps]) if piece.flaps else (piece.region,)
 
 
 def bounds(regions: Iterable[Region]) -> Box:

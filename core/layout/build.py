@@ -21,7 +21,7 @@ from core.layout.model import (
     Role,
 )
 from core.layout.network import feed_network, handedness
-from core.layout.plates import GROUND, dielectric_stack, ground_reach, plates
+from core.layout.plates import GROUND, dielectric_stack, fold_lines, ground_reach, plates
 from core.layout.route import Route, find_route
 from core.layout.strips import strip_regions
 from core.shapes.booleans import union
@@ -174,6 +174,7 @@ def _marks(design: Design, probe: Point, pieces: tuple[Piece, ...]) -> tuple[Mar
         marks.append(
             Mark("centre line y", MarkKind.SCORE, ((0.0, -half_y), (0.0, half_y)), piece.name)
         )
+    marks += [Mark("turn over", MarkKind.FOLD, line, GROUND) for line in fold_lines(design)]
     tick = min(half_x, half_y) / 4
     for x in (-half_x, half_x):
         for y in (-half_y, half_y):
@@ -210,7 +211,14 @@ def mirrored_drawing(layout: Layout) -> Layout:
 
     return replace(
         layout,
-        pieces=tuple(replace(piece, region=mirrored(piece.region)) for piece in layout.pieces),
+        pieces=tuple(
+            replace(
+                piece,
+                region=mirrored(piece.region),
+                flaps=tuple(mirrored(flap) for flap in piece.flaps),
+            )
+            for piece in layout.pieces
+        ),
         holes=tuple(replace(hole, x=-hole.x) for hole in layout.holes),
         marks=tuple(
             replace(mark, points=tuple(flip(point) for point in mark.points))

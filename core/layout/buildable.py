@@ -10,7 +10,7 @@ import shapely
 from core.design.feed import DualEdge, ProbeFeed
 from core.findings import Finding, Severity
 from core.layout.network import feed_network
-from core.layout.plates import ground_reach, rim_distance
+from core.layout.plates import ground_reach, longest_turnover, rim_distance
 from core.shapes.outline import polygon
 from core.units import Quantity, format_quantity
 
@@ -37,7 +37,7 @@ def design_findings(design: Design, route: Route | None) -> tuple[Finding, ...]:
     -------
     tuple of Finding
     """
-    found = [*_ground_findings(design)]
+    found = [*_ground_findings(design), *_turnover_findings(design)]
     if isinstance(design.feed, DualEdge) and route is not None:
         found += _strip_findings(design, design.feed)
         found += _landing_findings(design, design.feed, route)
@@ -152,6 +152,23 @@ def _ground_findings(design: Design) -> Iterator[Finding]:
             f"{design.making.process} needs {_mm(margin)}.",
             f"stock.ground.{field}",
             "Make the ground plate larger, or the element smaller.",
+        )
+
+
+def _turnover_findings(design: Design) -> Iterator[Finding]:
+    turnover, longest = design.making.turnover, longest_turnover(design)
+    if turnover > longest:
+        why = (
+            "a disc has no straight rim to fold foil over"
+            if longest == 0.0
+            else f"{_mm(longest)} is the most that folds flat on this ground plate"
+        )
+        yield Finding(
+            "turnover-too-wide",
+            Severity.REFUSAL,
+            f"Foil of {_mm(turnover)} cannot be turned over the rim: {why}.",
+            "making.turnover",
+            "Set it to 0, or choose a larger rectangle as ground plate.",
         )
 
 

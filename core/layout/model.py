@@ -41,6 +41,8 @@ class Piece:
         Name for the cut list.
     cut : bool
         False where there is nothing to cut, such as a layer of air.
+    flaps : tuple of Region
+        Foil beyond the fold lines that is cut with the piece and turned over its rim.
     """
 
     name: str
@@ -50,6 +52,7 @@ class Piece:
     thickness: float
     material: str
     cut: bool = True
+    flaps: tuple[Region, ...] = ()
 
 
 @dataclass(frozen=True)

@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 from core.design.stock import DiscGround
 from core.layout.model import Piece, Point, Role
 from core.lines.stack import Layer
-from core.shapes.outline import Outline, Region, circle, rectangle
+from core.shapes.outline import Outline, Region, circle, polyline, rectangle
 
 if TYPE_CHECKING:
     from core.design.model import Design
@@ -104,6 +104,7 @@ def plates(design: Design, probe: Point) -> tuple[Piece, ...]:
             -foil.thickness,
             foil.thickness,
             foil.name,
+            flaps=_flaps(design),
         )
     ]
     z = 0.0
@@ -121,6 +122,66 @@ def plates(design: Design, probe: Point) -> tuple[Piece, ...]:
         )
         z += layer.thickness
     return tuple(pieces)
+
+
+def fold_lines(design: Design) -> tuple[tuple[Point, Point], ...]:
+    """Edges of the ground plate that its foil is turned over.
+
+    Parameters
+    ----------
+    design : Design
+
+    Returns
+    -------
+    tuple of (Point, Point)
+        m, right-hand frame, each with the plate on its left; none where no foil is turned over.
+    """
+    if isinstance(design.stock.ground, DiscGround) or design.making.turnover <= 0.0:
+        return ()
+    corners = [(vertex.x, vertex.y) for vertex in _ground_outline(design).vertices]
+    return tuple(zip(corners, [*corners[1:], corners[0]], strict=True))
+
+
+def _flaps(design: Design) -> tuple[Region, ...]:
+    """Foil beyond the fold lines, cut slantwise at the corners so that it lies flat when folded."""
+    by = min(design.making.turnover, longest_turnover(design))
+    flaps = []
+    for a, b in fold_lines(design):
+        span = hypot(b[0] - a[0], b[1] - a[1])
+        way = ((b[0] - a[0]) / span, (b[1] - a[1]) / span)
+        out = (way[1] * by, -way[0] * by)
+        inset = (way[0] * by, way[1] * by)
+        flaps.append(
+            Region(
+                polyline(
+                    [
+                        a,
+                        (a[0] + inset[0] + out[0], a[1] + inset[1] + out[1]),
+                        (b[0] - inset[0] + out[0], b[1] - inset[1] + out[1]),
+                        b,
+                    ]
+                )
+            )
+        )
+    return tuple(flaps)
+
+
+def longest_turnover(design: Design) -> float:
+    """Widest foil that can be turned over a ground plate's rim.
+
+    Parameters
+    ----------
+    design : Design
+
+    Returns
+    -------
+    float
+        m; 0 for a disc, whose rim is nowhere straight.
+    """
+    ground = design.stock.ground
+    if isinstance(ground, DiscGround):
+        return 0.0
+    return 0.45 * min(ground.width, ground.length)
 
 
 def _pierced(design: Design, outline: Outline, probe: Point, diameter: float) -> Region:

@@ -11,7 +11,7 @@ from core.design.edit import with_text, with_texts
 from core.design.model import Design
 from core.findings import Severity, has_refusal
 from core.layout.build import build_layout, top_copper
-from core.layout.model import Bend, Layout, Role, Segment
+from core.layout.model import Bend, Layout, MarkKind, Role, Segment
 from core.shapes.outline import polygon
 
 MM = 1e-3
@@ -284,3 +284,22 @@ def test_any_design_has_a_layout(design: Design) -> None:
     layout = build_layout(design)
     assert {piece.name for piece in layout.pieces} >= {"ground plate", "element"}
     assert all(finding.message.endswith(".") for finding in layout.findings)
+
+
+def test_foil_turned_over_the_rim_has_flaps_and_fold_lines() -> None:
+    layout = build_layout(changed(stock__ground="rect:150mmx120mm", making__turnover="10mm"))
+    ground = layout.pieces[0]
+    cut = shapely.union_all([polygon(one) for one in (ground.region, *ground.flaps)])
+    flat = polygon(ground.region)
+    # Four trapezia: the sides less 10 mm of slant at each end, 10 mm deep.
+    assert cut.area - flat.area == pytest.approx(2 * 10 * (140 + 110) * MM * MM, rel=1e-9)
+    assert cut.bounds == pytest.approx((-85 * MM, -70 * MM, 85 * MM, 70 * MM))
+    folds = [mark for mark in layout.marks if mark.kind is MarkKind.FOLD]
+    assert sum(math.dist(*mark.points) for mark in folds) == pytest.approx(2 * 270 * MM)
+    assert not has_refusal(layout.findings)
+
+
+@pytest.mark.parametrize("ground", ["disc:200mm", "rect:90mmx90mm"])
+def test_foil_that_cannot_be_turned_over_is_refused(ground: str) -> None:
+    layout = build_layout(changed(stock__ground=ground, making__turnover="45mm"))
+    assert "turnover-too-wide" in codes(layout)
