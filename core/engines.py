@@ -8,12 +8,14 @@ from typing import Final
 from numpy.typing import ArrayLike
 
 from core.layout.model import Layout
-from core.live.respond import ENGINE as LIVE
+from core.live.respond import ENGINE
 from core.live.respond import respond as respond_live
 from core.progress import Progress
 from core.response.model import Response
 
 Engine = Callable[[Layout, ArrayLike, Progress], Response]
 """Takes a layout, frequencies (Hz, rising) and a listener."""
+
+LIVE: Final = ENGINE
 
 ENGINES: Final[dict[str, Engine]] = {LIVE: respond_live}

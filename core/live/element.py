@@ -27,6 +27,7 @@ if TYPE_CHECKING:
 
     Floats = NDArray[np.float64]
 
+_LEAST_FACTOR: Final = 0.2  # of the size factor
 _A2: Final = -0.16605  # Jackson and Alexopoulos 1991
 _A4: Final = 0.00761
 _C2: Final = -0.0914153
@@ -331,16 +332,21 @@ def _substrate_factor(eps_r: float) -> float:
 
 
 def _size_factor(width: float, length: float, frequency: ArrayLike) -> Floats:
-    """Power of the mode's current over that of a dipole with its moment, p of the same."""
+    """Power of the mode's current over that of a dipole with its moment, p of the same.
+
+    The series is cut short: it is held above zero where sides over about 0.7 wavelength would
+    take it below, and `trust` says there that it means nothing.
+    """
     wavenumber = TWO_PI / SPEED_OF_LIGHT * np.asarray(frequency, dtype=np.float64)
     across, along = (wavenumber * width) ** 2, (wavenumber * length) ** 2
-    return np.asarray(
+    series = (
         1.0
         + _A2 / 10.0 * across
         + (_A2**2 + 2.0 * _A4) * 3.0 / 560.0 * across**2
         + _C2 / 5.0 * along
         + _A2 * _C2 / 70.0 * across * along
     )
+    return np.asarray(np.clip(series, _LEAST_FACTOR, 1.0))
 
 
 def _surface_resistance(frequency: float, conductivity: float, roughness: float) -> float:

@@ -31,6 +31,7 @@ if TYPE_CHECKING:
     Complexes = NDArray[np.complex128]
 
 ENGINE = "live"
+_LEAST_EFFICIENCY = 1e-12  # keeps an antenna that radiates nothing from dividing by it
 _LEAST_POWER = 1e-30  # W for 1 V at the tee: keeps a dead short from dividing by nothing
 
 
@@ -73,7 +74,8 @@ def respond(layout: Layout, frequencies: ArrayLike, progress: Progress) -> Respo
             Mode("along x", element.x.frequency, element.x.losses.total),
             Mode("along y", element.y.frequency, element.y.losses.total),
         ),
-        directivity=(abs(e_x) ** 2 + abs(e_y) ** 2) / float(spot.efficiency),
+        directivity=(abs(e_x) ** 2 + abs(e_y) ** 2)
+        / max(float(spot.efficiency), _LEAST_EFFICIENCY),
         cuts=slot_cuts(element, e_x, e_y, layout.frequency),
         front_to_back=None,
         trust=judge_trust(layout, element),

@@ -6,6 +6,7 @@ nothing to do with those of the antenna.
 
 from __future__ import annotations
 
+from math import log
 from typing import TYPE_CHECKING, Final
 
 from core.constants import SPEED_OF_LIGHT, TWO_PI
@@ -25,6 +26,12 @@ THICKEST: Final = 0.06
 
 SHORTEST_REACH: Final = 0.5
 """Ground plate beyond the element from which it is as good as infinite, wavelengths."""
+
+FARTHEST: Final = 1.3
+"""Ratio of frequency and nearest resonance up to which the two modes tell anything."""
+
+LONGEST_SIDE: Final = 0.7
+"""Free-space wavelengths; beyond, the series for a mode's power does not hold."""
 
 _CLOSE_SPREAD: Final = 0.01  # of two closed forms for the resonance that agree
 _REMEDY: Final = "a field check or a measurement will tell"
@@ -56,7 +63,11 @@ def judge_trust(layout: Layout, element: ElementModes) -> Mapping[Reading, Trust
         ),
         Reading.PATTERN: _pattern_trust(layout),
     }
-    broken = _broken_limits(layout)
+    lost = _lost_element(layout, element)
+    if lost:
+        for reading in (Reading.EFFICIENCY, Reading.PATTERN):
+            trust[reading] = Trust(TrustLevel.UNKNOWN, lost, _REMEDY)
+    broken = [*_broken_limits(layout), *([lost] if lost else [])]
     if broken:
         tied = Trust(TrustLevel.UNKNOWN, "; ".join(broken), _REMEDY)
     else:
@@ -68,6 +79,25 @@ def judge_trust(layout: Layout, element: ElementModes) -> Mapping[Reading, Trust
     for reading in (Reading.MATCH, Reading.AXIAL_RATIO, Reading.BANDS, Reading.GAIN):
         trust[reading] = tied
     return trust
+
+
+def _lost_element(layout: Layout, element: ElementModes) -> str:
+    """What keeps the two modes from telling anything, in words; empty where nothing does."""
+    ratios = [layout.frequency / mode.frequency for mode in (element.x, element.y)]
+    if all(abs(log(ratio)) > log(FARTHEST) for ratio in ratios):
+        nearest = min(
+            (element.x, element.y), key=lambda mode: abs(mode.frequency - layout.frequency)
+        )
+        resonance, asked = _ghz(nearest.frequency), _ghz(layout.frequency)
+        return f"the element resonates at {resonance}, too far from {asked} for equations to follow"
+    longest = max(layout.element_width, layout.element_length)
+    wavelength = SPEED_OF_LIGHT / layout.frequency
+    if longest > LONGEST_SIDE * wavelength:
+        return (
+            f"a side is {longest / wavelength:.2f} wavelength long and equations hold "
+            f"up to {LONGEST_SIDE:g}"
+        )
+    return ""
 
 
 def _broken_limits(layout: Layout) -> list[str]:
@@ -138,6 +168,10 @@ def _reach_text(reach: float) -> str:
 
 def _percent(part: float) -> str:
     return f"{100.0 * part:.1f} %"
+
+
+def _ghz(frequency: float) -> str:
+    return format_quantity(frequency, Quantity.FREQUENCY, digits=3)
 
 
 def _mm(length: float) -> str:

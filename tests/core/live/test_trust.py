@@ -2,9 +2,13 @@
 
 import dataclasses
 
+import numpy as np
 import pytest
 
+from core.design.defaults import default_design
+from core.design.edit import with_texts
 from core.engines import ENGINES
+from core.layout.build import build_layout
 from core.lines.stack import Layer
 from core.progress import SILENT
 from core.response.bands import frequency_grid
@@ -74,3 +78,21 @@ def test_resonance_is_good_only_where_published_forms_agree(probe_fed):
     assert trust_of(thick)[Reading.RESONANCE].level is TrustLevel.ROUGH
     # Rows C02 and K06 of the measured set: 4.6 and 0.6 % where the two forms differ by 2 to 3.
     assert "apart" in trust_of(thick)[Reading.RESONANCE].reason
+
+
+@pytest.mark.parametrize(
+    ("change", "words"),
+    [
+        (("brief.frequency", "5 GHz"), "too far from 5 GHz"),
+        (("brief.frequency", "1.5 GHz"), "too far from 1.5 GHz"),
+        (("element", "rect:150mmx52mm"), "wavelength long"),
+    ],
+)
+def test_an_element_that_the_modes_do_not_describe_is_unknown(change, words):
+    design = with_texts(default_design(), [("stock.ground", "disc:900mm"), change])
+    layout = build_layout(design)
+    response = ENGINES["live"](layout, [layout.frequency], SILENT)
+    for reading in (Reading.MATCH, Reading.GAIN, Reading.EFFICIENCY, Reading.PATTERN):
+        assert response.trust[reading].level is TrustLevel.UNKNOWN
+        assert words in response.trust[reading].reason
+    assert np.isfinite(response.directivity)
