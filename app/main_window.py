@@ -10,7 +10,6 @@ from PySide6.QtWidgets import QLabel, QMainWindow, QSplitter, QVBoxLayout, QWidg
 
 from app.actions import make_actions
 from app.curves.panel import CurvesPanel
-from app.dialogs.export import ExportDialog
 from app.dialogs.preferences import PreferencesDialog
 from app.document import Document
 from app.mat.mat import Mat
@@ -76,13 +75,22 @@ class MainWindow(QMainWindow):
         self._tell_first()
 
     def show_export(self) -> None:
+        """Open the preview of the sheet."""
+        # Loaded when it is first used: its drawing libraries would slow the start.
+        from app.dialogs.export import ExportDialog  # noqa: PLC0415
+
         dialog = ExportDialog(
             self.pipeline.current, self.settings, self.asker, self.runner, self.notices, self
         )
         dialog.open()
 
     def show_preferences(self) -> None:
+        """Open the preferences."""
         PreferencesDialog(self.settings, self).open()
+
+    def toggle_full_screen(self) -> None:
+        """Take all of the screen, or give it back."""
+        self.setWindowState(self.windowState() ^ Qt.WindowState.WindowFullScreen)
 
     def dragEnterEvent(self, event: QDragEnterEvent) -> None:
         if event.mimeData().hasUrls():

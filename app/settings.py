@@ -29,13 +29,15 @@ class Setting:
 
     def taken(self, value: object) -> Any:  # noqa: ANN401
         """Value as stored text or number, or the default where it is none of ours."""
-        if isinstance(self.default, bool):
-            value = value in (True, "true", "1", 1)
-        elif isinstance(self.default, list):
-            value = [value] if isinstance(value, str) else list(value or ())  # type: ignore[call-overload]
-        if self.allowed and value not in self.allowed:
+        if isinstance(self.default, bool) and isinstance(value, str):
+            value = {"true": True, "false": False}.get(value)
+        if isinstance(self.default, list):
+            value = [value] if isinstance(value, str) else value
+            if not isinstance(value, list) or not all(isinstance(one, str) for one in value):
+                return self.default
+        if type(value) is not type(self.default):
             return self.default
-        return value if isinstance(value, type(self.default)) else self.default
+        return value if not self.allowed or value in self.allowed else self.default
 
 
 SETTINGS = (

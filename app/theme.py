@@ -172,7 +172,7 @@ def spacer_colour(material: str, theme: Theme) -> QColor:
     name, alpha = _SPACER_LOOKS.get(material, _OTHER_LOOK)
     colour = QColor(name)
     if theme is DARK:
-        colour = colour.darker(190)
+        colour = colour.darker(225)
     colour.setAlpha(alpha)
     return colour
 
@@ -307,5 +307,6 @@ QSlider::handle:vertical {{
 QSlider::handle:vertical:focus {{ background: {focus}; }}
 QSplitter::handle {{ background: transparent; }}
 QStatusBar {{ background: {panel}; color: {muted}; }}
+QStatusBar QLabel {{ padding: 0 10px; }}
 QStatusBar::item {{ border: none; }}
 """

@@ -2,14 +2,26 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Protocol
 
-from PySide6.QtCore import Qt
-
-from app.mat.plan_view import copper_bounds
+from app.mat.bounds import copper_bounds
 
 if TYPE_CHECKING:
-    from app.main_window import MainWindow
+    from PySide6.QtGui import QAction, QScreen
+
+    from app.curves.panel import CurvesPanel
+    from app.document import Document
+    from app.mat.mat import Mat
+    from app.presenters.cards_presenter import CardsPresenter
+    from app.presenters.files import FilesPresenter
+    from app.presenters.mat_presenter import MatPresenter
+    from app.presenters.readings_presenter import ReadingsPresenter
+    from app.presenters.sizing import SizingPresenter
+    from app.recovery import Recovery
+    from app.settings import Settings
+    from app.views.card_column import CardColumn
+    from app.views.notice_bar import NoticeBar
+    from app.views.readings_view import ReadingsView
 
 _KEYS = """<p><b>On the Mat</b></p>
 <p>Drag a white handle, or go to it with Tab and move it with the arrow keys: 0.1 mm a press,
@@ -23,7 +35,42 @@ _ABOUT = """<p><b>Kerfwave</b></p><p>A workbench for laying out, exporting and c
 and etched patch antennas. Free software under the MIT licence.</p>"""
 
 
-def connect_views(window: MainWindow) -> None:
+class Teller(Protocol):
+    """Shows a text."""
+
+    def tell(self, title: str, text: str) -> None: ...
+
+
+class Window(Protocol):
+    """What there is to connect."""
+
+    settings: Settings
+    document: Document
+    window_actions: dict[str, QAction]
+    cards: CardColumn
+    mat: Mat
+    readings: ReadingsView
+    curves: CurvesPanel
+    notices: NoticeBar
+    cards_presenter: CardsPresenter
+    mat_presenter: MatPresenter
+    readings_presenter: ReadingsPresenter
+    sizing: SizingPresenter
+    files: FilesPresenter
+    recovery: Recovery
+
+    @property
+    def asker(self) -> Teller: ...
+    def show_place(self, point: object) -> None: ...
+    def show_name(self) -> None: ...
+    def show_export(self) -> None: ...
+    def show_preferences(self) -> None: ...
+    def toggle_full_screen(self) -> None: ...
+    def screen(self) -> QScreen: ...
+    def close(self) -> bool: ...
+
+
+def connect_views(window: Window) -> None:
     """What the user asks in a panel, to its presenter."""
     cards, mat, hand = window.cards, window.mat, window.mat_presenter
     cards.edited.connect(window.cards_presenter.edit)
@@ -57,7 +104,7 @@ def connect_views(window: MainWindow) -> None:
     window.document.path_changed.connect(lambda _: window.show_name())
 
 
-def connect_actions(window: MainWindow) -> None:
+def connect_actions(window: Window) -> None:
     """Commands of the table, to what does them."""
     plan, settings = window.mat.plan, window.settings
     deeds = {
@@ -79,9 +126,7 @@ def connect_actions(window: MainWindow) -> None:
         "dimensions": lambda: settings.set(
             "dimensions", window.window_actions["dimensions"].isChecked()
         ),
-        "full-screen": lambda: window.setWindowState(
-            window.windowState() ^ Qt.WindowState.WindowFullScreen
-        ),
+        "full-screen": window.toggle_full_screen,
         "keys": lambda: window.asker.tell("Keys and gestures", _KEYS),
         "about": lambda: window.asker.tell("About Kerfwave", _ABOUT),
     }
@@ -100,7 +145,7 @@ def place_words(point: object) -> str:
     return f"{metric} mm     {inches} in"
 
 
-def _on_notice(window: MainWindow, name: str, button: str) -> None:
+def _on_notice(window: Window, name: str, button: str) -> None:
     """Buttons of the notices."""
     deeds = {
         ("save-failed", "Save as…"): window.files.save_as,
@@ -110,7 +155,7 @@ def _on_notice(window: MainWindow, name: str, button: str) -> None:
     deeds[(name, button)]()
 
 
-def _on_setting(window: MainWindow, key: str) -> None:
+def _on_setting(window: Window, key: str) -> None:
     if key == "match_as":
         window.curves.show_match_as(window.settings.value(key))
         window.readings_presenter.show()

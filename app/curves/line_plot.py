@@ -11,6 +11,7 @@ from PySide6.QtGui import QKeyEvent, QMouseEvent, QPainter, QPen
 from app import theme
 from app.curves.chart import Chart, polygon
 from app.curves.state import PlotState
+from app.mat.camera import nice_step
 from core.units import Quantity, format_quantity
 
 if TYPE_CHECKING:
@@ -156,7 +157,7 @@ class LinePlot(Chart):
     def _paint_frequencies(self, painter: QPainter, shades: Theme, state: PlotState) -> None:
         metrics, area = self.fontMetrics(), self.area
         low, high = float(state.frequency[0]), float(state.frequency[-1])
-        step = _nice_step((high - low) / max(area.width() / (metrics.height() * 5.5), 1.0))
+        step = nice_step((high - low) / max(area.width() / (metrics.height() * 5.5), 1.0))
         n = int(np.ceil(low / step))
         while n * step <= high:
             x = round(self._across(n * step))
@@ -181,9 +182,3 @@ class LinePlot(Chart):
         assert self.state is not None
         part = (value - self.state.low) / (self.state.high - self.state.low)
         return self.area.bottom() - part * self.area.height()
-
-
-def _nice_step(least: float) -> float:
-    """Smallest of 1, 2, 5 times a power of ten that is no less."""
-    power = 10.0 ** np.floor(np.log10(least))
-    return float(next(n * power for n in (1, 2, 5, 10) if n * power >= least * (1 - 1e-9)))

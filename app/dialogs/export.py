@@ -2,33 +2,22 @@
 
 from __future__ import annotations
 
-from pathlib import Path
 from typing import TYPE_CHECKING, Protocol
 
 from PySide6.QtCore import Qt
-from PySide6.QtWidgets import (
-    QCheckBox,
-    QDialog,
-    QFormLayout,
-    QHBoxLayout,
-    QLabel,
-    QLineEdit,
-    QPushButton,
-    QVBoxLayout,
-    QWidget,
-)
+from PySide6.QtWidgets import QDialog, QHBoxLayout, QLabel, QPushButton, QVBoxLayout, QWidget
 
+from app.dialogs.export_form import ExportForm
 from app.dialogs.sheet_view import SheetView
 from app.jobs.runner import Request
-from app.presenters.export import ExportRequest, kinds, obstacle, preview, taken, write
+from app.presenters.export import ExportRequest, obstacle, preview, taken, write
 from app.presenters.readings import Line
 from app.views.buttons import IconButton
-from app.views.fields import Chooser
 from app.views.lines import LineList
-from core.drawing.paper import PAPERS
-from core.formats.export import ExportOptions
 
 if TYPE_CHECKING:
+    from pathlib import Path
+
     from app.evaluation import Evaluation
     from app.jobs.runner import Runner
     from app.settings import Settings
@@ -36,7 +25,7 @@ if TYPE_CHECKING:
     from core.drawing.sheet import Sheet
     from core.errors import CoreError
 
-_FIRST = ("template-pdf",)
+_KIND = "export"
 
 
 class FolderAsker(Protocol):
@@ -64,54 +53,26 @@ class ExportDialog(QDialog):
         self._asker, self._runner, self._notices = asker, runner, notices
         self._pages: tuple[Sheet, ...] = ()
         self._page = 0
-        self._make_fields()
-        self._lay_out()
-        em = self.fontMetrics().height()
-        self.resize(em * 58, em * 40)
-        self._draw()
-
-    @property
-    def request(self) -> ExportRequest:
-        """What the choices ask for."""
-        options = ExportOptions(
-            paper=str(self.paper.currentData()),
-            mirrored=self.mirrored.isChecked(),
-            true_arcs=self.arcs.isChecked(),
-        )
-        chosen = tuple(key for key, box in self.kinds.items() if box.isChecked())
-        folder = Path(self.folder.text()).expanduser()
-        return ExportRequest(chosen, options, folder, self.replace.isChecked())
-
-    def _make_fields(self) -> None:
+        self.form = ExportForm(settings)
+        self.form.changed.connect(self._check)
+        self.form.redrawn.connect(self._draw)
+        self.form.browse_asked.connect(self._browse)
         self.sheet = SheetView()
         self.pager = QLabel()
         self.pager.setAccessibleName("Page")
-        self.kinds = {key: QCheckBox(title) for key, title in kinds()}
-        for key, box in self.kinds.items():
-            box.setChecked(key in _FIRST)
-            box.toggled.connect(self._check)
-        self.paper = Chooser(typed=False)
-        self.paper.setAccessibleName("Paper")
-        for key, paper in PAPERS.items():
-            self.paper.addItem(paper.name, key)
-        self.paper.setCurrentIndex(self.paper.findData(self._settings.value("paper")))
-        self.paper.activated.connect(self._on_paper)
-        self.mirrored = QCheckBox("Mirrored, as seen from behind")
-        self.mirrored.toggled.connect(self._draw)
-        self.arcs = QCheckBox("True arcs in the artwork")
-        self.folder = QLineEdit(self._settings.value("export_folder") or str(Path.home()))
-        self.folder.setAccessibleName("Folder")
-        self.folder.textChanged.connect(self._check)
-        self.replace = QCheckBox("Replace files of the same name")
-        self.replace.toggled.connect(self._check)
         self.remarks = LineList("Remarks on the export")
         self.write_button = QPushButton("Write")
         self.write_button.setObjectName("primary")
         self.write_button.setDefault(True)
-        self.write_button.clicked.connect(self._write)
-        for box in (*self.kinds.values(), self.mirrored, self.arcs, self.replace):
-            box.setAccessibleName(box.text())
         self.write_button.setAccessibleName("Write the files")
+        self.write_button.clicked.connect(self._write)
+        self._lay_out()
+        self._draw()
+
+    def done(self, result: int) -> None:
+        """Leave; work that is still going on is not waited for."""
+        self._runner.stop(_KIND)
+        super().done(result)
 
     def _lay_out(self) -> None:
         em = self.fontMetrics().height()
@@ -127,41 +88,29 @@ class ExportDialog(QDialog):
         left = QVBoxLayout()
         left.addWidget(self.sheet, 1)
         left.addLayout(turner)
-        browse = QPushButton("Choose…")
-        browse.setAccessibleName("Choose a folder")
-        browse.clicked.connect(self._browse)
-        cancel = QPushButton("Close")
-        cancel.setAccessibleName("Close")
-        cancel.clicked.connect(self.reject)
-        form = QFormLayout()
-        form.setVerticalSpacing(em // 2)
-        form.addRow(_title("What to write"))
-        for box in self.kinds.values():
-            form.addRow(box)
-        form.addRow(_title("How"))
-        form.addRow("Paper", self.paper)
-        form.addRow(self.mirrored)
-        form.addRow(self.arcs)
-        form.addRow(_title("Where"))
-        form.addRow("Folder", self.folder)
-        form.addRow(browse)
-        form.addRow(self.replace)
+        close = QPushButton("Close")
+        close.setAccessibleName("Close without writing")
+        close.clicked.connect(self.reject)
         buttons = QHBoxLayout()
         buttons.addStretch(1)
-        buttons.addWidget(cancel)
+        buttons.addWidget(close)
         buttons.addWidget(self.write_button)
         right = QVBoxLayout()
-        right.addLayout(form)
+        right.addWidget(self.form)
         right.addWidget(self.remarks)
         right.addStretch(1)
         right.addLayout(buttons)
         layout = QHBoxLayout(self)
         layout.addLayout(left, 3)
         layout.addLayout(right, 2)
+        self.resize(em * 58, em * 40)
+        self.write_button.setFocus()
 
     def _draw(self) -> None:
         """Draw the pages anew and look again at what stands in the way."""
-        self._pages = preview(self._shown, self.request.options)
+        options = self.form.request.options
+        self._settings.set("paper", options.paper)
+        self._pages = preview(self._shown, options)
         self._turn(0)
         self._check()
 
@@ -172,16 +121,14 @@ class ExportDialog(QDialog):
         self.pager.setText(f"page {self._page + 1} of {last + 1}")
 
     def _check(self) -> None:
-        request, lines = self.request, []
+        request, lines = self.form.request, []
         stop = obstacle(self._shown)
         if stop:
             lines.append(Line("refusal", stop))
         if not request.kinds:
             lines.append(Line("note", "Choose at least one kind of file."))
         if not request.folder.is_dir():
-            lines.append(
-                Line("refusal", "There is no such folder; accepted: a folder that exists.")
-            )
+            lines.append(Line("refusal", "No such folder; accepted: a folder that exists."))
         elif not request.replace and (there := taken(self._shown, request)):
             lines.append(Line("refusal", f"{', '.join(there)}: there already. Tick Replace first."))
         self.write_button.setEnabled(not lines)
@@ -189,12 +136,12 @@ class ExportDialog(QDialog):
         self.remarks.show_lines(tuple(lines))
 
     def _write(self) -> None:
-        shown, request = self._shown, self.request
+        shown, request = self._shown, self.form.request
         self.write_button.setEnabled(False)
         self._settings.set("export_folder", str(request.folder))
         self._runner.start(
             Request(
-                "export",
+                _KIND,
                 lambda _progress: write(shown, request),
                 lambda names: self._on_written(request, names),
                 self._on_failed,
@@ -209,17 +156,7 @@ class ExportDialog(QDialog):
         self._check()
         self.remarks.show_lines((Line("refusal", f"Not written. {error}"),))
 
-    def _on_paper(self) -> None:
-        self._settings.set("paper", str(self.paper.currentData()))
-        self._draw()
-
     def _browse(self) -> None:
-        folder = self._asker.ask_folder(self.folder.text())
+        folder = self._asker.ask_folder(self.form.folder.text())
         if folder is not None:
-            self.folder.setText(str(folder))
-
-
-def _title(text: str) -> QLabel:
-    label = QLabel(text)
-    label.setObjectName("title")
-    return label
+            self.form.folder.setText(str(folder))

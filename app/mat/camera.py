@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
+from math import floor, log10
 
 LEAST, MOST = 50.0, 200_000.0  # pixels per metre: 20 m to 5 mm across a thousand pixels
 
@@ -60,6 +61,12 @@ def fitted(
 def grid_steps(scale: float) -> tuple[float, float, float]:
     """Fine, middle and coarse distance of the grid (m) at so many pixels per metre."""
     step = 1e-4
-    while step * scale < 5.0:
+    while step * scale < 3.5:
         step *= 10
     return step, step * 5, step * 10
+
+
+def nice_step(least: float) -> float:
+    """Smallest of 1, 2, 5 times a power of ten that is no less."""
+    power = 10.0 ** floor(log10(least))
+    return next(n * power for n in (1, 2, 5, 10) if n * power >= least * (1.0 - 1e-9))

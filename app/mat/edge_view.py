@@ -12,9 +12,10 @@ from app import theme
 from app.mat.camera import Camera
 from app.mat.edge import EdgeState
 from app.mat.edge_paint import paint_edge
-from app.mat.ground_paint import paint_ruler
+from app.mat.gestures import Gestures
+from app.mat.ground_paint import paint_ruler, ruler_size
 from app.mat.hand import Hand
-from app.mat.plan_view import paint_handles
+from app.mat.marks_paint import paint_handles
 
 if TYPE_CHECKING:
     from PySide6.QtGui import QPaintEvent, QResizeEvent
@@ -40,6 +41,7 @@ class EdgeView(QWidget):
     def __init__(self) -> None:
         super().__init__()
         self.hand = Hand(self)
+        self._gestures = Gestures(self.hand)
         self.setAttribute(Qt.WidgetAttribute.WA_OpaquePaintEvent)
         self.setMouseTracking(True)
         self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
@@ -47,10 +49,6 @@ class EdgeView(QWidget):
         self.state = EdgeState(None, ())
         self.camera = Camera(2000.0, 0.0, 0.0)
         self.stretch = 1
-
-    @property
-    def ruler(self) -> int:
-        return round(self.fontMetrics().height() * 1.5)
 
     @property
     def floor(self) -> float:
@@ -102,17 +100,17 @@ class EdgeView(QWidget):
         super().resizeEvent(event)
 
     def event(self, event: QEvent) -> bool:
-        return self.hand.take(event) or super().event(event)
+        return self._gestures.take(event) or super().event(event)
 
     def paintEvent(self, _event: QPaintEvent) -> None:
         painter = QPainter(self)
         shades = theme.theme_of(self)
         painter.fillRect(self.rect(), theme.colour(shades.mat))
-        thick = self.ruler
+        thick = ruler_size(self)
         area = self.rect().adjusted(thick, 0, 0, 0)
         painter.setClipRect(area)
         paint_edge(painter, area, self.state, self.camera, self.side_camera(), shades)
-        paint_handles(painter, self.hand, self, shades)
+        paint_handles(painter, self.hand, shades)
         painter.setClipRect(self.rect())
         side = QRect(0, 0, thick, self.height())
         paint_ruler(painter, side, self.side_camera(), shades, upright=True)

@@ -9,12 +9,14 @@ from PySide6.QtCore import QLineF, QPointF, QRect, QRectF, Qt
 from PySide6.QtGui import QPainter, QPen
 
 from app import theme
-from app.mat.camera import grid_steps
+from app.mat.camera import grid_steps, nice_step
 from app.mat.paths import on_screen
 from core.layout.model import Role
 from core.shapes.outline import Region
 
 if TYPE_CHECKING:
+    from PySide6.QtWidgets import QWidget
+
     from app.mat.camera import Camera
     from app.theme import Theme
     from core.layout.model import Layout
@@ -62,6 +64,11 @@ def plate_key(layout: Layout) -> tuple[object, ...]:
     )
 
 
+def ruler_size(widget: QWidget) -> int:
+    """Thickness of the rulers of a view, pixels."""
+    return round(widget.fontMetrics().height() * 1.5)
+
+
 def paint_ruler(
     painter: QPainter, strip: QRect, camera: Camera, shades: Theme, *, upright: bool
 ) -> None:
@@ -81,23 +88,19 @@ def paint_ruler(
                 edge = strip.bottom()
                 ticks.append(QLineF(place, edge - size * part, place, edge))
     painter.drawLines(ticks)
-    _paint_numbers(painter, strip, camera, ten, upright)
+    _paint_numbers(painter, strip, camera, upright)
 
 
-def _paint_numbers(
-    painter: QPainter, strip: QRect, camera: Camera, step: float, upright: bool
-) -> None:
+def _paint_numbers(painter: QPainter, strip: QRect, camera: Camera, upright: bool) -> None:
+    """Millimetres, as many as there is room for."""
     metrics = painter.fontMetrics()
-    widest = metrics.horizontalAdvance("-000 ")
-    skip = 1
-    while step * skip * camera.scale < widest:
-        skip *= 2 if skip % 5 else 1
-        skip = {4: 5, 20: 20}.get(skip, skip)
+    step = nice_step(metrics.horizontalAdvance("−000.0 ") / camera.scale)
     for n in _counts(strip, camera, step, upright):
-        if n % skip:
-            continue
         words = f"{n * step * 1e3:.6g}".replace("-", "−")
         across, down = camera.to_screen(n * step, n * step)
+        wide = metrics.horizontalAdvance(words) + 3
+        if (down - wide < strip.top()) if upright else (across + wide > strip.right()):
+            continue  # half a number is worse than none
         if upright:
             painter.save()
             painter.translate(strip.left() + metrics.ascent(), down - 3)

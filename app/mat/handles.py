@@ -111,7 +111,7 @@ def pulled(design: Design, handle: Handle, across: float, up: float) -> Design:
 
     Stops where a parameter would leave its range.
     """
-    design = _settled_for(design, handle)
+    before = design
     for pull in handle.pulls:
         if handle.rail:
             moved = _along(handle.rail, (handle.x + across, handle.y + up))
@@ -119,8 +119,8 @@ def pulled(design: Design, handle: Handle, across: float, up: float) -> Design:
         else:
             moved = across * pull.way[0] + up * pull.way[1]
         if moved:
-            design = _grown(design, pull.key, pull.gain * moved)
-    return design
+            design = _changed(design, pull.key, pull.gain * moved)
+    return before if design == settled(before) else design
 
 
 def nudged(design: Design, handle: Handle, across: float, up: float) -> Design:
@@ -132,13 +132,33 @@ def nudged(design: Design, handle: Handle, across: float, up: float) -> Design:
     for pull in handle.pulls:
         along = across * pull.way[0] + up * (1.0 if handle.rail else pull.way[1])
         if abs(along) > size / 2:
-            design = _grown(_settled_for(design, handle), pull.key, copysign(size, along))
+            design = _changed(design, pull.key, copysign(size, along))
     return design
 
 
-def _settled_for(design: Design, handle: Handle) -> Design:
-    lands = any(pull.key.endswith(".landing") for pull in handle.pulls)
-    return settled(design) if lands else design
+def _changed(design: Design, key: str, change: float) -> Design:
+    """Return the design with one number changed, and what hangs on it."""
+    if not key.endswith(".landing"):
+        return _grown(design, key, change)
+    design = _grown(settled(design), key, change)
+    return _with_other_end(design, "second" if ".first." in key else "first")
+
+
+def _with_other_end(design: Design, other: str) -> Design:
+    """Return the design with the other landing point drawn in by what the delay strip lacks.
+
+    The strip keeps its length, like a rope round the corner: where one end is pulled out, the
+    other follows, so that the pulled one stays under the hand.
+    """
+    feed = design.feed
+    assert isinstance(feed, DualEdge)
+    route = find_route(design.element, feed, design.making)
+    lacking = feed.first.landing - route.first_landing
+    lacking += feed.second.landing - route.second_landing
+    branch = getattr(feed, other)
+    if lacking <= 0.0 or branch.landing - lacking < branch.width / 2:
+        return design
+    return _grown(design, f"feed.{other}.landing", -lacking)
 
 
 def _grown(design: Design, key: str, change: float) -> Design:

@@ -9,18 +9,17 @@ from PySide6.QtCore import QLineF, QPointF, QRectF, Qt
 from PySide6.QtGui import QPainter, QPen, QPolygonF
 
 from app import theme
+from app.mat.reach import REACH
 from core.units import Quantity, format_quantity
 
 if TYPE_CHECKING:
-    from collections.abc import Callable
-
     from app.mat.camera import Camera
+    from app.mat.hand import Hand
     from app.mat.handles import Handle
     from app.theme import Theme
     from core.layout.model import Dimension
 
-DRAWN = 8.0  # pixels of a handle as drawn
-REACH = 12.0  # pixels round its middle in which it is hit: 24 across
+_DRAWN = 8.0  # pixels of a handle as drawn
 
 
 def paint_dimension(
@@ -74,11 +73,11 @@ def paint_tag(
     painter.restore()
 
 
-def paint_handle(
+def _paint_handle(
     painter: QPainter, handle: Handle, centre: QPointF, shades: Theme, *, active: bool, focus: bool
 ) -> None:
     """Handle, 8 pixels across; the one in use is larger, the one with the focus ringed."""
-    half = DRAWN / 2 + (1.5 if active else 0.0)
+    half = _DRAWN / 2 + (1.5 if active else 0.0)
     painter.setRenderHint(QPainter.RenderHint.Antialiasing)
     if focus:
         painter.setPen(QPen(theme.colour(shades.mat_halo), 4.0))
@@ -95,22 +94,18 @@ def paint_handle(
         painter.drawRoundedRect(box, 1.5, 1.5)
 
 
-def apart(
-    handles: tuple[Handle, ...],
-    pixels: Callable[[Handle], tuple[float, float]],
-    kept: frozenset[str],
-) -> tuple[Handle, ...]:
-    """Handles that do not crowd one that matters more; `kept` ones stay whatever happens."""
-    places: list[tuple[float, float]] = []
-    chosen = []
-    for handle in handles:
-        x, y = pixels(handle)
-        crowded = any(abs(x - a) < 2 * REACH and abs(y - b) < 2 * REACH for a, b in places)
-        if not crowded or handle.name in kept:
-            chosen.append(handle)
-        if not crowded:
-            places.append((x, y))
-    return tuple(chosen)
+def paint_handles(painter: QPainter, hand: Hand, shades: Theme) -> None:
+    """Handles that are not crowded out, and the words of the one in use."""
+    view, shown = hand.view, hand.shown_handle
+    for handle in hand.visible_handles():
+        is_shown = shown is not None and handle.name == shown.name
+        centre = QPointF(*view.pixels(handle))
+        focus = is_shown and hand.has_key_focus
+        _paint_handle(painter, handle, centre, shades, active=is_shown, focus=focus)
+    if shown is not None:
+        across, down = view.pixels(shown)
+        place = QPointF(across, down + painter.fontMetrics().height() * 1.7)
+        paint_tag(painter, place, view.state.words.get(shown.name, shown.label), shades)
 
 
 def _arrow(tip: QPointF, way: QPointF) -> QPolygonF:

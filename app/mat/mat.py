@@ -9,7 +9,8 @@ from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QSlider, QVBoxLayout,
 
 from app.mat.edge import SLIDER_STEP, EdgeState
 from app.mat.edge_view import EdgeView
-from app.mat.plan_view import PlanState, PlanView
+from app.mat.plan import PlanState
+from app.mat.plan_view import PlanView
 
 if TYPE_CHECKING:
     from app.mat.camera import Camera

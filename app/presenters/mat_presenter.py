@@ -6,7 +6,7 @@ from typing import TYPE_CHECKING, Protocol
 
 from app.mat.edge import EdgeState, edge_handles, edge_state, spacing_key
 from app.mat.handles import nudged, plan_handles, pulled
-from app.mat.plan_view import PlanState
+from app.mat.plan import PlanState
 from core.design import edit
 from core.units import format_quantity
 

@@ -88,7 +88,8 @@ def readings_state(current: Evaluation, drawn: Evaluation) -> ReadingsState:
         lines = verdict_lines(shown.response, shown.verdicts)
         name = shown.response.engine
         engine = _ENGINES.get(name, name)
-    met = [one.state in (State.MET, State.LIKELY) for one in shown.verdicts if one.reading in _ASKED]
+    asked = [one for one in shown.verdicts if one.reading in _ASKED]
+    met = [one.state in (State.MET, State.LIKELY) for one in asked]
     return ReadingsState(
         engine=engine,
         lines=lines,

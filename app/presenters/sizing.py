@@ -9,7 +9,6 @@ from core.engines import ENGINES, LIVE
 from core.layout.build import build_layout, top_copper
 from core.progress import SILENT
 from core.response.model import Reading, TrustLevel
-from core.sizing.size import size
 
 if TYPE_CHECKING:
     from app.document import Document
@@ -108,6 +107,9 @@ class SizingPresenter:
 
 def _sized(design: Design, progress: Progress) -> tuple[Sizing, bool, tuple[Region, ...]]:
     """Sizing, whether its match can be vouched for, and its copper."""
+    # Loaded when it is first used: its optimiser would slow the start of the window.
+    from core.sizing.size import size  # noqa: PLC0415
+
     sizing = size(design, progress=progress)
     layout = build_layout(sizing.design)
     response = ENGINES[LIVE](layout, [sizing.design.brief.frequency], SILENT)

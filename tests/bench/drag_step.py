@@ -93,7 +93,7 @@ def main():
             middle, high = np.percentile(whole, [50, 99])
             verdict = "within" if middle <= 16.0 and high <= 33.0 else "OVER"
             print(
-                f"{app.platformName()} {width}x{height} {name:<26} "  # noqa: T201
+                f"{app.platformName()} {width}x{height} {name:<26} "
                 f"median {middle:5.1f} ms, 99 % {high:5.1f} ms, {verdict} the budget; "
                 f"of it work {np.median(work):5.1f} ms"
             )
