@@ -170,11 +170,17 @@ _OTHER_LOOK = ("#d5d3e4", 215)
 def spacer_colour(material: str, theme: Theme) -> QColor:
     """Translucent colour of a spacer material as it lies on the plate."""
     name, alpha = _SPACER_LOOKS.get(material, _OTHER_LOOK)
-    colour = QColor(name)
+    bright = QColor(name)
     if theme is DARK:
-        colour = colour.darker(225)
-    colour.setAlpha(alpha)
-    return colour
+        bright = _between(bright, QColor(theme.mat), 0.62)
+    bright.setAlpha(alpha)
+    return bright
+
+
+def _between(one: QColor, other: QColor, part: float) -> QColor:
+    """Colour that lies so far from one on the way to the other."""
+    pairs = zip(one.getRgbF()[:3], other.getRgbF()[:3], strict=True)
+    return QColor.fromRgbF(*(a + (b - a) * part for a, b in pairs))
 
 
 def colour(name: str, alpha: int = 255) -> QColor:
@@ -305,6 +311,11 @@ QSlider::handle:vertical {{
     background: {card}; border: 2px solid {focus}; height: 12px; margin: 0 -6px; border-radius: 8px;
 }}
 QSlider::handle:vertical:focus {{ background: {focus}; }}
+QScrollBar:vertical {{ background: transparent; width: 9px; margin: 0; }}
+QScrollBar::handle:vertical {{ background: {line}; border-radius: 4px; min-height: 24px; }}
+QScrollBar::handle:vertical:hover {{ background: {muted}; }}
+QScrollBar::add-line:vertical, QScrollBar::sub-line:vertical {{ height: 0; }}
+QScrollBar::add-page:vertical, QScrollBar::sub-page:vertical {{ background: transparent; }}
 QSplitter::handle {{ background: transparent; }}
 QStatusBar {{ background: {panel}; color: {muted}; }}
 QStatusBar QLabel {{ padding: 0 10px; }}

@@ -104,8 +104,12 @@ def paint_handles(painter: QPainter, hand: Hand, shades: Theme) -> None:
         _paint_handle(painter, handle, centre, shades, active=is_shown, focus=focus)
     if shown is not None:
         across, down = view.pixels(shown)
-        place = QPointF(across, down + painter.fontMetrics().height() * 1.7)
-        paint_tag(painter, place, view.state.words.get(shown.name, shown.label), shades)
+        words = view.state.words.get(shown.name, shown.label)
+        metrics = painter.fontMetrics()
+        half = metrics.horizontalAdvance(words) / 2 + 6
+        room = painter.clipBoundingRect()
+        across = min(max(across, room.left() + half), room.right() - half)
+        paint_tag(painter, QPointF(across, down + metrics.height() * 1.7), words, shades)
 
 
 def _arrow(tip: QPointF, way: QPointF) -> QPolygonF:

@@ -6,7 +6,7 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QPointF, QRect, Qt
-from PySide6.QtGui import QPolygonF
+from PySide6.QtGui import QPen, QPolygonF
 
 from app import theme
 from app.mat.bounds import copper_bounds
@@ -14,6 +14,7 @@ from app.mat.copper_paint import paint_copper, paint_ghost
 from app.mat.ground_paint import paint_mat, paint_plate, paint_ruler, plate_key, ruler_size
 from app.mat.marks_paint import paint_dimension, paint_handles, paint_tag
 from app.views.kept import KeptPicture
+from core.findings import Severity
 
 if TYPE_CHECKING:
     from PySide6.QtGui import QPainter
@@ -24,6 +25,7 @@ if TYPE_CHECKING:
     from app.mat.plan import PlanState
     from app.theme import Theme
 
+_TROUBLE = 20.0  # pixels of the ring round it
 _ALWAYS = ("element.width", "element.length", "stock.ground")
 
 
@@ -55,6 +57,7 @@ class PlanPainting:
             paint_copper(painter, state.layout, sight.camera, shades, stale=state.is_stale)
             paint_ghost(painter, state.ghost, sight.camera, shades)
             _paint_dimensions(painter, sight, hand, shades)
+            _paint_trouble(painter, sight, shades)
         paint_handles(painter, hand, shades)
         width = metrics.horizontalAdvance(state.note) + 8
         place = QPointF(area.left() + 8 + width / 2, area.bottom() - metrics.height())
@@ -123,3 +126,15 @@ def _paint_dimensions(painter: QPainter, sight: Sight, hand: Hand, shades: Theme
         is_active = one.field in active
         if is_active or (sight.shows_dimensions and one.field.startswith(_ALWAYS)):
             paint_dimension(painter, one, sight.camera, shades, always=is_active)
+
+
+def _paint_trouble(painter: QPainter, sight: Sight, shades: Theme) -> None:
+    """Ring round each place that cannot be made as it is."""
+    layout = sight.state.layout
+    for one in layout.findings if layout is not None else ():
+        if one.location is not None and one.severity is Severity.REFUSAL:
+            centre = QPointF(*sight.camera.to_screen(*one.location))
+            for name, width in ((shades.mat_halo, 5.0), (shades.ghost, 2.0)):
+                painter.setPen(QPen(theme.colour(name), width, Qt.PenStyle.DashLine))
+                painter.setBrush(Qt.BrushStyle.NoBrush)
+                painter.drawEllipse(centre, _TROUBLE, _TROUBLE)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import lru_cache
 from typing import TYPE_CHECKING
 
 from core.design.polarisation import Polarisation
@@ -11,6 +12,7 @@ from core.materials.cautions import cautions_for
 from core.materials.table import dielectrics
 from core.response.judge import State
 from core.response.model import Reading
+from core.units import Quantity, format_quantity
 
 if TYPE_CHECKING:
     from app.evaluation import Evaluation
@@ -58,7 +60,7 @@ class ReadingsState:
     Attributes
     ----------
     engine : str
-    lines, findings, cautions : tuple of Line
+    lines, findings, cautions, pieces : tuple of Line
     is_stale : bool
         The lines belong to the last layout that could be drawn.
     can_size : bool
@@ -73,6 +75,7 @@ class ReadingsState:
     lines: tuple[Line, ...]
     findings: tuple[Line, ...]
     cautions: tuple[Line, ...]
+    pieces: tuple[Line, ...] = ()
     is_stale: bool = False
     can_size: bool = False
     proposal: str = ""
@@ -95,6 +98,7 @@ def readings_state(current: Evaluation, drawn: Evaluation) -> ReadingsState:
         lines=lines,
         findings=_finding_lines(current),
         cautions=caution_lines(current.design),
+        pieces=_piece_lines(current),
         is_stale=shown is not current,
         can_size=not (met and all(met)) or not current.is_buildable,
     )
@@ -150,6 +154,24 @@ def _finding_lines(current: Evaluation) -> tuple[Line, ...]:
     for one in sorted(current.findings, key=lambda finding: order.index(finding.severity)):
         lines.append(Line(one.severity.value, one.message, one.field, one.remedy))
     return tuple(lines)
+
+
+def _piece_lines(current: Evaluation) -> tuple[Line, ...]:
+    """Flat list of the pieces, the top one first, as they lie on each other."""
+    pieces = current.layout.pieces if current.layout is not None else ()
+    return tuple(
+        Line("noted", f"{one.name}: {_length(one.thickness)} {one.material}, {_place(one.z)}")
+        for one in reversed(pieces)
+    )
+
+
+def _place(z: float) -> str:
+    return f"{_length(z)} above the ground plane" if z > 0.0 else "at the ground plane"
+
+
+@lru_cache(256)
+def _length(value: float) -> str:
+    return format_quantity(value, Quantity.LENGTH, digits=4)
 
 
 def _listed(words: list[str]) -> str:

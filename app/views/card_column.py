@@ -33,6 +33,7 @@ class CardColumn(QScrollArea):
         self.setAccessibleName("Cards of the design")
         self.setFocusPolicy(Qt.FocusPolicy.NoFocus)  # its cards take the focus, not the frame
         self._first_open = first_open
+        self.setMaximumWidth(self.fontMetrics().height() * 30)
         self._cards: dict[str, Card] = {}
         self._is_tall: bool | None = None
         inside = QWidget()

@@ -90,10 +90,11 @@ class IconLine(QAbstractButton):
         em = self.fontMetrics().height()
         tint = getattr(shades, _TINTS[self._line.icon])
         size = round(em * self.devicePixelRatioF())
-        painter.drawPixmap(QRect(0, 1, em, em), theme.pixmap(self._line.icon, tint, size))
+        top = max((self.height() - self.heightForWidth(self.width())) // 2, 0)
+        painter.drawPixmap(QRect(0, top + 1, em, em), theme.pixmap(self._line.icon, tint, size))
         loud = self._line.icon not in ("noted", "note")
         painter.setPen(theme.colour(shades.text if loud else shades.muted))
-        room = self.rect().adjusted(self._indent, 0, 0, 0)
+        room = self.rect().adjusted(self._indent, top, 0, 0)
         if self._line.field and self.underMouse():
             font = painter.font()
             font.setUnderline(True)

@@ -16,6 +16,7 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
+from app.views.drawer import Drawer
 from app.views.lines import LineList
 
 if TYPE_CHECKING:
@@ -25,7 +26,7 @@ _FEW = 3  # findings shown before the rest is asked for
 
 
 class ReadingsView(QFrame):
-    """Never scrolls away: long lists fold."""
+    """The sentences never scroll away; findings and cautions may, where room is short."""
 
     field_asked = Signal(str)
     size_asked = Signal()
@@ -53,7 +54,11 @@ class ReadingsView(QFrame):
         self._more.toggled.connect(lambda _open: self._show_findings())
         self._caution_fold = _fold("Cautions")
         self._caution_fold.toggled.connect(self.cautions.setVisible)
+        self.pieces = LineList("Pieces")
+        self._piece_fold = _fold("Pieces")
+        self._piece_fold.toggled.connect(self.pieces.setVisible)
         self.cautions.hide()
+        self.pieces.hide()
         self.offer = _Offer()
         self.offer.size_asked.connect(self.size_asked)
         self.offer.accepted.connect(self.accepted)
@@ -65,10 +70,15 @@ class ReadingsView(QFrame):
         layout.setContentsMargins(10, 7, 10, 8)
         layout.setSpacing(6)
         layout.addLayout(head)
-        for widget in (
-            self.lines, self.offer, self.findings, self._more, self._caution_fold, self.cautions,
-        ):  # fmt: skip
-            layout.addWidget(widget)
+        below = Drawer("Findings and cautions")
+        folds = (self._caution_fold, self.cautions, self._piece_fold, self.pieces)
+        for widget in (self.findings, self._more, *folds):
+            below.add(widget)
+        for part in (self.lines, self.offer, below):
+            layout.addWidget(part)
+        layout.addStretch(1)
+        # Room for the usual sentences, so that the curves below stay in their place.
+        self.setMinimumHeight(self.fontMetrics().height() * 21)
 
     def show_state(self, state: ReadingsState) -> None:
         before, self._state = self._state, state
@@ -83,6 +93,9 @@ class ReadingsView(QFrame):
         if before is None or before.cautions != state.cautions:
             self._caution_fold.setText(f"Cautions for this build ({len(state.cautions)})")
             self.cautions.show_lines(state.cautions)
+        if before is None or before.pieces != state.pieces:
+            self._piece_fold.setText(f"Pieces ({len(state.pieces)})")
+            self.pieces.show_lines(state.pieces)
 
     def _show_findings(self) -> None:
         if self._state is None:
