@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, TypeGuard
 
 from PySide6.QtCore import Signal
 from PySide6.QtWidgets import QFrame, QGridLayout, QHBoxLayout, QLabel, QVBoxLayout
@@ -73,9 +73,8 @@ class CurvesPanel(QFrame):
         self._arrange()
 
     def show_state(self, state: CurvesState | None) -> None:
-        was_circular = self._state is not None and self._state.axial_ratio is not None
-        self._state = state
-        if was_circular != (state is not None and state.axial_ratio is not None):
+        before, self._state = self._state, state
+        if _has_ratio(before) != _has_ratio(state):
             self._arrange()
         # Only what is seen is told: hidden charts catch up when they are shown.
         for name, chart in self._charts.items():
@@ -98,7 +97,7 @@ class CurvesPanel(QFrame):
         if name == "match":
             self.match.show_plot(state.match if state else None)
         elif name == "axial_ratio":
-            self.ratio.show_plot(state.axial_ratio if state else None)
+            self.ratio.show_plot(state.axial_ratio if _has_ratio(state) else None)
         elif name == "smith":
             self.smith.show_smith(state.smith if state else None)
         else:
@@ -113,7 +112,7 @@ class CurvesPanel(QFrame):
         if roomy:
             shown = ["match", "smith", "pattern"]
             self._grid.addWidget(self.match, 0, 0, 1, 2)
-            if self._state is None or self._state.axial_ratio is not None:
+            if _has_ratio(self._state):
                 shown.insert(1, "axial_ratio")
                 self._grid.addWidget(self.ratio, 1, 0, 1, 2)
             self._grid.addWidget(self.smith, 2, 0)
@@ -133,6 +132,10 @@ class CurvesPanel(QFrame):
     def _on_chosen(self, name: str) -> None:
         self._arrange()
         self.chosen.emit(name)
+
+
+def _has_ratio(state: CurvesState | None) -> TypeGuard[CurvesState]:
+    return state is not None and state.has_axial_ratio
 
 
 def _chooser(

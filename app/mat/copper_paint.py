@@ -37,11 +37,12 @@ def paint_copper(
 ) -> None:
     """Top copper, its solder dots and the pin; paler where the layout is an old one."""
     painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+    top = [one.region for one in layout.pieces if one.role is Role.TOP_COPPER]
+    paths = [on_screen(region, camera) for region in top]
     whole = QPainterPath()
     whole.setFillRule(Qt.FillRule.WindingFill)
-    for piece in layout.pieces:
-        if piece.role is Role.TOP_COPPER:
-            whole.addPath(on_screen(piece.region, camera))
+    for path in paths:
+        whole.addPath(path)
     if stale:
         painter.setOpacity(0.4)
     painter.fillPath(whole.translated(1.5, 2.0), theme.colour(shades.shade, 90))
@@ -51,9 +52,8 @@ def paint_copper(
     light = _light(whole, shades)
     painter.setPen(QPen(QBrush(_bevel(whole, shades)), 1.2))
     painter.setBrush(QBrush(light))
-    for piece in layout.pieces:
-        if piece.role is Role.TOP_COPPER:
-            painter.drawPath(on_screen(piece.region, camera))
+    for path in paths:
+        painter.drawPath(path)
     _paint_solder(painter, layout, camera, shades)
     painter.setOpacity(1.0)
 

@@ -2,17 +2,15 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from math import ceil
 from typing import TYPE_CHECKING
 
-from app.mat.handles import Handle, Pull
+from app.mat.handles import Handle, Pull, Words, no_words
 from core.constants import SPEED_OF_LIGHT
 from core.units import Quantity, format_quantity
 
 if TYPE_CHECKING:
-    from collections.abc import Mapping
-
     from core.design.model import Design
     from core.layout.model import Layout
 
@@ -28,8 +26,8 @@ class EdgeState:
     ----------
     layout : Layout or None
     handles : tuple of Handle
-    words : mapping of str
-        What each handle stands at, by its name.
+    words : callable
+        What a handle stands at.
     layers : tuple of (str, float, float)
         Material and its words, underside and thickness (m), from the ground up.
     spacing, widest : float
@@ -40,7 +38,7 @@ class EdgeState:
 
     layout: Layout | None
     handles: tuple[Handle, ...]
-    words: Mapping[str, str] = field(default_factory=dict)
+    words: Words = no_words
     layers: tuple[tuple[str, str, float, float], ...] = ()
     spacing: float = 0.0
     widest: float = 0.0
@@ -67,9 +65,7 @@ def edge_handles(design: Design) -> tuple[Handle, ...]:
     return tuple(reversed(handles))
 
 
-def edge_state(
-    design: Design, layout: Layout | None, words: Mapping[str, str], is_stale: bool
-) -> EdgeState:
+def edge_state(design: Design, layout: Layout | None, words: Words, is_stale: bool) -> EdgeState:
     """State of the edge-on view for a design and the layout to draw."""
     layers, z = [], 0.0
     for layer in design.stock.spacer:

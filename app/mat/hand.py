@@ -10,12 +10,10 @@ from PySide6.QtCore import QPointF, Qt
 from app.mat.reach import REACH, apart
 
 if TYPE_CHECKING:
-    from collections.abc import Mapping
-
     from PySide6.QtCore import SignalInstance
 
     from app.mat.camera import Camera
-    from app.mat.handles import Handle
+    from app.mat.handles import Handle, Words
 
 
 class Hands(Protocol):
@@ -24,7 +22,7 @@ class Hands(Protocol):
     @property
     def handles(self) -> tuple[Handle, ...]: ...
     @property
-    def words(self) -> Mapping[str, str]: ...
+    def words(self) -> Words: ...
 
 
 class HandView(Protocol):
@@ -117,7 +115,9 @@ class Hand:
 
     def _speak(self) -> None:
         """Tell a screen reader what the chosen handle stands at."""
-        words = self.view.state.words.get(self.chosen, "")
+        state = self.view.state
+        chosen = next((one for one in state.handles if one.name == self.chosen), None)
+        words = state.words(chosen) if chosen is not None else ""
         if words != self.view.accessibleDescription():
             self.view.setAccessibleDescription(words)
 

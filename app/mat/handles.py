@@ -7,6 +7,7 @@ the element, moves the opposite side as well: its gain is 2.
 from __future__ import annotations
 
 import itertools
+from collections.abc import Callable
 from dataclasses import dataclass, replace
 from math import copysign, hypot
 from typing import TYPE_CHECKING
@@ -59,6 +60,15 @@ class Handle:
     y: float
     pulls: tuple[Pull, ...]
     rail: tuple[Point, ...] = ()
+
+
+Words = Callable[[Handle], str]
+"""Tells what a handle stands at."""
+
+
+def no_words(_handle: Handle) -> str:
+    """Words of a state that shows nothing."""
+    return ""
 
 
 def plan_handles(design: Design) -> tuple[Handle, ...]:

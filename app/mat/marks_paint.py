@@ -6,7 +6,7 @@ from math import atan2, copysign, degrees, hypot
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QLineF, QPointF, QRectF, Qt
-from PySide6.QtGui import QPainter, QPen, QPolygonF
+from PySide6.QtGui import QPainter, QPainterPath, QPen, QPolygonF
 
 from app import theme
 from app.mat.reach import REACH
@@ -42,15 +42,21 @@ def paint_dimension(
     shift, reach = side * off, side * copysign(5.0, off)
     back = side * copysign(min(abs(off), 20.0), off)
     line = QLineF(start + shift, end + shift)
-    lines = [line, *(QLineF(p + shift - back, p + shift + reach) for p in (start, end))]
-    arrows = [_arrow(line.p1(), way), _arrow(line.p2(), way * -1.0)]
+    lines = QPainterPath()
+    for a, b in (
+        (line.p1(), line.p2()),
+        (start + shift - back, start + shift + reach),
+        (end + shift - back, end + shift + reach),
+    ):
+        lines.moveTo(a)
+        lines.lineTo(b)
+    arrows = QPainterPath()
+    arrows.addPolygon(_arrow(line.p1(), way))
+    arrows.addPolygon(_arrow(line.p2(), way * -1.0))
     painter.setRenderHint(QPainter.RenderHint.Antialiasing)
-    for name, width in ((shades.mat_halo, 3.0), (shades.mat_ink, 1.0)):
-        painter.setPen(QPen(theme.colour(name, 190), width))
-        painter.drawLines(lines)
-        painter.setBrush(theme.colour(name))
-        for arrow in arrows:
-            painter.drawPolygon(arrow)
+    painter.strokePath(lines, QPen(theme.colour(shades.mat_halo, 190), 3.0))
+    painter.strokePath(lines, QPen(theme.colour(shades.mat_ink, 220), 1.0))
+    painter.fillPath(arrows, theme.colour(shades.mat_ink))
     paint_tag(painter, line.center(), words, shades, _readable(degrees(atan2(way.y(), way.x()))))
 
 
@@ -104,7 +110,7 @@ def paint_handles(painter: QPainter, hand: Hand, shades: Theme) -> None:
         _paint_handle(painter, handle, centre, shades, active=is_shown, focus=focus)
     if shown is not None:
         across, down = view.pixels(shown)
-        words = view.state.words.get(shown.name, shown.label)
+        words = view.state.words(shown)
         metrics = painter.fontMetrics()
         half = metrics.horizontalAdvance(words) / 2 + 6
         room = painter.clipBoundingRect()

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from functools import lru_cache
 from math import atan, atan2, degrees
 from typing import TYPE_CHECKING
 
@@ -18,7 +17,6 @@ if TYPE_CHECKING:
 MM = 1e3  # Qt rounds small coordinates: metres would be too coarse for it
 
 
-@lru_cache(256)
 def region_path(region: Region) -> QPainterPath:
     """Path of a region with its holes, arcs true."""
     path = QPainterPath()

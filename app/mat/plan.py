@@ -2,13 +2,12 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
-if TYPE_CHECKING:
-    from collections.abc import Mapping
+from app.mat.handles import Handle, Words, no_words
 
-    from app.mat.handles import Handle
+if TYPE_CHECKING:
     from core.layout.model import Layout
     from core.shapes.outline import Region
 
@@ -21,8 +20,8 @@ class PlanState:
     ----------
     layout : Layout or None
     handles : tuple of Handle
-    words : mapping of str
-        What each handle stands at, by its name.
+    words : callable
+        What a handle stands at.
     is_stale : bool
         Whether the layout is that of an older design, because this one has none.
     note : str
@@ -33,7 +32,7 @@ class PlanState:
 
     layout: Layout | None
     handles: tuple[Handle, ...]
-    words: Mapping[str, str] = field(default_factory=dict)
+    words: Words = no_words
     is_stale: bool = False
     note: str = ""
     ghost: tuple[Region, ...] = ()

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from functools import cached_property
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -20,14 +20,33 @@ if TYPE_CHECKING:
 PLANES = ("in the plane of x", "in the plane of y")
 
 
-@dataclass(frozen=True, eq=False)
 class CurvesState:
-    """All charts; axial ratio is left out for a linear antenna."""
+    """All charts of an evaluation that has a response; each is made when it is looked at."""
 
-    match: PlotState
-    axial_ratio: PlotState | None
-    smith: SmithState
-    pattern: PatternState
+    def __init__(self, response: Response, brief: Brief, *, is_stale: bool, match_as: str) -> None:
+        self._response, self._brief = response, brief
+        self._is_stale, self._match_as = is_stale, match_as
+
+    @property
+    def has_axial_ratio(self) -> bool:
+        """Whether there is an axial ratio to show: not for a linear antenna."""
+        return self._brief.polarisation is not Polarisation.LINEAR
+
+    @cached_property
+    def match(self) -> PlotState:
+        return _match(self._response, self._brief, self._is_stale, self._match_as)
+
+    @cached_property
+    def axial_ratio(self) -> PlotState:
+        return _axial_ratio(self._response, self._brief, self._is_stale)
+
+    @cached_property
+    def smith(self) -> SmithState:
+        return _smith(self._response, self._brief, self._is_stale)
+
+    @cached_property
+    def pattern(self) -> PatternState:
+        return _pattern(self._response, self._is_stale)
 
 
 def curves_state(shown: Evaluation, *, is_stale: bool, match_as: str) -> CurvesState | None:
@@ -41,19 +60,9 @@ def curves_state(shown: Evaluation, *, is_stale: bool, match_as: str) -> CurvesS
     match_as : str
         "S11" or "VSWR".
     """
-    response = shown.response
-    if response is None:
+    if shown.response is None:
         return None
-    brief = shown.design.brief
-    ratio = None
-    if brief.polarisation is not Polarisation.LINEAR:
-        ratio = _axial_ratio(response, brief, is_stale)
-    return CurvesState(
-        _match(response, brief, is_stale, match_as),
-        ratio,
-        _smith(response, brief, is_stale),
-        _pattern(response, is_stale),
-    )
+    return CurvesState(shown.response, shown.design.brief, is_stale=is_stale, match_as=match_as)
 
 
 def _is_estimate(response: Response, reading: Reading) -> bool:

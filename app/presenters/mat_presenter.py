@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
+from functools import partial
 from typing import TYPE_CHECKING, Protocol
 
 from app.mat.edge import EdgeState, edge_handles, edge_state, spacing_key
 from app.mat.handles import nudged, plan_handles, pulled
 from app.mat.plan import PlanState
 from core.design import edit
-from core.units import format_quantity
+from core.units import Quantity, format_quantity
 
 if TYPE_CHECKING:
     from app.document import Document
@@ -44,7 +45,7 @@ class MatPresenter:
         design = current.design
         is_stale = current.layout is None
         handles = plan_handles(design)
-        words = _words(design, (*handles, *edge_handles(design)))
+        words = partial(_words, design)
         self._view.show_plan(PlanState(drawn.layout, handles, words, is_stale, NOTE, self._ghost))
         self._view.show_edge(edge_state(design, drawn.layout, words, is_stale))
 
@@ -101,14 +102,11 @@ def _named(design: Design, name: str) -> Handle:
     return next(one for one in handles if one.name == name)
 
 
-def _words(design: Design, handles: tuple[Handle, ...]) -> dict[str, str]:
-    parameters = {one.key: one for one in edit.parameters(design)}
-    words = {}
-    for handle in handles:
-        values = []
-        for pull in handle.pulls:
-            one = parameters[pull.key]
-            if one.spec is not None and isinstance(one.value, float):
-                values.append(format_quantity(one.value, one.spec.kind))
-        words[handle.name] = f"{handle.label} {', '.join(values)}"
-    return words
+def _words(design: Design, handle: Handle) -> str:
+    """What a handle stands at."""
+    values = []
+    for pull in handle.pulls:
+        value = edit.value_at(design, pull.key)
+        assert isinstance(value, float)
+        values.append(format_quantity(value, Quantity.LENGTH))
+    return f"{handle.label} {', '.join(values)}"

@@ -4,13 +4,16 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from enum import Enum
-from functools import lru_cache
+from functools import cached_property, lru_cache
 from typing import TYPE_CHECKING
 
 from core.design import edit
 from core.units import exact_text, format_quantity
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
+    from core.design.edit import Parameter
     from core.design.model import Design
     from core.units import Quantity
 
@@ -87,21 +90,32 @@ class Deeds:
 Row = Heading | Field | Choice | Deeds
 
 
-@dataclass(frozen=True)
 class CardState:
-    """One folded card: what stands on it when it is closed, and its rows."""
+    """One folded card: what stands on it when it is closed, and its rows.
 
-    id: str
-    title: str
-    summary: str
-    rows: tuple[Row, ...]
+    Rows are made when they are looked at: those of a closed card never are.
+    """
+
+    def __init__(
+        self, name: str, title: str, summary: str, make_rows: Callable[[], tuple[Row, ...]]
+    ) -> None:
+        self.id, self.title, self.summary = name, title, summary
+        self._make_rows = make_rows
+
+    @cached_property
+    def rows(self) -> tuple[Row, ...]:
+        return self._make_rows()
 
 
 class Rows:
     """Makes rows out of a design's parameters, looked up once."""
 
     def __init__(self, design: Design) -> None:
-        self._parameters = {one.key: one for one in edit.parameters(design)}
+        self.design = design
+
+    @cached_property
+    def _parameters(self) -> dict[str, Parameter]:
+        return {one.key: one for one in edit.parameters(self.design)}
 
     def number(self, key: str, label: str = "", *, more: bool = False, tip: str = "") -> Field:
         """Row of a numeric parameter; the tip tells it to the last digit."""

@@ -94,11 +94,12 @@ class Card(QFrame):
         layout.addWidget(self.header)
         self._shape: tuple[object, ...] = ()
         self._form: CardForm | None = None
-        self._state = state
         self.show_state(state)
 
     @property
     def form(self) -> CardForm:
+        """The form of the state shown, also while the card is closed."""
+        self._catch_up()
         assert self._form is not None
         return self._form
 
@@ -110,38 +111,42 @@ class Card(QFrame):
         self.header.setChecked(is_open)
 
     def show_state(self, state: CardState) -> None:
+        self._state, self._is_behind = state, True
         self.header.show_words(state.title, state.summary)
-        if shape_of(state) != self._shape:
-            self._shape = shape_of(state)
-            self._build(state)
-        self._state = state
-        if self.is_open:  # a closed form is filled when it opens
-            self.form.show_rows(state)
+        if self.is_open:  # a closed form catches up when it is looked at
+            self._catch_up()
 
     def focus_field(self, key: str) -> None:
         """Open the card at a field."""
         self.open(True)
         self.form.focus_field(key)
 
-    def _build(self, state: CardState) -> None:
+    def _catch_up(self) -> None:
+        if self._is_behind:
+            self._is_behind = False
+            if self._form is None or shape_of(self._state) != self._shape:
+                self._form = self._built(self._state, self._form)
+            self._form.show_rows(self._state)
+
+    def _built(self, state: CardState, old: CardForm | None) -> CardForm:
         """Make the form; what was folded out, and the field in use, stay so."""
-        old, self._form = self._form, CardForm(state)
-        self._form.edited.connect(self.edited)
-        self._form.stepped.connect(self.stepped)
-        self._form.acted.connect(self.acted)
-        self._form.setVisible(self.is_open)
-        self.layout().addWidget(self._form)
+        self._shape = shape_of(state)
+        form = CardForm(state)
+        form.edited.connect(self.edited)
+        form.stepped.connect(self.stepped)
+        form.acted.connect(self.acted)
+        form.setVisible(self.is_open)
+        self.layout().addWidget(form)
         if old is not None:
-            self._form.show_more(old.shows_more)
+            form.show_more(old.shows_more)
             focused = next((k for k in old.keys if (f := old.field(k)) and f.is_in_use), None)
             old.hide()
             old.setParent(None)
             old.deleteLater()
-            if focused in self._form.keys:
-                self._form.focus_field(focused)
+            if focused in form.keys:
+                form.focus_field(focused)
+        return form
 
     def _on_toggled(self, is_open: bool) -> None:
-        if is_open:
-            self.form.show_rows(self._state)
         self.form.setVisible(is_open)
         self.opened.emit(is_open)

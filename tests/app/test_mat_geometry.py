@@ -12,7 +12,7 @@ from pytest import approx
 from app.mat.bounds import bounds, copper_bounds
 from app.mat.camera import Camera, fitted, grid_steps, nice_step
 from app.mat.edge import edge_handles, edge_state, spacing_key
-from app.mat.handles import nudged, plan_handles, pulled, settled
+from app.mat.handles import no_words, nudged, plan_handles, pulled, settled
 from app.mat.paths import MM, region_path
 from app.mat.reach import REACH, apart
 from core.design import edit
@@ -156,7 +156,7 @@ def test_crowded_handles_give_way_to_those_that_matter_more():
 def test_the_slider_sets_the_thickest_layer():
     layers = edit.with_text(DESIGN, "stock.spacer", "card:1mm + air:9mm + card:2mm")
     assert spacing_key(layers) == "stock.spacer.2.thickness"
-    state = edge_state(layers, None, {}, False)
+    state = edge_state(layers, None, no_words, False)
     assert state.spacing == approx(9e-3)
     assert [z for _, _, z, _ in state.layers] == approx([0.0, 1e-3, 10e-3])
     assert [one.y for one in edge_handles(layers)] == approx([12e-3, 10e-3, 1e-3])
