@@ -81,6 +81,11 @@ class CurvesPanel(QFrame):
             if not chart.isHidden():
                 self._show_chart(name)
 
+    def choose(self, name: str) -> None:
+        """Show another curve in a small window."""
+        self._which.setCurrentIndex(self._which.findData(name))
+        self._on_chosen(name)
+
     def show_match_as(self, name: str) -> None:
         self._as.setCurrentIndex(max(self._as.findData(name), 0))
 

@@ -34,7 +34,7 @@ class SmithChart(Chart):
         return self.state.target if self.state is not None else None
 
     def paint_still(self, painter: QPainter, shades: Theme) -> None:
-        centre, radius = self._circle()
+        centre, radius = self.circle
         self.paint_title(painter, shades, "Smith chart")
         painter.setRenderHint(QPainter.RenderHint.Antialiasing)
         rim = QPainterPath()
@@ -67,7 +67,7 @@ class SmithChart(Chart):
         state = self.state
         if state is None:
             return
-        centre, radius = self._circle()
+        centre, radius = self.circle
         across = centre.x() + state.s11.real * radius
         down = centre.y() - state.s11.imag * radius
         painter.setPen(self.curve_pen(shades.curve))
@@ -80,7 +80,9 @@ class SmithChart(Chart):
         spot = QPointF(centre.x() + state.spot.real * radius, centre.y() - state.spot.imag * radius)
         painter.drawEllipse(spot, 4.5, 4.5)
 
-    def _circle(self) -> tuple[QPointF, float]:
+    @property
+    def circle(self) -> tuple[QPointF, float]:
+        """Middle and radius of the rim, pixels."""
         metrics = self.fontMetrics()
         top, spare = metrics.height() + 8, 8
         room = min(self.width() - 2 * spare, self.height() - top - spare)
