@@ -212,8 +212,17 @@ def apply(app: QApplication, theme: Theme) -> None:
 
 @cache
 def icon(name: str, tint: str) -> QIcon:
-    """Icon of the assets, coloured, sharp at every scale."""
-    return QIcon(pixmap(name, tint, 64))
+    """Icon of the assets, coloured, sharp at every scale; faint where it is of no use."""
+    whole = pixmap(name, tint, 64)
+    faint = QPixmap(whole.size())
+    faint.fill(Qt.GlobalColor.transparent)
+    painter = QPainter(faint)
+    painter.setOpacity(0.3)
+    painter.drawPixmap(0, 0, whole)
+    painter.end()
+    result = QIcon(whole)
+    result.addPixmap(faint, QIcon.Mode.Disabled)
+    return result
 
 
 @cache

@@ -48,7 +48,7 @@ class Chart(QWidget):
 
     def minimumSizeHint(self) -> QSize:
         em = self.fontMetrics().height()
-        return QSize(em * 11, em * 9)
+        return QSize(em * 11, em * 7)
 
     def paintEvent(self, _event: QPaintEvent) -> None:
         painter = QPainter(self)

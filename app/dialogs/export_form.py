@@ -6,9 +6,10 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import Signal
-from PySide6.QtWidgets import QCheckBox, QFormLayout, QLabel, QLineEdit, QPushButton, QWidget
+from PySide6.QtWidgets import QFormLayout, QLabel, QLineEdit, QPushButton, QWidget
 
 from app.presenters.export import ExportRequest, kinds
+from app.views.buttons import CheckBox
 from app.views.fields import Chooser
 from core.drawing.paper import PAPERS
 from core.formats.export import ExportOptions
@@ -28,7 +29,7 @@ class ExportForm(QWidget):
 
     def __init__(self, settings: Settings) -> None:
         super().__init__()
-        self.kinds = {key: QCheckBox(title) for key, title in kinds()}
+        self.kinds = {key: CheckBox(title) for key, title in kinds()}
         for key, box in self.kinds.items():
             box.setChecked(key in _FIRST)
             box.toggled.connect(self.changed)
@@ -38,19 +39,17 @@ class ExportForm(QWidget):
             self.paper.addItem(paper.name, key)
         self.paper.setCurrentIndex(self.paper.findData(settings.value("paper")))
         self.paper.activated.connect(self.redrawn)
-        self.mirrored = QCheckBox("Mirrored, as seen from behind")
+        self.mirrored = CheckBox("Mirrored, as seen from behind")
         self.mirrored.toggled.connect(self.redrawn)
-        self.arcs = QCheckBox("True arcs in the artwork")
+        self.arcs = CheckBox("True arcs in the artwork")
         self.folder = QLineEdit(settings.value("export_folder") or str(Path.home()))
         self.folder.setAccessibleName("Folder")
         self.folder.textChanged.connect(self.changed)
         self.browse = QPushButton("Choose…")
         self.browse.setAccessibleName("Choose a folder")
         self.browse.clicked.connect(self.browse_asked)
-        self.replace = QCheckBox("Replace files of the same name")
+        self.replace = CheckBox("Replace files of the same name")
         self.replace.toggled.connect(self.changed)
-        for box in (*self.kinds.values(), self.mirrored, self.arcs, self.replace):
-            box.setAccessibleName(box.text())
         self._lay_out()
 
     @property

@@ -4,9 +4,11 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from PySide6.QtWidgets import QCheckBox, QComboBox, QDialog, QDialogButtonBox, QFormLayout
+from PySide6.QtWidgets import QDialog, QFormLayout
 
 from app.settings import SETTINGS
+from app.views.buttons import CheckBox
+from app.views.fields import Chooser
 
 if TYPE_CHECKING:
     from PySide6.QtWidgets import QWidget
@@ -26,20 +28,22 @@ class PreferencesDialog(QDialog):
         for row in SETTINGS:
             if row.shown:
                 self.editors[row.key] = self._editor(row)
-                form.addRow(row.label, self.editors[row.key])
-        buttons = QDialogButtonBox(QDialogButtonBox.StandardButton.Close)
-        buttons.rejected.connect(self.reject)
-        form.addRow(buttons)
+                label = "" if isinstance(row.default, bool) else row.label  # a box bears its own
+                form.addRow(label, self.editors[row.key])
+        close = QPushButton("Close")
+        close.setAccessibleName("Close")
+        close.clicked.connect(self.reject)
+        form.addRow(close)
 
     def _editor(self, row: Setting) -> QWidget:
         value = self._settings.value(row.key)
         if isinstance(row.default, bool):
-            box = QCheckBox()
+            box = CheckBox(row.label)
             box.setChecked(value)
             box.toggled.connect(lambda on: self._settings.set(row.key, on))
             editor: QWidget = box
         else:
-            choice = QComboBox()
+            choice = Chooser(typed=False)
             choice.addItems([str(one) for one in row.allowed])
             choice.setCurrentText(value)
             choice.textActivated.connect(lambda text: self._settings.set(row.key, text))

@@ -22,7 +22,21 @@ if TYPE_CHECKING:
 
     from app.mat.handles import Handle
 
-_STRETCHES = (1, 2, 5, 10, 20, 50, 100)  # how much taller than wide the view may be drawn
+_STRETCHES = (
+    1,
+    2,
+    3,
+    4,
+    5,
+    6,
+    8,
+    10,
+    15,
+    20,
+    30,
+    50,
+    100,
+)  # how much taller than wide the view may be drawn
 _FILLED = 0.5  # of the room above the ground plate, by the stack
 
 

@@ -75,7 +75,7 @@ class _Mouse:
         else:
             self._hand.view.setCursor(Qt.CursorShape.ClosedHandCursor)
         self._hand.view.update()
-        return False  # the view itself takes the focus
+        return True
 
     def move(self, event: QMouseEvent) -> bool:
         place, grip = event.position(), self._hand.grip

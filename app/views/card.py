@@ -139,12 +139,10 @@ class Card(QFrame):
         self.layout().addWidget(form)
         if old is not None:
             form.show_more(old.shows_more)
-            focused = next((k for k in old.keys if (f := old.field(k)) and f.is_in_use), None)
+            form.focus_field(old.key_in_use)
             old.hide()
             old.setParent(None)
             old.deleteLater()
-            if focused in form.keys:
-                form.focus_field(focused)
         return form
 
     def _on_toggled(self, is_open: bool) -> None:

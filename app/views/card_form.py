@@ -71,8 +71,20 @@ class CardForm(QWidget):
     def field(self, key: str) -> LineField | ChoiceField | None:
         return self._lines.get(key) or self._choices.get(key)
 
+    @property
+    def key_in_use(self) -> str:
+        """Field or button that has the focus; empty where none of them has."""
+        for key in self.keys:
+            field = self.field(key)
+            if field is not None and field.is_in_use:
+                return key
+        return next((key for key, one in self._buttons.items() if one.hasFocus()), "")
+
     def focus_field(self, key: str) -> None:
-        field = self.field(key)
+        """Put the focus into a field, or on a button; on none where there is no such."""
+        button, field = self._buttons.get(key), self.field(key)
+        if button is not None:
+            button.setFocus(Qt.FocusReason.OtherFocusReason)
         if field is not None:
             if field in self._more_rows:
                 self._more.setChecked(True)

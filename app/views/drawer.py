@@ -35,7 +35,7 @@ class Drawer(QScrollArea):
 
     def minimumSizeHint(self) -> QSize:
         em = self.fontMetrics().height()
-        return QSize(em * 8, min(self._needed(), em * 4))
+        return QSize(em * 8, min(self._needed(), em * 3))
 
     def eventFilter(self, watched: QObject, event: QEvent) -> bool:
         if event.type() == QEvent.Type.LayoutRequest:

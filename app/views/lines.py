@@ -11,7 +11,7 @@ from PySide6.QtWidgets import QAbstractButton, QSizePolicy, QVBoxLayout, QWidget
 from app import theme
 
 if TYPE_CHECKING:
-    from PySide6.QtGui import QPaintEvent
+    from PySide6.QtGui import QPaintEvent, QResizeEvent
 
     from app.presenters.readings import Line
 
@@ -57,8 +57,18 @@ class IconLine(QAbstractButton):
         shape = Qt.CursorShape.PointingHandCursor if leads else Qt.CursorShape.ArrowCursor
         self.setCursor(shape)
         if self.heightForWidth(width) != before:
-            self.updateGeometry()
+            self._claim_height()
         self.update()
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        super().resizeEvent(event)
+        self._claim_height()
+
+    def _claim_height(self) -> None:
+        """Ask for all the height that the words need, so that none of them is cut off."""
+        needed = self.heightForWidth(self.width())
+        if needed != self.minimumHeight():
+            self.setMinimumHeight(needed)
 
     def hasHeightForWidth(self) -> bool:
         return True
