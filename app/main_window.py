@@ -5,7 +5,7 @@ from __future__ import annotations
 from pathlib import Path
 from typing import TYPE_CHECKING, Protocol
 
-from PySide6.QtCore import QByteArray, QSize, Qt
+from PySide6.QtCore import QByteArray, Qt
 from PySide6.QtWidgets import QLabel, QMainWindow, QSplitter, QVBoxLayout, QWidget
 
 from app.actions import make_actions
@@ -33,6 +33,9 @@ if TYPE_CHECKING:
 
     from app.jobs.runner import Runner
     from app.settings import Settings
+
+
+_SMALL = 900  # pixels of a screen that the window should have for itself
 
 
 class WindowAsks(Asker, Protocol):
@@ -66,10 +69,7 @@ class MainWindow(QMainWindow):
         add_file_menus(self.header.menus["&File"], settings, self.files)
         self.setAcceptDrops(True)
         self.show_name()
-        self.resize(QSize(1280, 720))
-        geometry = QByteArray.fromBase64(settings.value("geometry").encode())
-        if not geometry.isEmpty():
-            self.restoreGeometry(geometry)
+        self._take_room()
         self.mat.plan.setFocus()
         self.recovery = Recovery(self.document, folder)
         self._tell_first()
@@ -111,6 +111,17 @@ class MainWindow(QMainWindow):
         self.runner.close()
         self.recovery.close()
         super().closeEvent(event)
+
+    def _take_room(self) -> None:
+        """The size and place of last time; at first most of the screen, all of a small one."""
+        geometry = QByteArray.fromBase64(self.settings.value("geometry").encode())
+        if not geometry.isEmpty():
+            self.restoreGeometry(geometry)
+            return
+        room = self.screen().availableSize()
+        self.resize(room * 0.85)
+        if room.height() < _SMALL:
+            self.setWindowState(Qt.WindowState.WindowMaximized)
 
     def _tell_first(self) -> None:
         """Unsaved work that was found goes before the hints of a first start."""

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from PySide6.QtWidgets import QDialog, QFormLayout
+from PySide6.QtWidgets import QDialog, QFormLayout, QPushButton
 
 from app.settings import SETTINGS
 from app.views.buttons import CheckBox
