@@ -69,7 +69,6 @@ class MainWindow(QMainWindow):
         add_file_menus(self.header.menus["&File"], settings, self.files)
         self.setAcceptDrops(True)
         self.show_name()
-        self._take_room()
         self.mat.plan.setFocus()
         self.recovery = Recovery(self.document, folder)
         self._tell_first()
@@ -112,7 +111,7 @@ class MainWindow(QMainWindow):
         self.recovery.close()
         super().closeEvent(event)
 
-    def _take_room(self) -> None:
+    def take_room(self) -> None:
         """The size and place of last time; at first most of the screen, all of a small one."""
         geometry = QByteArray.fromBase64(self.settings.value("geometry").encode())
         if not geometry.isEmpty():

@@ -35,6 +35,7 @@ def run(path: Path | None) -> int:
     CrashGuard(window.recovery, window.notices, folder / "errors.log").install()
     if path is not None:
         window.files.open(path)
+    window.take_room()
     window.show()
     # What was loaded so far stays; without it, sweeps for garbage are too short to be felt.
     gc.collect()

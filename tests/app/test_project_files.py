@@ -174,3 +174,11 @@ def test_every_example_opens_and_can_be_built(window, path):
     window.files.open_example(path)
     assert window.document.path is None
     assert window.pipeline.current.is_buildable
+
+
+def test_the_window_comes_back_where_it_was(make_window):
+    first = make_window(1111, 666)
+    first.close()
+    second = make_window(900, 600)
+    second.take_room()
+    assert second.height() == 666  # widths are cut to the screen, which is 800 wide offscreen
