@@ -179,8 +179,15 @@ def spacer_colour(material: str, theme: Theme) -> QColor:
 
 def _between(one: QColor, other: QColor, part: float) -> QColor:
     """Colour that lies so far from one on the way to the other."""
-    pairs = zip(one.getRgbF()[:3], other.getRgbF()[:3], strict=True)
-    return QColor.fromRgbF(*(a + (b - a) * part for a, b in pairs))
+
+    def mixed(a: float, b: float) -> float:
+        return a + (b - a) * part
+
+    return QColor.fromRgbF(
+        mixed(one.redF(), other.redF()),
+        mixed(one.greenF(), other.greenF()),
+        mixed(one.blueF(), other.blueF()),
+    )
 
 
 def colour(name: str, alpha: int = 255) -> QColor:

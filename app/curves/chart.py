@@ -117,6 +117,7 @@ def polygon(across: NDArray[Any], down: NDArray[Any]) -> QPolygonF:
     """
     points = QPolygonF()
     points.resize(len(across))
-    memory = np.frombuffer(VoidPtr(points.data(), 16 * len(across), True), dtype=float)
+    view: Any = VoidPtr  # its stub knows addresses only
+    memory = np.frombuffer(view(points.data(), 16 * len(across), True), dtype=float)
     memory[0::2], memory[1::2] = across, down
     return points

@@ -160,12 +160,12 @@ class LinePlot(Chart):
         step = nice_step((high - low) / max(area.width() / (metrics.height() * 5.5), 1.0))
         n = int(np.ceil(low / step))
         while n * step <= high:
-            x = round(self._across(n * step))
+            line = round(self._across(n * step))
             painter.setPen(QPen(theme.colour(shades.plot_grid), 0))
-            painter.drawLine(QLineF(x, area.top(), x, area.bottom()))
+            painter.drawLine(QLineF(line, area.top(), line, area.bottom()))
             words = format_quantity(n * step, Quantity.FREQUENCY, digits=4)
             wide = metrics.horizontalAdvance(words)
-            left = min(x - wide / 2, self.width() - wide - 2)
+            left = min(line - wide / 2, self.width() - wide - 2)
             painter.setPen(theme.colour(shades.muted))
             painter.drawText(QPointF(left, self.height() - metrics.descent() - 3), words)
             n += 1

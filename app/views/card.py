@@ -88,7 +88,7 @@ class Card(QFrame):
         self.setAccessibleName(f"{state.title} card")
         self.header = CardHeader()
         self.header.toggled.connect(self._on_toggled)
-        layout = QVBoxLayout(self)
+        layout = self._column = QVBoxLayout(self)
         layout.setContentsMargins(0, 0, 0, 0)
         layout.setSpacing(0)
         layout.addWidget(self.header)
@@ -136,7 +136,7 @@ class Card(QFrame):
         form.stepped.connect(self.stepped)
         form.acted.connect(self.acted)
         form.setVisible(self.is_open)
-        self.layout().addWidget(form)
+        self._column.addWidget(form)
         if old is not None:
             form.show_more(old.shows_more)
             form.focus_field(old.key_in_use)
