@@ -1,0 +1,311 @@
+"""From a Layout to one connected triangle mesh of its copper: top, ground plate and probe."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from enum import Enum, IntEnum
+from math import ceil, cos, gamma, hypot, pi, sin
+from typing import TYPE_CHECKING, Final
+
+import numpy as np
+import shapely
+
+from core.constants import SPEED_OF_LIGHT
+from core.errors import ModelError
+from core.fullwave.sizes import Sizes, first_hits, ring_segments, sizes_near
+from core.fullwave.triangulate import triangulate
+from core.layout.model import Role
+from core.shapes.outline import polygon
+
+if TYPE_CHECKING:
+    from numpy.typing import NDArray
+
+    from core.layout.model import Layout, Port
+    from core.shapes.outline import Region
+
+    Floats = NDArray[np.float64]
+    Ints = NDArray[np.int64]
+
+
+class Level(Enum):
+    """How fine a mesh is."""
+
+    COARSE = "coarse"
+    NORMAL = "normal"
+    FINE = "fine"
+
+
+class Sheet(IntEnum):
+    """Which conductor a triangle belongs to."""
+
+    GROUND = 0
+    PROBE = 1
+    TOP = 2
+
+
+@dataclass(frozen=True)
+class Fineness:
+    """What a level means.
+
+    Attributes
+    ----------
+    across : float
+        Cells across the element's shorter side, edge rows aside.
+    strip_aspect : float
+        Longest cell on a strip, in strip widths.
+    per_wavelength : float
+        Fewest cells per free-space wavelength on the ground plate, far from the copper.
+    ground_detail : float
+        Edge length on the ground plate right under copper edges, in spacer heights.
+    growth : float
+        Edge length gained per distance from a detail.
+    probe_sides : int
+        Of the prism that stands for the probe.
+    probe_cell : float
+        Longest cell along the probe, in free-space wavelengths.
+    ground_row : bool
+        Whether the rim of the ground plate has a row of edge cells.
+    """
+
+    across: float
+    strip_aspect: float
+    per_wavelength: float
+    ground_detail: float
+    growth: float
+    probe_sides: int
+    probe_cell: float
+    ground_row: bool
+
+
+FINENESS: Final = {
+    Level.COARSE: Fineness(5.0, 3.0, 7.0, 1.5, 0.9, 4, 1 / 20, False),
+    Level.NORMAL: Fineness(7.0, 2.0, 9.0, 1.1, 0.7, 6, 1 / 40, True),
+    Level.FINE: Fineness(10.0, 1.5, 13.0, 0.8, 0.6, 6, 1 / 60, True),
+}
+EDGE_ROW: Final = 0.12
+"""Width of the row of edge cells, in spacer heights."""
+_TOP_FREQUENCY = 1.1  # the band solved for reaches this far above the brief's frequency
+_SIMPLER = 0.01  # outline points closer to a straight line than this, in spacer heights, are left
+_COLLAR = 1.3  # least copper round the probe, in radii of its prism
+
+
+@dataclass(frozen=True)
+class CoaxRing:
+    """Mouth of the coax in the ground plate.
+
+    Attributes
+    ----------
+    x, y : float
+        Centre, m.
+    inner, outer : float
+        Radii of the pin and of the clearance hole, m.
+    """
+
+    x: float
+    y: float
+    inner: float
+    outer: float
+
+
+@dataclass(frozen=True, eq=False)
+class Mesh:
+    """Triangles of all conductors.
+
+    Attributes
+    ----------
+    vertices : (v, 3) ndarray of float
+        m; the ground plate at z = 0.
+    triangles : (t, 3) ndarray of int
+        Counter-clockwise seen from above on the plates, from outside on the probe.
+    sheet : (t,) ndarray of int
+        `Sheet` of each triangle.
+    port : CoaxRing or None
+        Where the antenna is fed.
+    """
+
+    vertices: Floats
+    triangles: Ints
+    sheet: Ints
+    port: CoaxRing | None
+
+
+def build_mesh(layout: Layout, level: Level) -> Mesh:
+    """Mesh of a layout's copper over its finite ground plate.
+
+    Parameters
+    ----------
+    layout : Layout
+    level : Level
+
+    Returns
+    -------
+    Mesh
+
+    Raises
+    ------
+    ModelError
+        If the probe does not stand between copper and ground plate, or an outline
+        cannot be meshed.
+    """
+    fine, height = FINENESS[level], layout.height
+    wavelength = SPEED_OF_LIGHT / (layout.frequency * _TOP_FREQUENCY)
+    port = layout.ports[0]
+    pin = _prism(port, fine.probe_sides)
+    cell = wavelength / fine.per_wavelength
+    top = _sheets(layout, Role.TOP_COPPER, pin, cell)
+    ground = _sheets(layout, Role.GROUND_COPPER, pin, cell)
+    row = EDGE_ROW * height
+    parts = []
+    for piece in top:
+        parts.append(_plate(piece, _top_sizes(layout, piece, pin, fine), row, pin, height))
+    for piece in ground:
+        sizes = _ground_sizes(layout, top, pin, fine, cell)
+        rim = row if fine.ground_row else 0.0
+        parts.append(_plate(piece, sizes, rim, pin, 0.0))
+    parts.append(_tube(pin, height, max(1, ceil(height / (fine.probe_cell * wavelength)))))
+    sheets = [Sheet.TOP] * len(top) + [Sheet.GROUND] * len(ground) + [Sheet.PROBE]
+    return _joined(parts, sheets, _mouth(layout))
+
+
+def _mouth(layout: Layout) -> CoaxRing:
+    port = layout.ports[0]
+    clearance = max(
+        hole.diameter for hole in layout.holes if hypot(hole.x - port.x, hole.y - port.y) < 1e-9
+    )
+    return CoaxRing(port.x, port.y, port.diameter / 2.0, clearance / 2.0)
+
+
+def _prism(port: Port, sides: int) -> Floats:
+    """Corners (sides, 2) of a prism that carries a current like the round pin's.
+
+    Its cross-section has the logarithmic capacity of the circle: side times
+    Γ(1/n) / (2^(1+2/n) √π Γ(1/2+1/n)) is the radius [Pólya and Szegő, Isoperimetric
+    Inequalities in Mathematical Physics, 1951, table p. 252; from memory].
+    """
+    n = sides
+    share = gamma(1 / n) / (2.0 ** (1 + 2 / n) * pi**0.5 * gamma(0.5 + 1 / n))
+    radius = port.diameter / 2.0 / share / (2.0 * sin(pi / n))
+    turns = [2.0 * pi * (i + 0.5) / n for i in range(n)]
+    return np.array([(port.x + radius * cos(a), port.y + radius * sin(a)) for a in turns])
+
+
+def _sheets(
+    layout: Layout, role: Role, pin: Floats, chord: float
+) -> tuple[shapely.Polygon, ...]:
+    """Connected sheets of one role, the pin's outline cut out of the one that it meets."""
+    regions = [piece.region for piece in layout.pieces if piece.role is role]
+    if role is Role.GROUND_COPPER:  # the coax's mouth is closed and fed by a ring source
+        pieces = [shapely.Polygon(_faceted(region, chord).exterior) for region in regions]
+    else:
+        pieces = [_faceted(region, chord) for region in regions]
+    hole = shapely.Polygon(pin)
+    joined = shapely.union_all(pieces)
+    if not joined.contains(hole.centroid):
+        raise ModelError(f"mesh: the probe does not meet the {role.value}; accepted: on the copper")
+    if role is Role.TOP_COPPER:
+        joined = shapely.union(joined, shapely.Polygon(_grown(pin, _COLLAR)))
+    elif not joined.contains(hole):
+        raise ModelError("mesh: the probe breaks the rim of the ground plate; accepted: inside it")
+    simple = shapely.simplify(joined, _SIMPLER * layout.height)
+    return tuple(
+        part.difference(hole) if part.contains(hole) else part
+        for part in shapely.get_parts(simple)
+        if isinstance(part, shapely.Polygon)
+    )
+
+
+def _faceted(region: Region, chord: float) -> shapely.Polygon:
+    """Polygon of a region, its arcs in facets not much longer than a chord, of equal area."""
+    corners = [(vertex.x, vertex.y) for vertex in region.exterior.vertices]
+    radius = max(np.ptp(corners, axis=0)) / 2.0
+    return polygon(region, min(chord**2 / (8.0 * radius), 0.15 * radius))
+
+
+def _grown(ring: Floats, factor: float) -> Floats:
+    middle = ring.mean(axis=0)
+    return np.asarray(middle + factor * (ring - middle))
+
+
+def _pin_number(piece: shapely.Polygon, pin: Floats) -> tuple[int, ...]:
+    """Number of the hole that is the pin's outline, if this sheet has it."""
+    middle = shapely.Point(*pin.mean(axis=0))
+    return tuple(
+        i for i, ring in enumerate(piece.interiors) if shapely.Polygon(ring).contains(middle)
+    )
+
+
+def _pin_wish(pin: Floats) -> tuple[Floats, float]:
+    side = float(np.linalg.norm(pin[1] - pin[0]))
+    return np.hstack([pin, np.roll(pin, -1, axis=0)]), side
+
+
+def _top_sizes(layout: Layout, piece: shapely.Polygon, pin: Floats, fine: Fineness) -> Sizes:
+    """Coarse over the element, finer on strips by their width."""
+    largest = min(layout.element_width, layout.element_length) / fine.across
+    segments = np.concatenate(
+        [ring_segments(piece.exterior), *(ring_segments(ring) for ring in piece.interiors)]
+    )
+    widths = _copper_widths(segments)
+    wishes = [
+        (segments[i : i + 1], fine.strip_aspect * widths[i])
+        for i in np.flatnonzero(fine.strip_aspect * widths < largest)
+    ]
+    return sizes_near(largest, fine.growth, [*wishes, _pin_wish(pin)])
+
+
+def _copper_widths(segments: Floats) -> Floats:
+    """Width of the copper behind each side, m: the least met along it."""
+    along = segments[:, 2:] - segments[:, :2]
+    lengths = np.linalg.norm(along, axis=1)
+    inward = np.column_stack([-along[:, 1], along[:, 0]]) / lengths[:, None]
+    widths = np.full(len(segments), np.inf)
+    for place in (0.1, 0.5, 0.9):
+        start = segments[:, :2] + place * along
+        widths = np.minimum(widths, first_hits(start, inward, segments))
+    return widths
+
+
+def _ground_sizes(
+    layout: Layout,
+    top: tuple[shapely.Polygon, ...],
+    pin: Floats,
+    fine: Fineness,
+    largest: float,
+) -> Sizes:
+    """Coarse far away, as fine as the spacer is high under copper edges."""
+    detail = fine.ground_detail * layout.height
+    edges = np.concatenate([ring_segments(piece.exterior) for piece in top])
+    return sizes_near(largest, fine.growth, [(edges, detail), _pin_wish(pin)])
+
+
+def _plate(
+    piece: shapely.Polygon, sizes: Sizes, row: float, pin: Floats, z: float
+) -> tuple[Floats, Ints]:
+    points, triangles = triangulate(piece, sizes, row, _pin_number(piece, pin))
+    return np.column_stack([points, np.full(len(points), z)]), triangles
+
+
+def _tube(pin: Floats, height: float, rows: int) -> tuple[Floats, Ints]:
+    """Side faces of the prism from the ground plate to the top copper."""
+    n = len(pin)
+    levels = np.linspace(0.0, height, rows + 1)
+    vertices = np.vstack([np.column_stack([pin, np.full(n, z)]) for z in levels])
+    low = (np.arange(rows)[:, None] * n + np.arange(n)).ravel()
+    right = (np.arange(rows)[:, None] * n + (np.arange(n) + 1) % n).ravel()
+    first = np.column_stack([low, right, right + n])
+    second = np.column_stack([low, right + n, low + n])
+    return vertices, np.concatenate([first, second]).astype(np.int64)
+
+
+def _joined(
+    parts: list[tuple[Floats, Ints]], sheets: list[Sheet], port: CoaxRing
+) -> Mesh:
+    """One mesh of several, vertices in the same place made one."""
+    vertices = np.concatenate([points for points, _ in parts])
+    starts = np.cumsum([0, *(len(points) for points, _ in parts)])
+    triangles = np.concatenate([t + s for (_, t), s in zip(parts, starts, strict=False)])
+    sheet = np.repeat([int(s) for s in sheets], [len(t) for _, t in parts])
+    scale = np.abs(vertices).max()
+    keys = np.round(vertices / (1e-7 * scale)).astype(np.int64)
+    _, first, number = np.unique(keys, axis=0, return_index=True, return_inverse=True)
+    return Mesh(vertices[first], np.asarray(number.reshape(-1)[triangles]), sheet, port)
