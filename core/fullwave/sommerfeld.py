@@ -22,12 +22,14 @@ if TYPE_CHECKING:
     Floats = NDArray[np.float64]
     Complexes = NDArray[np.complex128]
 
-_ARCH_POINTS: Final = 144
+_ARCH_PIECES: Final = 9
 _ARCH_HEIGHT: Final = 0.35  # of the largest free-space wavenumber
 _ARCH_GROWTH: Final = 2.5  # largest height times distance: J0 grows as its exponential
 _ARCH_END: Final = 1.5  # times the largest wavenumber in the stack
 _PANEL_NODES: Final = 16  # of the spectrum in an octave of the tail
+_TURNED: Final = 12.0  # turn of J0, in radians, over a piece of as many nodes
 _FADE_FROM: Final = 80.0  # argument of J0 from which it is faded out
+_NODES: Final = legendre.leggauss(_PANEL_NODES)
 
 
 @dataclass(frozen=True, eq=False)
@@ -99,7 +101,7 @@ def sommerfeld_rule(
     """
     farthest = float(distances.max())
     start = _ARCH_END * largest_wavenumber
-    x, weight = legendre.leggauss(_ARCH_POINTS)
+    x, weight = composite_nodes(_ARCH_PIECES)
     height = min(_ARCH_HEIGHT * wavenumber, _ARCH_GROWTH / farthest)
     phase = 0.5 * np.pi * (1.0 + x)
     arch = start * phase / np.pi + 1j * height * np.sin(phase)
@@ -110,7 +112,7 @@ def sommerfeld_rule(
     panels = [_panel(distances, a, fade) for a in edges[:-1]]
     return SommerfeldRule(
         k_rho=np.concatenate([arch, *(nodes for nodes, _ in panels)]),
-        arch=_ARCH_POINTS,
+        arch=len(arch),
         arch_weights=arch_weights,
         tail_weights=np.concatenate([weights for _, weights in panels], axis=1),
         end=float(edges[-1]),
@@ -119,19 +121,24 @@ def sommerfeld_rule(
 
 def _panel(distances: Floats, start: float, fade: float) -> tuple[Floats, Floats]:
     """Samples and weights of the octave from `start`."""
-    x, weight = legendre.leggauss(_PANEL_NODES)
-    fine_count = _PANEL_NODES + int(0.75 * min(2.0 * fade, start * distances.max()))
-    fine, fine_weight = legendre.leggauss(fine_count)
+    x, weight = _NODES
+    pieces = 1 + int(min(fade, 0.5 * start * distances.max()) / _TURNED)
+    fine, fine_weight = composite_nodes(pieces)
     k = start * (1.5 + 0.5 * fine)
     reached = distances * start < 2.0 * fade
     turns = np.multiply.outer(distances[reached], k)
     faded = j0(turns) * 0.5 * erfc(4.0 * (2.0 * turns / fade - 3.0))
     # Legendre coefficients from the values at the Gauss points, back at the fine points
     degree = np.arange(_PANEL_NODES)
-    to_coefficients = (
-        legendre.legvander(x, _PANEL_NODES - 1) * weight[:, None] * (degree + 0.5)
-    )
+    to_coefficients = legendre.legvander(x, _PANEL_NODES - 1) * weight[:, None] * (degree + 0.5)
     interpolate = to_coefficients @ legendre.legvander(fine, _PANEL_NODES - 1).T
     weights = np.zeros((len(distances), _PANEL_NODES))
     weights[reached] = faded @ (interpolate * (k * fine_weight)).T * (0.5 * start / TWO_PI)
     return start * (1.5 + 0.5 * x), weights
+
+
+def composite_nodes(pieces: int) -> tuple[Floats, Floats]:
+    """Gauss points and weights on equal pieces of -1 to 1."""
+    x, weight = _NODES
+    middles = (2.0 * np.arange(pieces) + 1.0) / pieces - 1.0
+    return (middles[:, None] + x / pieces).ravel(), np.tile(weight / pieces, pieces)
