@@ -169,3 +169,38 @@ class _Shot:
         *_, value, flux = cut[-1]
         crossings = sum(a * b < 0.0 for a, b in zip(values, values[1:], strict=False))
         return crossings + ((flux + decay * value) * value < 0.0)
+
+    def wave(self, decay: float, profiles: int) -> SurfaceWave:
+        """The guided wave of this decay, with what excites it."""
+        x, gauss = _GAUSS
+        cut = self.slices(decay)
+        value_at_top = cut[-1][4]
+        order = np.arange(profiles)[:, None] * np.pi / total_thickness(self.layers)
+        norm = value_at_top**2 / (2.0 * decay)
+        vertical, bottom = np.zeros(profiles), 0.0
+        for depth, _, weight, squared, value, flux in cut[:-1]:
+            z = 0.5 * depth * (1.0 + x)
+            cosh, sinh = _hyperbolic(squared, z)
+            share = 0.5 * depth * gauss / weight
+            inside = cosh * value + weight * sinh * flux
+            norm += float(share @ inside**2)
+            vertical += np.cos(order * (bottom + z)) @ (share * inside)
+            bottom += depth
+        wavenumber = float(np.hypot(self.wavenumber, decay))
+        if self.transverse_electric:
+            horizontal, vertical = complex(value_at_top), 0.0 * vertical
+        else:
+            horizontal, vertical = -1j * decay * value_at_top, wavenumber * vertical
+        return SurfaceWave(
+            transverse_electric=self.transverse_electric,
+            wavenumber=wavenumber,
+            decay=decay,
+            horizontal=horizontal / norm**0.5,
+            vertical=vertical / norm**0.5,
+        )
+
+
+def _hyperbolic(squared: float, depth: Floats | float) -> tuple[Floats, Floats]:
+    """cosh(alpha z) and sinh(alpha z)/alpha for a real alpha² of either sign."""
+    alpha = np.emath.sqrt(squared) or 1e-12
+    return np.cosh(alpha * depth).real, (np.sinh(alpha * depth) / alpha).real
