@@ -109,9 +109,10 @@ def fit_rational(frequencies: Floats, samples: Complexes, most_support: int) -> 
         if not rest:
             break
         error = np.zeros_like(scaled)
-        error[rest] = Rational(frequencies[chosen], weights, scaled[chosen]).at(
-            frequencies[rest]
-        ) - scaled[rest]
+        error[rest] = (
+            Rational(frequencies[chosen], weights, scaled[chosen]).at(frequencies[rest])
+            - scaled[rest]
+        )
         if np.max(np.abs(error)) < _EXACT:
             break
     return fit
