@@ -22,6 +22,7 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING, Final
 
 import numpy as np
+from scipy.sparse import csr_array
 from scipy.special import gamma, kv
 
 from core.constants import TWO_PI
@@ -44,6 +45,7 @@ _TAIL_SAMPLES: Final = np.array([1.0, 2.0, 4.0])  # of the end of the path, wher
 _DIED: Final = 8.0  # attenuations by the top layer until a spectrum has died
 _SHORTEST, _LONGEST = 1500, 8000  # tables, in entries
 _PER_SPAN, _AT_LEAST = 16, 24  # distances
+_WINDOW: Final = 12  # of them, to interpolate between
 
 
 @dataclass(frozen=True, eq=False)
@@ -99,7 +101,7 @@ class TablePlan:
     step : float
         Between entries of the tables, m.
     rule : SommerfeldRule
-    spread : (u, d) ndarray of float
+    spread : (u, d) sparse array of float
         From values at the rule's distances to the entries.
     rate : float
         Decay of the functions that stand for the end of a spectrum, 1/m.
@@ -116,7 +118,7 @@ class TablePlan:
     near: float
     step: float
     rule: SommerfeldRule
-    spread: Floats
+    spread: csr_array
     rate: float
     tail: Floats
     log_rest: Floats
@@ -147,9 +149,16 @@ class TablePlan:
         powers = (k_rho**2 + self.rate**2)[:, None] ** (-0.5 * _TAIL_POWERS)
         fit = rest[..., -3:] @ np.linalg.inv(powers[-3:]).T
         rest = rest[..., :-3] - fit @ powers[:-3].T
-        entries = _mixed(self.rule.integrate(rest), self.spread) + _mixed(fit, self.tail)
+        entries = self._spread(self.rule.integrate(rest)) + fit @ self.tail.T
         entries += log * self.log_rest / TWO_PI
         return self._named(entries, fit, log)
+
+    def _spread(self, values: Complexes) -> Complexes:
+        """From the rule's distances to the entries, on the last axis."""
+        flat = values.reshape(-1, values.shape[-1])
+        parts = self.spread @ np.concatenate([flat.real, flat.imag]).T
+        real, imaginary = np.split(parts.T, 2)
+        return (real + 1j * imaginary).reshape(*values.shape[:-1], -1)
 
     def _log_weights(self, wavenumber: Floats) -> Complexes:
         """Limit of k_rho² times each spectrum, (q, f, 1), once images are taken out."""
@@ -227,7 +236,7 @@ def plan_tables(
     distances, spread, step = _spacing(reach, finest, height)
     rule = sommerfeld_rule(distances, wavenumber, densest, max(_DIED / finest, 12.0 * densest))
     rate = max(1.0 / height, densest)
-    scaled = rate * step * np.arange(len(spread))
+    scaled = rate * step * np.arange(spread.shape[0])
     scaled[0] = 1e-6  # the functions below are finite there, but their factors are not
     order = 0.5 * _TAIL_POWERS - 1.0
     tail = (0.5 * scaled[:, None]) ** order * kv(order, scaled[:, None]) / gamma(order + 1.0)
@@ -245,7 +254,7 @@ def plan_tables(
     )
 
 
-def _spacing(reach: float, finest: float, height: float) -> tuple[Floats, Floats, float]:
+def _spacing(reach: float, finest: float, height: float) -> tuple[Floats, csr_array, float]:
     """Distances to integrate for, the matrix from there to even steps, and the step."""
     span = np.arcsinh(reach / finest)
     count = int(_PER_SPAN * span) + _AT_LEAST
@@ -254,17 +263,22 @@ def _spacing(reach: float, finest: float, height: float) -> tuple[Floats, Floats
     step = max(min(reach / _SHORTEST, height / 6.0, finest / 3.0), reach / _LONGEST)
     entries = int(np.ceil(reach / step)) + 2
     even = np.arcsinh(np.minimum(step * np.arange(entries), reach) / finest) / span
-    weight = (-1.0) ** np.arange(count)
-    weight[[0, -1]] *= 0.5
-    gap = even[:, None] - nodes
-    gap[gap == 0.0] = 1e-300  # an entry at a node takes its value
-    spread = weight / gap
-    return finest * np.sinh(span * nodes), spread / spread.sum(axis=1, keepdims=True), step
+    return finest * np.sinh(span * nodes), _interpolation(nodes, even), step
 
 
-def _mixed(values: Complexes, matrix: Floats) -> Complexes:
-    """values @ matrix.T without making the matrix complex."""
-    return values.real @ matrix.T + 1j * (values.imag @ matrix.T)
+def _interpolation(nodes: Floats, wanted: Floats) -> csr_array:
+    """Matrix from values at rising nodes to values between them: polynomials through some."""
+    first = np.searchsorted(nodes, wanted) - _WINDOW // 2
+    columns = np.clip(first, 0, len(nodes) - _WINDOW)[:, None] + np.arange(_WINDOW)
+    near = nodes[columns]
+    apart = near[:, :, None] - near[:, None, :]
+    apart[:, np.arange(_WINDOW), np.arange(_WINDOW)] = 1.0
+    gap = wanted[:, None] - near
+    gap[gap == 0.0] = 1e-30  # at a node its own value outweighs the others
+    weights = 1.0 / (apart.prod(axis=2) * gap)
+    weights /= weights.sum(axis=1, keepdims=True)
+    starts = np.arange(len(wanted) + 1) * _WINDOW
+    return csr_array((weights.ravel(), columns.ravel(), starts), shape=(len(wanted), len(nodes)))
 
 
 def _stacked(spectra: KernelSpectra) -> Complexes:

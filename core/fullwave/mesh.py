@@ -242,9 +242,9 @@ def _pin_wish(pin: Floats) -> tuple[Floats, float]:
 def _top_sizes(layout: Layout, piece: shapely.Polygon, pin: Floats, fine: Fineness) -> Sizes:
     """Coarse over the element, finer on strips by their width."""
     largest = min(layout.element_width, layout.element_length) / fine.across
-    segments = np.concatenate(
-        [ring_segments(piece.exterior), *(ring_segments(ring) for ring in piece.interiors)]
-    )
+    pin_hole = _pin_number(piece, pin)
+    free = [ring for i, ring in enumerate(piece.interiors) if i not in pin_hole]
+    segments = np.concatenate([ring_segments(ring) for ring in (piece.exterior, *free)])
     widths = _copper_widths(segments)
     wishes = [
         (segments[i : i + 1], fine.strip_aspect * widths[i])

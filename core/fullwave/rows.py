@@ -24,7 +24,7 @@ if TYPE_CHECKING:
     Ints = NDArray[np.int64]
 
 _SHARE = 0.2  # of a strip's width that the row along each of its edges takes at most
-_SHORT_SIDE = 0.35  # of a short side that the rows of its two neighbours may take each
+_TOGETHER = 0.5  # row points closer than this, in row widths, are made one
 _LONGEST_MITRE = 2.5  # row widths
 
 
@@ -67,26 +67,28 @@ def edging(polygon: shapely.Polygon, sizes: Sizes, row: float, plain: tuple[int,
     """
     whole = orient(polygon)
     rings = [whole.exterior, *whole.interiors]
-    sides = np.concatenate([ring_segments(ring) for ring in rings])
+    free = [ring for number, ring in enumerate(rings) if number - 1 not in plain]
+    sides = np.concatenate([ring_segments(ring) for ring in free])
     outer, inner, edges, rows = [], [], [], []
-    start = 0
+    count = 0
     for number, ring in enumerate(rings):
         own = ring_segments(ring)
         is_plain = number - 1 in plain
         points, side = _sampled(own, None if is_plain else sizes)
-        n = len(points)
+        loop = count + np.arange(len(points))
+        count += len(points)
         outer.append(points)
-        loop = start + np.arange(n)
         edges.append(np.column_stack([loop, np.roll(loop, -1)]))
         if row > 0.0 and not is_plain:
-            inner.append((loop, points + _offsets(points, side, own, sides, row)))
-        start += n
+            steps, depths = _offsets(points, side, own, sides, row)
+            inner.append((loop, *_merged(points, points + steps, depths)))
     all_points = list(outer)
-    for loop, points in inner:
-        partner = start + np.arange(len(points))
+    for loop, points, owner in inner:
+        partner = count + owner
         all_points.append(points)
-        rows += [np.column_stack([partner, np.roll(partner, -1)]), np.column_stack([loop, partner])]
-        start += len(points)
+        along = np.column_stack([partner, np.roll(partner, -1)])
+        rows += [along[along[:, 0] != along[:, 1]], np.column_stack([loop, partner])]
+        count += len(points)
     joined = np.concatenate(rows) if rows else np.empty((0, 2), dtype=np.int64)
     return Edging(np.concatenate(all_points), np.concatenate(edges), joined)
 
@@ -113,12 +115,14 @@ def _places(start: Floats, end: Floats, sizes: Sizes | None) -> Floats:
     return np.interp(np.arange(number) / number * cells[-1], cells, np.arange(25) / 24)
 
 
-def _offsets(points: Floats, side: Ints, own: Floats, sides: Floats, row: float) -> Floats:
-    """Steps from the points of a ring to the inner side of its row."""
+def _offsets(
+    points: Floats, side: Ints, own: Floats, sides: Floats, row: float
+) -> tuple[Floats, Floats]:
+    """Steps from the points of a ring to the inner side of its row, and the row's width there."""
     along = own[:, 2:] - own[:, :2]
     lengths = np.linalg.norm(along, axis=1)
     inward = np.column_stack([-along[:, 1], along[:, 0]]) / lengths[:, None]
-    depths = _depths(points, side, inward, sides, lengths, row)
+    depths = _depths(points, side, inward, sides, row)
     before = np.roll(side, 1)
     n0, n1, d0, d1 = inward[before], inward[side], depths[before], depths[side]
     turn = n0[:, 0] * n1[:, 1] - n0[:, 1] * n1[:, 0]
@@ -131,21 +135,31 @@ def _offsets(points: Floats, side: Ints, own: Floats, sides: Floats, row: float)
     steps = np.where(corner[:, None], mitre, straight)
     longest = _LONGEST_MITRE * np.maximum(d0, d1)
     reach = np.maximum(np.linalg.norm(steps, axis=1), 1e-300)
-    return np.asarray(steps * np.minimum(1.0, longest / reach)[:, None])
+    return steps * np.minimum(1.0, longest / reach)[:, None], np.minimum(d0, d1)
 
 
-def _depths(
-    points: Floats, side: Ints, inward: Floats, sides: Floats, lengths: Floats, row: float
-) -> Floats:
+def _depths(points: Floats, side: Ints, inward: Floats, sides: Floats, row: float) -> Floats:
     """Width of the row along each side of a ring."""
-    middles = (points + np.roll(points, -1, axis=0)) / 2.0
-    across = first_hits(middles, inward[side], sides)
-    depths = np.full(len(lengths), row)
-    np.minimum.at(depths, side, _SHARE * across)
-    # A convex corner shortens the inner side by its neighbours' rows.
-    limit = _SHORT_SIDE * lengths
-    turn = inward[:, 0] * np.roll(inward[:, 1], -1) - inward[:, 1] * np.roll(inward[:, 0], -1)
-    convex = turn > 0.05  # at the end of each side
-    depths = np.where(convex, np.minimum(depths, np.roll(limit, -1)), depths)
-    before = np.roll(convex, 1)
-    return np.asarray(np.where(before, np.minimum(depths, np.roll(limit, 1)), depths))
+    depths = np.full(len(inward), row)
+    ahead = np.roll(points, -1, axis=0) - points
+    for place in (0.1, 0.5, 0.9):
+        across = first_hits(points + place * ahead, inward[side], sides)
+        np.minimum.at(depths, side, _SHARE * across)
+    return depths
+
+
+def _merged(points: Floats, inner: Floats, depths: Floats) -> tuple[Floats, Ints]:
+    """Row points, neighbours made one where a short side squeezes them; the number of each."""
+    n = len(points)
+    step = np.roll(inner, -1, axis=0) - inner
+    forward = np.sum(step * (np.roll(points, -1, axis=0) - points), axis=1) > 0.0
+    squeezed = ~forward | (np.linalg.norm(step, axis=1) < _TOGETHER * depths)
+    if squeezed.all():
+        return inner, np.arange(n)
+    first = int(np.flatnonzero(~squeezed)[0]) + 1
+    order = (first + np.arange(n)) % n
+    owner = np.empty(n, dtype=np.int64)
+    owner[order] = np.concatenate([[0], np.cumsum(~squeezed[order][:-1])])
+    sums = np.zeros((owner.max() + 1, 2))
+    np.add.at(sums, owner, inner)
+    return sums / np.bincount(owner)[:, None], owner

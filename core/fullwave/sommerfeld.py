@@ -28,6 +28,7 @@ _ARCH_GROWTH: Final = 2.5  # largest height times distance: J0 grows as its expo
 _ARCH_END: Final = 1.5  # times the largest wavenumber in the stack
 _PANEL_NODES: Final = 16  # of the spectrum in an octave of the tail
 _TURNED: Final = 12.0  # turn of J0, in radians, over a piece of as many nodes
+_SMALL_PRODUCT: Final = 200_000  # multiplications
 _FADE_FROM: Final = 80.0  # argument of J0 from which it is faded out
 _NODES: Final = legendre.leggauss(_PANEL_NODES)
 
@@ -66,9 +67,17 @@ class SommerfeldRule:
         (..., d) ndarray of complex
             integral of spectrum J0(k rho) k dk/(2 pi) at each distance.
         """
-        tail = np.ascontiguousarray(spectrum[..., self.arch :])
-        real = tail.real @ self.tail_weights.T + 1j * (tail.imag @ self.tail_weights.T)
-        return spectrum[..., : self.arch] @ self.arch_weights.T + real
+        flat = spectrum.reshape(-1, spectrum.shape[-1])
+        # Products small enough not to be shared out to threads: these would wait for each other
+        # longer than they work.
+        pieces = 1 + len(flat) * self.arch_weights.size // _SMALL_PRODUCT
+        done = [self._integrated(piece) for piece in np.array_split(flat, pieces)]
+        return np.concatenate(done).reshape(*spectrum.shape[:-1], -1)
+
+    def _integrated(self, spectrum: Complexes) -> Complexes:
+        arch, tail = np.split(spectrum, [self.arch], axis=1)
+        real, imaginary = tail.real @ self.tail_weights.T, tail.imag @ self.tail_weights.T
+        return arch @ self.arch_weights.T + (real + 1j * imaginary)
 
 
 def sommerfeld_rule(

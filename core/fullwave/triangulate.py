@@ -82,10 +82,9 @@ def _inside_only(edges: Edging, polygon: shapely.Polygon) -> Edging:
     if not len(inner):
         return edges
     rungs = edges.rows[np.isin(edges.rows[:, 0], np.arange(boundary))]
-    reach = np.zeros(len(edges.points))
-    reach[rungs[:, 1]] = np.linalg.norm(
-        edges.points[rungs[:, 1]] - edges.points[rungs[:, 0]], axis=1
-    )
+    reach = np.full(len(edges.points), np.inf)
+    long = np.linalg.norm(edges.points[rungs[:, 1]] - edges.points[rungs[:, 0]], axis=1)
+    np.minimum.at(reach, rungs[:, 1], long)
     lines = np.hstack([edges.points[edges.edges[:, 0]], edges.points[edges.edges[:, 1]]])
     clear = distances(inner, lines).min(axis=1) > 0.3 * reach[boundary:]
     good = shapely.contains_xy(polygon, inner[:, 0], inner[:, 1]) & clear
