@@ -15,7 +15,7 @@ from math import pi
 from typing import TYPE_CHECKING
 
 import numpy as np
-from numba import njit, prange  # type: ignore[import-untyped]
+from numba import njit, prange
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
@@ -28,7 +28,7 @@ _FAST = {"contract", "nnan", "ninf", "nsz", "arcp"}  # sums keep their order
 _BLOCK = 8  # triangles to a task
 
 
-@njit(inline="always", fastmath=_FAST)  # type: ignore[untyped-decorator]
+@njit(inline="always", fastmath=_FAST)
 def _sine_cosine(angle: float) -> tuple[float, float]:
     """Sine and cosine to 1e-11 without a branch: power series of half the reduced angle."""
     half = (angle - 2.0 * pi * np.floor(angle * (0.5 / pi) + 0.5)) * 0.5
@@ -53,7 +53,7 @@ def _sine_cosine(angle: float) -> tuple[float, float]:
     return 2.0 * s * c, 1.0 - 2.0 * s * s
 
 
-@njit(fastmath=_FAST, cache=True)  # type: ignore[untyped-decorator]
+@njit(fastmath=_FAST, cache=True)
 def _free_space_row(k: float, points: Floats, t: int, real: Floats, imag: Floats) -> None:
     """exp(-jkR)/R between the points of triangle t and of all; its finite part -jk at R = 0."""
     for i in range(3):
@@ -73,20 +73,20 @@ def _free_space_row(k: float, points: Floats, t: int, real: Floats, imag: Floats
         im[t] = -k
 
 
-@njit(fastmath=_FAST, cache=True)  # type: ignore[untyped-decorator]
+@njit(fastmath=_FAST, cache=True)
 def _add(weight: float, one: Floats, out: Floats) -> None:
     for s in range(out.shape[0]):
         out[s] += weight * one[s]
 
 
-@njit(fastmath=_FAST, cache=True)  # type: ignore[untyped-decorator]
+@njit(fastmath=_FAST, cache=True)
 def _add_sum(weight: float, three: Floats, out: Floats) -> None:
     a, b, c = three[0], three[1], three[2]
     for s in range(out.shape[0]):
         out[s] += weight * (a[s] + b[s] + c[s])
 
 
-@njit(fastmath=_FAST, cache=True)  # type: ignore[untyped-decorator]
+@njit(fastmath=_FAST, cache=True)
 def _weigh(kernel: Floats, places: Floats, origin: float, out: Floats) -> None:
     """Sum a kernel (3, t) over source points, each times one coordinate (3, t) less the origin."""
     g0, g1, g2 = kernel[0], kernel[1], kernel[2]
@@ -95,7 +95,7 @@ def _weigh(kernel: Floats, places: Floats, origin: float, out: Floats) -> None:
         out[s] = g0[s] * (x0[s] - origin) + g1[s] * (x1[s] - origin) + g2[s] * (x2[s] - origin)
 
 
-@njit(fastmath=_FAST, cache=True)  # type: ignore[untyped-decorator]
+@njit(fastmath=_FAST, cache=True)
 def _project(
     both: Floats, test: Floats, places: Floats, origin: Floats, lengths: Floats, out: Floats
 ) -> None:
@@ -108,7 +108,7 @@ def _project(
         out[s] = lengths[s] * current
 
 
-@njit(fastmath=_FAST, cache=True)  # type: ignore[untyped-decorator]
+@njit(fastmath=_FAST, cache=True)
 def _half_moments(
     vector: Floats,
     scalar: Floats,
@@ -158,12 +158,16 @@ def _half_moments(
         mine *= half_lengths[a, t] / 9.0
         for b in range(3):
             _project(
-                mine, from_corner, corners[:, b], middle, half_lengths[b],
+                mine,
+                from_corner,
+                corners[:, b],
+                middle,
+                half_lengths[b],
                 out[a, b * n : (b + 1) * n],
             )
 
 
-@njit(fastmath=_FAST, cache=True)  # type: ignore[untyped-decorator]
+@njit(fastmath=_FAST, cache=True)
 def _add_near(
     t: int,
     k_squared: float,
@@ -185,7 +189,7 @@ def _add_near(
                 out[a, b * n + s] += half_lengths[a, t] * half_lengths[b, s] * (current + charge)
 
 
-@njit(fastmath=_FAST, cache=True)  # type: ignore[untyped-decorator]
+@njit(fastmath=_FAST, cache=True)
 def _add_foil(t: int, sheet: complex, overlaps: Floats, real: Floats, imag: Floats) -> None:
     """Add the voltage drop of the current of triangle t in its own foil."""
     n = real.shape[1] // 3
@@ -195,7 +199,7 @@ def _add_foil(t: int, sheet: complex, overlaps: Floats, real: Floats, imag: Floa
             imag[a, b * n + t] += sheet.imag * overlaps[t, a, b]
 
 
-@njit(fastmath=_FAST, cache=True)  # type: ignore[untyped-decorator]
+@njit(fastmath=_FAST, cache=True)
 def _add_rows(
     t: int,
     real: Floats,
@@ -218,12 +222,10 @@ def _add_rows(
             scale = factor * signs[place]
             re, im = real[a], imag[a]
             for m in range(n):
-                row[m] += scale * complex(
-                    re[plus[m]] - re[minus[m]], im[plus[m]] - im[minus[m]]
-                )
+                row[m] += scale * complex(re[plus[m]] - re[minus[m]], im[plus[m]] - im[minus[m]])
 
 
-@njit(parallel=True, fastmath=_FAST, cache=True)  # type: ignore[untyped-decorator]
+@njit(parallel=True, fastmath=_FAST, cache=True)
 def fill_free_space(
     k: float,
     factor: complex,

@@ -25,7 +25,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 import numpy as np
-from numba import njit, prange  # type: ignore[import-untyped]
+from numba import njit, prange
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
@@ -37,7 +37,7 @@ _TINY = 1e-300
 _FAST = {"contract", "nnan", "ninf", "nsz", "arcp"}  # sums keep their order
 
 
-@njit(error_model="numpy", cache=True)  # type: ignore[untyped-decorator]
+@njit(error_model="numpy", cache=True)
 def _line_log(low: float, high: float, r_low: float, r_high: float) -> float:
     """Integral of 1/R along a segment: log((R+ + s+) / (R- + s-)), without cancellation."""
     if low + high >= 0.0:
@@ -45,7 +45,7 @@ def _line_log(low: float, high: float, r_low: float, r_high: float) -> float:
     return float(np.log((r_low - low) / max(r_high - high, _TINY)))
 
 
-@njit(error_model="numpy", fastmath=_FAST, cache=True)  # type: ignore[untyped-decorator]
+@njit(error_model="numpy", fastmath=_FAST, cache=True)
 def _add_edge(
     one: Floats, two: Floats, normal: Floats, foot: Floats, height: float, out: Floats
 ) -> float:
@@ -79,13 +79,11 @@ def _add_edge(
     under = squared + abs(height) * r_low
     # One arc tangent for the difference of two, which lie within a quarter turn each.
     return float(
-        np.arctan2(
-            away * (high * under - low * over), over * under + away * away * high * low
-        )
+        np.arctan2(away * (high * under - low * over), over * under + away * away * high * low)
     )
 
 
-@njit(error_model="numpy", fastmath=_FAST, cache=True)  # type: ignore[untyped-decorator]
+@njit(error_model="numpy", fastmath=_FAST, cache=True)
 def _source_integrals(point: Floats, corners: Floats, normal: Floats, out: Floats) -> None:
     """Integrals over a triangle, seen from a point.
 
@@ -105,11 +103,19 @@ def _source_integrals(point: Floats, corners: Floats, normal: Floats, out: Float
     out[7] += height * height * out[3] / 3.0
 
 
-@njit(error_model="numpy", cache=True)  # type: ignore[untyped-decorator]
+@njit(error_model="numpy", cache=True)
 def _normal(corners: Floats, out: Floats) -> float:
     """Write the unit normal; return twice the area."""
-    x1, y1, z1 = corners[1, 0] - corners[0, 0], corners[1, 1] - corners[0, 1], corners[1, 2] - corners[0, 2]
-    x2, y2, z2 = corners[2, 0] - corners[0, 0], corners[2, 1] - corners[0, 1], corners[2, 2] - corners[0, 2]
+    x1, y1, z1 = (
+        corners[1, 0] - corners[0, 0],
+        corners[1, 1] - corners[0, 1],
+        corners[1, 2] - corners[0, 2],
+    )
+    x2, y2, z2 = (
+        corners[2, 0] - corners[0, 0],
+        corners[2, 1] - corners[0, 1],
+        corners[2, 2] - corners[0, 2],
+    )
     out[0] = y1 * z2 - z1 * y2
     out[1] = z1 * x2 - x1 * z2
     out[2] = x1 * y2 - y1 * x2
@@ -119,7 +125,7 @@ def _normal(corners: Floats, out: Floats) -> float:
     return float(twice)
 
 
-@njit(error_model="numpy", fastmath=_FAST, cache=True)  # type: ignore[untyped-decorator]
+@njit(error_model="numpy", fastmath=_FAST, cache=True)
 def _add_exact(
     test: Floats, source: Floats, rule: Floats, weight: float, work: Floats, moments: Floats
 ) -> None:
@@ -143,10 +149,8 @@ def _add_exact(
                 moments[term, 7] += point[axis] * arm
 
 
-@njit(error_model="numpy", fastmath=_FAST, cache=True)  # type: ignore[untyped-decorator]
-def _add_points(
-    test: Floats, source: Floats, rule: Floats, weight: float, moments: Floats
-) -> None:
+@njit(error_model="numpy", fastmath=_FAST, cache=True)
+def _add_points(test: Floats, source: Floats, rule: Floats, weight: float, moments: Floats) -> None:
     """Add mean moments of 1/R and R (2, 8) by points over both triangles; nothing at R = 0."""
     n = rule.shape[0]
     for i in range(n):
@@ -174,7 +178,7 @@ def _add_points(
                 moments[term, 7] += kernel * dot
 
 
-@njit(error_model="numpy", cache=True)  # type: ignore[untyped-decorator]
+@njit(error_model="numpy", cache=True)
 def _pair_moments(
     test: Floats, source: Floats, rule: Floats, coarse: Floats, exact: bool, moments: Floats
 ) -> None:
@@ -195,7 +199,7 @@ def _pair_moments(
     _add_points(test, source, coarse, -1.0, moments)
 
 
-@njit(parallel=True, error_model="numpy", cache=True)  # type: ignore[untyped-decorator]
+@njit(parallel=True, error_model="numpy", cache=True)
 def near_terms(
     corners: Floats, pairs: Ints, kinds: Ints, lift: float, rules: Floats, starts: Ints
 ) -> tuple[Floats, Floats]:

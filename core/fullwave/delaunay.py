@@ -17,8 +17,6 @@ import numpy as np
 from scipy.spatial import Delaunay
 
 if TYPE_CHECKING:
-    from collections.abc import Iterator
-
     from numpy.typing import NDArray
 
     Floats = NDArray[np.float64]
@@ -56,10 +54,10 @@ def constrained_delaunay(points: Floats, must: Ints, should: Ints) -> tuple[Ints
     if not any(len(lines) for lines in missing):
         return triangles, True
     net = _Net(scaled, triangles, must)
-    complete = all([net.join(int(u), int(v)) for u, v in missing[0]])
-    for u, v in missing[1]:
-        net.join(int(u), int(v))
-    return net.triangles(), complete
+    joined = [net.join(u, v) for u, v in missing[0].tolist()]
+    for u, v in missing[1].tolist():
+        net.join(u, v)
+    return net.triangles(), all(joined)
 
 
 def _missing(lines: Ints, triangles: Ints, count: int) -> Ints:
@@ -109,7 +107,7 @@ class _Net:
         found = [(u, v, w) for (u, v), w in self._apex.items() if u < v and u < w]
         return np.array(sorted(found), dtype=np.int64)
 
-    def _crossings(self, a: int, b: int) -> Iterator[tuple[int, int]]:
+    def _crossings(self, a: int, b: int) -> list[tuple[int, int]]:
         """Inner edges that the line a-b crosses."""
         edges = np.array([e for e in self._apex if e[0] < e[1] and e[::-1] in self._apex])
         p = self._points
@@ -117,8 +115,7 @@ class _Net:
         one = _cross(p[b] - p[a], start - p[a]) * _cross(p[b] - p[a], end - p[a])
         two = _cross(end - start, p[a] - start) * _cross(end - start, p[b] - start)
         free = ~np.isin(edges, (a, b)).any(axis=1)
-        for u, v in edges[(one < 0.0) & (two < 0.0) & free].tolist():
-            yield u, v
+        return [(u, v) for u, v in edges[(one < 0.0) & (two < 0.0) & free].tolist()]
 
     def _meet(self, u: int, v: int, a: int, b: int) -> bool:
         """Whether the lines u-v and a-b cross inside both."""

@@ -26,9 +26,7 @@ if TYPE_CHECKING:
 _AT_ONCE = 512  # directions
 
 
-def far_field(
-    basis: Basis, currents: Complexes, frequency: float, directions: Floats
-) -> Complexes:
+def far_field(basis: Basis, currents: Complexes, frequency: float, directions: Floats) -> Complexes:
     """Far field of currents in some directions.
 
     Parameters

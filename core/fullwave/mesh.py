@@ -78,11 +78,11 @@ class Fineness:
 
 
 FINENESS: Final = {
-    Level.COARSE: Fineness(5.0, 3.0, 7.0, 1.5, 0.9, 4, 1 / 20, False),
-    Level.NORMAL: Fineness(7.0, 2.0, 9.0, 1.1, 0.7, 6, 1 / 40, True),
-    Level.FINE: Fineness(10.0, 1.5, 13.0, 0.8, 0.6, 6, 1 / 60, True),
+    Level.COARSE: Fineness(4.0, 3.0, 5.5, 2.0, 1.0, 4, 1 / 10, False),
+    Level.NORMAL: Fineness(5.5, 2.0, 7.5, 1.3, 0.8, 6, 1 / 20, True),
+    Level.FINE: Fineness(8.5, 1.5, 11.0, 0.9, 0.6, 6, 1 / 40, True),
 }
-EDGE_ROW: Final = 0.12
+EDGE_ROW: Final = 0.1
 """Width of the row of edge cells, in spacer heights."""
 _TOP_FREQUENCY = 1.1  # the band solved for reaches this far above the brief's frequency
 _SIMPLER = 0.01  # outline points closer to a straight line than this, in spacer heights, are left
@@ -189,9 +189,7 @@ def _prism(port: Port, sides: int) -> Floats:
     return np.array([(port.x + radius * cos(a), port.y + radius * sin(a)) for a in turns])
 
 
-def _sheets(
-    layout: Layout, role: Role, pin: Floats, chord: float
-) -> tuple[shapely.Polygon, ...]:
+def _sheets(layout: Layout, role: Role, pin: Floats, chord: float) -> tuple[shapely.Polygon, ...]:
     """Connected sheets of one role, the pin's outline cut out of the one that it meets."""
     regions = [piece.region for piece in layout.pieces if piece.role is role]
     if role is Role.GROUND_COPPER:  # the coax's mouth is closed and fed by a ring source
@@ -207,11 +205,13 @@ def _sheets(
     elif not joined.contains(hole):
         raise ModelError("mesh: the probe breaks the rim of the ground plate; accepted: inside it")
     simple = shapely.simplify(joined, _SIMPLER * layout.height)
-    return tuple(
-        part.difference(hole) if part.contains(hole) else part
-        for part in shapely.get_parts(simple)
-        if isinstance(part, shapely.Polygon)
-    )
+    parts = [part for part in shapely.get_parts(simple) if isinstance(part, shapely.Polygon)]
+    return tuple(_pierced(part, hole) if part.contains(hole) else part for part in parts)
+
+
+def _pierced(part: shapely.Polygon, hole: shapely.Polygon) -> shapely.Polygon:
+    holes = [*(ring.coords for ring in part.interiors), hole.exterior.coords]
+    return shapely.Polygon(part.exterior.coords, holes)
 
 
 def _faceted(region: Region, chord: float) -> shapely.Polygon:
@@ -297,9 +297,7 @@ def _tube(pin: Floats, height: float, rows: int) -> tuple[Floats, Ints]:
     return vertices, np.concatenate([first, second]).astype(np.int64)
 
 
-def _joined(
-    parts: list[tuple[Floats, Ints]], sheets: list[Sheet], port: CoaxRing
-) -> Mesh:
+def _joined(parts: list[tuple[Floats, Ints]], sheets: list[Sheet], port: CoaxRing) -> Mesh:
     """One mesh of several, vertices in the same place made one."""
     vertices = np.concatenate([points for points, _ in parts])
     starts = np.cumsum([0, *(len(points) for points, _ in parts)])

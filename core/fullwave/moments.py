@@ -172,9 +172,7 @@ def _near(basis: Basis, pairs: Ints, kinds: Ints) -> tuple[Ints, Ints, Floats, F
     from core.fullwave.compiled_near import near_terms  # noqa: PLC0415 - slow to load
 
     starts = np.cumsum([0, *(len(rule) for rule in _RULES)])
-    terms, charges = near_terms(
-        basis.corners, pairs, kinds, 0.0, np.concatenate(_RULES), starts
-    )
+    terms, charges = near_terms(basis.corners, pairs, kinds, 0.0, np.concatenate(_RULES), starts)
     other = pairs[:, 0] != pairs[:, 1]
     test = np.concatenate([pairs[:, 0], pairs[other, 1]])
     source = np.concatenate([pairs[:, 1], pairs[other, 0]])

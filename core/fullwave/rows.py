@@ -23,7 +23,7 @@ if TYPE_CHECKING:
     Floats = NDArray[np.float64]
     Ints = NDArray[np.int64]
 
-_SHARE = 0.2  # of a strip's width that the row along each of its edges takes at most
+_SHARE = 0.25  # of a strip's width that the row along each of its edges takes at most
 _TOGETHER = 0.5  # row points closer than this, in row widths, are made one
 _LONGEST_MITRE = 2.5  # row widths
 
@@ -112,7 +112,7 @@ def _places(start: Floats, end: Floats, sizes: Sizes | None) -> Floats:
     wanted = sizes.at(start + middles[:, None] * (end - start))
     cells = np.concatenate([[0.0], np.cumsum(length / 24 / wanted)])
     number = max(1, round(cells[-1]))
-    return np.interp(np.arange(number) / number * cells[-1], cells, np.arange(25) / 24)
+    return np.asarray(np.interp(np.arange(number) / number * cells[-1], cells, np.arange(25) / 24))
 
 
 def _offsets(

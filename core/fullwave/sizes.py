@@ -45,7 +45,6 @@ class Sizes:
             np.minimum(wanted, near.min(axis=1), out=wanted)
         return wanted
 
-
     def box(self, longest: float) -> tuple[Floats, Floats]:
         """Corners of a box outside which every wanted edge is longer than `longest`, m."""
         short = self.at_segments < longest

@@ -140,7 +140,7 @@ def _triangles(points: Floats, edges: Edging, polygon: shapely.Polygon) -> Ints:
     longest = np.maximum(np.sum(ab**2, axis=1), np.sum(ac**2, axis=1))
     middle = (a + b + c) / 3.0
     inside = shapely.contains_xy(polygon, middle[:, 0], middle[:, 1])
-    return triangles[inside & (area > _FLAT * longest)]
+    return np.asarray(triangles[inside & (area > _FLAT * longest)])
 
 
 def _evened(points: Floats, triangles: Ints, fixed: int, sizes: Sizes) -> Floats:
