@@ -80,6 +80,10 @@ class _Net:
         for u, v, w in triangles.tolist():
             self._apex[u, v], self._apex[v, w], self._apex[w, u] = w, u, v
         self._fixed = {frozenset(line) for line in fixed.tolist()}
+        # Every edge there ever was; those swapped away are left out when they are used.
+        known = [edge for edge in self._apex if edge[0] < edge[1]]
+        self._known, self._ever = np.array(known), set(known)
+        self._later: list[tuple[int, int]] = []
 
     def join(self, a: int, b: int) -> bool:
         """Make a-b an edge by swapping the diagonals in its way; tell whether it is one."""
@@ -109,13 +113,14 @@ class _Net:
 
     def _crossings(self, a: int, b: int) -> list[tuple[int, int]]:
         """Inner edges that the line a-b crosses."""
-        edges = np.array([e for e in self._apex if e[0] < e[1] and e[::-1] in self._apex])
+        edges = np.vstack([self._known, *self._later])
         p = self._points
         start, end = p[edges[:, 0]], p[edges[:, 1]]
         one = _cross(p[b] - p[a], start - p[a]) * _cross(p[b] - p[a], end - p[a])
         two = _cross(end - start, p[a] - start) * _cross(end - start, p[b] - start)
         free = ~np.isin(edges, (a, b)).any(axis=1)
-        return [(u, v) for u, v in edges[(one < 0.0) & (two < 0.0) & free].tolist()]
+        met = edges[(one < 0.0) & (two < 0.0) & free].tolist()
+        return [(u, v) for u, v in met if (u, v) in self._apex and (v, u) in self._apex]
 
     def _meet(self, u: int, v: int, a: int, b: int) -> bool:
         """Whether the lines u-v and a-b cross inside both."""
@@ -130,3 +135,7 @@ class _Net:
         del apex[u, v], apex[v, u]
         apex[u, x], apex[x, w], apex[w, u] = w, u, x
         apex[x, v], apex[v, w], apex[w, x] = w, x, v
+        new = (min(w, x), max(w, x))
+        if new not in self._ever:
+            self._ever.add(new)
+            self._later.append(new)

@@ -86,6 +86,9 @@ EDGE_ROW: Final = 0.1
 """Width of the row of edge cells, in spacer heights."""
 _TOP_FREQUENCY = 1.1  # the band solved for reaches this far above the brief's frequency
 _SIMPLER = 0.01  # outline points closer to a straight line than this, in spacer heights, are left
+_GRID = 1e-9  # m
+_SIMPLEST = 0.1  # and than this, in radii of the probe
+_SHORTEST = 0.04  # of the longest cell on the top copper: no cell is asked to be shorter
 _COLLAR = 1.3  # least copper round the probe, in radii of its prism
 
 
@@ -196,15 +199,21 @@ def _sheets(layout: Layout, role: Role, pin: Floats, chord: float) -> tuple[shap
         pieces = [shapely.Polygon(_faceted(region, chord).exterior) for region in regions]
     else:
         pieces = [_faceted(region, chord) for region in regions]
+    if not all(piece.is_valid for piece in pieces):
+        raise ModelError(
+            f"mesh: an outline of the {role.value} crosses itself; accepted: it may not"
+        )
     hole = shapely.Polygon(pin)
-    joined = shapely.union_all(pieces)
+    # On a grid, so that pieces that meet along a line do not leave a crack of rounding errors.
+    joined = shapely.union_all(pieces, grid_size=_GRID)
     if not joined.contains(hole.centroid):
         raise ModelError(f"mesh: the probe does not meet the {role.value}; accepted: on the copper")
     if role is Role.TOP_COPPER:
         joined = shapely.union(joined, shapely.Polygon(_grown(pin, _COLLAR)))
     elif not joined.contains(hole):
         raise ModelError("mesh: the probe breaks the rim of the ground plate; accepted: inside it")
-    simple = shapely.simplify(joined, _SIMPLER * layout.height)
+    radius = layout.ports[0].diameter / 2.0
+    simple = shapely.simplify(joined, min(_SIMPLER * layout.height, _SIMPLEST * radius))
     parts = [part for part in shapely.get_parts(simple) if isinstance(part, shapely.Polygon)]
     return tuple(_pierced(part, hole) if part.contains(hole) else part for part in parts)
 
@@ -246,10 +255,8 @@ def _top_sizes(layout: Layout, piece: shapely.Polygon, pin: Floats, fine: Finene
     free = [ring for i, ring in enumerate(piece.interiors) if i not in pin_hole]
     segments = np.concatenate([ring_segments(ring) for ring in (piece.exterior, *free)])
     widths = _copper_widths(segments)
-    wishes = [
-        (segments[i : i + 1], fine.strip_aspect * widths[i])
-        for i in np.flatnonzero(fine.strip_aspect * widths < largest)
-    ]
+    along = np.maximum(fine.strip_aspect * widths, _SHORTEST * largest)
+    wishes = [(segments[i : i + 1], along[i]) for i in np.flatnonzero(along < largest)]
     return sizes_near(largest, fine.growth, [*wishes, _pin_wish(pin)])
 
 

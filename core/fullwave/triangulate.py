@@ -124,7 +124,7 @@ def _lattice(
     pitch = np.array([spacing, spacing * 3.0**0.5 / 2.0])
     low = np.ceil((np.maximum(bounds[:2], box[0]) - middle) / pitch).astype(np.int64)
     high = np.floor((np.minimum(bounds[2:], box[1]) - middle) / pitch).astype(np.int64)
-    y, x = np.mgrid[low[1] : high[1] + 1, low[0] - 1 : high[0] + 1]
+    x, y = np.meshgrid(np.arange(low[0] - 1, high[0] + 1), np.arange(low[1], high[1] + 1))
     places = np.column_stack([(x + 0.5 * (y % 2)).ravel(), y.ravel()])
     return np.asarray(middle + places * pitch)
 
