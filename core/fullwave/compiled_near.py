@@ -25,7 +25,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 import numpy as np
-from numba import njit, prange
+from numba import njit
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
@@ -34,6 +34,8 @@ if TYPE_CHECKING:
     Ints = NDArray[np.int64]
 
 _TINY = 1e-300
+_NEAR = 1.8  # distance of middles, in sums of both triangles' radii, within which terms are near
+_CLOSE = 0.6  # distance of marks, in longest edges, within which the source is integrated exactly
 _FAST = {"contract", "nnan", "ninf", "nsz", "arcp"}  # sums keep their order
 
 
@@ -199,10 +201,83 @@ def _pair_moments(
     _add_points(test, source, coarse, -1.0, moments)
 
 
-@njit(parallel=True, error_model="numpy", cache=True)
+@njit(error_model="numpy", cache=True)
+def _kind(t: int, s: int, triangles: Ints, marks: Floats, longest: float) -> int:
+    """How close two triangles are: 1 apart, 2 touching or nearly, 3 sharing an edge, 4 the same."""
+    shared = 0
+    for a in range(3):
+        for b in range(3):
+            if triangles[t, a] == triangles[s, b]:
+                shared += 1
+    if shared > 0:
+        return 1 + shared
+    reach = (_CLOSE * longest) ** 2
+    for a in range(6):
+        for b in range(6):
+            squared = 0.0
+            for axis in range(3):
+                squared += (marks[t, a, axis] - marks[s, b, axis]) ** 2
+            if squared < reach:
+                return 2
+    return 1
+
+
+@njit(error_model="numpy", cache=True)
+def find_near(corners: Floats, triangles: Ints) -> tuple[Ints, Ints, Ints]:
+    """Pairs of triangles that the coarse sum over points is not enough for.
+
+    Parameters
+    ----------
+    corners : (t, 3, 3) ndarray of float
+        m.
+    triangles : (t, 3) ndarray of int
+        Vertices of each.
+
+    Returns
+    -------
+    starts : (t + 1,) ndarray of int
+        Where the partners of each triangle start.
+    partners : (p,) ndarray of int
+        The triangle itself and later ones near it.
+    kinds : (p,) ndarray of int
+        How close, as `near_terms` takes it.
+    """
+    count = corners.shape[0]
+    middles, marks = np.zeros((count, 3)), np.empty((count, 6, 3))
+    radii, longest = np.zeros(count), np.zeros(count)
+    for t in range(count):
+        for axis in range(3):
+            middles[t, axis] = corners[t, :, axis].mean()
+        for i in range(3):
+            j = (i + 1) % 3
+            marks[t, i] = corners[t, i]
+            marks[t, 3 + i] = (corners[t, i] + corners[t, j]) / 2.0
+            radii[t] = max(radii[t], np.sqrt(np.sum((corners[t, i] - middles[t]) ** 2)))
+            longest[t] = max(longest[t], np.sqrt(np.sum((corners[t, i] - corners[t, j]) ** 2)))
+    starts = np.zeros(count + 1, dtype=np.int64)
+    partners, kinds = [0][:0], [0][:0]
+    for t in range(count):
+        for s in range(t, count):
+            reach = _NEAR * (radii[t] + radii[s])
+            dx, dy = middles[t, 0] - middles[s, 0], middles[t, 1] - middles[s, 1]
+            dz = middles[t, 2] - middles[s, 2]
+            if dx * dx + dy * dy + dz * dz < reach * reach:
+                partners.append(s)
+                kinds.append(_kind(t, s, triangles, marks, max(longest[t], longest[s])))
+        starts[t + 1] = len(partners)
+    return starts, np.array(partners), np.array(kinds)
+
+
+@njit(nogil=True, error_model="numpy", cache=True)
 def near_terms(
-    corners: Floats, pairs: Ints, kinds: Ints, lift: float, rules: Floats, starts: Ints
-) -> tuple[Floats, Floats]:
+    corners: Floats,
+    pairs: Ints,
+    kinds: Ints,
+    lift: float,
+    rules: tuple[Floats, Ints],
+    currents: Floats,
+    charges: Floats,
+) -> None:
     """Near terms of pairs of triangles.
 
     Parameters
@@ -214,43 +289,35 @@ def near_terms(
         Which rule to take; those from 2 up integrate the source exactly.
     lift : float
         What the second triangle of each pair is raised by, m: for images in a ground plane.
-    rules : (q, 4) ndarray of float
-        Shares of the corners and weight of each point, rule after rule; rule 0 is that of
-        the matrix fill.
-    starts : (r + 1,) ndarray of int
-        Where each rule starts.
-
-    Returns
-    -------
+    rules : tuple
+        Shares of the corners and weight of each point (q, 4), rule after rule, and where
+        each starts (r + 1,); rule 0 is that of the matrix fill.
     currents : (p, 2, 3, 3) ndarray of float
-        Means of (r - p_a).(r' - p_b) K for K = 1/R and R, less their coarse sums, m and m³.
+        Written: means of (r - p_a).(r' - p_b) K for K = 1/R and R, less their coarse sums,
+        m and m³.
     charges : (p, 2) ndarray of float
-        Means of K, less their coarse sums, 1/m and m.
+        Written: means of K, less their coarse sums, 1/m and m.
     """
-    count = pairs.shape[0]
-    currents, charges = np.empty((count, 2, 3, 3)), np.empty((count, 2))
-    block = 16
-    for chunk in prange((count + block - 1) // block):
-        test, source, middle = np.empty((3, 3)), np.empty((3, 3)), np.empty(3)
-        moments = np.empty((2, 8))
-        for p in range(chunk * block, min(count, (chunk + 1) * block)):
-            for axis in range(3):
-                own = corners[pairs[p, 0]]
-                middle[axis] = (own[0, axis] + own[1, axis] + own[2, axis]) / 3.0
-                for i in range(3):
-                    test[i, axis] = own[i, axis] - middle[axis]
-                    source[i, axis] = corners[pairs[p, 1], i, axis] - middle[axis]
-            source[:, 2] += lift
-            rule = rules[starts[kinds[p]] : starts[kinds[p] + 1]]
-            _pair_moments(test, source, rule, rules[: starts[1]], kinds[p] >= 2, moments)
-            for term in range(2):
-                m = moments[term]
-                charges[p, term] = m[0]
-                for a in range(3):
-                    for b in range(3):
-                        value = m[7]
-                        for axis in range(3):
-                            value -= test[a, axis] * m[4 + axis] + source[b, axis] * m[1 + axis]
-                            value += test[a, axis] * source[b, axis] * m[0]
-                        currents[p, term, a, b] = value
-    return currents, charges
+    points, starts = rules
+    test, source, middle = np.empty((3, 3)), np.empty((3, 3)), np.empty(3)
+    moments = np.empty((2, 8))
+    for p in range(pairs.shape[0]):
+        own = corners[pairs[p, 0]]
+        for axis in range(3):
+            middle[axis] = (own[0, axis] + own[1, axis] + own[2, axis]) / 3.0
+            for i in range(3):
+                test[i, axis] = own[i, axis] - middle[axis]
+                source[i, axis] = corners[pairs[p, 1], i, axis] - middle[axis]
+        source[:, 2] += lift
+        rule = points[starts[kinds[p]] : starts[kinds[p] + 1]]
+        _pair_moments(test, source, rule, points[: starts[1]], kinds[p] >= 2, moments)
+        for term in range(2):
+            m = moments[term]
+            charges[p, term] = m[0]
+            for a in range(3):
+                for b in range(3):
+                    value = m[7]
+                    for axis in range(3):
+                        value -= test[a, axis] * m[4 + axis] + source[b, axis] * m[1 + axis]
+                        value += test[a, axis] * source[b, axis] * m[0]
+                    currents[p, term, a, b] = value

@@ -8,13 +8,14 @@ Shapes: t triangles, n functions, p near pairs.
 
 from __future__ import annotations
 
+import os
+from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass
 from math import pi
 from typing import TYPE_CHECKING, Final
 
 import numpy as np
 from scipy.linalg import lu_factor, lu_solve
-from scipy.spatial.distance import cdist
 
 from core.constants import SPEED_OF_LIGHT, TWO_PI, VACUUM_PERMEABILITY
 from core.fullwave.basis import Basis
@@ -27,9 +28,9 @@ if TYPE_CHECKING:
     Ints = NDArray[np.int64]
     Complexes = NDArray[np.complex128]
 
-_NEAR = 1.8  # distance of middles, in sums of both triangles' radii, within which terms are near
-_CLOSE = 0.6  # distance of marks, in longest edges, within which the source is integrated exactly
-_APART, _TOUCHING, _NEIGHBOUR, _SELF = 1, 2, 3, 4
+_WORKERS = min(4, os.cpu_count() or 1)
+_BATCH = 1000  # pairs to a task
+# By kind of pair: the fill's own, apart, touching or nearly, sharing an edge, the triangle itself.
 _RULES: Final = (COARSE_RULE, *(triangle_rule(order) for order in (4, 3, 5, 6)))
 
 
@@ -40,8 +41,10 @@ class Moments:
     Attributes
     ----------
     basis : Basis
-    geometry, near, overlaps, functions, colours
-        As `core.fullwave.compiled.fill_free_space` takes them.
+    geometry, near, overlaps, functions
+        As `core.fullwave.compiled.add_free_space` takes them.
+    colours : tuple of (...,) ndarray of int
+        All triangles, shared out so that no two of a colour have a function in common.
     """
 
     basis: Basis
@@ -49,7 +52,7 @@ class Moments:
     near: tuple[Ints, Ints, Floats, Floats]
     overlaps: Floats
     functions: tuple[Ints, Ints, Floats, Ints, Ints]
-    colours: tuple[Ints, Ints]
+    colours: tuple[Ints, ...]
 
 
 def build_moments(basis: Basis, triangles: Ints) -> Moments:
@@ -72,11 +75,10 @@ def build_moments(basis: Basis, triangles: Ints) -> Moments:
         np.ascontiguousarray(corners.transpose(2, 1, 0)),
         basis.lengths / 2.0,
     )
-    pairs, kinds = near_pairs(corners, triangles)
     return Moments(
         basis,
         geometry,
-        _near(basis, pairs, kinds),
+        _near(basis, triangles),
         _overlaps(basis),
         _functions(basis),
         _colours(basis),
@@ -99,20 +101,27 @@ def impedance_matrix(moments: Moments, frequency: float, sheet_impedance: Comple
     (n, n) ndarray of complex
         Symmetric, ohm m²: voltage over current density times edge lengths.
     """
-    from core.fullwave.compiled import fill_free_space  # noqa: PLC0415 - slow to load
+    from core.fullwave.compiled import add_free_space, add_transpose  # noqa: PLC0415 - slow to load
 
     factor = 1j * TWO_PI * frequency * VACUUM_PERMEABILITY / (4.0 * pi)
-    matrix = np.empty((moments.basis.count, moments.basis.count), dtype=np.complex128)
-    fill_free_space(
-        TWO_PI * frequency / SPEED_OF_LIGHT,
-        factor,
-        moments.geometry,
-        moments.near,
-        (sheet_impedance / factor, moments.overlaps),
-        moments.functions,
-        moments.colours,
-        matrix,
-    )
+    matrix = np.zeros((moments.basis.count, moments.basis.count), dtype=np.complex128)
+
+    def add(triangles: Ints) -> None:
+        add_free_space(
+            triangles,
+            TWO_PI * frequency / SPEED_OF_LIGHT,
+            factor,
+            moments.geometry,
+            moments.near,
+            (sheet_impedance / factor, moments.overlaps),
+            moments.functions,
+            matrix,
+        )
+
+    with ThreadPoolExecutor(_WORKERS) as pool:
+        for colour in moments.colours:
+            list(pool.map(add, (colour[first::_WORKERS] for first in range(_WORKERS))))
+        list(pool.map(lambda first: add_transpose(matrix, first, _WORKERS), range(_WORKERS)))
     return matrix
 
 
@@ -135,52 +144,23 @@ def currents(matrix: Complexes, excitations: Complexes) -> Complexes:
     return np.asarray(lu_solve(factors, excitations, check_finite=False))
 
 
-def near_pairs(corners: Floats, triangles: Ints) -> tuple[Ints, Ints]:
-    """Pairs of triangles that the coarse sum over points is not enough for, each once.
+def _near(basis: Basis, triangles: Ints) -> tuple[Ints, Ints, Floats, Floats]:
+    """Near terms of every triangle with itself and the later ones near it."""
+    from core.fullwave.compiled_near import find_near, near_terms  # noqa: PLC0415 - slow to load
 
-    Parameters
-    ----------
-    corners : (t, 3, 3) ndarray of float
-        m.
-    triangles : (t, 3) ndarray of int
+    starts, sources, kinds = find_near(basis.corners, triangles)
+    pairs = np.column_stack([np.repeat(np.arange(basis.triangles), np.diff(starts)), sources])
+    rules = np.concatenate(_RULES), np.cumsum([0, *(len(rule) for rule in _RULES)])
+    terms, charges = np.empty((len(pairs), 2, 3, 3)), np.empty((len(pairs), 2))
 
-    Returns
-    -------
-    pairs : (p, 2) ndarray of int
-    kinds : (p,) ndarray of int
-        How close, as `core.fullwave.compiled_near.near_terms` takes it.
-    """
-    middles = corners.mean(axis=1)
-    radii = np.linalg.norm(corners - middles[:, None], axis=2).max(axis=1)
-    reach = _NEAR * (radii[:, None] + radii)
-    first, second = np.nonzero(np.triu(cdist(middles, middles) < reach))
-    one, two = triangles[first], triangles[second]
-    shared = (one[:, :, None] == two[:, None, :]).sum(axis=(1, 2))
-    kinds = np.choose(shared, [_APART, _TOUCHING, _NEIGHBOUR, _SELF])
-    apart = np.flatnonzero(kinds == _APART)
-    marks = np.concatenate([corners, (corners + np.roll(corners, 1, axis=1)) / 2.0], axis=1)
-    longest = np.linalg.norm(corners - np.roll(corners, 1, axis=1), axis=2).max(axis=1)
-    between = marks[first[apart]][:, :, None] - marks[second[apart]][:, None]
-    gap = np.sqrt(np.einsum("pijx,pijx->pij", between, between).min(axis=(1, 2)))
-    close = gap < _CLOSE * np.maximum(longest[first[apart]], longest[second[apart]])
-    kinds[apart[close]] = _TOUCHING
-    return np.column_stack([first, second]), kinds
+    def work_out(share: slice) -> None:
+        near_terms(
+            basis.corners, pairs[share], kinds[share], 0.0, rules, terms[share], charges[share]
+        )
 
-
-def _near(basis: Basis, pairs: Ints, kinds: Ints) -> tuple[Ints, Ints, Floats, Floats]:
-    """Near terms of every triangle with every near one, sorted by the first."""
-    from core.fullwave.compiled_near import near_terms  # noqa: PLC0415 - slow to load
-
-    starts = np.cumsum([0, *(len(rule) for rule in _RULES)])
-    terms, charges = near_terms(basis.corners, pairs, kinds, 0.0, np.concatenate(_RULES), starts)
-    other = pairs[:, 0] != pairs[:, 1]
-    test = np.concatenate([pairs[:, 0], pairs[other, 1]])
-    source = np.concatenate([pairs[:, 1], pairs[other, 0]])
-    terms = np.concatenate([terms, terms[other].transpose(0, 1, 3, 2)])
-    charges = np.concatenate([charges, charges[other]])
-    order = np.argsort(test, kind="stable")
-    begin = np.searchsorted(test[order], np.arange(basis.triangles + 1))
-    return begin, source[order], np.ascontiguousarray(terms[order]), charges[order]
+    with ThreadPoolExecutor(_WORKERS) as pool:
+        list(pool.map(work_out, (slice(i, i + _BATCH) for i in range(0, len(pairs), _BATCH))))
+    return starts, sources, terms, charges
 
 
 def _overlaps(basis: Basis) -> Floats:
@@ -202,7 +182,7 @@ def _functions(basis: Basis) -> tuple[Ints, Ints, Floats, Ints, Ints]:
     return starts, numbers[order], signs[order], basis.plus, basis.minus
 
 
-def _colours(basis: Basis) -> tuple[Ints, Ints]:
+def _colours(basis: Basis) -> tuple[Ints, ...]:
     """Triangles by colour, so that no two of a colour share a function."""
     neighbours: list[list[int]] = [[] for _ in range(basis.triangles)]
     one, two = basis.plus % basis.triangles, basis.minus % basis.triangles
@@ -215,6 +195,4 @@ def _colours(basis: Basis) -> tuple[Ints, Ints]:
     for t, others in enumerate(neighbours):
         taken = {colour[s] for s in others}
         colour[t] = next(c for c in range(len(taken) + 1) if c not in taken)
-    order = np.argsort(colour, kind="stable")
-    ordered = np.asarray(colour)[order]
-    return np.searchsorted(ordered, np.arange(ordered[-1] + 2)), order
+    return tuple(np.flatnonzero(np.asarray(colour) == c) for c in range(max(colour) + 1))

@@ -34,6 +34,7 @@ if TYPE_CHECKING:
     Floats = NDArray[np.float64]
 
 _RADII, _TURNS = 12, 32  # points of the ring: across and once round
+_FAR = 12.0  # outer radii from which the ring is one dipole, to a few parts in a thousand
 
 
 def ring_excitation(mesh: Mesh, basis: Basis, ring: CoaxRing) -> Floats:
@@ -60,8 +61,8 @@ def ring_excitation(mesh: Mesh, basis: Basis, ring: CoaxRing) -> Floats:
     # The plate is under the layer of dipoles, the foot of the pin just above it.
     potential[plate] = -_drop(away[plate], ring) / 2.0
     potential[pin] = _beside_pin(points[pin][..., 2], ring)
-    others = ~(plate | pin)
-    potential[others] = _above(away[others], points[others][..., 2], ring)
+    above = ~(plate | pin)
+    potential[above] = _above(away[above], points[above][..., 2], ring)
     mean = potential @ rule[:, 3]
     halves = basis.lengths * mean
     # From plate to pin the potential jumps by the voltage; no field stands behind that step.
@@ -121,14 +122,20 @@ def _beside_pin(z: Floats, ring: CoaxRing) -> Floats:
 
 
 def _above(away: Floats, z: Floats, ring: CoaxRing) -> Floats:
-    """Potential of the dipole layer at a distance from it that is not small."""
+    """Potential of the dipole layer above it: as one dipole far away, point by point nearby."""
+    far = np.hypot(away, z)
+    moment = (ring.outer**2 - ring.inner**2) / (8.0 * log(ring.outer / ring.inner))
+    potential = moment * z / far**3
+    near = far < _FAR * ring.outer
     x, w = np.polynomial.legendre.leggauss(_RADII)
     radii = ring.outer * (x + 1.0) / 2.0
     weights = w / 2.0 * ring.outer * radii * _drop(radii, ring) / _TURNS / 2.0
     turn = 2.0 * pi * (np.arange(_TURNS) + 0.5) / _TURNS
+    height = z[near, None, None]
     squared = (
-        (away[..., None, None] - radii[:, None] * np.cos(turn)) ** 2
+        (away[near, None, None] - radii[:, None] * np.cos(turn)) ** 2
         + (radii[:, None] * np.sin(turn)) ** 2
-        + z[..., None, None] ** 2
+        + height**2
     )
-    return np.asarray((z[..., None, None] / squared**1.5).sum(axis=-1) @ weights)
+    potential[near] = (height / squared**1.5).sum(axis=-1) @ weights
+    return np.asarray(potential)
