@@ -22,17 +22,26 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING, Final
 
 import numpy as np
-from scipy.sparse import csr_array
 from scipy.special import gamma, kv
 
 from core.constants import TWO_PI
+from core.errors import OutOfRangeError
+from core.fullwave.kernel_spectra import KernelSpectra, kernel_spectra, line_charge_weights
 from core.fullwave.sommerfeld import SommerfeldRule, sommerfeld_rule
-from core.fullwave.spectral import complex_permittivity, KernelSpectra, kernel_spectra, line_charge_weights
-from core.fullwave.static_images import Image, charge_images, current_images
+from core.fullwave.spectral import complex_permittivity
+from core.fullwave.static_images import (
+    Image,
+    charge_images,
+    current_images,
+    image_potential,
+    image_spectrum,
+)
+from core.fullwave.table_grid import table_grid
 from core.lines.stack import total_thickness
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
+    from scipy.sparse import csr_array
 
     from core.lines.stack import Layer
 
@@ -42,10 +51,9 @@ if TYPE_CHECKING:
 _IMAGE_DEPTH: Final = 6.0  # heights of the stack, down to which images are taken out
 _TAIL_POWERS: Final = np.array([3, 4, 5])  # of 1/k_rho, fitted where the spectra have died
 _TAIL_SAMPLES: Final = np.array([1.0, 2.0, 4.0])  # of the end of the path, where they are fitted
+_FAINT: Final = 1e-3  # weight of an image that may stay in the tables however near it is
+_LOWEST: Final = 0.5  # of the plan's wavenumber, that its path still serves
 _DIED: Final = 8.0  # attenuations by the top layer until a spectrum has died
-_SHORTEST, _LONGEST = 1500, 8000  # tables, in entries
-_PER_SPAN, _AT_LEAST = 16, 24  # distances
-_WINDOW: Final = 12  # of them, to interpolate between
 
 
 @dataclass(frozen=True, eq=False)
@@ -95,34 +103,43 @@ class TablePlan:
     Attributes
     ----------
     layers : tuple of Layer
+    wavenumber : float
+        Of free space at the highest frequency, 1/m.
     profiles : int
-    near : float
-        Images at most this deep stay out of the tables, m.
     step : float
         Between entries of the tables, m.
     rule : SommerfeldRule
+    k_rho : (n,) ndarray of complex
+        Where spectra are sampled: for the rule, then past its end, 1/m.
     spread : (u, d) sparse array of float
         From values at the rule's distances to the entries.
     rate : float
         Decay of the functions that stand for the end of a spectrum, 1/m.
-    tail : (u, 3) ndarray of float
-        Those functions at the entries.
-    log_rest : (u,) ndarray of float
+    tail : (d, 3) ndarray of float
+        Those functions at the rule's distances.
+    log_rest : (d,) ndarray of float
         K0(rate distance) + ln(distance/step).
-    images : tuple of tuple of Image
-        Of current and of charge.
+    near : pair of tuple of Image
+        Of current and charge, to stay out of the tables.
+    image_spectra : (2, n) ndarray of complex
+        Of all images of current and charge, m.
+    far : (2, u) ndarray of complex
+        What the other images add to the tables, 1/m.
     """
 
     layers: tuple[Layer, ...]
+    wavenumber: float
     profiles: int
-    near: float
     step: float
     rule: SommerfeldRule
+    k_rho: Complexes
     spread: csr_array
     rate: float
     tail: Floats
     log_rest: Floats
-    images: tuple[tuple[Image, ...], tuple[Image, ...]]
+    near: tuple[tuple[Image, ...], tuple[Image, ...]]
+    image_spectra: Complexes
+    far: Complexes
 
     def tables(
         self, wavenumber: Floats, ground_impedance: Complexes | complex = 0.0
@@ -132,25 +149,41 @@ class TablePlan:
         Parameters
         ----------
         wavenumber : (f,) ndarray of float
-            Of free space, 1/m, none above the plan's.
+            Of free space, 1/m, between half the plan's and the plan's.
         ground_impedance : complex or (f,) ndarray of complex
             Of the ground plane's surface, ohm.
 
         Returns
         -------
         KernelTables
+
+        Raises
+        ------
+        OutOfRangeError
+            If a wavenumber lies outside the plan's band.
         """
-        k_rho = np.concatenate([self.rule.k_rho, self.rule.end * _TAIL_SAMPLES])
+        lowest, highest = float(np.min(wavenumber)), float(np.max(wavenumber))
+        if not _LOWEST * self.wavenumber <= lowest <= highest <= (1.0 + 1e-9) * self.wavenumber:
+            raise OutOfRangeError(
+                f"kernel tables for {lowest:.6g} to {highest:.6g} 1/m: the plan holds for "
+                f"{_LOWEST * self.wavenumber:.6g} to {self.wavenumber:.6g} 1/m",
+                field="wavenumber",
+                value=(lowest, highest),
+                allowed="half the plan's wavenumber to all of it",
+            )
         spectra = _stacked(
-            kernel_spectra(self.layers, wavenumber, k_rho, self.profiles, ground_impedance)
+            kernel_spectra(self.layers, wavenumber, self.k_rho, self.profiles, ground_impedance)
         )
         log = self._log_weights(wavenumber)
-        rest = spectra - self._leading(k_rho, log)
-        powers = (k_rho**2 + self.rate**2)[:, None] ** (-0.5 * _TAIL_POWERS)
-        fit = rest[..., -3:] @ np.linalg.inv(powers[-3:]).T
-        rest = rest[..., :-3] - fit @ powers[:-3].T
-        entries = self._spread(self.rule.integrate(rest)) + fit @ self.tail.T
-        entries += log * self.log_rest / TWO_PI
+        rest = spectra - log / (self.k_rho**2 + self.rate**2)
+        rest[:2] -= self.image_spectra[:, None]
+        powers = (self.k_rho**2 + self.rate**2)[:, None] ** (-0.5 * _TAIL_POWERS)
+        ended = len(_TAIL_SAMPLES)
+        fit = rest[..., -ended:] @ np.linalg.inv(powers[-ended:]).T
+        rest = rest[..., :-ended] - fit @ powers[:-ended].T
+        values = self.rule.integrate(rest) + fit @ self.tail.T + log * self.log_rest / TWO_PI
+        entries = self._spread(values)
+        entries[:2] += self.far[:, None]
         return self._named(entries, fit, log)
 
     def _spread(self, values: Complexes) -> Complexes:
@@ -162,35 +195,20 @@ class TablePlan:
 
     def _log_weights(self, wavenumber: Floats) -> Complexes:
         """Limit of k_rho² times each spectrum, (q, f, 1), once images are taken out."""
-        flat = np.zeros((3, len(wavenumber)))
+        flat = np.zeros((3, len(wavenumber)), dtype=complex)
         coupling = np.zeros((self.profiles, len(wavenumber)))
         probe = line_charge_weights(self.layers, wavenumber, self.profiles)
-        return np.concatenate(
-            [flat, coupling, coupling + 1.0, probe.reshape(-1, len(wavenumber))]
-        )[..., None]
-
-    def _leading(self, k_rho: Complexes, log: Complexes) -> Complexes:
-        """What each spectrum tends to for large k_rho, (q, f, n)."""
-        leading = log / (k_rho**2 + self.rate**2)
-        for spectrum, images in zip(leading, self.images, strict=False):
-            for image in images:
-                spectrum += 0.5 * image.weight * np.exp(-k_rho * image.depth) / k_rho
-        return leading
+        pairs = probe.reshape(-1, len(wavenumber))
+        return np.concatenate([flat, coupling, coupling + 1.0, pairs])[..., None]
 
     def _named(self, entries: Complexes, fit: Complexes, log: Complexes) -> KernelTables:
         """Split the entries of all kernels, (q, f, u), by name."""
         m = self.profiles
-        distance = self.step * np.arange(entries.shape[-1])
-        near: list[tuple[Image, ...]] = []
-        for table, images in zip(entries, self.images, strict=False):
-            near.append(tuple(image for image in images if image.depth <= self.near))
-            for image in images[len(near[-1]) :]:
-                table += image.weight / (2.0 * TWO_PI * np.hypot(distance, image.depth))
         square = (m, m, *entries.shape[1:])
         return KernelTables(
             step=self.step,
-            current_images=near[0],
-            charge_images=near[1],
+            current_images=self.near[0],
+            charge_images=self.near[1],
             vector=entries[0],
             scalar=entries[1],
             vector_kink=-fit[0, :, 0] / TWO_PI,
@@ -199,7 +217,7 @@ class TablePlan:
             coupling=entries[3 : 3 + m],
             foot=entries[3 + m : 3 + 2 * m],
             probe=entries[3 + 2 * m :].reshape(square),
-            probe_log=log[3 + 2 * m :].reshape(square[:-1]) / TWO_PI,
+            probe_log=np.asarray(log[3 + 2 * m :].reshape(square[:-1]) / TWO_PI, dtype=complex),
         )
 
 
@@ -222,7 +240,7 @@ def plan_tables(
         Largest distance, m.
     near : float
         Images at most this deep stay out of the tables, to be integrated with the source
-        itself, m, >= 0.
+        itself, m, >= 0; all but those of less than a thousandth of the source.
     profiles : int
         How many vertical currents, >= 0.
 
@@ -233,52 +251,40 @@ def plan_tables(
     height = total_thickness(layers)
     finest = min(layers[-1].thickness, height)
     densest = wavenumber * max(abs(complex_permittivity(layer)) for layer in layers) ** 0.5
-    distances, spread, step = _spacing(reach, finest, height)
+    distances, spread, step = table_grid(reach, finest, height, densest)
     rule = sommerfeld_rule(distances, wavenumber, densest, max(_DIED / finest, 12.0 * densest))
     rate = max(1.0 / height, densest)
-    scaled = rate * step * np.arange(spread.shape[0])
-    scaled[0] = 1e-6  # the functions below are finite there, but their factors are not
+    scaled = rate * distances
+    scaled[0] = 1e-6  # not 0: the functions below stay finite there, their factors do not
     order = 0.5 * _TAIL_POWERS - 1.0
     tail = (0.5 * scaled[:, None]) ** order * kv(order, scaled[:, None]) / gamma(order + 1.0)
+    entries = np.asarray(step * np.arange(spread.shape[0]), dtype=np.float64)
+    k_rho = np.concatenate([rule.k_rho, rule.end * _TAIL_SAMPLES])
+    images = (current_images(layers), charge_images(layers, _IMAGE_DEPTH * height))
+    sharp = tuple(
+        tuple(image for image in kind if image.depth <= near and abs(image.weight) > _FAINT)
+        for kind in images
+    )
     return TablePlan(
         layers=layers,
+        wavenumber=wavenumber,
         profiles=profiles,
-        near=near,
         step=step,
         rule=rule,
+        k_rho=k_rho,
         spread=spread,
         rate=rate,
         tail=tail / rate ** (2.0 * order) / TWO_PI,
         log_rest=kv(0, scaled) + np.log(scaled / (rate * step)),
-        images=(current_images(layers), charge_images(layers, _IMAGE_DEPTH * height)),
+        near=(sharp[0], sharp[1]),
+        image_spectra=np.stack([image_spectrum(kind, k_rho) for kind in images]),
+        far=np.stack(
+            [
+                image_potential(set(kind) - set(listed), entries)
+                for kind, listed in zip(images, sharp, strict=True)
+            ]
+        ),
     )
-
-
-def _spacing(reach: float, finest: float, height: float) -> tuple[Floats, csr_array, float]:
-    """Distances to integrate for, the matrix from there to even steps, and the step."""
-    span = np.arcsinh(reach / finest)
-    count = int(_PER_SPAN * span) + _AT_LEAST
-    angle = np.pi * np.arange(count) / (count - 1)
-    nodes = 0.5 - 0.5 * np.cos(angle)
-    step = max(min(reach / _SHORTEST, height / 6.0, finest / 3.0), reach / _LONGEST)
-    entries = int(np.ceil(reach / step)) + 2
-    even = np.arcsinh(np.minimum(step * np.arange(entries), reach) / finest) / span
-    return finest * np.sinh(span * nodes), _interpolation(nodes, even), step
-
-
-def _interpolation(nodes: Floats, wanted: Floats) -> csr_array:
-    """Matrix from values at rising nodes to values between them: polynomials through some."""
-    first = np.searchsorted(nodes, wanted) - _WINDOW // 2
-    columns = np.clip(first, 0, len(nodes) - _WINDOW)[:, None] + np.arange(_WINDOW)
-    near = nodes[columns]
-    apart = near[:, :, None] - near[:, None, :]
-    apart[:, np.arange(_WINDOW), np.arange(_WINDOW)] = 1.0
-    gap = wanted[:, None] - near
-    gap[gap == 0.0] = 1e-30  # at a node its own value outweighs the others
-    weights = 1.0 / (apart.prod(axis=2) * gap)
-    weights /= weights.sum(axis=1, keepdims=True)
-    starts = np.arange(len(wanted) + 1) * _WINDOW
-    return csr_array((weights.ravel(), columns.ravel(), starts), shape=(len(wanted), len(nodes)))
 
 
 def _stacked(spectra: KernelSpectra) -> Complexes:

@@ -116,7 +116,7 @@ def line_response(
         layers=layers,
         k0=k0,
         k_rho_squared=alpha**2 + k0**2,
-        order=np.arange(profiles)[:, None, None] * np.pi / total_thickness(layers),
+        order=np.pi / total_thickness(layers) * np.arange(profiles, dtype=float)[:, None, None],
     )
     steps = walk.up(wall)
     last = steps[-1]
@@ -133,113 +133,24 @@ def line_response(
     )
 
 
-@dataclass(frozen=True, eq=False)
-class KernelSpectra:
-    """Spectra of the kernels that `core.fullwave.kernel_table` tabulates.
-
-    Attributes
-    ----------
-    vector, scalar : (f, n) ndarray of complex
-        Of horizontal current and divergence at the top, m.
-    coupling : (m, f, n) ndarray of complex
-        Between divergence and vertical currents, m.
-    probe : (m, m, f, n) ndarray of complex
-        Between vertical currents, m.
-    foot : (m, f, n) ndarray of complex
-        Between vertical currents and the ground plane, m².
-    foot_scalar : (f, n) ndarray of complex
-        Between divergence and the ground plane, m².
-    """
-
-    vector: Complexes
-    scalar: Complexes
-    coupling: Complexes
-    probe: Complexes
-    foot: Complexes
-    foot_scalar: Complexes
-
-
-def kernel_spectra(
-    layers: tuple[Layer, ...],
-    wavenumber: Floats,
-    k_rho: Complexes,
-    profiles: int = 0,
-    ground_impedance: Complexes | complex = 0.0,
-) -> KernelSpectra:
-    """Spectra of all kernels.
+def cosine_integral(order: Floats, start: float, stop: float) -> Floats:
+    """Integral of cos(order z) from `start` to `stop`.
 
     Parameters
     ----------
-    layers, wavenumber, k_rho, profiles, ground_impedance
-        As for `line_response`.
-
-    Returns
-    -------
-    KernelSpectra
-
-    Notes
-    -----
-    `vector` and `scalar` are G_xx and K_phi of formulation C [1]_. Its G_zx, G_zz and correction
-    term appear integrated along the vertical currents, joined to the potentials of their upper
-    ends so that no end charge is left where current passes on into the top copper.
-
-    References
-    ----------
-    .. [1] K. A. Michalski and J. R. Mosig, "Multilayered media Green's functions in integral
-       equation formulations", IEEE Trans. Antennas Propagat., vol. 45, no. 3, pp. 508-519,
-       Mar. 1997.
-    """
-    lines = line_response(layers, wavenumber, k_rho, profiles, ground_impedance)
-    k0 = np.asarray(wavenumber, dtype=float)[:, None]
-    squared = np.asarray(k_rho, dtype=complex) ** 2
-    scalar = (lines.tm + k0**2 * lines.te) / squared
-    end = ((-1.0) ** np.arange(profiles))[:, None, None]  # of each profile at the top
-    lift = lines.alpha * lines.rise
-    foot_scalar = lines.alpha * lines.reach / squared
-    return KernelSpectra(
-        vector=lines.te,
-        scalar=scalar,
-        coupling=end * scalar - lift,
-        probe=lines.standing
-        - end[:, None] * lift
-        - end * lift[:, None]
-        + end[:, None] * end * scalar,
-        foot=lines.foot + end * foot_scalar,
-        foot_scalar=foot_scalar,
-    )
-
-
-def line_charge_weights(
-    layers: tuple[Layer, ...], wavenumber: Floats, profiles: int
-) -> Floats | Complexes:
-    """Limit of k_rho² times the spectra `probe` for large k_rho.
-
-    Parameters
-    ----------
-    layers : tuple of Layer
-        From the ground up.
-    wavenumber : (f,) ndarray of float
+    order : ndarray of float
         1/m.
-    profiles : int
+    start, stop : float
+        m.
 
     Returns
     -------
-    (m, m, f) ndarray of complex
-        1/m. Each piece of a vertical current acts on its neighbour like a line current, and its
-        end and interface charges like line charges.
+    ndarray of float
+        m, of the shape of `order`.
     """
-    order = np.arange(profiles)[:, None] * np.pi / total_thickness(layers)
-    weights = np.zeros((profiles, profiles, len(wavenumber)), dtype=complex)
-    bottom = 0.0
-    for layer in layers:
-        top = bottom + layer.thickness
-        even, odd = (
-            _cosine_integral(order[:, None] + sign * order, bottom, top) for sign in (1.0, -1.0)
-        )
-        slopes = 0.5 * order[:, None] * order * (odd - even) / complex_permittivity(layer)
-        weights += slopes - 0.5 * (odd + even) * np.asarray(wavenumber) ** 2
-        bottom = top
-    return weights
+    still = order == 0.0
+    safe = np.where(still, 1.0, order)
+    return np.where(still, stop - start, (np.sin(safe * stop) - np.sin(safe * start)) / safe)
 
 
 @dataclass(frozen=True, eq=False)
@@ -284,7 +195,9 @@ class _Walk:
         for layer in self.layers:
             eps, top = complex_permittivity(layer), bottom + layer.thickness
             alpha = np.sqrt(self.k_rho_squared - eps * self.k0**2)
-            alpha = np.where(abs(alpha) < _STANDING_STILL * self.k0, _STANDING_STILL * self.k0, alpha)
+            alpha = np.where(
+                abs(alpha) < _STANDING_STILL * self.k0, _STANDING_STILL * self.k0, alpha
+            )
             squared = alpha**2
             decay = np.exp(-alpha * layer.thickness)
             cosh = 0.5 * (1.0 + decay**2)
@@ -302,7 +215,7 @@ class _Walk:
                     eps=eps,
                     squared=squared,
                     decay=decay,
-                    hop=eps * sinh_over_alpha,
+                    hop=np.multiply(eps, sinh_over_alpha),
                     divisor=divisor,
                     tm_bottom=tm,
                     tm_top=tm_top,
@@ -340,8 +253,8 @@ class _Walk:
         k_squared = step.eps * self.k0**2
         driven = (order**2 - k_squared) / (step.squared + order**2) / step.eps
         overlap = 0.5 * (
-            _cosine_integral(order - along, step.bottom, step.top)
-            + _cosine_integral(order + along, step.bottom, step.top)
+            cosine_integral(order - along, step.bottom, step.top)
+            + cosine_integral(order + along, step.bottom, step.top)
         )
         ends = [
             np.cos(along * z) * flux + along * np.sin(along * z) * current / step.eps
@@ -355,12 +268,3 @@ class _Walk:
         """Value and slope at z of the solution that follows the profile."""
         scale = 1.0 / (squared + self.order**2)
         return np.cos(self.order * z) * scale, -self.order * np.sin(self.order * z) * scale
-
-
-def _cosine_integral(order: Floats, start: float, stop: float) -> Floats:
-    """Integral of cos(order z)."""
-    still = order == 0.0
-    safe = np.where(still, 1.0, order)
-    return np.where(
-        still, stop - start, (np.sin(safe * stop) - np.sin(safe * start)) / safe
-    )

@@ -9,13 +9,23 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Final
 
+import numpy as np
+
+from core.constants import TWO_PI
 from core.fullwave.spectral import complex_permittivity
 from core.lines.stack import total_thickness
 
 if TYPE_CHECKING:
+    from collections.abc import Iterable
+
+    from numpy.typing import NDArray
+
     from core.lines.stack import Layer
 
-_SMALLEST: Final = 1e-9  # weight of an image that still counts
+    Floats = NDArray[np.float64]
+    Complexes = NDArray[np.complex128]
+
+_SMALLEST: Final = 1e-4  # weight of an image that still counts
 _GRID: Final = 1e-12  # of the stack's thickness: depths are counted in it, so that equal ones meet
 
 _Series = dict[int, complex]
@@ -89,9 +99,7 @@ def charge_images(layers: tuple[Layer, ...], depth: float) -> tuple[Image, ...]:
         above = complex_permittivity(layer)
         step = (above - eps) / (above + eps)
         if step != 0.0:
-            reflected = _quotient(
-                _sum({0: step}, reflected), _scaled(reflected, -step), deepest
-            )
+            reflected = _quotient(_sum({0: step}, reflected), _scaled(reflected, -step), deepest)
         eps, delay = above, round(2.0 * layer.thickness / grid)
         reflected = {at + delay: w for at, w in reflected.items() if at + delay <= deepest}
     seen = _quotient(
@@ -100,6 +108,47 @@ def charge_images(layers: tuple[Layer, ...], depth: float) -> tuple[Image, ...]:
     return tuple(
         Image(2.0 / (1.0 + eps) * weight, at * grid) for at, weight in sorted(seen.items())
     )
+
+
+def image_spectrum(images: Iterable[Image], k_rho: Complexes) -> Complexes:
+    """Spectrum of a sum of images.
+
+    Parameters
+    ----------
+    images : iterable of Image
+    k_rho : (n,) ndarray of complex
+        Horizontal wavenumber, 1/m, not 0.
+
+    Returns
+    -------
+    (n,) ndarray of complex
+        Sum of weight exp(-k_rho depth)/(2 k_rho), m.
+    """
+    total = np.zeros_like(k_rho)
+    for image in images:
+        total += image.weight * np.exp(-k_rho * image.depth)
+    return total / (2.0 * k_rho)
+
+
+def image_potential(images: Iterable[Image], distance: Floats) -> Complexes:
+    """Sum of weight/(4 pi R) over images.
+
+    Parameters
+    ----------
+    images : iterable of Image
+        None at depth 0 where a distance is 0.
+    distance : (d,) ndarray of float
+        m.
+
+    Returns
+    -------
+    (d,) ndarray of complex
+        1/m.
+    """
+    total = np.zeros(len(distance), dtype=complex)
+    for image in images:
+        total += image.weight / (2.0 * TWO_PI * np.hypot(distance, image.depth))
+    return total
 
 
 def _quotient(numerator: _Series, feedback: _Series, deepest: int) -> _Series:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from itertools import pairwise
 from typing import TYPE_CHECKING, Final
 
 import numpy as np
@@ -167,7 +168,7 @@ class _Shot:
         values = [at[4] for at in cut]
         values[0] = values[0] or cut[0][5]  # a TE wave leaves zero towards its slope
         *_, value, flux = cut[-1]
-        crossings = sum(a * b < 0.0 for a, b in zip(values, values[1:], strict=False))
+        crossings = sum(a * b < 0.0 for a, b in pairwise(values))
         return crossings + ((flux + decay * value) * value < 0.0)
 
     def wave(self, decay: float, profiles: int) -> SurfaceWave:
