@@ -2,17 +2,18 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-from enum import Enum, IntEnum
+from enum import Enum
 from math import ceil, cos, gamma, hypot, pi, sin
 from typing import TYPE_CHECKING, Final
 
 import numpy as np
 import shapely
+from shapely.geometry.polygon import orient
 
 from core.constants import SPEED_OF_LIGHT
 from core.errors import ModelError
-from core.fullwave.sizes import Sizes, first_hits, ring_segments, sizes_near
+from core.fullwave.mesh_model import CoaxRing, Mesh, Sheet
+from core.fullwave.mesh_sizes import Fineness, ground_plan, pin_holes, top_sizes
 from core.fullwave.triangulate import triangulate
 from core.layout.model import Role
 from core.shapes.outline import polygon
@@ -20,6 +21,7 @@ from core.shapes.outline import polygon
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
+    from core.fullwave.sizes import Sizes
     from core.layout.model import Layout, Port
     from core.shapes.outline import Region
 
@@ -35,48 +37,6 @@ class Level(Enum):
     FINE = "fine"
 
 
-class Sheet(IntEnum):
-    """Which conductor a triangle belongs to."""
-
-    GROUND = 0
-    PROBE = 1
-    TOP = 2
-
-
-@dataclass(frozen=True)
-class Fineness:
-    """What a level means.
-
-    Attributes
-    ----------
-    across : float
-        Cells across the element's shorter side, edge rows aside.
-    strip_aspect : float
-        Longest cell on a strip, in strip widths.
-    per_wavelength : float
-        Fewest cells per free-space wavelength on the ground plate, far from the copper.
-    ground_detail : float
-        Edge length on the ground plate right under copper edges, in spacer heights.
-    growth : float
-        Edge length gained per distance from a detail.
-    probe_sides : int
-        Of the prism that stands for the probe.
-    probe_cell : float
-        Longest cell along the probe, in free-space wavelengths.
-    ground_row : bool
-        Whether the rim of the ground plate has a row of edge cells.
-    """
-
-    across: float
-    strip_aspect: float
-    per_wavelength: float
-    ground_detail: float
-    growth: float
-    probe_sides: int
-    probe_cell: float
-    ground_row: bool
-
-
 FINENESS: Final = {
     Level.COARSE: Fineness(4.0, 3.0, 5.5, 2.0, 1.0, 4, 1 / 10, False),
     Level.NORMAL: Fineness(5.5, 2.0, 7.5, 1.3, 0.8, 6, 1 / 20, True),
@@ -88,48 +48,7 @@ _TOP_FREQUENCY = 1.1  # the band solved for reaches this far above the brief's f
 _SIMPLER = 0.01  # outline points closer to a straight line than this, in spacer heights, are left
 _GRID = 1e-9  # m
 _SIMPLEST = 0.1  # and than this, in radii of the probe
-_SHORTEST = 0.04  # of the longest cell on the top copper: no cell is asked to be shorter
 _COLLAR = 1.3  # least copper round the probe, in radii of its prism
-
-
-@dataclass(frozen=True)
-class CoaxRing:
-    """Mouth of the coax in the ground plate.
-
-    Attributes
-    ----------
-    x, y : float
-        Centre, m.
-    inner, outer : float
-        Radii of the pin and of the clearance hole, m.
-    """
-
-    x: float
-    y: float
-    inner: float
-    outer: float
-
-
-@dataclass(frozen=True, eq=False)
-class Mesh:
-    """Triangles of all conductors.
-
-    Attributes
-    ----------
-    vertices : (v, 3) ndarray of float
-        m; the ground plate at z = 0.
-    triangles : (t, 3) ndarray of int
-        Counter-clockwise seen from above on the plates, from outside on the probe.
-    sheet : (t,) ndarray of int
-        `Sheet` of each triangle.
-    port : CoaxRing or None
-        Where the antenna is fed.
-    """
-
-    vertices: Floats
-    triangles: Ints
-    sheet: Ints
-    port: CoaxRing | None
 
 
 def build_mesh(layout: Layout, level: Level) -> Mesh:
@@ -160,11 +79,10 @@ def build_mesh(layout: Layout, level: Level) -> Mesh:
     row = EDGE_ROW * height
     parts = []
     for piece in top:
-        parts.append(_plate(piece, _top_sizes(layout, piece, pin, fine), row, pin, height))
-    for piece in ground:
-        sizes = _ground_sizes(layout, top, pin, fine, cell)
-        rim = row if fine.ground_row else 0.0
-        parts.append(_plate(piece, sizes, rim, pin, 0.0))
+        parts.append(_plate(piece, top_sizes(layout, piece, pin, fine), row, pin, height))
+    sizes, traces = ground_plan(layout, top, pin, fine, cell)
+    rim = EDGE_ROW * max(height, cell / 2.0) if fine.ground_row else 0.0
+    parts += [_plate(piece, sizes, rim, pin, 0.0, traces) for piece in ground]
     parts.append(_tube(pin, height, max(1, ceil(height / (fine.probe_cell * wavelength)))))
     sheets = [Sheet.TOP] * len(top) + [Sheet.GROUND] * len(ground) + [Sheet.PROBE]
     return _joined(parts, sheets, _mouth(layout))
@@ -214,13 +132,13 @@ def _sheets(layout: Layout, role: Role, pin: Floats, chord: float) -> tuple[shap
         raise ModelError("mesh: the probe breaks the rim of the ground plate; accepted: inside it")
     radius = layout.ports[0].diameter / 2.0
     simple = shapely.simplify(joined, min(_SIMPLER * layout.height, _SIMPLEST * radius))
-    parts = [part for part in shapely.get_parts(simple) if isinstance(part, shapely.Polygon)]
+    parts = [orient(p) for p in shapely.get_parts(simple) if isinstance(p, shapely.Polygon)]
     return tuple(_pierced(part, hole) if part.contains(hole) else part for part in parts)
 
 
 def _pierced(part: shapely.Polygon, hole: shapely.Polygon) -> shapely.Polygon:
-    holes = [*(ring.coords for ring in part.interiors), hole.exterior.coords]
-    return shapely.Polygon(part.exterior.coords, holes)
+    rings = [np.asarray(ring.coords) for ring in (*part.interiors, hole.exterior)]
+    return orient(shapely.Polygon(np.asarray(part.exterior.coords), rings))
 
 
 def _faceted(region: Region, chord: float) -> shapely.Polygon:
@@ -235,60 +153,15 @@ def _grown(ring: Floats, factor: float) -> Floats:
     return np.asarray(middle + factor * (ring - middle))
 
 
-def _pin_number(piece: shapely.Polygon, pin: Floats) -> tuple[int, ...]:
-    """Number of the hole that is the pin's outline, if this sheet has it."""
-    middle = shapely.Point(*pin.mean(axis=0))
-    return tuple(
-        i for i, ring in enumerate(piece.interiors) if shapely.Polygon(ring).contains(middle)
-    )
-
-
-def _pin_wish(pin: Floats) -> tuple[Floats, float]:
-    side = float(np.linalg.norm(pin[1] - pin[0]))
-    return np.hstack([pin, np.roll(pin, -1, axis=0)]), side
-
-
-def _top_sizes(layout: Layout, piece: shapely.Polygon, pin: Floats, fine: Fineness) -> Sizes:
-    """Coarse over the element, finer on strips by their width."""
-    largest = min(layout.element_width, layout.element_length) / fine.across
-    pin_hole = _pin_number(piece, pin)
-    free = [ring for i, ring in enumerate(piece.interiors) if i not in pin_hole]
-    segments = np.concatenate([ring_segments(ring) for ring in (piece.exterior, *free)])
-    widths = _copper_widths(segments)
-    along = np.maximum(fine.strip_aspect * widths, _SHORTEST * largest)
-    wishes = [(segments[i : i + 1], along[i]) for i in np.flatnonzero(along < largest)]
-    return sizes_near(largest, fine.growth, [*wishes, _pin_wish(pin)])
-
-
-def _copper_widths(segments: Floats) -> Floats:
-    """Width of the copper behind each side, m: the least met along it."""
-    along = segments[:, 2:] - segments[:, :2]
-    lengths = np.linalg.norm(along, axis=1)
-    inward = np.column_stack([-along[:, 1], along[:, 0]]) / lengths[:, None]
-    widths = np.full(len(segments), np.inf)
-    for place in (0.1, 0.5, 0.9):
-        start = segments[:, :2] + place * along
-        widths = np.minimum(widths, first_hits(start, inward, segments))
-    return widths
-
-
-def _ground_sizes(
-    layout: Layout,
-    top: tuple[shapely.Polygon, ...],
-    pin: Floats,
-    fine: Fineness,
-    largest: float,
-) -> Sizes:
-    """Coarse far away, as fine as the spacer is high under copper edges."""
-    detail = fine.ground_detail * layout.height
-    edges = np.concatenate([ring_segments(piece.exterior) for piece in top])
-    return sizes_near(largest, fine.growth, [(edges, detail), _pin_wish(pin)])
-
-
 def _plate(
-    piece: shapely.Polygon, sizes: Sizes, row: float, pin: Floats, z: float
+    piece: shapely.Polygon,
+    sizes: Sizes,
+    row: float,
+    pin: Floats,
+    z: float,
+    traces: tuple[shapely.LinearRing, ...] = (),
 ) -> tuple[Floats, Ints]:
-    points, triangles = triangulate(piece, sizes, row, _pin_number(piece, pin))
+    points, triangles = triangulate(piece, sizes, row, pin_holes(piece, pin), traces)
     return np.column_stack([points, np.full(len(points), z)]), triangles
 
 

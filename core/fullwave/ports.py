@@ -22,14 +22,14 @@ import numpy as np
 from scipy.special import ellipe, ellipk
 
 from core.constants import VACUUM_PERMITTIVITY
-from core.fullwave.mesh import Sheet
+from core.fullwave.mesh_model import Sheet
 from core.fullwave.quadrature import triangle_rule
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
     from core.fullwave.basis import Basis
-    from core.fullwave.mesh import CoaxRing, Mesh
+    from core.fullwave.mesh_model import CoaxRing, Mesh
 
     Floats = NDArray[np.float64]
 

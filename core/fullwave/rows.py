@@ -93,6 +93,12 @@ def edging(polygon: shapely.Polygon, sizes: Sizes, row: float, plain: tuple[int,
     return Edging(np.concatenate(all_points), np.concatenate(edges), joined)
 
 
+def ring_points(ring: shapely.LinearRing, sizes: Sizes) -> Floats:
+    """Points (n, 2) along a ring, corners included, spaced as the sizes want it, m."""
+    points, _ = _sampled(ring_segments(ring), sizes)
+    return points
+
+
 def _sampled(segments: Floats, sizes: Sizes | None) -> tuple[Floats, Ints]:
     """Points along a ring, corners included, and the number of the side that each starts."""
     points, side = [], []

@@ -18,7 +18,7 @@ from core.fullwave.ports import ring_capacitance, ring_excitation
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
-    from core.fullwave.mesh import Mesh
+    from core.fullwave.mesh_model import Mesh
     from core.layout.model import Foil
 
     Floats = NDArray[np.float64]

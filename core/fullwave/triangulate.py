@@ -15,13 +15,12 @@ from scipy.spatial import KDTree
 
 from core.errors import ModelError
 from core.fullwave.delaunay import constrained_delaunay
-from core.fullwave.rows import edging
+from core.fullwave.rows import Edging, edging, ring_points
 from core.fullwave.sizes import distances
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
-    from core.fullwave.rows import Edging
     from core.fullwave.sizes import Sizes
 
     Floats = NDArray[np.float64]
@@ -30,13 +29,18 @@ if TYPE_CHECKING:
 
 _APART = 0.8  # least distance between inner points, in wanted edge lengths
 _OFF_LINES = 0.55  # least distance of inner points from the edge row, in wanted edge lengths
+_OFF_TRACES = 0.15  # least distance of points on a trace from other lines, in the same
 _LATTICE_STEP = 2.0**0.5
 _EVENING = 3  # sweeps of smoothing
 _FLAT = 1e-6  # triangles thinner than this share of their longest edge are no triangles
 
 
 def triangulate(
-    polygon: shapely.Polygon, sizes: Sizes, row: float, plain: tuple[int, ...] = ()
+    polygon: shapely.Polygon,
+    sizes: Sizes,
+    row: float,
+    plain: tuple[int, ...] = (),
+    traces: tuple[shapely.LinearRing, ...] = (),
 ) -> tuple[Floats, Ints]:
     """Triangles over a polygon.
 
@@ -50,6 +54,8 @@ def triangulate(
         Width of the row of cells along the edges, m; 0 for none.
     plain : tuple of int
         Numbers of the holes whose sides become one triangle edge each, without a row.
+    traces : tuple of shapely.LinearRing
+        Lines that triangle edges should follow where they are inside.
 
     Returns
     -------
@@ -63,8 +69,10 @@ def triangulate(
     ModelError
         If an edge of the polygon cannot be kept.
     """
-    edges = _inside_only(edging(polygon, sizes, row, plain), polygon)
     shapely.prepare(polygon)
+    edges = _inside_only(edging(polygon, sizes, row, plain), polygon)
+    for trace in traces:
+        edges = _with_trace(edges, trace, polygon, sizes)
     points = np.vstack([edges.points, _inner_points(polygon, sizes, edges)])
     fixed = len(edges.points)
     triangles = _triangles(points, edges, polygon)
@@ -91,7 +99,23 @@ def _inside_only(edges: Edging, polygon: shapely.Polygon) -> Edging:
     keep = np.concatenate([np.ones(boundary, dtype=bool), good])
     number = np.cumsum(keep) - 1
     rows = edges.rows[keep[edges.rows].all(axis=1)]
-    return type(edges)(edges.points[keep], edges.edges, number[rows])
+    return Edging(edges.points[keep], edges.edges, number[rows])
+
+
+def _with_trace(
+    edges: Edging, trace: shapely.LinearRing, polygon: shapely.Polygon, sizes: Sizes
+) -> Edging:
+    """The same with points along a line too, where it is inside and clear of what there is."""
+    points = ring_points(trace, sizes)
+    lines = np.concatenate([edges.edges, edges.rows])
+    segments = np.hstack([edges.points[lines[:, 0]], edges.points[lines[:, 1]]])
+    keep = shapely.contains_xy(polygon, points[:, 0], points[:, 1])
+    keep &= distances(points, segments).min(axis=1) > _OFF_TRACES * sizes.at(points)
+    number = len(edges.points) - 1 + np.cumsum(keep)
+    along = np.column_stack([number, np.roll(number, -1)])[keep & np.roll(keep, -1)]
+    return Edging(
+        np.vstack([edges.points, points[keep]]), edges.edges, np.concatenate([edges.rows, along])
+    )
 
 
 def _inner_points(polygon: shapely.Polygon, sizes: Sizes, edges: Edging) -> Floats:
