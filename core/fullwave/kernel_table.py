@@ -249,7 +249,8 @@ def plan_tables(
     TablePlan
     """
     height = total_thickness(layers)
-    finest = min(layers[-1].thickness, height)
+    # Higher profiles bring charges along the probe, spaced by their half periods.
+    finest = min(layers[-1].thickness, height / max(1, 4 * (profiles - 1)))
     densest = wavenumber * max(abs(complex_permittivity(layer)) for layer in layers) ** 0.5
     distances, spread, step = table_grid(reach, finest, height, densest)
     rule = sommerfeld_rule(distances, wavenumber, densest, max(_DIED / finest, 12.0 * densest))
