@@ -22,7 +22,8 @@ if TYPE_CHECKING:
     Floats = NDArray[np.float64]
     Complexes = NDArray[np.complex128]
 
-_ARCH_PIECES: Final = 9
+_ARCH_PIECES: Final = 9  # at least, of as many nodes as an octave of the tail has
+_ARCH_SLENDER: Final = 0.4  # pieces per length over height
 _ARCH_HEIGHT: Final = 0.35  # of the largest free-space wavenumber
 _ARCH_GROWTH: Final = 2.5  # largest height times distance: J0 grows as its exponential
 _ARCH_END: Final = 1.5  # times the largest wavenumber in the stack
@@ -107,8 +108,9 @@ def sommerfeld_rule(
     """
     farthest = float(distances.max())
     start = _ARCH_END * largest_wavenumber
-    x, weight = composite_nodes(_ARCH_PIECES)
     height = min(_ARCH_HEIGHT * wavenumber, _ARCH_GROWTH / farthest)
+    # A low arch passes poles closely.
+    x, weight = _composite_nodes(max(_ARCH_PIECES, int(_ARCH_SLENDER * start / height)))
     phase = 0.5 * np.pi * (1.0 + x)
     arch = start * phase / np.pi + 1j * height * np.sin(phase)
     step = 0.5 * weight * (start + 1j * np.pi * height * np.cos(phase))
@@ -133,7 +135,7 @@ def _panel(distances: Floats, start: float, fade: float) -> tuple[Floats, Floats
     """Samples and weights of the octave from `start`."""
     x, weight = _NODES
     pieces = 1 + int(min(fade, 0.5 * start * distances.max()) / _TURNED)
-    fine, fine_weight = composite_nodes(pieces)
+    fine, fine_weight = _composite_nodes(pieces)
     k = start * (1.5 + 0.5 * fine)
     reached = distances * start < 2.0 * fade
     turns = np.multiply.outer(distances[reached], k)
@@ -147,7 +149,7 @@ def _panel(distances: Floats, start: float, fade: float) -> tuple[Floats, Floats
     return start * (1.5 + 0.5 * x), weights
 
 
-def composite_nodes(pieces: int) -> tuple[Floats, Floats]:
+def _composite_nodes(pieces: int) -> tuple[Floats, Floats]:
     """Gauss points and weights on equal pieces of -1 to 1."""
     x, weight = _NODES
     middles = (2.0 * np.arange(pieces) + 1.0) / pieces - 1.0

@@ -52,7 +52,7 @@ def table_grid(
     logarithm farther out.
     """
     span = np.arcsinh(reach / finest)
-    count = _AT_LEAST + int(_PER_SPAN * span + 0.5 * densest * reach)
+    count = _AT_LEAST + int(_PER_SPAN * span + densest * reach)
     angle = np.pi * np.arange(count) / (count - 1)
     nodes = 0.5 - 0.5 * np.cos(angle)
     step = max(min(reach / _SHORTEST, height / 6.0, finest / 3.0), reach / _LONGEST)

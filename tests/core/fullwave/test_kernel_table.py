@@ -121,6 +121,13 @@ def test_air_is_free_space_with_an_image():
     assert abs(tables.coupling).max() < 1e-7 * abs(found).max()
 
 
+def test_five_wavelengths_out():
+    layers, distance = STACKS["board"], np.array([0.01, 1.3, 2.6, 5.0])
+    found = scalar(tables_of(layers, reach=5.0), distance)
+    expected = brute(layers, lambda k: scalar_spectrum(layers, K0, k), distance)
+    assert_allclose(found, expected, rtol=1e-5)
+
+
 def test_lower_end_of_the_band():
     layers = STACKS["board"]
     tables = tables_of(layers, k0=0.5 * K0)
