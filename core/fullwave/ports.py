@@ -19,7 +19,7 @@ from math import log, pi
 from typing import TYPE_CHECKING
 
 import numpy as np
-from scipy.special import ellipe, ellipk
+from scipy.special import ellipe, ellipk, elliprf, elliprj
 
 from core.constants import VACUUM_PERMITTIVITY
 from core.fullwave.mesh_model import Sheet
@@ -33,7 +33,7 @@ if TYPE_CHECKING:
 
     Floats = NDArray[np.float64]
 
-_RADII, _TURNS = 12, 32  # points of the ring: across and once round
+_RADII = 12  # points across the ring
 _FAR = 12.0  # outer radii from which the ring is one dipole, to a few parts in a thousand
 
 
@@ -60,9 +60,8 @@ def ring_excitation(mesh: Mesh, basis: Basis, ring: CoaxRing) -> Floats:
     away = np.hypot(points[..., 0] - ring.x, points[..., 1] - ring.y)
     # The plate is under the layer of dipoles, the foot of the pin just above it.
     potential[plate] = -_drop(away[plate], ring) / 2.0
-    potential[pin] = _beside_pin(points[pin][..., 2], ring)
-    above = ~(plate | pin)
-    potential[above] = _above(away[above], points[above][..., 2], ring)
+    away[pin] = ring.inner
+    potential[~plate] = _above_ring(away[~plate], points[~plate][..., 2], ring)
     mean = potential @ rule[:, 3]
     halves = basis.lengths * mean
     # From plate to pin the potential jumps by the voltage; no field stands behind that step.
@@ -102,40 +101,28 @@ def _drop(away: Floats, ring: CoaxRing) -> Floats:
     return np.asarray(np.log(ring.outer / inside) / log(ring.outer / ring.inner))
 
 
-def _radii(ring: CoaxRing) -> tuple[Floats, Floats]:
-    """Radii across the ring, m, and what share of the voltage drops at each."""
-    x, w = np.polynomial.legendre.leggauss(_RADII)
-    spread = log(ring.outer / ring.inner)
-    return ring.inner * np.exp(spread * (x + 1.0) / 2.0), w / 2.0
-
-
-def _beside_pin(z: Floats, ring: CoaxRing) -> Floats:
-    """Potential on the pin's surface: solid angles of discs seen from above their inside."""
-    radii, shares = _radii(ring)
-    turn = 2.0 * pi * (np.arange(_TURNS) + 0.5) / _TURNS
-    rim = -ring.inner * np.cos(turn) + np.sqrt(
-        radii[:, None] ** 2 - (ring.inner * np.sin(turn)) ** 2
-    )
-    height = np.maximum(z, 0.0)[..., None, None]
-    angles = 1.0 - height / np.sqrt(height**2 + rim**2)
-    return np.asarray(angles.mean(axis=-1) @ shares / 2.0)
-
-
-def _above(away: Floats, z: Floats, ring: CoaxRing) -> Floats:
-    """Potential of the dipole layer above it: as one dipole far away, point by point nearby."""
+def _above_ring(away: Floats, z: Floats, ring: CoaxRing) -> Floats:
+    """Potential above the dipole layer at 1 V: near it, of discs as large as the ring's radii."""
     far = np.hypot(away, z)
     moment = (ring.outer**2 - ring.inner**2) / (8.0 * log(ring.outer / ring.inner))
-    potential = moment * z / far**3
+    potential = np.asarray(moment * z / far**3)
     near = far < _FAR * ring.outer
-    x, w = np.polynomial.legendre.leggauss(_RADII)
-    radii = ring.outer * (x + 1.0) / 2.0
-    weights = w / 2.0 * ring.outer * radii * _drop(radii, ring) / _TURNS / 2.0
-    turn = 2.0 * pi * (np.arange(_TURNS) + 0.5) / _TURNS
-    height = z[near, None, None]
-    squared = (
-        (away[near, None, None] - radii[:, None] * np.cos(turn)) ** 2
-        + (radii[:, None] * np.sin(turn)) ** 2
-        + height**2
-    )
-    potential[near] = (height / squared**1.5).sum(axis=-1) @ weights
-    return np.asarray(potential)
+    places, weights = np.polynomial.legendre.leggauss(_RADII)
+    radii = ring.inner * (ring.outer / ring.inner) ** ((places + 1.0) / 2.0)
+    angles = _solid_angle(away[near, None], z[near, None], radii)
+    potential[near] = angles @ weights / (8.0 * pi)
+    return potential
+
+
+def _solid_angle(away: Floats, z: Floats, radius: Floats) -> Floats:
+    """Solid angle of discs at z = 0 seen from a point at z > 0.
+
+    F. Paxton, Rev. Sci. Instrum. 30, 1959, 254-258 (from memory, checked against sums).
+    """
+    total = away + radius
+    reach = np.hypot(z, total)
+    m = 4.0 * away * radius / reach**2
+    n = np.minimum(4.0 * away * radius / total**2, 1.0 - 1e-12)
+    third = elliprf(0.0, 1.0 - m, 1.0) + n / 3.0 * elliprj(0.0, 1.0 - m, 1.0, 1.0 - n)
+    beyond = (away - radius) / total * third - ellipk(m)
+    return np.asarray(np.where(away < radius, 2.0 * pi, 0.0) + 2.0 * z / reach * beyond)
