@@ -1,0 +1,294 @@
+"""Compiled filling of the moment matrix. The first import of this module is slow.
+
+Halves of basis functions are numbered corner * triangles + triangle (`core.fullwave.basis`).
+For one test triangle at a time: the kernel at 3 x 3 points against it and every later source
+triangle, its moments with the 3 x 3 pairs of halves, the near terms, then the sums that make
+rows of the matrix; its transpose is added at the end. Triangles of one colour share no edge,
+so that threads that share out one colour never meet in a row.
+
+Shapes: t triangles, n unknowns, p near pairs. Geometry is stored axis by axis, so that the
+innermost loop, over source triangles, runs through neighbouring numbers.
+"""
+
+from __future__ import annotations
+
+from math import pi
+from typing import TYPE_CHECKING
+
+import numpy as np
+from numba import njit
+
+if TYPE_CHECKING:
+    from numpy.typing import NDArray
+
+    Floats = NDArray[np.float64]
+    Ints = NDArray[np.int64]
+    Complexes = NDArray[np.complex128]
+
+_FAST = {"contract", "nnan", "ninf", "nsz", "arcp"}  # sums keep their order
+_TILE = 32  # rows and columns of a tile: two fit the fastest cache
+
+
+@njit(inline="always", fastmath=_FAST)
+def _sine_cosine(angle: float) -> tuple[float, float]:
+    """Sine and cosine to 1e-11 without a branch: power series of half the reduced angle."""
+    half = (angle - 2.0 * pi * np.floor(angle * (0.5 / pi) + 0.5)) * 0.5
+    x = half * half
+    s = -1.0 / 1307674368000.0
+    s = s * x + 1.0 / 6227020800.0
+    s = s * x - 1.0 / 39916800.0
+    s = s * x + 1.0 / 362880.0
+    s = s * x - 1.0 / 5040.0
+    s = s * x + 1.0 / 120.0
+    s = s * x - 1.0 / 6.0
+    s = (s * x + 1.0) * half
+    c = 1.0 / 20922789888000.0
+    c = c * x - 1.0 / 87178291200.0
+    c = c * x + 1.0 / 479001600.0
+    c = c * x - 1.0 / 3628800.0
+    c = c * x + 1.0 / 40320.0
+    c = c * x - 1.0 / 720.0
+    c = c * x + 1.0 / 24.0
+    c = c * x - 0.5
+    c = c * x + 1.0
+    return 2.0 * s * c, 1.0 - 2.0 * s * s
+
+
+@njit(fastmath=_FAST, cache=True)
+def _free_space_row(t: int, k: float, points: Floats, real: Floats, imag: Floats) -> None:
+    """exp(-jkR)/R between the points of triangle t and those from t on; -jk where R = 0."""
+    for i in range(3):
+        x, y, z = points[0, i, t], points[1, i, t], points[2, i, t]
+        for j in range(3):
+            px, py, pz = points[0, j][t:], points[1, j][t:], points[2, j][t:]
+            re, im = real[3 * i + j][t:], imag[3 * i + j][t:]
+            for s in range(re.shape[0]):
+                dx, dy, dz = px[s] - x, py[s] - y, pz[s] - z
+                r = np.sqrt(dx * dx + dy * dy + dz * dz)
+                inverse = 1.0 / max(r, 1e-30)
+                sine, cosine = _sine_cosine(k * r)
+                re[s] = cosine * inverse
+                im[s] = -sine * inverse
+        real[4 * i, t] = 0.0
+        imag[4 * i, t] = -k
+
+
+@njit(fastmath=_FAST, cache=True)
+def _add(t: int, weight: float, one: Floats, out: Floats) -> None:
+    x, y = one[t:], out[t:]
+    for s in range(y.shape[0]):
+        y[s] += weight * x[s]
+
+
+@njit(fastmath=_FAST, cache=True)
+def _sum_up(t: int, kernel: Floats, out: Floats) -> None:
+    """Sum a kernel (3, t) over source points."""
+    g0, g1, g2, total = kernel[0][t:], kernel[1][t:], kernel[2][t:], out[t:]
+    for s in range(total.shape[0]):
+        total[s] = g0[s] + g1[s] + g2[s]
+
+
+@njit(fastmath=_FAST, cache=True)
+def _weigh(t: int, kernel: Floats, places: Floats, origin: float, out: Floats) -> None:
+    """Sum a kernel (3, t) over source points, each times one coordinate (3, t) less the origin."""
+    g0, g1, g2, total = kernel[0][t:], kernel[1][t:], kernel[2][t:], out[t:]
+    x0, x1, x2 = places[0][t:], places[1][t:], places[2][t:]
+    for s in range(total.shape[0]):
+        total[s] = g0[s] * (x0[s] - origin) + g1[s] * (x1[s] - origin) + g2[s] * (x2[s] - origin)
+
+
+@njit(fastmath=_FAST, cache=True)
+def _project(
+    t: int,
+    weight: float,
+    both: Floats,
+    test: Floats,
+    places: Floats,
+    origin: Floats,
+    lengths: Floats,
+    out: Floats,
+) -> None:
+    """Moment with the source halves that leave from `places`: x, y, z (t,) each."""
+    x, y, z = places[0][t:], places[1][t:], places[2][t:]
+    tx, ty, tz = test[0][t:], test[1][t:], test[2][t:]
+    all_in, length, moment = both[t:], lengths[t:], out[t:]
+    ox, oy, oz = origin[0], origin[1], origin[2]
+    for s in range(moment.shape[0]):
+        current = all_in[s] - (x[s] - ox) * tx[s] - (y[s] - oy) * ty[s] - (z[s] - oz) * tz[s]
+        moment[s] = weight * length[s] * current
+
+
+@njit(fastmath=_FAST, cache=True)
+def _half_moments(
+    t: int,
+    vector: Floats,
+    scalar: Floats,
+    charge: float,
+    geometry: tuple[Floats, Floats, Floats],
+    work: Floats,
+    out: Floats,
+) -> None:
+    """Moments of a kernel (9, t) with the halves of triangle t and those from t on: (3, 3, t).
+
+    `vector` weighs currents; `scalar` weighs charges, times `charge`. The sum over points of
+    (r - p).(r' - p') splits into the kernel's moments 1, r, r' and r.r', taken about the
+    middle of triangle t to lose no digits. Each loop has few arrays, or the compiler makes
+    no vector loop of it.
+    """
+    points, corners, half_lengths = geometry
+    source, test, from_corner = work[0:3], work[3:6], work[6:9]
+    both, none, inner, mine, charges = work[9], work[10], work[11], work[12], work[13]
+    work[:11, t:] = 0.0
+    middle = np.empty(3)
+    for axis in range(3):
+        middle[axis] = (corners[axis, 0, t] + corners[axis, 1, t] + corners[axis, 2, t]) / 3.0
+    for i in range(3):
+        kernel = vector[3 * i : 3 * i + 3]
+        _sum_up(t, kernel, inner)
+        _add(t, 1.0, inner, none)
+        _sum_up(t, scalar[3 * i : 3 * i + 3], charges)
+        _add(t, 4.0 * charge, charges, both)
+        for axis in range(3):
+            place = points[axis, i, t] - middle[axis]
+            _add(t, place, inner, test[axis])
+            _weigh(t, kernel, points[axis], middle[axis], mine)
+            _add(t, 1.0, mine, source[axis])
+            _add(t, place, mine, both)
+    for a in range(3):
+        mine[t:] = both[t:]
+        for axis in range(3):
+            place = corners[axis, a, t] - middle[axis]
+            _add(t, -place, source[axis], mine)
+            from_corner[axis, t:] = test[axis, t:]
+            _add(t, -place, none, from_corner[axis])
+        weight = half_lengths[a, t] / 9.0
+        for b in range(3):
+            leaving = corners[:, b]
+            _project(t, weight, mine, from_corner, leaving, middle, half_lengths[b], out[a, b])
+
+
+@njit(fastmath=_FAST, cache=True)
+def _add_near(
+    t: int,
+    k_squared: float,
+    near: tuple[Ints, Ints, Floats, Floats],
+    half_lengths: Floats,
+    out: Floats,
+) -> None:
+    """Add what the points miss of 1/R and -k² R/2 near triangle t; real, so to `out` alone."""
+    starts, sources, currents, charges = near
+    for p in range(starts[t], starts[t + 1]):
+        s = sources[p]
+        charge = -4.0 / k_squared * (charges[p, 0] - 0.5 * k_squared * charges[p, 1])
+        for a in range(3):
+            for b in range(3):
+                current = currents[p, 0, a, b] - 0.5 * k_squared * currents[p, 1, a, b]
+                out[a, b, s] += half_lengths[a, t] * half_lengths[b, s] * (current + charge)
+
+
+@njit(fastmath=_FAST, cache=True)
+def _settle_own(t: int, sheet: complex, overlaps: Floats, real: Floats, imag: Floats) -> None:
+    """Add the voltage drop in the foil of triangle t; halve it all: the transpose follows."""
+    for a in range(3):
+        for b in range(3):
+            real[a, b, t] = 0.5 * (real[a, b, t] + sheet.real * overlaps[t, a, b])
+            imag[a, b, t] = 0.5 * (imag[a, b, t] + sheet.imag * overlaps[t, a, b])
+
+
+@njit(fastmath=_FAST, cache=True)
+def _add_rows(
+    t: int,
+    real: Floats,
+    imag: Floats,
+    factor: complex,
+    functions: tuple[Ints, Ints, Floats, Ints, Ints],
+    matrix: Complexes,
+) -> None:
+    """Add the halves of triangle t to the rows of the functions that they belong to."""
+    starts, rows, signs, plus, minus = functions
+    triangles = real.shape[2]
+    for a in range(3):
+        re, im = real[a].reshape(-1), imag[a].reshape(-1)
+        half = a * triangles + t
+        for place in range(starts[half], starts[half + 1]):
+            row = matrix[rows[place]]
+            scale = factor * signs[place]
+            for m in range(plus.shape[0]):
+                one, two = plus[m], minus[m]
+                row[m] += scale * complex(re[one] - re[two], im[one] - im[two])
+
+
+@njit(nogil=True, cache=True)
+def add_transpose(matrix: Complexes, first: int, step: int) -> None:
+    """Add its transpose to a matrix, for every `step`th row of tiles from the `first` on.
+
+    Parameters
+    ----------
+    matrix : (n, n) ndarray of complex
+        Written to.
+    first, step : int
+        Several calls with the same step and every first from 0 up to it do it all.
+    """
+    n = matrix.shape[0]
+    for i in range(first, (n + _TILE - 1) // _TILE, step):
+        for j in range(i + 1):
+            for a in range(i * _TILE, min(n, (i + 1) * _TILE)):
+                for b in range(j * _TILE, min(a + 1, (j + 1) * _TILE)):
+                    total = matrix[a, b] + matrix[b, a]
+                    matrix[a, b] = total
+                    matrix[b, a] = total
+
+
+@njit(nogil=True, fastmath=_FAST, cache=True)
+def add_free_space(
+    triangles: Ints,
+    k: float,
+    factor: complex,
+    geometry: tuple[Floats, Floats, Floats],
+    near: tuple[Ints, Ints, Floats, Floats],
+    foil: tuple[Complexes, Floats],
+    functions: tuple[Ints, Ints, Floats, Ints, Ints],
+    matrix: Complexes,
+) -> None:
+    """Add the part of some triangles to the half-filled moment matrix in free space.
+
+    Done for all triangles, the matrix and its transpose add up to the moment matrix.
+
+    Parameters
+    ----------
+    triangles : (...,) ndarray of int
+        Test triangles.
+    k : float
+        Wavenumber, 1/m.
+    factor : complex
+        What the sums are multiplied by: j omega mu / (4 pi), ohm/m.
+    geometry : tuple
+        Points (3 axes, 3 points, t), corners (3 axes, 3 corners, t) and half the length of
+        the edge opposite each corner (3, t), m.
+    near : tuple
+        Where the sources of each triangle start (t + 1), the sources (p), none before its
+        triangle, and the terms of `core.fullwave.compiled_near` in that order.
+    foil : tuple
+        Sheet impedance over `factor` (t,), m, and overlaps of the halves of each triangle
+        (t, 3, 3), m².
+    functions : tuple
+        Where the functions of each half start (3 t + 1), those functions, their signs; the
+        positive and the negative half of each function (n,).
+    matrix : (n, n) ndarray of complex
+        Written to, in the rows of the functions on `triangles` alone.
+    """
+    points, _, half_lengths = geometry
+    sheets, overlaps = foil
+    n = points.shape[2]
+    charge = -1.0 / (k * k)
+    real, imag, work = np.empty((9, n)), np.empty((9, n)), np.empty((14, n))
+    real_out, imag_out = np.empty((3, 3, n)), np.empty((3, 3, n))
+    for t in triangles:
+        real_out[:, :, :t] = 0.0
+        imag_out[:, :, :t] = 0.0
+        _free_space_row(t, k, points, real, imag)
+        _half_moments(t, real, real, charge, geometry, work, real_out)
+        _half_moments(t, imag, imag, charge, geometry, work, imag_out)
+        _add_near(t, k * k, near, half_lengths, real_out)
+        _settle_own(t, sheets[t], overlaps, real_out, imag_out)
+        _add_rows(t, real_out, imag_out, factor, functions, matrix)

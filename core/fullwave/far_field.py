@@ -1,0 +1,116 @@
+"""Far field of currents on a mesh in free space.
+
+Far field means r exp(jkr) E for r to infinity, in volts.
+
+Shapes: t triangles, n functions, d directions.
+"""
+
+from __future__ import annotations
+
+from math import ceil, pi
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from core.constants import FREE_SPACE_IMPEDANCE, SPEED_OF_LIGHT, TWO_PI, VACUUM_PERMEABILITY
+from core.fullwave.quadrature import COARSE_RULE
+
+if TYPE_CHECKING:
+    from numpy.typing import ArrayLike, NDArray
+
+    from core.fullwave.basis import Basis
+
+    Floats = NDArray[np.float64]
+    Complexes = NDArray[np.complex128]
+
+_AT_ONCE = 512  # directions
+
+
+def far_field(basis: Basis, currents: Complexes, frequency: float, directions: Floats) -> Complexes:
+    """Far field of currents in some directions.
+
+    Parameters
+    ----------
+    basis : Basis
+    currents : (n,) ndarray of complex
+        Coefficients of the basis functions, A/m.
+    frequency : float
+        Hz.
+    directions : (d, 3) ndarray of float
+        Unit vectors.
+
+    Returns
+    -------
+    (d, 3) ndarray of complex
+        x, y and z components of r exp(jkr) E, V.
+    """
+    points, moments = _current_moments(basis, currents)
+    k = TWO_PI * frequency / SPEED_OF_LIGHT
+    field = np.empty((len(directions), 3), dtype=np.complex128)
+    for start in range(0, len(directions), _AT_ONCE):
+        towards = directions[start : start + _AT_ONCE]
+        summed = np.exp(1j * k * (towards @ points.T)) @ moments
+        along = np.sum(summed * towards, axis=1, keepdims=True)
+        field[start : start + _AT_ONCE] = summed - along * towards
+    return np.asarray(field * (-1j * TWO_PI * frequency * VACUUM_PERMEABILITY / (4.0 * pi)))
+
+
+def _current_moments(basis: Basis, currents: Complexes) -> tuple[Floats, Complexes]:
+    """Points (3 t, 3), m, and what current flows at each, times its share of area, A m."""
+    points = np.einsum("ic,tcx->tix", COARSE_RULE[:, :3], basis.corners)
+    arms = points[:, :, None] - basis.corners[:, None]
+    halves = basis.on_halves(currents) * basis.lengths / 2.0
+    moments = np.einsum("i,tiax,at->tix", COARSE_RULE[:, 3], arms, halves)
+    return points.reshape(-1, 3), moments.reshape(-1, 3)
+
+
+def direction_frame(theta: ArrayLike, phi: ArrayLike) -> tuple[Floats, Floats, Floats]:
+    """Unit vectors along r, theta and phi.
+
+    Parameters
+    ----------
+    theta, phi : (...,) array_like of float
+        Angle from boresight and azimuth from x towards y, rad; theta may be negative, so
+        that a cut runs on smoothly through boresight.
+
+    Returns
+    -------
+    tuple of (..., 3) ndarray of float
+    """
+    theta, phi = np.broadcast_arrays(np.asarray(theta, float), np.asarray(phi, float))
+    st, ct, sp, cp = np.sin(theta), np.cos(theta), np.sin(phi), np.cos(phi)
+    return (
+        np.stack([st * cp, st * sp, ct], axis=-1),
+        np.stack([ct * cp, ct * sp, -st], axis=-1),
+        np.stack([-sp, cp, np.zeros_like(cp)], axis=-1),
+    )
+
+
+def radiated_power(basis: Basis, currents: Complexes, frequency: float) -> float:
+    """Power through a large sphere, W.
+
+    Parameters
+    ----------
+    basis : Basis
+    currents : (n,) ndarray of complex
+        A/m, peak values.
+    frequency : float
+        Hz.
+
+    Returns
+    -------
+    float
+
+    Notes
+    -----
+    Gauss points in cos(theta) times even steps in phi: exact for a pattern of as many
+    spherical harmonics as the antenna's size in wavelengths excites.
+    """
+    reach = float(np.ptp(basis.corners.reshape(-1, 3), axis=0).max())
+    order = ceil(TWO_PI * frequency / SPEED_OF_LIGHT * reach * 0.75) + 6
+    heights, weights = np.polynomial.legendre.leggauss(order)
+    steps = TWO_PI * np.arange(2 * order) / (2 * order)
+    towards, _, _ = direction_frame(np.arccos(heights)[:, None], steps)
+    field = far_field(basis, currents, frequency, towards.reshape(-1, 3))
+    density = np.sum(np.abs(field) ** 2, axis=1).reshape(order, -1).sum(axis=1)
+    return float(weights @ density * pi / order / (2.0 * FREE_SPACE_IMPEDANCE))

@@ -1,0 +1,209 @@
+"""The field solver as an engine: from a Layout to the Response of its very shape.
+
+Shapes: k solved frequencies, n wanted ones, m angles.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from math import pi
+from typing import TYPE_CHECKING, Final
+
+import numpy as np
+from scipy.interpolate import PchipInterpolator
+
+from core.constants import FREE_SPACE_IMPEDANCE
+from core.errors import ModelError
+from core.fullwave.far_field import direction_frame, far_field
+from core.fullwave.mesh import Level, build_mesh
+from core.fullwave.rational import fit_rational
+from core.fullwave.sweep import Sweep, adaptive_sweep
+from core.fullwave.system import Solution, System, build_system, solve
+from core.lines.stack import series_permittivity
+from core.response.model import (
+    Mode,
+    PatternCut,
+    Reading,
+    Response,
+    Samples,
+    Trust,
+    TrustLevel,
+)
+
+if TYPE_CHECKING:
+    from numpy.typing import ArrayLike, NDArray
+
+    from core.layout.model import Layout
+    from core.progress import Progress
+
+    Floats = NDArray[np.float64]
+    Complexes = NDArray[np.complex128]
+
+ENGINE: Final = "field"
+MOST_AIR_LIKE: Final = 1.5
+"""Thickness-averaged permittivity up to which the finite plate is meshed in free space."""
+
+_TOLERANCE = 2e-3  # of reflection coefficient and field ratio in a sweep
+_ANGLES = np.radians(np.arange(-180.0, 181.0, 2.0))
+_MODE_REACH = 1.3  # ratio to the brief's frequency within which a pole is a mode of the element
+_LOWEST_Q, _HIGHEST_Q = 2.0, 2000.0
+
+
+def respond(
+    layout: Layout, frequencies: ArrayLike, progress: Progress, level: Level = Level.NORMAL
+) -> Response:
+    """Response of a layout by a full-wave solution.
+
+    Parameters
+    ----------
+    layout : Layout
+    frequencies : (n,) array_like of float
+        Hz, > 0, rising.
+    progress : Progress
+        Told after each solved frequency; may cancel.
+    level : Level
+        Fineness of the mesh.
+
+    Returns
+    -------
+    Response
+
+    Raises
+    ------
+    ModelError
+        If the stack is outside what the solver covers.
+    ConvergenceError
+        If the sweep does not settle.
+    Cancelled
+        If the progress asks for it.
+    """
+    permittivity = series_permittivity(layout.stack)
+    if permittivity > MOST_AIR_LIKE:
+        raise ModelError(
+            f"field solver: the spacer's mean permittivity is {permittivity:.2f}; "
+            f"accepted: up to {MOST_AIR_LIKE}"
+        )
+    wanted = np.asarray(frequencies, dtype=np.float64)
+    solver = _Solver(build_system(build_mesh(layout, level), layout.foil))
+    impedance = layout.ports[0].impedance
+    sweep = adaptive_sweep(
+        solver.quantities,
+        (min(wanted[0], layout.frequency), max(wanted[-1], layout.frequency)),
+        layout.frequency,
+        lambda one, other: _apart(one, other, impedance),
+        _TOLERANCE,
+        progress,
+    )
+    spot = solver.solved[layout.frequency]
+    at_spot = _samples(np.array([layout.frequency]), sweep, solver, impedance).at(0)
+    gain = abs(complex(at_spot.e_x)) ** 2 + abs(complex(at_spot.e_y)) ** 2
+    return Response(
+        engine=ENGINE,
+        reference_impedance=impedance,
+        sweep=_samples(wanted, sweep, solver, impedance),
+        spot=at_spot,
+        modes=_modes(sweep, layout.frequency),
+        directivity=gain / float(at_spot.efficiency),
+        cuts=tuple(_cut(solver.system, spot, phi) for phi in (0.0, pi / 2)),
+        front_to_back=_front_to_back(solver.system, spot),
+        trust=_trust(level, sweep),
+    )
+
+
+@dataclass(frozen=True, eq=False)
+class _Solver:
+    """A system and what has been solved of it."""
+
+    system: System
+    solved: dict[float, Solution]
+
+    def __init__(self, system: System) -> None:
+        object.__setattr__(self, "system", system)
+        object.__setattr__(self, "solved", {})
+
+    def quantities(self, frequency: float) -> Complexes:
+        """Admittance and boresight field of 1 V at the port, analytic in the frequency."""
+        solution = solve(self.system, frequency)
+        self.solved[frequency] = solution
+        volts = np.sqrt(FREE_SPACE_IMPEDANCE * solution.admittance.real / (4.0 * pi))
+        return np.array([solution.admittance, solution.e_x * volts, solution.e_y * volts])
+
+
+def _apart(one: Complexes, other: Complexes, impedance: float) -> Floats:
+    """Largest of the differences in reflection and in field, the latter to the total field."""
+    match = np.abs(_reflection(one[:, 0], impedance) - _reflection(other[:, 0], impedance))
+    size = np.linalg.norm(one[:, 1:], axis=1)
+    field = np.linalg.norm(one[:, 1:] - other[:, 1:], axis=1) / size
+    return np.asarray(np.maximum(match, field))
+
+
+def _reflection(admittance: Complexes, impedance: float) -> Complexes:
+    normalised = admittance * impedance
+    return np.asarray((1.0 - normalised) / (1.0 + normalised))
+
+
+def _samples(frequencies: Floats, sweep: Sweep, solver: _Solver, impedance: float) -> Samples:
+    """What the fit says at some frequencies."""
+    values = sweep.fit.at(frequencies)
+    accepted = np.maximum(values[:, 0].real, 1e-12)
+    scale = np.sqrt(4.0 * pi / (FREE_SPACE_IMPEDANCE * accepted))
+    lost = [solver.solved[float(one)].lost for one in sweep.frequencies]
+    return Samples(
+        frequency=frequencies,
+        s11=_reflection(values[:, 0], impedance),
+        z_in=1.0 / values[:, 0],
+        e_x=values[:, 1] * scale,
+        e_y=values[:, 2] * scale,
+        efficiency=1.0 - np.clip(PchipInterpolator(sweep.frequencies, lost)(frequencies), 0.0, 1.0),
+    )
+
+
+def _modes(sweep: Sweep, frequency: float) -> tuple[Mode, ...]:
+    """Natural resonances with the port open: poles of the impedance.
+
+    exp(j omega t) dies away for poles above the real axis; f = f_r (sqrt(1 - 1/4Q²) + j/2Q).
+    """
+    admittance = sweep.values[:, :1]
+    opened = np.concatenate([1.0 / admittance, sweep.values[:, 1:] / admittance], axis=1)
+    count, quantities = opened.shape
+    fit = fit_rational(sweep.frequencies, opened, (count * quantities + 1) // (quantities + 1))
+    modes = []
+    for pole in fit.poles():
+        size = abs(pole)
+        if pole.imag <= 0.0 or not 1.0 / _MODE_REACH < size / frequency < _MODE_REACH:
+            continue
+        quality = size / (2.0 * pole.imag)
+        if _LOWEST_Q < quality < _HIGHEST_Q:
+            near = fit.at(np.array([pole.real]))[0]
+            name = "along x" if abs(near[1]) > abs(near[2]) else "along y"
+            modes.append(Mode(name, float(size), float(quality)))
+    return tuple(modes)
+
+
+def _cut(system: System, spot: Solution, phi: float) -> PatternCut:
+    """Pattern in a plane through boresight, all the way round."""
+    towards, along_theta, along_phi = direction_frame(_ANGLES, phi)
+    field = far_field(system.moments.basis, spot.currents, spot.frequency, towards)
+    scale = np.sqrt(4.0 * pi / (FREE_SPACE_IMPEDANCE * spot.admittance.real))
+    return PatternCut(
+        phi,
+        _ANGLES,
+        np.sum(field * along_theta, axis=1) * scale,
+        np.sum(field * along_phi, axis=1) * scale,
+    )
+
+
+def _front_to_back(system: System, spot: Solution) -> float:
+    ends = np.array([[0.0, 0.0, 1.0], [0.0, 0.0, -1.0]])
+    field = far_field(system.moments.basis, spot.currents, spot.frequency, ends)
+    front, back = np.sum(np.abs(field) ** 2, axis=1)
+    return float(front / back)
+
+
+def _trust(level: Level, sweep: Sweep) -> dict[Reading, Trust]:
+    reason = (
+        f"full-wave solution on the {level.value} mesh, {len(sweep.frequencies)} frequencies "
+        f"solved, the fit between them true to {sweep.error:.1g}"
+    )
+    grade = TrustLevel.ROUGH if level is Level.COARSE else TrustLevel.GOOD
+    return dict.fromkeys(Reading, Trust(grade, reason))
