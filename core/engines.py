@@ -17,5 +17,14 @@ Engine = Callable[[Layout, ArrayLike, Progress], Response]
 """Takes a layout, frequencies (Hz, rising) and a listener."""
 
 LIVE: Final = ENGINE
+FIELD: Final = "field"
 
-ENGINES: Final[dict[str, Engine]] = {LIVE: respond_live}
+
+def _respond_field(layout: Layout, frequencies: ArrayLike, progress: Progress) -> Response:
+    """Response by the field solver, whose libraries are loaded when it is first asked."""
+    from core.fullwave.respond import respond  # noqa: PLC0415 - takes half a second
+
+    return respond(layout, frequencies, progress)
+
+
+ENGINES: Final[dict[str, Engine]] = {LIVE: respond_live, FIELD: _respond_field}

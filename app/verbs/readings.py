@@ -10,10 +10,10 @@ from app.verbs.arguments import VerbParser, add_file, add_json, load, quantity, 
 from app.verbs.engine import add_engine, trust_record, trust_text
 from app.verbs.findings import findings_record, findings_text
 from app.verbs.output import json_text, table
+from app.verbs.progress import told_on_stderr
 from core.design.polarisation import Polarisation
 from core.engines import ENGINES
 from core.layout.build import build_layout
-from core.progress import SILENT
 from core.response.bands import DEFAULT_POINTS, frequency_grid
 from core.response.judge import SENSE_WORDS, State, judge
 from core.response.polarisation import sense
@@ -65,7 +65,7 @@ def run(words: Namespace, out: TextIO) -> None:
     brief = design.brief
     frequencies = frequency_grid(brief.frequency, words.start, words.end, words.points)
     layout = build_layout(design)
-    response = ENGINES[words.engine](layout, frequencies, SILENT)
+    response = ENGINES[words.engine](layout, frequencies, told_on_stderr(words.engine))
     verdicts = judge(response, brief.polarisation, brief.vswr, brief.axial_ratio_db)
     if words.json:
         record = _record(response, brief)

@@ -10,7 +10,6 @@ from math import pi
 from typing import TYPE_CHECKING, Final
 
 import numpy as np
-from scipy.interpolate import PchipInterpolator
 
 from core.constants import FREE_SPACE_IMPEDANCE
 from core.errors import ModelError
@@ -39,10 +38,11 @@ if TYPE_CHECKING:
     Floats = NDArray[np.float64]
     Complexes = NDArray[np.complex128]
 
-ENGINE: Final = "field"
+_ENGINE: Final = "field"
 MOST_AIR_LIKE: Final = 1.5
 """Thickness-averaged permittivity up to which the finite plate is meshed in free space."""
 
+_AIR_SHIFT = 1e-3  # relative; a spacer that shifts less than this is as good as air
 _TOLERANCE = 2e-3  # of reflection coefficient and field ratio in a sweep
 _ANGLES = np.radians(np.arange(-180.0, 181.0, 2.0))
 _MODE_REACH = 1.3  # ratio to the brief's frequency within which a pole is a mode of the element
@@ -98,7 +98,7 @@ def respond(
     at_spot = _samples(np.array([layout.frequency]), sweep, solver, impedance).at(0)
     gain = abs(complex(at_spot.e_x)) ** 2 + abs(complex(at_spot.e_y)) ** 2
     return Response(
-        engine=ENGINE,
+        engine=_ENGINE,
         reference_impedance=impedance,
         sweep=_samples(wanted, sweep, solver, impedance),
         spot=at_spot,
@@ -106,7 +106,7 @@ def respond(
         directivity=gain / float(at_spot.efficiency),
         cuts=tuple(_cut(solver.system, spot, phi) for phi in (0.0, pi / 2)),
         front_to_back=_front_to_back(solver.system, spot),
-        trust=_trust(level, sweep),
+        trust=_trust(level, sweep, permittivity),
     )
 
 
@@ -147,15 +147,22 @@ def _samples(frequencies: Floats, sweep: Sweep, solver: _Solver, impedance: floa
     values = sweep.fit.at(frequencies)
     accepted = np.maximum(values[:, 0].real, 1e-12)
     scale = np.sqrt(4.0 * pi / (FREE_SPACE_IMPEDANCE * accepted))
-    lost = [solver.solved[float(one)].lost for one in sweep.frequencies]
+    lost = np.array([solver.solved[float(one)].lost for one in sweep.frequencies])
     return Samples(
         frequency=frequencies,
         s11=_reflection(values[:, 0], impedance),
         z_in=1.0 / values[:, 0],
         e_x=values[:, 1] * scale,
         e_y=values[:, 2] * scale,
-        efficiency=1.0 - np.clip(PchipInterpolator(sweep.frequencies, lost)(frequencies), 0.0, 1.0),
+        efficiency=1.0 - np.clip(_smooth(sweep.frequencies, lost, frequencies), 0.0, 1.0),
     )
+
+
+def _smooth(solved: Floats, values: Floats, wanted: Floats) -> Floats:
+    """Cubic through what changes slowly: the share of the power that is lost."""
+    middle, half = float(np.mean(solved)), float(np.ptp(solved)) / 2.0
+    cubic = np.polynomial.polynomial.polyfit((solved - middle) / half, values, 3)
+    return np.asarray(np.polynomial.polynomial.polyval((wanted - middle) / half, cubic))
 
 
 def _modes(sweep: Sweep, frequency: float) -> tuple[Mode, ...]:
@@ -200,10 +207,18 @@ def _front_to_back(system: System, spot: Solution) -> float:
     return float(front / back)
 
 
-def _trust(level: Level, sweep: Sweep) -> dict[Reading, Trust]:
+def _trust(level: Level, sweep: Sweep, permittivity: float) -> dict[Reading, Trust]:
+    """Good on air; rough on a coarse mesh, and where the spacer is not quite air."""
     reason = (
         f"full-wave solution on the {level.value} mesh, {len(sweep.frequencies)} frequencies "
         f"solved, the fit between them true to {sweep.error:.1g}"
     )
-    grade = TrustLevel.ROUGH if level is Level.COARSE else TrustLevel.GOOD
+    shift = permittivity**0.5 - 1.0
+    if shift > _AIR_SHIFT:
+        reason += (
+            f"; solved in air: the spacer's mean permittivity of {permittivity:.3f} puts "
+            f"everything up to {100.0 * shift:.1f} % lower in frequency"
+        )
+    is_rough = level is Level.COARSE or shift > _AIR_SHIFT
+    grade = TrustLevel.ROUGH if is_rough else TrustLevel.GOOD
     return dict.fromkeys(Reading, Trust(grade, reason))

@@ -1,0 +1,29 @@
+"""Progress of long work on standard error, where it does not mix with the answer."""
+
+from __future__ import annotations
+
+import sys
+from typing import TYPE_CHECKING
+
+from core.engines import LIVE
+from core.progress import SILENT
+
+if TYPE_CHECKING:
+    from core.progress import Progress
+
+
+class _OnStandardError:
+    """Tells each solved frequency; over itself on a terminal, a line each elsewhere."""
+
+    def __init__(self) -> None:
+        self._end = "\r" if sys.stderr.isatty() else "\n"
+
+    def step(self, done: int, total: int) -> None:
+        """Tell how far the work is."""
+        sys.stderr.write(f"field check: {done} of about {total} frequencies solved{self._end}")
+        sys.stderr.flush()
+
+
+def told_on_stderr(engine: str) -> Progress:
+    """Listener for an engine: silent for the one that answers at once."""
+    return SILENT if engine == LIVE else _OnStandardError()
