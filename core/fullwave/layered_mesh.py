@@ -77,26 +77,11 @@ def build_board_mesh(layout: Layout, level: Level) -> BoardMesh:
     row = EDGE_ROW * layout.height
     parts = [_plate(piece, top_sizes(layout, piece, pin, fine), row, pin, 0.0) for piece in pieces]
     mesh = _joined(parts, [Sheet.TOP] * len(parts), _mouth(layout))
-    return BoardMesh(
-        mesh.vertices, mesh.triangles, pin_edges(mesh.vertices, mesh.triangles, pin), _mouth(layout)
-    )
+    return BoardMesh(mesh.vertices, mesh.triangles, _pin_edges(mesh.vertices, pin), _mouth(layout))
 
 
-def pin_edges(vertices: Floats, triangles: Ints, pin: Floats) -> Ints:
-    """Edges of a mesh that lie on the outline of a probe.
-
-    Parameters
-    ----------
-    vertices : (v, 3) ndarray of float
-        m.
-    triangles : (t, 3) ndarray of int
-    pin : (e, 2) ndarray of float
-        Corners of the outline, m, each a vertex of the mesh.
-
-    Returns
-    -------
-    (e, 2) ndarray of int
-    """
+def _pin_edges(vertices: Floats, pin: Floats) -> Ints:
+    """Edges (e, 2) of a mesh along the outline of a probe, whose corners are vertices."""
     gaps = np.linalg.norm(vertices[None, :, :2] - pin[:, None], axis=2)
     corners = gaps.argmin(axis=1)
     return np.column_stack([corners, np.roll(corners, -1)])
