@@ -12,6 +12,7 @@ from core.design.model import Element
 from core.design.polarisation import Polarisation
 from core.design.stock import DiscGround, Stock
 from core.fullwave.basis import build_basis
+from core.fullwave.far_field import far_field, sphere_power
 from core.fullwave.moments import build_moments
 from core.layout.build import build_layout
 
@@ -47,8 +48,17 @@ def sphere(subdivisions):
 
 def moments_of(vertices, triangles):
     """Basis and moments of a mesh, all triangles of one rank."""
-    basis = build_basis(vertices, triangles, np.zeros(len(triangles), dtype=int))
-    return basis, build_moments(basis, triangles)
+    sheets = np.zeros(len(triangles), dtype=int)
+    basis = build_basis(vertices, triangles, sheets)
+    return basis, build_moments(basis, triangles, sheets)
+
+
+def current_power(basis, solved, frequency):
+    """Power that currents alone send out, W."""
+    reach = np.ptp(basis.corners.reshape(-1, 3), axis=0).max()
+    return sphere_power(
+        lambda towards: far_field(basis, solved, frequency, towards), frequency, reach
+    )
 
 
 def gap_excitation(basis, vertices, x):

@@ -24,6 +24,8 @@ if TYPE_CHECKING:
     Floats = NDArray[np.float64]
     Ints = NDArray[np.int64]
     Complexes = NDArray[np.complex128]
+    Near = tuple[Ints, Ints, Floats, Complexes]
+    Spacer = tuple[Ints, Complexes, Ints, Ints, Complexes, Floats, Floats]
 
 _FAST = {"contract", "nnan", "ninf", "nsz", "arcp"}  # sums keep their order
 _TILE = 32  # rows and columns of a tile: two fit the fastest cache
@@ -71,6 +73,72 @@ def _free_space_row(t: int, k: float, points: Floats, real: Floats, imag: Floats
                 im[s] = -sine * inverse
         real[4 * i, t] = 0.0
         imag[4 * i, t] = -k
+
+
+@njit(fastmath=_FAST, cache=True)
+def _copy_scaled(by: complex, re: Floats, im: Floats, real: Floats, imag: Floats) -> None:
+    for s in range(re.shape[0]):
+        real[s] = by.real * re[s] - by.imag * im[s]
+        imag[s] = by.real * im[s] + by.imag * re[s]
+
+
+@njit(fastmath=_FAST, cache=True)
+def _add_image(
+    k: float,
+    place: tuple[float, float, float],
+    weight: complex,
+    turn: float,
+    shift: float,
+    points: tuple[Floats, Floats, Floats],
+    out: tuple[Floats, Floats],
+) -> None:
+    """Add weight exp(-jkR)/R from the images of points, at heights turn z + shift."""
+    x, y, z = place
+    px, py, pz = points
+    real, imag = out
+    for s in range(real.shape[0]):
+        dx, dy, dz = px[s] - x, py[s] - y, turn * pz[s] + shift - z
+        r = np.sqrt(dx * dx + dy * dy + dz * dz)
+        inverse = 1.0 / max(r, 1e-30)
+        sine, cosine = _sine_cosine(k * r)
+        real[s] += (weight.real * cosine + weight.imag * sine) * inverse
+        imag[s] += (weight.imag * cosine - weight.real * sine) * inverse
+
+
+@njit(fastmath=_FAST, cache=True)
+def _scalar_row(
+    t: int,
+    k: float,
+    points: Floats,
+    spacer: Spacer,
+    vector: tuple[Floats, Floats],
+    scalar: tuple[Floats, Floats],
+) -> None:
+    """Kernel of charges: that of currents times its weight, and its images in the spacer."""
+    runs, direct, starts, stops, weights, turns, shifts = spacer
+    own = 0
+    for run in range(runs.shape[0]):
+        if runs[run, 0] <= t < runs[run, 1]:
+            own = runs[run, 2]
+    for run in range(runs.shape[0]):
+        first, last, other = max(t, runs[run, 0]), runs[run, 1], runs[run, 2]
+        if first >= last:
+            continue
+        for i in range(3):
+            place = (points[0, i, t], points[1, i, t], points[2, i, t])
+            for j in range(3):
+                m = 3 * i + j
+                re, im = scalar[0][m][first:last], scalar[1][m][first:last]
+                _copy_scaled(
+                    direct[own, other], vector[0][m][first:last], vector[1][m][first:last], re, im
+                )
+                there = (
+                    points[0, j][first:last],
+                    points[1, j][first:last],
+                    points[2, j][first:last],
+                )
+                for n in range(starts[own, other], stops[own, other]):
+                    _add_image(k, place, weights[n], turns[n], shifts[n], there, (re, im))
 
 
 @njit(fastmath=_FAST, cache=True)
@@ -169,13 +237,9 @@ def _half_moments(
 
 @njit(fastmath=_FAST, cache=True)
 def _add_near(
-    t: int,
-    k_squared: float,
-    near: tuple[Ints, Ints, Floats, Floats],
-    half_lengths: Floats,
-    out: Floats,
+    t: int, k_squared: float, near: Near, half_lengths: Floats, real: Floats, imag: Floats
 ) -> None:
-    """Add what the points miss of 1/R and -k² R/2 near triangle t; real, so to `out` alone."""
+    """Add what the points miss of 1/R and -k² R/2 near triangle t."""
     starts, sources, currents, charges = near
     for p in range(starts[t], starts[t + 1]):
         s = sources[p]
@@ -183,7 +247,9 @@ def _add_near(
         for a in range(3):
             for b in range(3):
                 current = currents[p, 0, a, b] - 0.5 * k_squared * currents[p, 1, a, b]
-                out[a, b, s] += half_lengths[a, t] * half_lengths[b, s] * (current + charge)
+                lengths = half_lengths[a, t] * half_lengths[b, s]
+                real[a, b, s] += lengths * (current + charge.real)
+                imag[a, b, s] += lengths * charge.imag
 
 
 @njit(fastmath=_FAST, cache=True)
@@ -245,7 +311,8 @@ def add_free_space(
     k: float,
     factor: complex,
     geometry: tuple[Floats, Floats, Floats],
-    near: tuple[Ints, Ints, Floats, Floats],
+    near: Near,
+    spacer: Spacer,
     foil: tuple[Complexes, Floats],
     functions: tuple[Ints, Ints, Floats, Ints, Ints],
     matrix: Complexes,
@@ -267,7 +334,12 @@ def add_free_space(
         the edge opposite each corner (3, t), m.
     near : tuple
         Where the sources of each triangle start (t + 1), the sources (p), none before its
-        triangle, and the terms of `core.fullwave.compiled_near` in that order.
+        triangle, and the terms of `core.fullwave.compiled_near` in that order, those of the
+        charges complex and with the spacer's images.
+    spacer : tuple
+        First and past last triangle and sheet of each run of triangles of one sheet (r, 3),
+        then direct weights, starts, stops, weights at this wavenumber, turns and shifts as in
+        `core.fullwave.spacer_images.SpacerImages`.
     foil : tuple
         Sheet impedance over `factor` (t,), m, and overlaps of the halves of each triangle
         (t, 3, 3), m².
@@ -283,12 +355,18 @@ def add_free_space(
     charge = -1.0 / (k * k)
     real, imag, work = np.empty((9, n)), np.empty((9, n)), np.empty((14, n))
     real_out, imag_out = np.empty((3, 3, n)), np.empty((3, 3, n))
+    scalar_real, scalar_imag = real, imag
+    in_air = spacer[4].shape[0] == 0
+    if not in_air:
+        scalar_real, scalar_imag = np.empty((9, n)), np.empty((9, n))
     for t in triangles:
         real_out[:, :, :t] = 0.0
         imag_out[:, :, :t] = 0.0
         _free_space_row(t, k, points, real, imag)
-        _half_moments(t, real, real, charge, geometry, work, real_out)
-        _half_moments(t, imag, imag, charge, geometry, work, imag_out)
-        _add_near(t, k * k, near, half_lengths, real_out)
+        if not in_air:
+            _scalar_row(t, k, points, spacer, (real, imag), (scalar_real, scalar_imag))
+        _half_moments(t, real, scalar_real, charge, geometry, work, real_out)
+        _half_moments(t, imag, scalar_imag, charge, geometry, work, imag_out)
+        _add_near(t, k * k, near, half_lengths, real_out, imag_out)
         _settle_own(t, sheets[t], overlaps, real_out, imag_out)
         _add_rows(t, real_out, imag_out, factor, functions, matrix)

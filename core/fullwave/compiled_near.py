@@ -277,6 +277,7 @@ def near_terms(
     rules: tuple[Floats, Ints],
     currents: Floats,
     charges: Floats,
+    turn: float = 1.0,
 ) -> None:
     """Near terms of pairs of triangles.
 
@@ -288,7 +289,7 @@ def near_terms(
     kinds : (p,) ndarray of int
         Which rule to take; those from 2 up integrate the source exactly.
     lift : float
-        What the second triangle of each pair is raised by, m: for images in a ground plane.
+        What the second triangle of each pair is raised by, m: for an image of it.
     rules : tuple
         Shares of the corners and weight of each point (q, 4), rule after rule, and where
         each starts (r + 1,); rule 0 is that of the matrix fill.
@@ -297,6 +298,8 @@ def near_terms(
         m and m³.
     charges : (p, 2) ndarray of float
         Written: means of K, less their coarse sums, 1/m and m.
+    turn : float
+        What the heights of the second triangle are multiplied by before it is raised.
     """
     points, starts = rules
     test, source, middle = np.empty((3, 3)), np.empty((3, 3)), np.empty(3)
@@ -308,7 +311,8 @@ def near_terms(
             for i in range(3):
                 test[i, axis] = own[i, axis] - middle[axis]
                 source[i, axis] = corners[pairs[p, 1], i, axis] - middle[axis]
-        source[:, 2] += lift
+        for i in range(3):
+            source[i, 2] = turn * corners[pairs[p, 1], i, 2] + lift - middle[2]
         rule = points[starts[kinds[p]] : starts[kinds[p] + 1]]
         _pair_moments(test, source, rule, points[: starts[1]], kinds[p] >= 2, moments)
         for term in range(2):

@@ -16,6 +16,8 @@ from core.constants import FREE_SPACE_IMPEDANCE, SPEED_OF_LIGHT, TWO_PI, VACUUM_
 from core.fullwave.quadrature import COARSE_RULE
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from numpy.typing import ArrayLike, NDArray
 
     from core.fullwave.basis import Basis
@@ -86,31 +88,32 @@ def direction_frame(theta: ArrayLike, phi: ArrayLike) -> tuple[Floats, Floats, F
     )
 
 
-def radiated_power(basis: Basis, currents: Complexes, frequency: float) -> float:
-    """Power through a large sphere, W.
+def sphere_power(field: Callable[[Floats], Complexes], frequency: float, reach: float) -> float:
+    """Power through a large sphere.
 
     Parameters
     ----------
-    basis : Basis
-    currents : (n,) ndarray of complex
-        A/m, peak values.
+    field : callable
+        Far field (d, 3), V, peak values, in directions (d, 3).
     frequency : float
         Hz.
+    reach : float
+        Largest extent of the antenna, m.
 
     Returns
     -------
     float
+        W.
 
     Notes
     -----
     Gauss points in cos(theta) times even steps in phi: exact for a pattern of as many
     spherical harmonics as the antenna's size in wavelengths excites.
     """
-    reach = float(np.ptp(basis.corners.reshape(-1, 3), axis=0).max())
     order = ceil(TWO_PI * frequency / SPEED_OF_LIGHT * reach * 0.75) + 6
     heights, weights = np.polynomial.legendre.leggauss(order)
     steps = TWO_PI * np.arange(2 * order) / (2 * order)
     towards, _, _ = direction_frame(np.arccos(heights)[:, None], steps)
-    field = far_field(basis, currents, frequency, towards.reshape(-1, 3))
-    density = np.sum(np.abs(field) ** 2, axis=1).reshape(order, -1).sum(axis=1)
-    return float(weights @ density * pi / order / (2.0 * FREE_SPACE_IMPEDANCE))
+    squares = np.sum(np.abs(field(towards.reshape(-1, 3))) ** 2, axis=1)
+    rings = squares.reshape(order, -1).sum(axis=1)
+    return float(weights @ rings * pi / order / (2.0 * FREE_SPACE_IMPEDANCE))

@@ -20,9 +20,13 @@ from scipy.linalg import lu_factor, lu_solve
 from core.constants import SPEED_OF_LIGHT, TWO_PI, VACUUM_PERMEABILITY
 from core.fullwave.basis import Basis
 from core.fullwave.quadrature import COARSE_RULE, triangle_rule
+from core.fullwave.spacer_images import FACES, spacer_images
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
+
+    from core.fullwave.spacer_images import SpacerImages
+    from core.lines.stack import Layer
 
     Floats = NDArray[np.float64]
     Ints = NDArray[np.int64]
@@ -31,6 +35,7 @@ if TYPE_CHECKING:
 _WORKERS = min(4, os.cpu_count() or 1)
 _BATCH = 1000  # pairs to a task
 # By kind of pair: the fill's own, apart, touching or nearly, sharing an edge, the triangle itself.
+_TOUCHING: Final = 2
 _RULES: Final = (COARSE_RULE, *(triangle_rule(order) for order in (4, 3, 5, 6)))
 
 
@@ -43,19 +48,26 @@ class Moments:
     basis : Basis
     geometry, near, overlaps, functions
         As `core.fullwave.compiled.add_free_space` takes them.
+    runs : (r, 3) ndarray of int
+        First and past last triangle and sheet of each run of triangles of one sheet.
+    images : SpacerImages
     colours : tuple of (...,) ndarray of int
         All triangles, shared out so that no two of a colour have a function in common.
     """
 
     basis: Basis
     geometry: tuple[Floats, Floats, Floats]
-    near: tuple[Ints, Ints, Floats, Floats]
+    near: tuple[Ints, Ints, Floats, Complexes]
+    runs: Ints
+    images: SpacerImages
     overlaps: Floats
     functions: tuple[Ints, Ints, Floats, Ints, Ints]
     colours: tuple[Ints, ...]
 
 
-def build_moments(basis: Basis, triangles: Ints) -> Moments:
+def build_moments(
+    basis: Basis, triangles: Ints, sheets: Ints, layers: tuple[Layer, ...] = ()
+) -> Moments:
     """Work out what does not change with frequency.
 
     Parameters
@@ -63,6 +75,10 @@ def build_moments(basis: Basis, triangles: Ints) -> Moments:
     basis : Basis
     triangles : (t, 3) ndarray of int
         Vertices of the mesh's triangles.
+    sheets : (t,) ndarray of int
+        `core.fullwave.mesh_model.Sheet` of each.
+    layers : tuple of Layer
+        Between ground plate and top copper, from the ground up; none for air.
 
     Returns
     -------
@@ -75,17 +91,22 @@ def build_moments(basis: Basis, triangles: Ints) -> Moments:
         np.ascontiguousarray(corners.transpose(2, 1, 0)),
         basis.lengths / 2.0,
     )
+    images = spacer_images(layers)
     return Moments(
         basis,
         geometry,
-        _near(basis, triangles),
+        _near(basis, triangles, sheets, images),
+        _runs(sheets),
+        images,
         _overlaps(basis),
         _functions(basis),
         _colours(basis),
     )
 
 
-def impedance_matrix(moments: Moments, frequency: float, sheet_impedance: Complexes) -> Complexes:
+def impedance_matrix(
+    moments: Moments, frequency: float, sheet_impedance: Complexes, lossy: bool = True
+) -> Complexes:
     """Moment matrix at one frequency.
 
     Parameters
@@ -95,6 +116,8 @@ def impedance_matrix(moments: Moments, frequency: float, sheet_impedance: Comple
         Hz, > 0.
     sheet_impedance : (t,) ndarray of complex
         Of the foil at each triangle, ohm.
+    lossy : bool
+        Whether the spacer loses power.
 
     Returns
     -------
@@ -105,14 +128,22 @@ def impedance_matrix(moments: Moments, frequency: float, sheet_impedance: Comple
 
     factor = 1j * TWO_PI * frequency * VACUUM_PERMEABILITY / (4.0 * pi)
     matrix = np.zeros((moments.basis.count, moments.basis.count), dtype=np.complex128)
+    k = TWO_PI * frequency / SPEED_OF_LIGHT
+    near, images = moments.near, moments.images
+    direct, weights = images.direct, images.weights - k**2 * images.squares
+    if not lossy:
+        near = (*near[:3], near[3].real.astype(np.complex128))
+        direct, weights = (one.real.astype(np.complex128) for one in (direct, weights))
+    spacer = moments.runs, direct, images.starts, images.stops, weights, images.turns, images.shifts
 
     def add(triangles: Ints) -> None:
         add_free_space(
             triangles,
-            TWO_PI * frequency / SPEED_OF_LIGHT,
+            k,
             factor,
             moments.geometry,
-            moments.near,
+            near,
+            spacer,
             (sheet_impedance / factor, moments.overlaps),
             moments.functions,
             matrix,
@@ -144,23 +175,52 @@ def currents(matrix: Complexes, excitations: Complexes) -> Complexes:
     return np.asarray(lu_solve(factors, excitations, check_finite=False))
 
 
-def _near(basis: Basis, triangles: Ints) -> tuple[Ints, Ints, Floats, Floats]:
+def _near(
+    basis: Basis, triangles: Ints, sheets: Ints, images: SpacerImages
+) -> tuple[Ints, Ints, Floats, Complexes]:
     """Near terms of every triangle with itself and the later ones near it."""
-    from core.fullwave.compiled_near import find_near, near_terms  # noqa: PLC0415 - slow to load
+    from core.fullwave.compiled_near import find_near  # noqa: PLC0415 - slow to load
 
     starts, sources, kinds = find_near(basis.corners, triangles)
     pairs = np.column_stack([np.repeat(np.arange(basis.triangles), np.diff(starts)), sources])
+    terms, plain = _near_terms(basis, pairs, kinds, (1.0, 0.0))
+    here, there = sheets[pairs[:, 0]], sheets[pairs[:, 1]]
+    charges = images.direct[here, there][:, None] * plain
+    # An image is never in the very place of its source: the rule of touching triangles will do.
+    kinds = np.minimum(kinds, _TOUCHING)
+    for own in range(FACES):
+        for other in range(FACES):
+            chosen = np.flatnonzero((here == own) & (there == other))
+            for i in range(images.starts[own, other], images.stops[own, other]):
+                image = images.turns[i], images.shifts[i]
+                _, more = _near_terms(basis, pairs[chosen], kinds[chosen], image)
+                charges[chosen, 0] += images.weights[i] * more[:, 0]
+                charges[chosen, 1] += 2.0 * images.squares[i] * more[:, 0]
+    return starts, sources, terms, charges
+
+
+def _near_terms(
+    basis: Basis, pairs: Ints, kinds: Ints, image: tuple[float, float]
+) -> tuple[Floats, Floats]:
+    """Terms of currents and of charges of pairs of triangles, the second at its image."""
+    from core.fullwave.compiled_near import near_terms  # noqa: PLC0415 - slow to load
+
+    turn, lift = image
     rules = np.concatenate(_RULES), np.cumsum([0, *(len(rule) for rule in _RULES)])
     terms, charges = np.empty((len(pairs), 2, 3, 3)), np.empty((len(pairs), 2))
 
     def work_out(share: slice) -> None:
-        near_terms(
-            basis.corners, pairs[share], kinds[share], 0.0, rules, terms[share], charges[share]
-        )
+        out = terms[share], charges[share]
+        near_terms(basis.corners, pairs[share], kinds[share], lift, rules, *out, turn)
 
     with ThreadPoolExecutor(_WORKERS) as pool:
         list(pool.map(work_out, (slice(i, i + _BATCH) for i in range(0, len(pairs), _BATCH))))
-    return starts, sources, terms, charges
+    return terms, charges
+
+
+def _runs(sheets: Ints) -> Ints:
+    first = np.flatnonzero(np.diff(sheets, prepend=-1))
+    return np.column_stack([first, np.append(first[1:], len(sheets)), sheets[first]])
 
 
 def _overlaps(basis: Basis) -> Floats:

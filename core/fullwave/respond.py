@@ -5,15 +5,24 @@ Shapes: k solved frequencies, n wanted ones, m angles.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from abc import ABC, abstractmethod
+from dataclasses import dataclass, field
 from math import pi
-from typing import TYPE_CHECKING, Final
+from typing import TYPE_CHECKING, ClassVar, Final
 
 import numpy as np
 
 from core.constants import FREE_SPACE_IMPEDANCE
-from core.errors import ModelError
 from core.fullwave.far_field import direction_frame, far_field
+from core.fullwave.layered_fields import BoardCurrents, power_into_waves, space_field
+from core.fullwave.layered_mesh import build_board_mesh
+from core.fullwave.layered_system import (
+    LayeredSystem,
+    board_currents,
+    build_layered_system,
+    solve_layered,
+)
+from core.fullwave.layered_trust import rim_doubts
 from core.fullwave.mesh import Level, build_mesh
 from core.fullwave.rational import fit_rational
 from core.fullwave.sweep import Sweep, adaptive_sweep
@@ -44,9 +53,9 @@ MOST_AIR_LIKE: Final = 1.5
 
 _AIR_SHIFT = 1e-3  # relative; a spacer that shifts less than this is as good as air
 _TOLERANCE = 2e-3  # of reflection coefficient and field ratio in a sweep
-_ANGLES = np.radians(np.arange(-180.0, 181.0, 2.0))
 _MODE_REACH = 1.3  # ratio to the brief's frequency within which a pole is a mode of the element
 _LOWEST_Q, _HIGHEST_Q = 2.0, 2000.0
+_NOISE = 1e-3  # of the larger field component
 
 
 def respond(
@@ -77,24 +86,20 @@ def respond(
     Cancelled
         If the progress asks for it.
     """
-    permittivity = series_permittivity(layout.stack)
-    if permittivity > MOST_AIR_LIKE:
-        raise ModelError(
-            f"field solver: the spacer's mean permittivity is {permittivity:.2f}; "
-            f"accepted: up to {MOST_AIR_LIKE}"
-        )
     wanted = np.asarray(frequencies, dtype=np.float64)
-    solver = _Solver(build_system(build_mesh(layout, level), layout.foil))
+    band = (min(wanted[0], layout.frequency), max(wanted[-1], layout.frequency))
+    solver = _solver(layout, level, band[1])
     impedance = layout.ports[0].impedance
+    permittivity = series_permittivity(layout.stack)
+    in_air = permittivity if permittivity <= MOST_AIR_LIKE else 1.0
     sweep = adaptive_sweep(
         solver.quantities,
-        (min(wanted[0], layout.frequency), max(wanted[-1], layout.frequency)),
+        band,
         layout.frequency,
         lambda one, other: _apart(one, other, impedance),
         _TOLERANCE,
         progress,
     )
-    spot = solver.solved[layout.frequency]
     at_spot = _samples(np.array([layout.frequency]), sweep, solver, impedance).at(0)
     gain = abs(complex(at_spot.e_x)) ** 2 + abs(complex(at_spot.e_y)) ** 2
     return Response(
@@ -104,29 +109,113 @@ def respond(
         spot=at_spot,
         modes=_modes(sweep, layout.frequency),
         directivity=gain / float(at_spot.efficiency),
-        cuts=tuple(_cut(solver.system, spot, phi) for phi in (0.0, pi / 2)),
-        front_to_back=_front_to_back(solver.system, spot),
-        trust=_trust(level, sweep, permittivity),
+        cuts=tuple(_cut(solver, phi) for phi in (0.0, pi / 2)),
+        front_to_back=solver.front_to_back(),
+        trust=_trust(level, sweep, in_air) | solver.doubts(),
     )
 
 
 @dataclass(frozen=True, eq=False)
-class _Solver:
+class _Solver(ABC):
     """A system and what has been solved of it."""
 
-    system: System
-    solved: dict[float, Solution]
+    layout: Layout
+    solved: dict[float, Solution] = field(default_factory=dict, init=False)
 
-    def __init__(self, system: System) -> None:
-        object.__setattr__(self, "system", system)
-        object.__setattr__(self, "solved", {})
+    @property
+    def spot(self) -> Solution:
+        """What was solved at the brief's frequency."""
+        return self.solved[self.layout.frequency]
 
     def quantities(self, frequency: float) -> Complexes:
         """Admittance and boresight field of 1 V at the port, analytic in the frequency."""
-        solution = solve(self.system, frequency)
+        solution = self.solve(frequency)
         self.solved[frequency] = solution
         volts = np.sqrt(FREE_SPACE_IMPEDANCE * solution.admittance.real / (4.0 * pi))
         return np.array([solution.admittance, solution.e_x * volts, solution.e_y * volts])
+
+    @property
+    @abstractmethod
+    def angles(self) -> Floats:
+        """Angles from boresight at which there is a far field, rad."""
+
+    @abstractmethod
+    def solve(self, frequency: float) -> Solution:
+        """Solution at one frequency."""
+
+    @abstractmethod
+    def pattern(self, phi: float) -> tuple[Complexes, Complexes]:
+        """Far field along theta and phi at the angles in one plane, V."""
+
+    @abstractmethod
+    def front_to_back(self) -> float | None:
+        """Power at boresight over that straight behind, where there is a behind."""
+
+    @abstractmethod
+    def doubts(self) -> dict[Reading, Trust]:
+        """What the system leaves out of some readings."""
+
+
+@dataclass(frozen=True, eq=False)
+class _FreeSpace(_Solver):
+    """Copper in free space, its ground plate as large as it is."""
+
+    system: System
+    angles: ClassVar[Floats] = np.radians(np.arange(-180.0, 181.0, 2.0))
+
+    def solve(self, frequency: float) -> Solution:
+        return solve(self.system, frequency)
+
+    def pattern(self, phi: float) -> tuple[Complexes, Complexes]:
+        towards, along_theta, along_phi = direction_frame(self.angles, phi)
+        field = far_field(
+            self.system.moments.basis, self.spot.currents, self.spot.frequency, towards
+        )
+        return np.sum(field * along_theta, axis=1), np.sum(field * along_phi, axis=1)
+
+    def front_to_back(self) -> float:
+        ends = np.array([[0.0, 0.0, 1.0], [0.0, 0.0, -1.0]])
+        field = far_field(self.system.moments.basis, self.spot.currents, self.spot.frequency, ends)
+        front, back = np.sum(np.abs(field) ** 2, axis=1)
+        return float(front / back)
+
+    def doubts(self) -> dict[Reading, Trust]:
+        return {}
+
+
+@dataclass(frozen=True, eq=False)
+class _Board(_Solver):
+    """Copper on a board, the board and its ground plane taken as infinite."""
+
+    system: LayeredSystem
+    angles: ClassVar[Floats] = np.radians(np.arange(-88.0, 89.0, 2.0))
+
+    @property
+    def _flowing(self) -> BoardCurrents:
+        return board_currents(self.system, self.spot.currents, self.spot.frequency)
+
+    def solve(self, frequency: float) -> Solution:
+        return solve_layered(self.system, frequency)
+
+    def pattern(self, phi: float) -> tuple[Complexes, Complexes]:
+        return space_field(self._flowing, self.angles, np.full(len(self.angles), phi))
+
+    def front_to_back(self) -> None:
+        return None
+
+    def doubts(self) -> dict[Reading, Trust]:
+        accepted = self.spot.admittance.real / 2.0
+        return rim_doubts(
+            power_into_waves(self._flowing) / accepted, 1.0 - self.spot.lost, self.layout
+        )
+
+
+def _solver(layout: Layout, level: Level, highest: float) -> _Solver:
+    """Solver that suits a layout's stack, up to a frequency (Hz)."""
+    if series_permittivity(layout.stack) > MOST_AIR_LIKE:
+        mesh = build_board_mesh(layout, level)
+        return _Board(layout, build_layered_system(mesh, layout.stack, layout.foil, highest))
+    return _FreeSpace(layout, build_system(build_mesh(layout, level), layout.foil))
 
 
 def _apart(one: Complexes, other: Complexes, impedance: float) -> Floats:
@@ -170,8 +259,10 @@ def _modes(sweep: Sweep, frequency: float) -> tuple[Mode, ...]:
 
     exp(j omega t) dies away for poles above the real axis; f = f_r (sqrt(1 - 1/4Q²) + j/2Q).
     """
-    admittance = sweep.values[:, :1]
-    opened = np.concatenate([1.0 / admittance, sweep.values[:, 1:] / admittance], axis=1)
+    admittance, fields = sweep.values[:, :1], sweep.values[:, 1:]
+    sizes = np.linalg.norm(fields, axis=0)
+    told = fields * (sizes > _NOISE * sizes.max())  # a component that is only noise has no poles
+    opened = np.concatenate([1.0 / admittance, told / admittance], axis=1)
     count, quantities = opened.shape
     fit = fit_rational(sweep.frequencies, opened, (count * quantities + 1) // (quantities + 1))
     modes = []
@@ -187,24 +278,11 @@ def _modes(sweep: Sweep, frequency: float) -> tuple[Mode, ...]:
     return tuple(modes)
 
 
-def _cut(system: System, spot: Solution, phi: float) -> PatternCut:
-    """Pattern in a plane through boresight, all the way round."""
-    towards, along_theta, along_phi = direction_frame(_ANGLES, phi)
-    field = far_field(system.moments.basis, spot.currents, spot.frequency, towards)
-    scale = np.sqrt(4.0 * pi / (FREE_SPACE_IMPEDANCE * spot.admittance.real))
-    return PatternCut(
-        phi,
-        _ANGLES,
-        np.sum(field * along_theta, axis=1) * scale,
-        np.sum(field * along_phi, axis=1) * scale,
-    )
-
-
-def _front_to_back(system: System, spot: Solution) -> float:
-    ends = np.array([[0.0, 0.0, 1.0], [0.0, 0.0, -1.0]])
-    field = far_field(system.moments.basis, spot.currents, spot.frequency, ends)
-    front, back = np.sum(np.abs(field) ** 2, axis=1)
-    return float(front / back)
+def _cut(solver: _Solver, phi: float) -> PatternCut:
+    """Pattern in a plane through boresight, as far round as there is a field."""
+    e_theta, e_phi = solver.pattern(phi)
+    scale = np.sqrt(4.0 * pi / (FREE_SPACE_IMPEDANCE * solver.spot.admittance.real))
+    return PatternCut(phi, solver.angles, e_theta * scale, e_phi * scale)
 
 
 def _trust(level: Level, sweep: Sweep, permittivity: float) -> dict[Reading, Trust]:

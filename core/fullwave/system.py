@@ -11,15 +11,16 @@ import numpy as np
 from core.constants import FREE_SPACE_IMPEDANCE, TWO_PI, VACUUM_PERMEABILITY
 from core.errors import ModelError
 from core.fullwave.basis import build_basis
-from core.fullwave.far_field import far_field
 from core.fullwave.moments import Moments, build_moments, currents, impedance_matrix
 from core.fullwave.ports import ring_capacitance, ring_excitation
+from core.fullwave.upright import add_upright_coupling, spacer_field
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
     from core.fullwave.mesh_model import Mesh
     from core.layout.model import Foil
+    from core.lines.stack import Layer
 
     Floats = NDArray[np.float64]
     Complexes = NDArray[np.complex128]
@@ -41,6 +42,8 @@ class System:
         That the port adds by itself, F.
     foil : Foil
         Of every conductor.
+    layers : tuple of Layer
+        Spacer between ground plate and top copper, from the ground up; none for air.
     """
 
     mesh: Mesh
@@ -48,6 +51,7 @@ class System:
     excitation: Floats
     capacitance: float
     foil: Foil
+    layers: tuple[Layer, ...]
 
 
 @dataclass(frozen=True, eq=False)
@@ -63,7 +67,7 @@ class Solution:
     admittance : complex
         At the port, S.
     lost : float
-        Power turned to heat in the conductors, over the power accepted.
+        Power turned to heat in the conductors and the spacer, over the power accepted.
     e_x, e_y : complex
         Far field at boresight in the scale of `core.response.model.Samples`.
     """
@@ -76,7 +80,7 @@ class Solution:
     e_y: complex
 
 
-def build_system(mesh: Mesh, foil: Foil) -> System:
+def build_system(mesh: Mesh, foil: Foil, layers: tuple[Layer, ...] = ()) -> System:
     """Work out all that does not change with frequency.
 
     Parameters
@@ -84,6 +88,8 @@ def build_system(mesh: Mesh, foil: Foil) -> System:
     mesh : Mesh
         With a port.
     foil : Foil
+    layers : tuple of Layer
+        Spacer between ground plate and top copper, from the ground up; none for air.
 
     Returns
     -------
@@ -99,10 +105,11 @@ def build_system(mesh: Mesh, foil: Foil) -> System:
     basis = build_basis(mesh.vertices, mesh.triangles, mesh.sheet)
     return System(
         mesh,
-        build_moments(basis, mesh.triangles),
+        build_moments(basis, mesh.triangles, mesh.sheet, layers),
         ring_excitation(mesh, basis, mesh.port),
         ring_capacitance(mesh.port),
         foil,
+        layers,
     )
 
 
@@ -121,22 +128,63 @@ def solve(system: System, frequency: float) -> Solution:
     """
     basis = system.moments.basis
     sheet = np.full(basis.triangles, sheet_impedance(system.foil, frequency))
-    matrix = impedance_matrix(system.moments, frequency, sheet)
+    matrix = _matrix(system, frequency, sheet, lossy=True)
     solved = currents(matrix, system.excitation.astype(np.complex128))
     admittance = complex(system.excitation @ solved) + 1j * TWO_PI * frequency * system.capacitance
     accepted = admittance.real / 2.0
-    halves = basis.on_halves(solved)
-    heat = np.einsum("at,tab,bt->t", halves.conj(), system.moments.overlaps, halves).real
-    field = far_field(basis, solved, frequency, _BORESIGHT)[0]
+    field = radiated_field(system, solved, frequency, _BORESIGHT)[0]
     field *= np.sqrt(4.0 * pi / (2.0 * FREE_SPACE_IMPEDANCE * accepted))
     return Solution(
         frequency=frequency,
         currents=solved,
         admittance=admittance,
-        lost=float(heat @ sheet.real / 2.0 / accepted),
+        lost=_heat(system, solved, frequency, accepted) / accepted,
         e_x=complex(field[0]),
         e_y=complex(field[1]),
     )
+
+
+def radiated_field(
+    system: System, solved: Complexes, frequency: float, directions: Floats
+) -> Complexes:
+    """Far field of currents and of what they polarise in the spacer.
+
+    Parameters
+    ----------
+    system : System
+    solved : (n,) ndarray of complex
+        Currents, A/m.
+    frequency : float
+        Hz.
+    directions : (d, 3) ndarray of float
+        Unit vectors.
+
+    Returns
+    -------
+    (d, 3) ndarray of complex
+        x, y and z components of r exp(jkr) E, V.
+    """
+    return spacer_field(
+        system.moments.basis, system.mesh.sheet, system.layers, solved, frequency, directions
+    )
+
+
+def _matrix(system: System, frequency: float, sheet: Complexes, lossy: bool) -> Complexes:
+    matrix = impedance_matrix(system.moments, frequency, sheet, lossy)
+    add_upright_coupling(matrix, system.moments.basis, system.mesh.sheet, system.layers, frequency)
+    return matrix
+
+
+def _heat(system: System, solved: Complexes, frequency: float, accepted: float) -> float:
+    """Power lost, W: by the foil's resistance; with a lossy spacer by what is not radiated."""
+    basis = system.moments.basis
+    if any(layer.loss_tangent > 0.0 for layer in system.layers):
+        nothing = np.zeros(basis.triangles, dtype=np.complex128)
+        matrix = _matrix(system, frequency, nothing, lossy=False)
+        return accepted - 0.5 * float(np.real(solved.conj() @ (matrix @ solved)))
+    halves = basis.on_halves(solved)
+    squares = np.einsum("at,tab,bt->", halves.conj(), system.moments.overlaps, halves).real
+    return float(squares * sheet_impedance(system.foil, frequency).real / 2.0)
 
 
 def sheet_impedance(foil: Foil, frequency: float) -> complex:

@@ -5,10 +5,10 @@ from math import pi
 import numpy as np
 import pytest
 import shapely
-from fullwave_shapes import gap_excitation, grid, moments_of
+from fullwave_shapes import current_power, gap_excitation, grid, moments_of
 
 from core.constants import FREE_SPACE_IMPEDANCE, SPEED_OF_LIGHT
-from core.fullwave.far_field import direction_frame, far_field, radiated_power
+from core.fullwave.far_field import direction_frame, far_field
 from core.fullwave.moments import currents, impedance_matrix
 from core.fullwave.quadrature import triangle_rule
 from core.fullwave.sizes import sizes_near
@@ -30,7 +30,7 @@ def dipole(length):
 def directivity(basis, solved, towards):
     field = far_field(basis, solved, FREQUENCY, np.array([towards]))
     density = np.sum(np.abs(field) ** 2) / (2.0 * FREE_SPACE_IMPEDANCE)
-    return 4.0 * pi * density / radiated_power(basis, solved, FREQUENCY)
+    return 4.0 * pi * density / current_power(basis, solved, FREQUENCY)
 
 
 @pytest.mark.parametrize(

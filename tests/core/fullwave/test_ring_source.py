@@ -80,7 +80,9 @@ def admittance(monkeypatch, **finer):
     fine = replace(FINENESS[Level.COARSE], **finer)
     monkeypatch.setitem(FINENESS, Level.COARSE, fine)
     layout = build_layout(thick_air())
-    return solve(build_system(build_mesh(layout, Level.COARSE), layout.foil), 2.45e9).admittance
+    return solve(
+        build_system(build_mesh(layout, Level.COARSE), layout.foil, layout.stack), 2.45e9
+    ).admittance
 
 
 def test_impedance_settles_as_the_probe_is_cut_finer(monkeypatch):

@@ -11,9 +11,9 @@ from core.constants import VACUUM_PERMITTIVITY
 from core.design.defaults import default_design
 from core.design.polarisation import Polarisation
 from core.errors import ModelError
-from core.fullwave.far_field import radiated_power
+from core.fullwave.far_field import sphere_power
 from core.fullwave.mesh import Level, build_mesh
-from core.fullwave.system import build_system, sheet_impedance, solve
+from core.fullwave.system import build_system, radiated_field, sheet_impedance, solve
 from core.layout.build import build_layout
 from core.layout.model import Foil, Role
 from core.shapes.outline import Region, circle
@@ -32,8 +32,18 @@ LAYOUTS = {name: build_layout(design) for name, design in DUAL_EDGE.items()} | P
 
 
 def solved(layout, level, frequency):
-    system = build_system(build_mesh(layout, level), layout.foil)
+    system = build_system(build_mesh(layout, level), layout.foil, layout.stack)
     return system, solve(system, frequency)
+
+
+def power_sent(system, solution):
+    reach = np.ptp(system.mesh.vertices, axis=0).max()
+    frequency = solution.frequency
+    return sphere_power(
+        lambda towards: radiated_field(system, solution.currents, frequency, towards),
+        frequency,
+        reach,
+    )
 
 
 def reflection(solution):
@@ -48,7 +58,7 @@ def wrong_over_right(solution):
 @pytest.mark.parametrize("frequency", [2.2e9, 2.5e9])
 def test_power_in_is_power_out(name, frequency):
     system, solution = solved(LAYOUTS[name], Level.COARSE, frequency)
-    sent = radiated_power(system.moments.basis, solution.currents, frequency)
+    sent = power_sent(system, solution)
     accepted = solution.admittance.real / 2.0
     assert accepted > 0.0
     assert sent / accepted + solution.lost == pytest.approx(1.0, abs=2e-3)
@@ -58,7 +68,7 @@ def test_poor_foil_loses_the_power_that_it_takes():
     layout = LAYOUTS["thin"]
     lossy = replace(layout, foil=Foil(20e-6, 1e5))
     system, solution = solved(lossy, Level.COARSE, 2.45e9)
-    sent = radiated_power(system.moments.basis, solution.currents, 2.45e9)
+    sent = power_sent(system, solution)
     assert solution.lost > 0.05
     assert sent / (solution.admittance.real / 2) + solution.lost == pytest.approx(1.0, abs=2e-3)
 
@@ -134,7 +144,7 @@ def test_match_and_field_ratio_converge(name, tolerance):
 
 def resonance(layout, level):
     """Frequency of the pole of the input impedance nearest to the band's middle."""
-    system = build_system(build_mesh(layout, level), layout.foil)
+    system = build_system(build_mesh(layout, level), layout.foil, layout.stack)
     middle = 2.42e9
     for spread in (0.05, 0.015):
         x = spread * np.cos(pi * (2 * np.arange(7) + 1) / 14)
