@@ -99,9 +99,10 @@ def connect_views(window: Window) -> None:
     )
     window.notices.pressed.connect(lambda name, button: _on_notice(window, name, button))
     window.settings.changed.connect(lambda key, _: _on_setting(window, key))
-    window.document.stack.cleanChanged.connect(lambda _: window.show_name())
-    window.document.design_changed.connect(lambda _: window.show_name())
-    window.document.path_changed.connect(lambda _: window.show_name())
+    # Bound to the window itself, so that they end with it: the stack outlives it by a moment.
+    document = window.document
+    for signal in (document.stack.cleanChanged, document.design_changed, document.path_changed):
+        signal.connect(window.show_name)
 
 
 def connect_actions(window: Window) -> None:
