@@ -57,8 +57,8 @@ class Document(QObject):
     design_changed = Signal(object)
     path_changed = Signal(object)
 
-    def __init__(self, design: Design) -> None:
-        super().__init__()
+    def __init__(self, design: Design, parent: QObject | None = None) -> None:
+        super().__init__(parent)
         self.stack = QUndoStack(self)
         self._design = design
         self._path: Path | None = None

@@ -58,7 +58,7 @@ class MainWindow(QMainWindow):
         super().__init__()
         self.settings, self.runner = settings, runner
         self.asker: WindowAsks = asker or _own_asker(self)
-        self.document = Document(default_design())
+        self.document = Document(default_design(), self)
         self.pipeline = Pipeline(self.document)
         self.window_actions = make_actions(self, self.document.stack)
         self._make_views()

@@ -25,7 +25,8 @@ if TYPE_CHECKING:
 
 _KEYS = """<p><b>On the Mat</b></p>
 <p>Drag a white handle, or go to it with Tab and move it with the arrow keys: 0.1 mm a press,
-1 mm with Shift, 0.01 mm with Ctrl. Esc puts a drag back.</p>
+1 mm with Shift, 0.01 mm with Ctrl. Esc puts a drag back. The element and the ground plate stay
+about their middle: the side across moves as far the other way.</p>
 <p>Wheel: zoom at the pointer. Middle button, Space or the bare mat: pan. Ctrl+0: the whole
 plate. Ctrl+2: the copper. Ctrl+1: true size.</p>
 <p><b>In a field</b></p>
@@ -99,9 +100,10 @@ def connect_views(window: Window) -> None:
     )
     window.notices.pressed.connect(lambda name, button: _on_notice(window, name, button))
     window.settings.changed.connect(lambda key, _: _on_setting(window, key))
-    window.document.stack.cleanChanged.connect(lambda _: window.show_name())
-    window.document.design_changed.connect(lambda _: window.show_name())
-    window.document.path_changed.connect(lambda _: window.show_name())
+    # Bound to the window itself, so that they end with it: the stack outlives it by a moment.
+    document = window.document
+    for signal in (document.stack.cleanChanged, document.design_changed, document.path_changed):
+        signal.connect(window.show_name)
 
 
 def connect_actions(window: Window) -> None:

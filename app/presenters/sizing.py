@@ -20,6 +20,8 @@ if TYPE_CHECKING:
     from core.sizing.size import Sizing
 
 KIND = "size"
+_UNTOLD = "The best that the equations find."  # their numbers would be taken for the antenna's
+_DOUBT = "An estimate, not to cut by: equations cannot vouch for it here."
 
 
 class Stage(Protocol):
@@ -85,8 +87,9 @@ class SizingPresenter:
         sizing, is_known, copper = answer
         self._is_busy = False
         self.proposed = sizing
-        doubt = "" if is_known else " An estimate, not to cut by: equations cannot vouch for it."
-        self._offer.show_sizing("", f"Dashed on the Mat. {sizing.reason}{doubt}")
+        told = sizing.reason if is_known or not sizing.met else _UNTOLD
+        doubt = "" if is_known else f" {_DOUBT}"
+        self._offer.show_sizing("", f"Dashed on the Mat. {told}{doubt}")
         self._stage.show_ghost(copper)
 
     def _on_failed(self, error: CoreError) -> None:

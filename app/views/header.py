@@ -5,13 +5,21 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QEvent, QSize, Qt
-from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QMenuBar, QPushButton, QToolButton
+from PySide6.QtWidgets import (
+    QFrame,
+    QHBoxLayout,
+    QLabel,
+    QMenuBar,
+    QPushButton,
+    QSizePolicy,
+    QToolButton,
+)
 
 from app import theme
 from app.actions import MENUS, fill_menus
 
 if TYPE_CHECKING:
-    from PySide6.QtGui import QAction
+    from PySide6.QtGui import QAction, QResizeEvent
     from PySide6.QtWidgets import QMenu
 
 _BUTTONS = ("undo", "redo", "fit", "fit-copper")
@@ -35,6 +43,8 @@ class Header(QFrame):
         self._name.setObjectName("muted")
         self._name.setAccessibleName("What is on the bench")
         self._name.setAlignment(Qt.AlignmentFlag.AlignCenter)
+        self._name.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
+        self._whole_name = ""
         self.template_button = QPushButton("Template…")
         self.template_button.setObjectName("primary")
         self.template_button.setAccessibleName("Template")
@@ -53,7 +63,12 @@ class Header(QFrame):
         self._colour()
 
     def show_name(self, name: str) -> None:
-        self._name.setText(name)
+        self._whole_name = name
+        self._fit_name()
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        super().resizeEvent(event)
+        self._fit_name()
 
     def changeEvent(self, event: QEvent) -> None:
         super().changeEvent(event)
@@ -67,6 +82,14 @@ class Header(QFrame):
         button.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
         button.setAccessibleName(self._actions[name].text().replace("&", ""))
         return button
+
+    def _fit_name(self) -> None:
+        """A long name gives way; it never makes the window wider."""
+        middle = Qt.TextElideMode.ElideMiddle
+        words = self._name.fontMetrics().elidedText(self._whole_name, middle, self._name.width())
+        if words != self._name.text():
+            self._name.setText(words)
+            self._name.setToolTip(self._whole_name)
 
     def _colour(self) -> None:
         tint = theme.theme_of(self).text

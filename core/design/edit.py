@@ -10,6 +10,7 @@ from __future__ import annotations
 import dataclasses
 from dataclasses import dataclass
 from enum import Enum
+from functools import lru_cache
 from typing import TYPE_CHECKING, Any
 
 from core.design import defaults, spelled
@@ -46,6 +47,7 @@ class Parameter:
     spec: Spec | None
 
 
+@lru_cache(8)  # asked several times for one design in a step of a drag
 def parameters(design: Design) -> tuple[Parameter, ...]:
     """Every parameter of a design, in the order of the job.
 

@@ -168,3 +168,4 @@ def test_the_proposal_of_an_unknown_is_called_an_estimate(window):
     window.document.start(replace(thick, name="Thick"), None)
     window.window_actions["size"].trigger()
     assert "not to cut by" in window.readings.offer.words
+    assert "VSWR" not in window.readings.offer.words
