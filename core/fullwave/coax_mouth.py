@@ -101,6 +101,25 @@ def mouth_capacitance(layers: tuple[Layer, ...], inner: float, outer: float) -> 
     return VACUUM_PERMITTIVITY * TWO_PI * total
 
 
+def mouth_field(inner: float, outer: float, k_rho: Floats) -> Complexes:
+    """Transform of a mouth's own field at 1 V along the direction looked at.
+
+    Parameters
+    ----------
+    inner, outer : float
+        Radii, m, inner < outer.
+    k_rho : (n,) ndarray of float
+        Horizontal wavenumber, 1/m, >= 0.
+
+    Returns
+    -------
+    (n,) ndarray of complex
+        Integral of the field times exp(j k . r), r from the mouth's axis, V m.
+    """
+    k = np.maximum(k_rho, 1e-6 / outer)
+    return np.asarray(1j * TWO_PI / log(outer / inner) * (j0(k * inner) - j0(k * outer)) / k)
+
+
 def _seen_from_ground(layers: tuple[Layer, ...], k_rho: Floats) -> Floats:
     """Ratio of displacement to field in the ground plane at zero frequency, times k_rho."""
     seen = np.ones_like(k_rho)

@@ -5,13 +5,14 @@ Shapes: q points, e edges round the probe, m vertical profiles, d directions, t 
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from math import ceil, pi
 from typing import TYPE_CHECKING, Final
 
 import numpy as np
 
 from core.constants import FREE_SPACE_IMPEDANCE, SPEED_OF_LIGHT, TWO_PI
+from core.fullwave.coax_mouth import mouth_field
 from core.fullwave.far_field import _current_moments
 from core.fullwave.layered_radiation import layered_radiation
 from core.fullwave.surface_waves import launched_power, surface_waves
@@ -20,6 +21,7 @@ if TYPE_CHECKING:
     from numpy.typing import NDArray
 
     from core.fullwave.basis import Basis
+    from core.fullwave.mesh_model import CoaxRing
     from core.lines.stack import Layer
 
     Floats = NDArray[np.float64]
@@ -48,6 +50,8 @@ class BoardCurrents:
         Of vertical currents, m.
     rising : (m, e) ndarray of complex
         Those currents by profile, A.
+    mouth : CoaxRing
+        At 1 V.
     """
 
     layers: tuple[Layer, ...]
@@ -57,6 +61,7 @@ class BoardCurrents:
     moments: Complexes
     feet: Floats
     rising: Complexes
+    mouth: CoaxRing
 
     @classmethod
     def of(
@@ -66,28 +71,43 @@ class BoardCurrents:
         ground_impedance: complex,
         basis: Basis,
         solved: Complexes,
-        probe: tuple[Floats, Complexes],
+        probe: tuple[Floats, Complexes, CoaxRing],
     ) -> BoardCurrents:
-        """Of solved functions: feet and rising currents are the probe's."""
+        """Of solved functions; feet, rising currents and mouth are the probe's."""
         points, moments = _current_moments(basis, solved)
         wavenumber = TWO_PI * frequency / SPEED_OF_LIGHT
-        return cls(
-            layers, wavenumber, ground_impedance, points[:, :2], moments[:, :2], probe[0], probe[1]
+        return cls(layers, wavenumber, ground_impedance, points[:, :2], moments[:, :2], *probe)
+
+    def mouth_alone(self) -> BoardCurrents:
+        """The same without any current."""
+        return replace(
+            self, points=self.points[:1], moments=0.0 * self.moments[:1], rising=0.0 * self.rising
         )
 
     def transformed(
         self, wavenumber: Floats | float, phi: Floats
-    ) -> tuple[Complexes, Complexes, Complexes]:
-        """Integrals of the current times exp(j k . r) for k of some size (d,) and azimuth (d,).
+    ) -> tuple[Complexes, Complexes, Complexes, Complexes]:
+        """Integrals of sources times exp(j k . r) for k of some size (d,) and azimuth (d,).
 
-        Along k (d,) and across it (d,), A m; of the vertical currents (m, d), A.
+        Of the currents along k (d,) and across it (d,), A m; of the vertical ones (m, d), A; of
+        the mouth's field along k (d,), V m.
         """
         direction = np.column_stack([np.cos(phi), np.sin(phi)])
         k = np.broadcast_to(wavenumber, phi.shape)[:, None] * direction
-        summed = np.exp(1j * (k @ self.points.T)) @ self.moments
+        turns = k[:, :1] * self.points[:, 0] + k[:, 1:] * self.points[:, 1]
+        # Not by a matrix product: on a busy machine its threads cost more than the work.
+        summed = np.einsum("dq,qx->dx", np.exp(1j * turns), self.moments)
         across = direction[:, 0] * summed[:, 1] - direction[:, 1] * summed[:, 0]
         rising = self.rising @ np.exp(1j * (k @ self.feet.T)).T
-        return np.sum(direction * summed, axis=1), across, rising
+        # A mouth's field turns round with its direction, so the sign of k is in its size.
+        mouth = mouth_field(self.mouth.inner, self.mouth.outer, np.abs(wavenumber))
+        place = np.exp(1j * (k @ np.array([self.mouth.x, self.mouth.y])))
+        return (
+            np.sum(direction * summed, axis=1),
+            across,
+            rising,
+            np.sign(wavenumber) * mouth * place,
+        )
 
 
 def space_field(flowing: BoardCurrents, theta: Floats, phi: Floats) -> tuple[Complexes, Complexes]:
@@ -110,9 +130,9 @@ def space_field(flowing: BoardCurrents, theta: Floats, phi: Floats) -> tuple[Com
         flowing.layers, np.array([k]), angles, len(flowing.rising), flowing.ground_impedance
     )
     # A negative theta is the opposite azimuth, with both unit vectors turned round.
-    along, across, rising = flowing.transformed(k * np.sin(theta), phi)
+    along, across, rising, mouth = flowing.transformed(k * np.sin(theta), phi)
     side = np.where(theta < 0.0, -1.0, 1.0)
-    e_theta = factors.along[0, number] * along
+    e_theta = factors.along[0, number] * along + factors.foot[0, number] * mouth
     e_theta += side * np.sum(factors.vertical[:, 0, number] * rising, axis=0)
     return e_theta, factors.across[0, number] * across
 
@@ -166,8 +186,8 @@ def power_into_waves(flowing: BoardCurrents) -> float:
     for wave in surface_waves(flowing.layers, flowing.wavenumber, len(flowing.rising)):
         count = 2 * (ceil(0.75 * wave.wavenumber * reach) + _LEAST_ANGLES)
         phi = TWO_PI * np.arange(count) / count
-        along, across, rising = flowing.transformed(wave.wavenumber, phi)
+        along, across, rising, mouth = flowing.transformed(wave.wavenumber, phi)
         horizontal = across if wave.transverse_electric else along
-        amplitude = wave.horizontal * horizontal + wave.vertical @ rising
+        amplitude = wave.horizontal * horizontal + wave.vertical @ rising + wave.foot * mouth
         total += launched_power(wave, flowing.wavenumber, amplitude)
     return total

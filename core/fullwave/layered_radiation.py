@@ -35,11 +35,15 @@ class LayeredRadiation:
         E_phi per horizontal current across it (towards rising phi), ohm/m.
     vertical : (m, f, t) ndarray of complex
         E_theta per vertical current cos(i pi z/h), ohm.
+    foot : (f, t) ndarray of complex
+        E_theta per electric field impressed in the ground plane along the direction looked at,
+        V per volt metre: 1/m.
     """
 
     along: Complexes
     across: Complexes
     vertical: Complexes
+    foot: Complexes
 
 
 def layered_radiation(
@@ -87,4 +91,5 @@ def layered_radiation(
         along=-raised * lines.tm,
         across=raised * k0**2 * cosine * lines.te,
         vertical=-raised * k0 * k_rho * cosine * lines.rise,
+        foot=-raised * k0**2 * cosine * lines.reach / FREE_SPACE_IMPEDANCE,
     )

@@ -11,7 +11,12 @@ import numpy as np
 from core.constants import FREE_SPACE_IMPEDANCE, SPEED_OF_LIGHT, TWO_PI
 from core.fullwave.coax_mouth import mouth_capacitance
 from core.fullwave.kernel_table import TablePlan, plan_tables
-from core.fullwave.layered_fields import BoardCurrents, boresight_field, power_into_space
+from core.fullwave.layered_fields import (
+    BoardCurrents,
+    boresight_field,
+    power_into_space,
+    power_into_waves,
+)
 from core.fullwave.layered_moments import (
     LayeredMoments,
     board_basis,
@@ -154,9 +159,12 @@ def solve_layered(system: LayeredSystem, frequency: float) -> Solution:
     add_probe(matrix, basis, system.probe, tables, wavenumber, pin)
     volts = port_voltages(basis, system.probe, tables)
     solved = currents(matrix, volts)
-    admittance = complex(volts @ solved) + 1j * TWO_PI * frequency * system.capacitance
-    accepted = admittance.real / 2.0
     flowing = board_currents(system, solved, frequency)
+    mouth = flowing.mouth_alone()
+    sent = power_into_space(mouth) + power_into_waves(mouth)
+    admittance = complex(volts @ solved) + 2.0 * sent
+    admittance += 1j * TWO_PI * frequency * system.capacitance
+    accepted = admittance.real / 2.0
     e_x, e_y = boresight_field(flowing) * np.sqrt(
         4.0 * pi / (2.0 * FREE_SPACE_IMPEDANCE * accepted)
     )
@@ -193,7 +201,7 @@ def board_currents(system: LayeredSystem, solved: Complexes, frequency: float) -
         sheet_impedance(system.foil, frequency),
         system.moments.basis,
         solved,
-        (probe.middles, rising.reshape(probe.profiles, -1)),
+        (probe.middles, rising.reshape(probe.profiles, -1), probe.port),
     )
 
 

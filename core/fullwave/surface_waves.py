@@ -41,6 +41,9 @@ class SurfaceWave:
         its direction for TM, across it for TE.
     vertical : (m,) ndarray of float
         Amplitude per ampere of the vertical currents cos(i pi z/h); zeros for TE.
+    foot : complex
+        Amplitude per volt metre of an electric field impressed in the ground plane, along its
+        direction; 0 for TE.
     """
 
     transverse_electric: bool
@@ -48,6 +51,7 @@ class SurfaceWave:
     decay: float
     horizontal: complex
     vertical: Floats
+    foot: complex
 
 
 def surface_waves(
@@ -189,8 +193,9 @@ class _Shot:
             bottom += depth
         wavenumber = float(np.hypot(self.wavenumber, decay))
         if self.transverse_electric:
-            horizontal, vertical = complex(value_at_top), 0.0 * vertical
+            horizontal, vertical, foot = complex(value_at_top), 0.0 * vertical, 0.0
         else:
+            foot = self.wavenumber / FREE_SPACE_IMPEDANCE  # of a magnetic field that starts from 1
             horizontal, vertical = -1j * decay * value_at_top, wavenumber * vertical
         return SurfaceWave(
             transverse_electric=self.transverse_electric,
@@ -198,6 +203,7 @@ class _Shot:
             decay=decay,
             horizontal=horizontal / norm**0.5,
             vertical=vertical / norm**0.5,
+            foot=foot / norm**0.5,
         )
 
 
