@@ -13,7 +13,7 @@ from typing import TYPE_CHECKING, ClassVar, Final
 import numpy as np
 
 from core.constants import FREE_SPACE_IMPEDANCE
-from core.fullwave.far_field import direction_frame, far_field
+from core.fullwave.far_field import direction_frame, sphere_power
 from core.fullwave.layered_fields import BoardCurrents, power_into_waves, space_field
 from core.fullwave.layered_mesh import build_board_mesh
 from core.fullwave.layered_system import (
@@ -24,9 +24,10 @@ from core.fullwave.layered_system import (
 )
 from core.fullwave.layered_trust import rim_doubts
 from core.fullwave.mesh import Level, build_mesh
+from core.fullwave.mesh_model import mesh_quality
 from core.fullwave.rational import fit_rational
 from core.fullwave.sweep import Sweep, adaptive_sweep
-from core.fullwave.system import Solution, System, build_system, solve
+from core.fullwave.system import Solution, System, build_system, radiated_field, solve
 from core.lines.stack import series_permittivity
 from core.response.model import (
     Mode,
@@ -51,9 +52,9 @@ _ENGINE: Final = "field"
 MOST_AIR_LIKE: Final = 1.5
 """Thickness-averaged permittivity up to which the finite plate is meshed in free space."""
 
-_AIR_SHIFT = 1e-3  # relative; a spacer that shifts less than this is as good as air
 _TOLERANCE = 2e-3  # of reflection coefficient and field ratio in a sweep
-_MODE_REACH = 1.3  # ratio to the brief's frequency within which a pole is a mode of the element
+_BALANCE = 0.01  # of the power accepted
+_MODE_REACH = 1.05  # how far beyond the solved band a pole still means something
 _LOWEST_Q, _HIGHEST_Q = 2.0, 2000.0
 _NOISE = 1e-3  # of the larger field component
 
@@ -90,8 +91,6 @@ def respond(
     band = (min(wanted[0], layout.frequency), max(wanted[-1], layout.frequency))
     solver = _solver(layout, level, band[1])
     impedance = layout.ports[0].impedance
-    permittivity = series_permittivity(layout.stack)
-    in_air = permittivity if permittivity <= MOST_AIR_LIKE else 1.0
     sweep = adaptive_sweep(
         solver.quantities,
         band,
@@ -107,11 +106,11 @@ def respond(
         reference_impedance=impedance,
         sweep=_samples(wanted, sweep, solver, impedance),
         spot=at_spot,
-        modes=_modes(sweep, layout.frequency),
+        modes=_modes(sweep, band),
         directivity=gain / float(at_spot.efficiency),
         cuts=tuple(_cut(solver, phi) for phi in (0.0, pi / 2)),
         front_to_back=solver.front_to_back(),
-        trust=_trust(level, sweep, in_air) | solver.doubts(),
+        trust=_trust(level, sweep) | solver.doubts(),
     )
 
 
@@ -191,19 +190,33 @@ class _FreeSpace(_Solver):
 
     def pattern(self, phi: float) -> tuple[Complexes, Complexes]:
         towards, along_theta, along_phi = direction_frame(self.angles, phi)
-        field = far_field(
-            self.system.moments.basis, self.spot.currents, self.spot.frequency, towards
-        )
+        field = radiated_field(self.system, self.spot.currents, self.spot.frequency, towards)
         return np.sum(field * along_theta, axis=1), np.sum(field * along_phi, axis=1)
 
     def front_to_back(self) -> float:
         ends = np.array([[0.0, 0.0, 1.0], [0.0, 0.0, -1.0]])
-        field = far_field(self.system.moments.basis, self.spot.currents, self.spot.frequency, ends)
+        field = radiated_field(self.system, self.spot.currents, self.spot.frequency, ends)
         front, back = np.sum(np.abs(field) ** 2, axis=1)
         return float(front / back)
 
     def doubts(self) -> dict[Reading, Trust]:
-        return {}
+        """What the power balance says against the solution: nothing, unless it is broken."""
+        spot, system = self.spot, self.system
+        radiated = sphere_power(
+            lambda towards: radiated_field(system, spot.currents, spot.frequency, towards),
+            spot.frequency,
+            float(np.ptp(system.mesh.vertices, axis=0).max()),
+        )
+        missing = 1.0 - spot.lost - radiated / (spot.admittance.real / 2.0)
+        if abs(missing) <= _BALANCE:
+            return {}
+        quality = mesh_quality(system.mesh)
+        reason = (
+            f"the power does not balance by {100.0 * missing:.1f} % on a mesh of "
+            f"{quality.triangles} triangles with angles down to "
+            f"{np.degrees(quality.smallest_angle):.0f} degrees: it is too coarse"
+        )
+        return dict.fromkeys(Reading, Trust(TrustLevel.ROUGH, reason, "choose a finer mesh"))
 
 
 @dataclass(frozen=True, eq=False)
@@ -238,7 +251,7 @@ def _solver(layout: Layout, level: Level, highest: float) -> _Solver:
     if series_permittivity(layout.stack) > MOST_AIR_LIKE:
         mesh = build_board_mesh(layout, level)
         return _Board(layout, build_layered_system(mesh, layout.stack, layout.foil, highest))
-    return _FreeSpace(layout, build_system(build_mesh(layout, level), layout.foil))
+    return _FreeSpace(layout, build_system(build_mesh(layout, level), layout.foil, layout.stack))
 
 
 def _apart(one: Complexes, other: Complexes, impedance: float) -> Floats:
@@ -277,7 +290,7 @@ def _smooth(solved: Floats, values: Floats, wanted: Floats) -> Floats:
     return np.asarray(np.polynomial.polynomial.polyval((wanted - middle) / half, cubic))
 
 
-def _modes(sweep: Sweep, frequency: float) -> tuple[Mode, ...]:
+def _modes(sweep: Sweep, band: tuple[float, float]) -> tuple[Mode, ...]:
     """Natural resonances with the port open: poles of the impedance.
 
     exp(j omega t) dies away for poles above the real axis; f = f_r (sqrt(1 - 1/4Q²) + j/2Q).
@@ -289,9 +302,10 @@ def _modes(sweep: Sweep, frequency: float) -> tuple[Mode, ...]:
     count, quantities = opened.shape
     fit = fit_rational(sweep.frequencies, opened, (count * quantities + 1) // (quantities + 1))
     modes = []
+    low, high = band
     for pole in fit.poles():
         size = abs(pole)
-        if pole.imag <= 0.0 or not 1.0 / _MODE_REACH < size / frequency < _MODE_REACH:
+        if pole.imag <= 0.0 or not low / _MODE_REACH < size < high * _MODE_REACH:
             continue
         quality = size / (2.0 * pole.imag)
         if _LOWEST_Q < quality < _HIGHEST_Q:
@@ -308,18 +322,10 @@ def _cut(solver: _Solver, phi: float) -> PatternCut:
     return PatternCut(phi, solver.angles, e_theta * scale, e_phi * scale)
 
 
-def _trust(level: Level, sweep: Sweep, permittivity: float) -> dict[Reading, Trust]:
-    """Good on air; rough on a coarse mesh, and where the spacer is not quite air."""
+def _trust(level: Level, sweep: Sweep) -> dict[Reading, Trust]:
     reason = (
         f"full-wave solution on the {level.value} mesh, {len(sweep.frequencies)} frequencies "
         f"solved, the fit between them true to {sweep.error:.1g}"
     )
-    shift = permittivity**0.5 - 1.0
-    if shift > _AIR_SHIFT:
-        reason += (
-            f"; solved in air: the spacer's mean permittivity of {permittivity:.3f} puts "
-            f"everything up to {100.0 * shift:.1f} % lower in frequency"
-        )
-    is_rough = level is Level.COARSE or shift > _AIR_SHIFT
-    grade = TrustLevel.ROUGH if is_rough else TrustLevel.GOOD
+    grade = TrustLevel.ROUGH if level is Level.COARSE else TrustLevel.GOOD
     return dict.fromkeys(Reading, Trust(grade, reason))
