@@ -14,7 +14,7 @@ import numpy as np
 from scipy.interpolate import PchipInterpolator
 
 from core.constants import FREE_SPACE_IMPEDANCE
-from core.fullwave.far_field import direction_frame, far_field
+from core.fullwave.far_field import direction_frame
 from core.fullwave.layered_fields import BoardCurrents, power_into_waves, space_field
 from core.fullwave.layered_mesh import build_board_mesh
 from core.fullwave.layered_system import (
@@ -27,7 +27,7 @@ from core.fullwave.layered_trust import rim_doubts
 from core.fullwave.mesh import Level, build_mesh
 from core.fullwave.rational import fit_rational
 from core.fullwave.sweep import Sweep, adaptive_sweep
-from core.fullwave.system import Solution, System, build_system, solve
+from core.fullwave.system import Solution, System, build_system, radiated_field, solve
 from core.lines.stack import series_permittivity
 from core.response.model import (
     Mode,
@@ -55,7 +55,8 @@ MOST_AIR_LIKE: Final = 1.5
 _TOLERANCE = 2e-3  # of reflection coefficient and field ratio in a sweep
 _MODE_REACH = 1.3  # ratio to the brief's frequency within which a pole is a mode of the element
 _LOWEST_Q, _HIGHEST_Q = 2.0, 2000.0
-_NOISE = 1e-3  # of the larger field component
+_SEEN = 0.15  # least height of a mode's peak over what is usual in the band
+_BESIDE = 1e-7  # of a pole, to take its residue at
 
 
 def respond(
@@ -189,14 +190,12 @@ class _FreeSpace(_Solver):
 
     def pattern(self, phi: float) -> tuple[Complexes, Complexes]:
         towards, along_theta, along_phi = direction_frame(self.angles, phi)
-        field = far_field(
-            self.system.moments.basis, self.spot.currents, self.spot.frequency, towards
-        )
+        field = radiated_field(self.system, self.spot.currents, self.spot.frequency, towards)
         return np.sum(field * along_theta, axis=1), np.sum(field * along_phi, axis=1)
 
     def front_to_back(self) -> float:
         ends = np.array([[0.0, 0.0, 1.0], [0.0, 0.0, -1.0]])
-        field = far_field(self.system.moments.basis, self.spot.currents, self.spot.frequency, ends)
+        field = radiated_field(self.system, self.spot.currents, self.spot.frequency, ends)
         front, back = np.sum(np.abs(field) ** 2, axis=1)
         return float(front / back)
 
@@ -236,7 +235,7 @@ def _solver(layout: Layout, level: Level, highest: float) -> _Solver:
     if series_permittivity(layout.stack) > MOST_AIR_LIKE:
         mesh = build_board_mesh(layout, level)
         return _Board(layout, build_layered_system(mesh, layout.stack, layout.foil, highest))
-    return _FreeSpace(layout, build_system(build_mesh(layout, level), layout.foil))
+    return _FreeSpace(layout, build_system(build_mesh(layout, level), layout.foil, layout.stack))
 
 
 def _apart(one: Complexes, other: Complexes, impedance: float) -> Floats:
@@ -274,20 +273,22 @@ def _modes(sweep: Sweep, frequency: float) -> tuple[Mode, ...]:
     exp(j omega t) dies away for poles above the real axis; f = f_r (sqrt(1 - 1/4Q²) + j/2Q).
     """
     admittance, fields = sweep.values[:, :1], sweep.values[:, 1:]
-    sizes = np.linalg.norm(fields, axis=0)
-    told = fields * (sizes > _NOISE * sizes.max())  # a component that is only noise has no poles
-    opened = np.concatenate([1.0 / admittance, told / admittance], axis=1)
+    opened = np.concatenate([1.0 / admittance, fields / admittance], axis=1)
     count, quantities = opened.shape
     fit = fit_rational(sweep.frequencies, opened, (count * quantities + 1) // (quantities + 1))
+    usual = np.sqrt(np.mean(np.abs(opened) ** 2, axis=0))
+    usual[1:] = np.linalg.norm(usual[1:])
     modes = []
     for pole in fit.poles():
         size = abs(pole)
         if pole.imag <= 0.0 or not 1.0 / _MODE_REACH < size / frequency < _MODE_REACH:
             continue
         quality = size / (2.0 * pole.imag)
-        if _LOWEST_Q < quality < _HIGHEST_Q:
-            near = fit.at(np.array([pole.real]))[0]
-            name = "along x" if abs(near[1]) > abs(near[2]) else "along y"
+        step = _BESIDE * size
+        peak = np.abs(fit.at(np.array([pole + step]))[0]) * step / pole.imag / usual
+        # What is hardly excited is there by the mesh's want of symmetry alone.
+        if _LOWEST_Q < quality < _HIGHEST_Q and max(peak[0], np.linalg.norm(peak[1:])) > _SEEN:
+            name = "along x" if peak[1] > peak[2] else "along y"
             modes.append(Mode(name, float(size), float(quality)))
     return tuple(modes)
 
