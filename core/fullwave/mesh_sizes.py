@@ -158,7 +158,7 @@ def ground_plan(
     rings: list[shapely.LinearRing] = []
     for step in (-detail / 2.0, detail / 2.0):
         for part in shapely.get_parts(shapely.buffer(copper, step, join_style="mitre")):
-            rings += [part.exterior, *part.interiors]
+            rings += [ring for ring in (part.exterior, *part.interiors) if not ring.is_empty]
     along = np.concatenate([ring_segments(ring) for ring in rings])
     wishes = [(along, _TRACE_CELL * detail), _pin_wish(pin)]
     return sizes_near(largest, fine.growth, wishes), tuple(rings)

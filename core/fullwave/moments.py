@@ -35,7 +35,9 @@ if TYPE_CHECKING:
 _WORKERS = min(4, os.cpu_count() or 1)
 _BATCH = 1000  # pairs to a task
 # By kind of pair: the fill's own, apart, touching or nearly, sharing an edge, the triangle itself.
-_TOUCHING: Final = 2
+_APART, _TOUCHING = 1, 2
+_NEAR_IMAGE = 1.5  # distance of middles, in sums of radii, up to which an image is near
+_FLAT = 0.3  # height of an image, in the same, under which its source is integrated exactly
 _RULES: Final = (COARSE_RULE, *(triangle_rule(order) for order in (4, 3, 5, 6)))
 
 
@@ -186,17 +188,29 @@ def _near(
     terms, plain = _near_terms(basis, pairs, kinds, (1.0, 0.0))
     here, there = sheets[pairs[:, 0]], sheets[pairs[:, 1]]
     charges = images.direct[here, there][:, None] * plain
-    # An image is never in the very place of its source: the rule of touching triangles will do.
-    kinds = np.minimum(kinds, _TOUCHING)
-    for own in range(FACES):
-        for other in range(FACES):
-            chosen = np.flatnonzero((here == own) & (there == other))
-            for i in range(images.starts[own, other], images.stops[own, other]):
+    for own, other in np.ndindex(FACES, FACES):
+        chosen = np.flatnonzero((here == own) & (there == other))
+        for i in range(images.starts[own, other], images.stops[own, other]):
+            if images.weights[i] != 0.0:
                 image = images.turns[i], images.shifts[i]
-                _, more = _near_terms(basis, pairs[chosen], kinds[chosen], image)
-                charges[chosen, 0] += images.weights[i] * more[:, 0]
-                charges[chosen, 1] += 2.0 * images.squares[i] * more[:, 0]
+                near, kinds = _near_image(basis.corners, pairs[chosen], image)
+                _, more = _near_terms(basis, pairs[chosen[near]], kinds, image)
+                charges[chosen[near], 0] += images.weights[i] * more[:, 0]
     return starts, sources, terms, charges
+
+
+def _near_image(corners: Floats, pairs: Ints, image: tuple[float, float]) -> tuple[Ints, Ints]:
+    """Pairs whose second triangle has its image near the first one, and how close they are."""
+    middles = corners.mean(axis=1)
+    radii = np.linalg.norm(corners - middles[:, None], axis=2).max(axis=1)
+    one, two = middles[pairs[:, 0]], middles[pairs[:, 1]] * (1.0, 1.0, image[0])
+    two[:, 2] += image[1]
+    distance = np.linalg.norm(one - two, axis=1)
+    reach = radii[pairs[:, 0]] + radii[pairs[:, 1]]
+    near = np.flatnonzero(distance < _NEAR_IMAGE * reach)
+    # An image is never in the very place of its source: the rule of touching triangles will do.
+    flat = np.abs(one - two)[near, 2] < _FLAT * reach[near]
+    return near, np.where(flat, _TOUCHING, _APART)
 
 
 def _near_terms(

@@ -56,7 +56,8 @@ _TOLERANCE = 2e-3  # of reflection coefficient and field ratio in a sweep
 _BALANCE = 0.01  # of the power accepted
 _MODE_REACH = 1.05  # how far beyond the solved band a pole still means something
 _LOWEST_Q, _HIGHEST_Q = 2.0, 2000.0
-_NOISE = 1e-3  # of the larger field component
+_SEEN = 0.15  # least height of a mode's peak over what is usual in the band
+_BESIDE = 1e-7  # of a pole, to take its residue at
 
 
 def respond(
@@ -296,11 +297,11 @@ def _modes(sweep: Sweep, band: tuple[float, float]) -> tuple[Mode, ...]:
     exp(j omega t) dies away for poles above the real axis; f = f_r (sqrt(1 - 1/4Q²) + j/2Q).
     """
     admittance, fields = sweep.values[:, :1], sweep.values[:, 1:]
-    sizes = np.linalg.norm(fields, axis=0)
-    told = fields * (sizes > _NOISE * sizes.max())  # a component that is only noise has no poles
-    opened = np.concatenate([1.0 / admittance, told / admittance], axis=1)
+    opened = np.concatenate([1.0 / admittance, fields / admittance], axis=1)
     count, quantities = opened.shape
     fit = fit_rational(sweep.frequencies, opened, (count * quantities + 1) // (quantities + 1))
+    usual = np.sqrt(np.mean(np.abs(opened) ** 2, axis=0))
+    usual[1:] = np.linalg.norm(usual[1:])
     modes = []
     low, high = band
     for pole in fit.poles():
@@ -308,9 +309,11 @@ def _modes(sweep: Sweep, band: tuple[float, float]) -> tuple[Mode, ...]:
         if pole.imag <= 0.0 or not low / _MODE_REACH < size < high * _MODE_REACH:
             continue
         quality = size / (2.0 * pole.imag)
-        if _LOWEST_Q < quality < _HIGHEST_Q:
-            near = fit.at(np.array([pole.real]))[0]
-            name = "along x" if abs(near[1]) > abs(near[2]) else "along y"
+        step = _BESIDE * size
+        peak = np.abs(fit.at(np.array([pole + step]))[0]) * step / pole.imag / usual
+        # What is hardly excited is there by the mesh's want of symmetry alone.
+        if _LOWEST_Q < quality < _HIGHEST_Q and max(peak[0], np.linalg.norm(peak[1:])) > _SEEN:
+            name = "along x" if peak[1] > peak[2] else "along y"
             modes.append(Mode(name, float(size), float(quality)))
     return tuple(modes)
 
