@@ -44,6 +44,10 @@ COMMANDS = (
         "Find lengths that meet the brief", group=True,
     ),
     Command(
+        "field-check", "&Edit", "Field &check", ("Ctrl+K",),
+        "Solve the very shape on the Mat whenever an edit rests", checkable=True,
+    ),
+    Command(
         "preferences", "&Edit", "&Preferences…", ("Ctrl+,",), "Appearance and such", group=True
     ),
     Command("zoom-in", "&View", "Zoom &in", ("Ctrl++", "Ctrl+="), "Look closer"),

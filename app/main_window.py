@@ -12,6 +12,7 @@ from app.actions import make_actions
 from app.curves.panel import CurvesPanel
 from app.dialogs.preferences import PreferencesDialog
 from app.document import Document
+from app.field_check import FieldCheck, Solve, solve_by_mesh
 from app.mat.mat import Mat
 from app.menus import add_file_menus
 from app.pipeline import Pipeline
@@ -54,12 +55,14 @@ class MainWindow(QMainWindow):
         runner: Runner,
         folder: Path,
         asker: WindowAsks | None = None,
+        solve: Solve = solve_by_mesh,
     ) -> None:
         super().__init__()
         self.settings, self.runner = settings, runner
         self.asker: WindowAsks = asker or _own_asker(self)
         self.document = Document(default_design(), self)
         self.pipeline = Pipeline(self.document)
+        self.field = FieldCheck(self.pipeline, settings, runner, solve)
         self.window_actions = make_actions(self, self.document.stack)
         self._make_views()
         self._make_presenters()
@@ -78,8 +81,15 @@ class MainWindow(QMainWindow):
         # Loaded when it is first used: its drawing libraries would slow the start.
         from app.dialogs.export import ExportDialog  # noqa: PLC0415
 
+        checked = self.field.current
         dialog = ExportDialog(
-            self.pipeline.current, self.settings, self.asker, self.runner, self.notices, self
+            self.pipeline.current,
+            checked.mark if checked is not None else "",
+            self.settings,
+            self.asker,
+            self.runner,
+            self.notices,
+            self,
         )
         dialog.open()
 
@@ -107,6 +117,7 @@ class MainWindow(QMainWindow):
             return
         geometry = bytes(self.saveGeometry().toBase64().data()).decode()
         self.settings.set("geometry", geometry)
+        self.field.close()
         self.runner.close()
         self.recovery.close()
         super().closeEvent(event)
@@ -147,7 +158,7 @@ class MainWindow(QMainWindow):
         self.cards_presenter = CardsPresenter(document, self.cards)
         self.mat_presenter = MatPresenter(document, pipeline, self.mat)
         self.readings_presenter = ReadingsPresenter(
-            pipeline, self.settings, self.readings, self.curves
+            pipeline, self.field, self.settings, self.readings, self.curves
         )
         self.sizing = SizingPresenter(
             document, self.runner, self.mat_presenter, self.readings_presenter, self.notices

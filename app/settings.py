@@ -53,6 +53,16 @@ SETTINGS = (
     ),
     Setting("paper", "a4", ("a4", "a3", "letter", "tabloid"), "Paper", "Sheet size of templates."),
     Setting(
+        "field_check", True, (True, False), "Field check", "Solve the layout when an edit rests."
+    ),
+    Setting(
+        "mesh_level",
+        "normal",
+        ("coarse", "normal", "fine"),
+        "Field check mesh",
+        "Finer meshes tell more and take longer.",
+    ),
+    Setting(
         "dimensions", True, (True, False), "Dimensions on the Mat", "Draw dimensions on the Mat."
     ),
     Setting("curve", "match", (), "Curve", "The one curve of a small window.", shown=False),

@@ -5,12 +5,14 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Protocol
 
 from app.mat.bounds import copper_bounds
+from app.presenters.check_words import CANCEL
 
 if TYPE_CHECKING:
     from PySide6.QtGui import QAction, QScreen
 
     from app.curves.panel import CurvesPanel
     from app.document import Document
+    from app.field_check import FieldCheck
     from app.mat.mat import Mat
     from app.presenters.cards_presenter import CardsPresenter
     from app.presenters.files import FilesPresenter
@@ -47,6 +49,7 @@ class Window(Protocol):
 
     settings: Settings
     document: Document
+    field: FieldCheck
     window_actions: dict[str, QAction]
     cards: CardColumn
     mat: Mat
@@ -84,6 +87,9 @@ def connect_views(window: Window) -> None:
         view.pull_ended.connect(hand.end_pull)
         view.pull_cancelled.connect(hand.cancel_pull)
         view.nudged.connect(hand.nudge)
+        view.pull_started.connect(window.field.hold)
+        view.pull_ended.connect(window.field.let_go)
+        view.pull_cancelled.connect(window.field.let_go)
     mat.plan.pointed.connect(window.show_place)
     mat.spacing_taken.connect(hand.take_slider)
     mat.spacing_set.connect(hand.set_spacing)
@@ -93,6 +99,9 @@ def connect_views(window: Window) -> None:
     readings.accepted.connect(window.sizing.accept)
     readings.discarded.connect(window.sizing.discard)
     readings.stopped.connect(window.sizing.discard)
+    readings.check_asked.connect(
+        lambda what: window.field.stop() if what == CANCEL else window.field.start()
+    )
     window.curves.chosen.connect(lambda name: window.settings.set("curve", name))
     window.curves.match_as_chosen.connect(lambda name: window.settings.set("match_as", name))
     window.notices.closed.connect(
@@ -125,9 +134,8 @@ def connect_actions(window: Window) -> None:
         "true-size": lambda: plan.zoom(
             window.screen().physicalDotsPerInch() / 0.0254 / plan.camera.scale
         ),
-        "dimensions": lambda: settings.set(
-            "dimensions", window.window_actions["dimensions"].isChecked()
-        ),
+        "dimensions": lambda: _keep_tick(window, "dimensions", "dimensions"),
+        "field-check": lambda: _keep_tick(window, "field-check", "field_check"),
         "full-screen": window.toggle_full_screen,
         "keys": lambda: window.asker.tell("Keys and gestures", _KEYS),
         "about": lambda: window.asker.tell("About Kerfwave", _ABOUT),
@@ -135,6 +143,7 @@ def connect_actions(window: Window) -> None:
     for name, deed in deeds.items():
         window.window_actions[name].triggered.connect(lambda _=False, do=deed: do())
     window.window_actions["dimensions"].setChecked(settings.value("dimensions"))
+    window.window_actions["field-check"].setChecked(settings.value("field_check"))
 
 
 def place_words(point: object) -> str:
@@ -157,6 +166,10 @@ def _on_notice(window: Window, name: str, button: str) -> None:
     deeds[(name, button)]()
 
 
+def _keep_tick(window: Window, action: str, key: str) -> None:
+    window.settings.set(key, window.window_actions[action].isChecked())
+
+
 def _on_setting(window: Window, key: str) -> None:
     if key == "match_as":
         window.curves.show_match_as(window.settings.value(key))
@@ -166,3 +179,5 @@ def _on_setting(window: Window, key: str) -> None:
         window.window_actions[key].setChecked(shown)
         window.mat.plan.shows_dimensions = shown
         window.mat.plan.update()
+    elif key == "field_check":
+        window.window_actions["field-check"].setChecked(window.settings.value(key))

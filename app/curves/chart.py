@@ -11,6 +11,7 @@ from PySide6.QtWidgets import QWidget
 from shiboken6 import VoidPtr
 
 from app import theme
+from app.curves.legend import DASH, engine_pen, engine_words, paint_legend
 from app.curves.state import ESTIMATE, OLD, ChartState
 from app.views.kept import KeptPicture
 
@@ -20,7 +21,7 @@ if TYPE_CHECKING:
 
     from app.theme import Theme
 
-_DASH = [5.0, 3.0]
+_FADED = 0.35  # opacity of what belongs to an older design
 
 
 class Chart(QWidget):
@@ -37,7 +38,7 @@ class Chart(QWidget):
 
     def show_state(self, state: ChartState | None) -> None:
         self._state = state
-        words = state.spoken if state is not None else "nothing to show"
+        words = _spoken(state) if state is not None else "nothing to show"
         if words != self.accessibleDescription():
             self.setAccessibleDescription(words)
         self.update()
@@ -57,11 +58,7 @@ class Chart(QWidget):
         painter.drawPixmap(0, 0, self._still.shown(self, key, self._paint_background))
         painter.setRenderHint(QPainter.RenderHint.Antialiasing)
         if self._state is not None:
-            if self._state.is_stale:
-                painter.setOpacity(0.35)
-            self.paint_values(painter, shades)
-            painter.setOpacity(1.0)
-            self._paint_doubt(painter, shades)
+            self._paint_state(painter, shades, self._state)
         if self.hasFocus():
             painter.setPen(QPen(theme.colour(shades.focus), 1.5))
             painter.setBrush(Qt.BrushStyle.NoBrush)
@@ -79,25 +76,41 @@ class Chart(QWidget):
     def paint_still(self, painter: QPainter, shades: Theme) -> None:
         """Paint the background: axes, grid, names."""
 
-    def paint_values(self, painter: QPainter, shades: Theme) -> None:
+    def paint_curve(self, painter: QPainter, shades: Theme, state: ChartState) -> None:
+        """Paint the curve of one engine."""
+
+    def paint_marks(self, painter: QPainter, shades: Theme) -> None:
+        """Paint what stands on the curve of the design on the bench."""
+
+    def _paint_state(self, painter: QPainter, shades: Theme, state: ChartState) -> None:
         """Paint what moves."""
+        for one in (state,) if state.beside is None else (state.beside, state):
+            painter.setOpacity(_FADED if one.is_stale else 1.0)
+            self.paint_curve(painter, shades, one)
+        self.paint_marks(painter, shades)
+        painter.setOpacity(1.0)
+        if state.beside is None:
+            self._paint_doubt(painter, shades, state)
+        else:
+            paint_legend(painter, self, shades, state)
 
     def paint_title(self, painter: QPainter, shades: Theme, title: str) -> None:
         metrics = self.fontMetrics()
         painter.setPen(theme.colour(shades.muted))
         painter.drawText(QPointF(metrics.height() * 0.5, metrics.ascent() + 4), title)
 
-    def curve_pen(self, name: str, width: float = 2.0) -> QPen:
-        """Pen of a curve: whole where it is vouched for, dashed where it is an estimate."""
-        pen = QPen(theme.colour(name), width)
+    def curve_pen(self, state: ChartState, colour: str, width: float = 2.0) -> QPen:
+        """Pen of a curve: beside another by its engine, alone whole where it is vouched for."""
+        if self._state is not None and self._state.beside is not None:
+            pen = engine_pen(state, colour)
+        else:
+            pen = QPen(theme.colour(colour), width)
+            if state.is_estimate:
+                pen.setDashPattern(DASH)
         pen.setJoinStyle(Qt.PenJoinStyle.RoundJoin)
-        if self._state is not None and self._state.is_estimate:
-            pen.setDashPattern(_DASH)
         return pen
 
-    def _paint_doubt(self, painter: QPainter, shades: Theme) -> None:
-        state = self._state
-        assert state is not None
+    def _paint_doubt(self, painter: QPainter, shades: Theme, state: ChartState) -> None:
         words = OLD if state.is_stale else ESTIMATE if state.is_estimate else ""
         if not words:
             return
@@ -108,6 +121,13 @@ class Chart(QWidget):
         painter.setBrush(theme.colour(shades.plot, 235))
         painter.drawRoundedRect(box, 4, 4)
         painter.drawText(box, Qt.AlignmentFlag.AlignCenter, words)
+
+
+def _spoken(state: ChartState) -> str:
+    """What the chart says, that of the other engine after it."""
+    if state.beside is None:
+        return state.spoken
+    return "; ".join(f"{engine_words(one)}: {one.spoken}" for one in (state, state.beside))
 
 
 def polygon(across: NDArray[Any], down: NDArray[Any]) -> QPolygonF:

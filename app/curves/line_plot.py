@@ -10,7 +10,8 @@ from PySide6.QtGui import QKeyEvent, QMouseEvent, QPainter, QPen
 
 from app import theme
 from app.curves.chart import Chart, polygon
-from app.curves.state import PlotState
+from app.curves.legend import engine_words
+from app.curves.state import ChartState, PlotState
 from app.mat.camera import nice_step
 from core.units import Quantity, format_quantity
 
@@ -80,23 +81,22 @@ class LinePlot(Chart):
             painter.setPen(pen)
             painter.drawLine(QLineF(area.left(), down, area.right(), down))
 
-    def paint_values(self, painter: QPainter, shades: Theme) -> None:
+    def paint_curve(self, painter: QPainter, shades: Theme, state: ChartState) -> None:
+        assert isinstance(state, PlotState)
+        area = self.area
+        painter.save()
+        painter.setClipRect(area.adjusted(0, -2, 0, 2))
+        painter.setPen(self.curve_pen(state, shades.curve))
+        painter.drawPolyline(polygon(*_pixels(state, self.state or state, area)))
+        painter.restore()
+
+    def paint_marks(self, painter: QPainter, shades: Theme) -> None:
         state, area = self.state, self.area
         if state is None:
             return
-        painter.save()
-        painter.setClipRect(area.adjusted(0, -2, 0, 2))
-        values = np.clip(state.values, state.low - 1e3, state.high + 1e3)
-        down = area.bottom() - (values - state.low) / (state.high - state.low) * area.height()
-        # Far outside nothing is seen, but long lines cost time.
-        down = np.clip(down, area.top() - 50, area.bottom() + 50)
-        span = state.frequency[-1] - state.frequency[0]
-        across = area.left() + (state.frequency - state.frequency[0]) / span * area.width()
-        painter.setPen(self.curve_pen(shades.curve))
-        painter.drawPolyline(polygon(across, down))
+        across, down = _pixels(state, state, area)
         x = self._across(state.brief)
-        height = float(np.interp(state.brief, state.frequency, down))
-        painter.restore()
+        height = float(np.interp(x, across, down))
         painter.setPen(QPen(theme.colour(shades.plot), 1.5))
         painter.setBrush(theme.colour(shades.accent))
         painter.drawEllipse(QPointF(x, min(max(height, area.top()), area.bottom())), 4.5, 4.5)
@@ -122,7 +122,7 @@ class LinePlot(Chart):
             if start is None:
                 start = int(np.searchsorted(state.frequency, state.brief))
             self._mark(start + steps[Qt.Key(event.key())])
-            self.setAccessibleDescription(self._marker_words(state, self._marked or 0))
+            self.setAccessibleDescription(_marker_words(state, self._marked or 0))
         else:
             super().keyPressEvent(event)
 
@@ -131,13 +131,6 @@ class LinePlot(Chart):
         self._marked = min(max(index, 0), len(self.state.frequency) - 1)
         self.update()
 
-    def _marker_words(self, state: PlotState, index: int) -> str:
-        where = format_quantity(float(state.frequency[index]), Quantity.FREQUENCY, digits=4)
-        if state.is_estimate:
-            return f"{where}: unknown"
-        unit = f" {state.unit}" if state.unit else ""
-        return f"{where}: {state.values[index]:.2f}{unit}".replace("-", "−")
-
     def _paint_marker(self, painter: QPainter, shades: Theme, across: NDArray[Any]) -> None:
         state, area = self.state, self.area
         assert state is not None
@@ -145,7 +138,7 @@ class LinePlot(Chart):
         x = float(across[index])
         painter.setPen(QPen(theme.colour(shades.muted), 1.0))
         painter.drawLine(QLineF(x, area.top(), x, area.bottom()))
-        words = self._marker_words(state, index)
+        words = _marker_words(state, index)
         wide = self.fontMetrics().horizontalAdvance(words) + 10
         left = min(max(x - wide / 2, area.left()), area.right() - wide)
         box = QRectF(left, area.top() + 2, wide, self.fontMetrics().height() + 3)
@@ -182,3 +175,23 @@ class LinePlot(Chart):
         assert self.state is not None
         part = (value - self.state.low) / (self.state.high - self.state.low)
         return self.area.bottom() - part * self.area.height()
+
+
+def _marker_words(state: PlotState, index: int) -> str:
+    where = format_quantity(float(state.frequency[index]), Quantity.FREQUENCY, digits=4)
+    if state.is_estimate:
+        return f"{where}: unknown"
+    unit = f" {state.unit}" if state.unit else ""
+    engine = f", {engine_words(state)}" if state.beside is not None else ""
+    return f"{where}: {state.values[index]:.2f}{unit}".replace("-", "−") + engine
+
+
+def _pixels(state: PlotState, axes: PlotState, area: QRectF) -> tuple[NDArray[Any], NDArray[Any]]:
+    """Points of a curve on the axes of the one that is shown first."""
+    values = np.clip(state.values, axes.low - 1e3, axes.high + 1e3)
+    down = area.bottom() - (values - axes.low) / (axes.high - axes.low) * area.height()
+    # Far outside nothing is seen, but long lines cost time.
+    down = np.clip(down, area.top() - 50, area.bottom() + 50)
+    span = axes.frequency[-1] - axes.frequency[0]
+    across = area.left() + (state.frequency - axes.frequency[0]) / span * area.width()
+    return across, down

@@ -10,9 +10,10 @@ from PySide6.QtGui import QPainter, QPen
 
 from app import theme
 from app.curves.chart import Chart, polygon
+from app.curves.legend import THIN
+from app.curves.state import ChartState, PatternState
 
 if TYPE_CHECKING:
-    from app.curves.state import PatternState
     from app.theme import Theme
 
 _TOP, _BOTTOM, _STEP = 10.0, -20.0, 10.0  # dBi
@@ -46,33 +47,35 @@ class PatternPlot(Chart):
             words = f"{level:g}".replace("-", "−")
             painter.drawText(QPointF(centre.x() + 3, centre.y() - size + 11), words)
 
-    def paint_values(self, painter: QPainter, shades: Theme) -> None:
-        if self.state is None:
-            return
+    def paint_curve(self, painter: QPainter, shades: Theme, state: ChartState) -> None:
+        assert isinstance(state, PatternState)
         centre, radius = self._circle()
         painter.setBrush(Qt.BrushStyle.NoBrush)
-        for i, (_, theta, gain) in enumerate(self.state.cuts):
+        for i, (_, theta, gain) in enumerate(state.cuts):
             part = (np.clip(gain, _BOTTOM, _TOP) - _BOTTOM) / (_TOP - _BOTTOM) * radius
             across = centre.x() + part * np.sin(theta)
             down = centre.y() - part * np.cos(theta)
-            painter.setPen(self._pen(i, shades))
+            painter.setPen(self._pen(state, i, shades))
             painter.drawPolyline(polygon(across, down))
-        self._paint_legend(painter, shades)
 
-    def _pen(self, i: int, shades: Theme) -> QPen:
+    def _pen(self, state: ChartState, i: int, shades: Theme) -> QPen:
         if i == 0:
-            return self.curve_pen(shades.curve)
-        pen = self.curve_pen(shades.curve_second, 1.6)
-        pen.setDashPattern([1.2, 2.2])
+            return self.curve_pen(state, shades.curve)
+        pen = self.curve_pen(state, shades.curve_second, 1.6)
+        # Dots for the second plane; dots and dashes where it is drawn thinly as well.
+        pen.setDashPattern([5.0, 3.0, 1.0, 3.0] if pen.widthF() == THIN else [1.2, 2.2])
         return pen
 
-    def _paint_legend(self, painter: QPainter, shades: Theme) -> None:
-        assert self.state is not None
+    def paint_marks(self, painter: QPainter, shades: Theme) -> None:
+        """Paint the names of the planes."""
+        state = self.state
+        if state is None:
+            return
         metrics = self.fontMetrics()
-        down = self.height() - metrics.height() * len(self.state.cuts)
-        for i, (name, _, _) in enumerate(self.state.cuts):
+        down = self.height() - metrics.height() * len(state.cuts)
+        for i, (name, _, _) in enumerate(state.cuts):
             y = down + i * metrics.height()
-            painter.setPen(self._pen(i, shades))
+            painter.setPen(self._pen(state, i, shades))
             painter.drawLine(QPointF(8, y), QPointF(8 + metrics.height() * 1.6, y))
             painter.setPen(theme.colour(shades.text))
             painter.drawText(

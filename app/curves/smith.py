@@ -10,9 +10,9 @@ from PySide6.QtGui import QPainter, QPainterPath, QPen
 
 from app import theme
 from app.curves.chart import Chart, polygon
+from app.curves.state import ChartState, SmithState
 
 if TYPE_CHECKING:
-    from app.curves.state import SmithState
     from app.theme import Theme
 
 _RESISTANCES = (0.2, 0.5, 1.0, 2.0, 5.0)
@@ -63,19 +63,24 @@ class SmithChart(Chart):
             size = self.state.target * radius
             painter.drawEllipse(centre, size, size)
 
-    def paint_values(self, painter: QPainter, shades: Theme) -> None:
-        state = self.state
-        if state is None:
-            return
+    def paint_curve(self, painter: QPainter, shades: Theme, state: ChartState) -> None:
+        assert isinstance(state, SmithState)
         centre, radius = self.circle
         across = centre.x() + state.s11.real * radius
         down = centre.y() - state.s11.imag * radius
-        painter.setPen(self.curve_pen(shades.curve))
+        painter.setPen(self.curve_pen(state, shades.curve))
         painter.setBrush(Qt.BrushStyle.NoBrush)
         painter.drawPolyline(polygon(across, down))
         painter.setPen(QPen(theme.colour(shades.plot), 1.5))
         painter.setBrush(theme.colour(shades.curve))
         painter.drawRect(QRectF(float(across[0]) - 3, float(down[0]) - 3, 6, 6))
+
+    def paint_marks(self, painter: QPainter, shades: Theme) -> None:
+        state = self.state
+        if state is None:
+            return
+        centre, radius = self.circle
+        painter.setPen(QPen(theme.colour(shades.plot), 1.5))
         painter.setBrush(theme.colour(shades.accent))
         spot = QPointF(centre.x() + state.spot.real * radius, centre.y() - state.spot.imag * radius)
         painter.drawEllipse(spot, 4.5, 4.5)

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
@@ -25,12 +25,18 @@ class ChartState:
         It belongs to an older design: greyed.
     spoken : str
         The same in words.
+    engine : str
+        Its name in `core.engines`.
+    beside : ChartState or None
+        The same by the other engine, of the same kind.
     """
 
     title: str
     is_estimate: bool
     is_stale: bool
     spoken: str
+    engine: str = field(default="", kw_only=True)
+    beside: ChartState | None = field(default=None, kw_only=True)
 
 
 @dataclass(frozen=True, eq=False)

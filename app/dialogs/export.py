@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from typing import TYPE_CHECKING, Protocol
 
 from PySide6.QtCore import Qt
@@ -40,6 +41,7 @@ class ExportDialog(QDialog):
     def __init__(
         self,
         shown: Evaluation,
+        field_check: str,
         settings: Settings,
         asker: FolderAsker,
         runner: Runner,
@@ -50,6 +52,7 @@ class ExportDialog(QDialog):
         self.setWindowTitle("Template")
         self.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
         self._shown, self._settings = shown, settings
+        self._field_check = field_check
         self._asker, self._runner, self._notices = asker, runner, notices
         self._pages: tuple[Sheet, ...] = ()
         self._page = 0
@@ -106,9 +109,16 @@ class ExportDialog(QDialog):
         self.resize(em * 58, em * 40)
         self.write_button.setFocus()
 
+    @property
+    def request(self) -> ExportRequest:
+        """What is asked, with how the design was checked."""
+        asked = self.form.request
+        options = replace(asked.options, field_check=self._field_check)
+        return replace(asked, options=options)
+
     def _draw(self) -> None:
         """Draw the pages anew and look again at what stands in the way."""
-        options = self.form.request.options
+        options = self.request.options
         self._settings.set("paper", options.paper)
         self._pages = preview(self._shown, options)
         self._turn(0)
@@ -121,7 +131,7 @@ class ExportDialog(QDialog):
         self.pager.setText(f"page {self._page + 1} of {last + 1}")
 
     def _check(self) -> None:
-        request, lines = self.form.request, []
+        request, lines = self.request, []
         stop = obstacle(self._shown)
         if stop:
             lines.append(Line("refusal", stop))
@@ -136,7 +146,7 @@ class ExportDialog(QDialog):
         self.remarks.show_lines(tuple(lines))
 
     def _write(self) -> None:
-        shown, request = self._shown, self.form.request
+        shown, request = self._shown, self.request
         self.write_button.setEnabled(False)
         self._settings.set("export_folder", str(request.folder))
         self._runner.start(

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from functools import cached_property
 from typing import TYPE_CHECKING
 
@@ -23,9 +24,28 @@ PLANES = ("in the plane of x", "in the plane of y")
 class CurvesState:
     """All charts of an evaluation that has a response; each is made when it is looked at."""
 
-    def __init__(self, response: Response, brief: Brief, *, is_stale: bool, match_as: str) -> None:
+    def __init__(
+        self,
+        response: Response,
+        brief: Brief,
+        *,
+        is_stale: bool,
+        match_as: str,
+        beside: CurvesState | None = None,
+    ) -> None:
         self._response, self._brief = response, brief
         self._is_stale, self._match_as = is_stale, match_as
+        self._beside = beside
+
+    def with_beside(self, beside: CurvesState | None) -> CurvesState:
+        """The same with the curves of the other engine beside them."""
+        return CurvesState(
+            self._response,
+            self._brief,
+            is_stale=self._is_stale,
+            match_as=self._match_as,
+            beside=beside,
+        )
 
     @property
     def has_axial_ratio(self) -> bool:
@@ -34,19 +54,23 @@ class CurvesState:
 
     @cached_property
     def match(self) -> PlotState:
-        return _match(self._response, self._brief, self._is_stale, self._match_as)
+        state = _match(self._response, self._brief, self._is_stale, self._match_as)
+        return replace(state, beside=self._beside.match if self._beside else None)
 
     @cached_property
     def axial_ratio(self) -> PlotState:
-        return _axial_ratio(self._response, self._brief, self._is_stale)
+        state = _axial_ratio(self._response, self._brief, self._is_stale)
+        return replace(state, beside=self._beside.axial_ratio if self._beside else None)
 
     @cached_property
     def smith(self) -> SmithState:
-        return _smith(self._response, self._brief, self._is_stale)
+        state = _smith(self._response, self._brief, self._is_stale)
+        return replace(state, beside=self._beside.smith if self._beside else None)
 
     @cached_property
     def pattern(self) -> PatternState:
-        return _pattern(self._response, self._is_stale)
+        state = _pattern(self._response, self._is_stale)
+        return replace(state, beside=self._beside.pattern if self._beside else None)
 
 
 def curves_state(shown: Evaluation, *, is_stale: bool, match_as: str) -> CurvesState | None:
@@ -84,7 +108,7 @@ def _match(response: Response, brief: Brief, is_stale: bool, match_as: str) -> P
     spoken = _spoken(title, at, unit, brief.frequency, doubt)
     return PlotState(
         title, doubt, is_stale, spoken, sweep.frequency, values, low, high, step, unit, target,
-        brief.frequency,
+        brief.frequency, engine=response.engine,
     )  # fmt: skip
 
 
@@ -96,7 +120,7 @@ def _axial_ratio(response: Response, brief: Brief, is_stale: bool) -> PlotState:
     sweep = response.sweep
     return PlotState(
         title, doubt, is_stale, spoken, sweep.frequency, sweep.axial_ratio_db, 0.0, 12.0, 3.0,
-        "dB", brief.axial_ratio_db, brief.frequency,
+        "dB", brief.axial_ratio_db, brief.frequency, engine=response.engine,
     )  # fmt: skip
 
 
@@ -113,6 +137,7 @@ def _smith(response: Response, brief: Brief, is_stale: bool) -> SmithState:
     return SmithState(
         "Smith chart", doubt, is_stale, spoken, response.sweep.frequency, response.sweep.s11,
         complex(response.spot.s11), (brief.vswr - 1.0) / (brief.vswr + 1.0),
+        engine=response.engine,
     )  # fmt: skip
 
 
@@ -123,7 +148,7 @@ def _pattern(response: Response, is_stale: bool) -> PatternState:
     )
     beam = format_quantity(response.beamwidth, Quantity.ANGLE, digits=2)
     spoken = f"Pattern, {ESTIMATE}" if doubt else f"Pattern, half-power beam {beam} wide"
-    return PatternState("Pattern", doubt, is_stale, spoken, cuts)
+    return PatternState("Pattern", doubt, is_stale, spoken, cuts, engine=response.engine)
 
 
 def _spoken(title: str, value: float, unit: str, frequency: float, doubt: bool) -> str:

@@ -60,7 +60,7 @@ def preview(shown: Evaluation, options: ExportOptions) -> tuple[Sheet, ...]:
             shown.design,
             shown.layout,
             paper_named(options.paper),
-            field_checked=options.field_checked,
+            field_check=options.field_check,
             mirrored=options.mirrored,
         )
     except LayoutError:

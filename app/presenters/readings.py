@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from functools import lru_cache
 from typing import TYPE_CHECKING
 
+from app.presenters.check_words import CheckState
 from core.design.polarisation import Polarisation
 from core.findings import Severity
 from core.materials.cautions import cautions_for
@@ -16,6 +17,7 @@ from core.units import Quantity, format_quantity
 
 if TYPE_CHECKING:
     from app.evaluation import Evaluation
+    from app.field_check import Checked
     from core.design.model import Design
     from core.response.judge import Verdict
     from core.response.model import Response
@@ -69,6 +71,8 @@ class ReadingsState:
         What a sizing proposes, in words; empty without one.
     busy : str
         What is being worked on; empty where nothing is.
+    check : CheckState
+        What the field check is at.
     """
 
     engine: str
@@ -80,17 +84,22 @@ class ReadingsState:
     can_size: bool = False
     proposal: str = ""
     busy: str = ""
+    check: CheckState = field(default_factory=CheckState)
 
 
-def readings_state(current: Evaluation, drawn: Evaluation) -> ReadingsState:
-    """Readings of the current design, or of the last one that had any."""
+def readings_state(
+    current: Evaluation, drawn: Evaluation, checked: Checked | None = None
+) -> ReadingsState:
+    """Readings of the current design, solved ones first, or of the last one that had any."""
     shown = current if current.response is not None else drawn
+    if checked is not None:
+        shown = checked.evaluation
     lines: tuple[Line, ...] = ()
     engine = ""
     if shown.response is not None:
         lines = verdict_lines(shown.response, shown.verdicts)
         name = shown.response.engine
-        engine = _ENGINES.get(name, name)
+        engine = checked.words if checked is not None else _ENGINES.get(name, name)
     asked = [one for one in shown.verdicts if one.reading in _ASKED]
     met = [one.state in (State.MET, State.LIKELY) for one in asked]
     return ReadingsState(
@@ -99,7 +108,7 @@ def readings_state(current: Evaluation, drawn: Evaluation) -> ReadingsState:
         findings=_finding_lines(current),
         cautions=caution_lines(current.design),
         pieces=_piece_lines(current),
-        is_stale=shown is not current,
+        is_stale=checked is None and shown is not current,
         can_size=not (met and all(met)) or not current.is_buildable,
     )
 

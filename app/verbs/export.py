@@ -73,13 +73,13 @@ def run(words: Namespace, out: TextIO) -> None:
     if words.json:
         record = {
             "files": [str(path) for path in files],
-            "field_checked": options.field_checked,
+            "field_checked": bool(options.field_check),
             "findings": findings_record(layout.findings),
         }
         out.write(json_text(record))
         return
     out.write("".join(f"written to {path}\n" for path in files))
-    if not options.field_checked:
+    if not options.field_check:
         out.write("NOT FIELD-CHECKED: by equations alone, as every sheet says\n")
     out.write(findings_text(layout.findings))
 

@@ -16,6 +16,7 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
+from app.views.check_line import CheckLine
 from app.views.drawer import Drawer
 from app.views.lines import LineList
 
@@ -33,6 +34,7 @@ class ReadingsView(QFrame):
     accepted = Signal()
     discarded = Signal()
     stopped = Signal()
+    check_asked = Signal(str)
 
     def __init__(self) -> None:
         super().__init__()
@@ -64,6 +66,8 @@ class ReadingsView(QFrame):
         self.offer.accepted.connect(self.accepted)
         self.offer.discarded.connect(self.discarded)
         self.offer.stopped.connect(self.stopped)
+        self.check = CheckLine()
+        self.check.pressed.connect(self.check_asked)
         self._state: ReadingsState | None = None
         self._faded = False
         layout = QVBoxLayout(self)
@@ -74,7 +78,7 @@ class ReadingsView(QFrame):
         folds = (self._caution_fold, self.cautions, self._piece_fold, self.pieces)
         for widget in (self.findings, self._more, *folds):
             below.add(widget)
-        for part in (self.lines, self.offer, below):
+        for part in (self.lines, self.check, self.offer, below):
             layout.addWidget(part)
         layout.addStretch(1)
         # Room for the usual sentences, so that the curves below stay in their place.
@@ -87,6 +91,7 @@ class ReadingsView(QFrame):
             self._engine.setText(engine)
         self.lines.show_lines(state.lines)
         self._fade(state.is_stale)
+        self.check.show_state(state.check)
         self.offer.show_state(state)
         if before is None or before.findings != state.findings:
             self._show_findings()

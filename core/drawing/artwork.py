@@ -26,7 +26,7 @@ _LETTERS = 2.5e-3
 _PURPOSES = {MarkKind.SCORE: Purpose.SCORE, MarkKind.FOLD: Purpose.FOLD}
 
 
-def artwork_sheet(design: Design, layout: Layout, *, field_checked: bool = False) -> Sheet:
+def artwork_sheet(design: Design, layout: Layout, *, field_check: str = "") -> Sheet:
     """Artwork of a layout.
 
     Parameters
@@ -34,8 +34,8 @@ def artwork_sheet(design: Design, layout: Layout, *, field_checked: bool = False
     design : Design
     layout : Layout
         Of that design.
-    field_checked : bool
-        Whether the field solver has run on this very layout.
+    field_check : str
+        How the field solver has checked this very layout; empty where it has not.
 
     Returns
     -------
@@ -64,7 +64,7 @@ def artwork_sheet(design: Design, layout: Layout, *, field_checked: bool = False
         identity,
         f"undercut allowance {format_quantity(undercut, Quantity.LENGTH, unit='mm')} a side",
         "unit mm; both sides seen from the front, not mirrored",
-        *([] if field_checked else [NOT_CHECKED]),
+        field_check or NOT_CHECKED,
     ]
     for i, line in enumerate(lines, 1):
         text = Text(box.left, box.bottom - 2 * _LETTERS * i, line, _LETTERS)

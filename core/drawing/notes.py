@@ -38,7 +38,7 @@ _SENSES: Final = {
 
 
 def title_block(
-    design: Design, paper: Paper, place: str, *, field_checked: bool, mirrored: bool
+    design: Design, paper: Paper, place: str, *, field_check: str, mirrored: bool
 ) -> list[Ink]:
     """Title block along the foot of a page.
 
@@ -48,8 +48,8 @@ def title_block(
     paper : Paper
     place : str
         Which page this is.
-    field_checked : bool
-        Whether the field solver has run on this very layout.
+    field_check : str
+        How the field solver has checked this very layout; empty where it has not.
     mirrored : bool
 
     Returns
@@ -81,9 +81,9 @@ def title_block(
             Anchor.END,
         ),
     ]
-    words = [*(["MIRRORED"] if mirrored else []), "field-checked" if field_checked else NOT_CHECKED]
+    words = [*(["MIRRORED"] if mirrored else []), field_check or NOT_CHECKED]
     baseline = bottom + (_BAND - CAP_HEIGHT * _LOUD) / 2
-    purpose = Purpose.NOTES if field_checked and not mirrored else Purpose.WARNING
+    purpose = Purpose.NOTES if field_check and not mirrored else Purpose.WARNING
     text = Text(middle[0], baseline, ", ".join(words), _LOUD, Anchor.MIDDLE)
     return [*inks, Ink(purpose, text)]
 

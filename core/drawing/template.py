@@ -28,7 +28,7 @@ class _Job:
 
     design: Design
     layout: Layout
-    field_checked: bool
+    field_check: str
     mirrored: bool
 
     def cells(self) -> list[Cell]:
@@ -44,7 +44,7 @@ def template_pages(
     layout: Layout,
     paper: Paper,
     *,
-    field_checked: bool = False,
+    field_check: str = "",
     mirrored: bool = False,
 ) -> tuple[Sheet, ...]:
     """Template over pages of a paper, upright or turned, whichever takes fewer.
@@ -57,8 +57,8 @@ def template_pages(
     layout : Layout
         Of that design.
     paper : Paper
-    field_checked : bool
-        Whether the field solver has run on this very layout.
+    field_check : str
+        How the field solver has checked this very layout; empty where it has not.
     mirrored : bool
         Every part as seen from behind; words stay readable.
 
@@ -72,7 +72,7 @@ def template_pages(
     ExportError
         If it would take more than `MOST_PAGES` pages.
     """
-    job = _Job(design, layout, field_checked, mirrored)
+    job = _Job(design, layout, field_check, mirrored)
     cells = job.cells()
     papers = (paper, paper.turned)
     for one in papers:
@@ -95,7 +95,7 @@ def template_sheet(
     layout: Layout,
     paper: Paper,
     *,
-    field_checked: bool = False,
+    field_check: str = "",
     mirrored: bool = False,
 ) -> Sheet:
     """Template on one sheet: the paper where it fits, else a sheet as large as it needs.
@@ -106,8 +106,8 @@ def template_sheet(
     layout : Layout
         Of that design.
     paper : Paper
-    field_checked : bool
-        Whether the field solver has run on this very layout.
+    field_check : str
+        How the field solver has checked this very layout; empty where it has not.
     mirrored : bool
         Every part as seen from behind; words stay readable.
 
@@ -115,7 +115,7 @@ def template_sheet(
     -------
     Sheet
     """
-    job = _Job(design, layout, field_checked, mirrored)
+    job = _Job(design, layout, field_check, mirrored)
     cells = job.cells()
     for one in (paper, paper.turned):
         blocks = plan(cells, one.window.width, one.window.length)
@@ -175,9 +175,7 @@ def _page(job: _Job, paper: Paper, inks: list[Ink], tile: Tile, place: str, clip
     around = [
         *rule_across(window.left, window.bottom - 1e-3),
         *rule_along(window.left - 1e-3, window.bottom),
-        *title_block(
-            job.design, paper, place, field_checked=job.field_checked, mirrored=job.mirrored
-        ),
+        *title_block(job.design, paper, place, field_check=job.field_check, mirrored=job.mirrored),
     ]
     title = f"{job.design.name}, revision {job.design.revision}"
     if clipped:

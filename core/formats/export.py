@@ -36,15 +36,15 @@ class ExportOptions:
         Name of a paper for templates: a4, a3, letter, tabloid.
     mirrored : bool
         Templates as seen from behind; artwork never is.
-    field_checked : bool
-        Whether the field solver has run on this very layout.
+    field_check : str
+        How the field solver has checked this very layout; empty where it has not.
     true_arcs : bool
         Artwork with arcs instead of facets.
     """
 
     paper: str = "a4"
     mirrored: bool = False
-    field_checked: bool = False
+    field_check: str = ""
     true_arcs: bool = False
 
 
@@ -90,7 +90,7 @@ def _template_svg(design: Design, layout: Layout, options: ExportOptions) -> byt
             design,
             layout,
             paper_named(options.paper),
-            field_checked=options.field_checked,
+            field_check=options.field_check,
             mirrored=options.mirrored,
         )
     )
@@ -104,7 +104,7 @@ def _template_pdf(design: Design, layout: Layout, options: ExportOptions) -> byt
             design,
             layout,
             paper_named(options.paper),
-            field_checked=options.field_checked,
+            field_check=options.field_check,
             mirrored=options.mirrored,
         )
     )
@@ -113,7 +113,7 @@ def _template_pdf(design: Design, layout: Layout, options: ExportOptions) -> byt
 def _artwork_dxf(design: Design, layout: Layout, options: ExportOptions) -> bytes:
     from core.formats.dxf import dxf_bytes  # noqa: PLC0415
 
-    sheet = artwork_sheet(design, layout, field_checked=options.field_checked)
+    sheet = artwork_sheet(design, layout, field_check=options.field_check)
     return dxf_bytes(sheet, true_arcs=options.true_arcs)
 
 

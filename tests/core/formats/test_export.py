@@ -107,8 +107,8 @@ def test_options_reach_their_writers():
         return exported(DRAWN["round"], [kind], **options)[0].data
 
     assert b"NOT FIELD-CHECKED" in data("template-svg")
-    assert b"NOT FIELD-CHECKED" not in data("template-svg", field_checked=True)
-    assert b"NOT FIELD-CHECKED" not in data("artwork-dxf", field_checked=True)
+    assert b"NOT FIELD-CHECKED" not in data("template-svg", field_check="Field-checked")
+    assert b"NOT FIELD-CHECKED" not in data("artwork-dxf", field_check="Field-checked")
     assert data("template-pdf", paper="letter") != data("template-pdf")
     assert len(data("artwork-dxf", true_arcs=True)) < len(data("artwork-dxf"))
 
