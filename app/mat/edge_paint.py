@@ -9,7 +9,7 @@ from PySide6.QtGui import QColor, QLinearGradient, QPainter, QPen
 
 from app import theme
 from app.mat.camera import grid_steps
-from app.mat.marks_paint import paint_tag
+from app.mat.stamps import paint_tag
 from core.layout.model import Role
 
 if TYPE_CHECKING:

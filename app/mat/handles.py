@@ -130,7 +130,8 @@ def pulled(design: Design, handle: Handle, across: float, up: float) -> Design:
             moved = across * pull.way[0] + up * pull.way[1]
         if moved:
             design = _changed(design, pull.key, pull.gain * moved)
-    return before if design == settled(before) else design
+    lands = any(pull.key.endswith(".landing") for pull in handle.pulls)
+    return before if lands and design == settled(before) else design
 
 
 def nudged(design: Design, handle: Handle, across: float, up: float) -> Design:

@@ -1,25 +1,23 @@
-"""Dimensions, handles and words on the Mat."""
+"""Dimensions and handles on the Mat."""
 
 from __future__ import annotations
 
 from math import atan2, copysign, degrees, hypot
 from typing import TYPE_CHECKING
 
-from PySide6.QtCore import QLineF, QPointF, QRectF, Qt
+from PySide6.QtCore import QLineF, QPointF, Qt
 from PySide6.QtGui import QPainter, QPainterPath, QPen, QPolygonF
 
 from app import theme
 from app.mat.reach import REACH
+from app.mat.stamps import handle_stamp, paint_stamp, paint_tag
 from core.units import Quantity, format_quantity
 
 if TYPE_CHECKING:
     from app.mat.camera import Camera
     from app.mat.hand import Hand
-    from app.mat.handles import Handle
     from app.theme import Theme
     from core.layout.model import Dimension
-
-_DRAWN = 8.0  # pixels of a handle as drawn
 
 
 def paint_dimension(
@@ -60,54 +58,17 @@ def paint_dimension(
     paint_tag(painter, line.center(), words, shades, _readable(degrees(atan2(way.y(), way.x()))))
 
 
-def paint_tag(
-    painter: QPainter, centre: QPointF, words: str, shades: Theme, angle: float = 0.0
-) -> None:
-    """Words on a small plate, readable on whatever lies below."""
-    metrics = painter.fontMetrics()
-    size = QRectF(0, 0, metrics.horizontalAdvance(words) + 8, metrics.height() + 1)
-    size.moveCenter(QPointF(0, 0))
-    painter.save()
-    painter.setRenderHint(QPainter.RenderHint.Antialiasing)
-    painter.translate(centre)
-    painter.rotate(angle)
-    painter.setPen(Qt.PenStyle.NoPen)
-    painter.setBrush(theme.colour(shades.mat_halo, 225))
-    painter.drawRoundedRect(size, 3, 3)
-    painter.setPen(theme.colour(shades.mat_ink))
-    painter.drawText(size, Qt.AlignmentFlag.AlignCenter, words)
-    painter.restore()
-
-
-def _paint_handle(
-    painter: QPainter, handle: Handle, centre: QPointF, shades: Theme, *, active: bool, focus: bool
-) -> None:
-    """Handle, 8 pixels across; the one in use is larger, the one with the focus ringed."""
-    half = _DRAWN / 2 + (1.5 if active else 0.0)
-    painter.setRenderHint(QPainter.RenderHint.Antialiasing)
-    if focus:
-        painter.setPen(QPen(theme.colour(shades.mat_halo), 4.0))
-        painter.setBrush(Qt.BrushStyle.NoBrush)
-        painter.drawEllipse(centre, REACH - 2, REACH - 2)
-        painter.setPen(QPen(theme.colour(shades.ghost), 2.0))
-        painter.drawEllipse(centre, REACH - 2, REACH - 2)
-    painter.setPen(QPen(theme.colour(shades.handle_edge), 1.3))
-    painter.setBrush(theme.colour(shades.ghost if active else shades.handle))
-    box = QRectF(centre.x() - half, centre.y() - half, 2 * half, 2 * half)
-    if handle.rail or len(handle.pulls) > 1:
-        painter.drawEllipse(box)
-    else:
-        painter.drawRoundedRect(box, 1.5, 1.5)
-
-
 def paint_handles(painter: QPainter, hand: Hand, shades: Theme) -> None:
     """Handles that are not crowded out, and the words of the one in use."""
     view, shown = hand.view, hand.shown_handle
     for handle in hand.visible_handles():
         is_shown = shown is not None and handle.name == shown.name
+        is_round = bool(handle.rail) or len(handle.pulls) > 1
         centre = QPointF(*view.pixels(handle))
-        focus = is_shown and hand.has_key_focus
-        _paint_handle(painter, handle, centre, shades, active=is_shown, focus=focus)
+        if is_shown and hand.has_key_focus:
+            _paint_focus(painter, centre, shades)
+        ratio = painter.device().devicePixelRatioF()
+        paint_stamp(painter, centre, handle_stamp(is_round, is_shown, shades, ratio))
     if shown is not None:
         across, down = view.pixels(shown)
         words = view.state.words(shown)
@@ -116,6 +77,15 @@ def paint_handles(painter: QPainter, hand: Hand, shades: Theme) -> None:
         room = painter.clipBoundingRect()
         across = min(max(across, room.left() + half), room.right() - half)
         paint_tag(painter, QPointF(across, down + metrics.height() * 1.7), words, shades)
+
+
+def _paint_focus(painter: QPainter, centre: QPointF, shades: Theme) -> None:
+    """Ring round the handle that the keys move."""
+    painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+    painter.setBrush(Qt.BrushStyle.NoBrush)
+    for name, width in ((shades.mat_halo, 4.0), (shades.ghost, 2.0)):
+        painter.setPen(QPen(theme.colour(name), width))
+        painter.drawEllipse(centre, REACH - 2, REACH - 2)
 
 
 def _arrow(tip: QPointF, way: QPointF) -> QPolygonF:

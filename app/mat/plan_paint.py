@@ -12,7 +12,8 @@ from app import theme
 from app.mat.bounds import copper_bounds
 from app.mat.copper_paint import paint_copper, paint_ghost
 from app.mat.ground_paint import paint_mat, paint_plate, paint_ruler, plate_key, ruler_size
-from app.mat.marks_paint import paint_dimension, paint_handles, paint_tag
+from app.mat.marks_paint import paint_dimension, paint_handles
+from app.mat.stamps import paint_tag
 from app.views.kept import KeptPicture
 from core.findings import Severity
 

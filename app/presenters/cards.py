@@ -25,17 +25,18 @@ _POLARISATIONS = {
 def cards(design: Design) -> tuple[CardState, ...]:
     """All five cards."""
     rows_of = Rows(design)
-    fed_by = "Branches" if isinstance(design.feed, DualEdge) else "Feed"
+    brief, stock, feed = design.brief, design.stock, design.feed
+    fed_by = "Branches" if isinstance(feed, DualEdge) else "Feed"
     parts = (
-        ("brief", "Brief", _brief, brief_rows),
-        ("stock", "Stock", _stock, stock_rows),
-        ("element", "Element", _element, element_rows),
-        ("feed", fed_by, _feed, feed_rows),
-        ("making", "Making", _making, making_rows),
+        ("brief", "Brief", (brief, design.name, design.revision), _brief, brief_rows),
+        ("stock", "Stock", (stock, design.materials), _stock, stock_rows),
+        ("element", "Element", (design.element,), _element, element_rows),
+        ("feed", fed_by, (feed, brief), _feed, feed_rows),
+        ("making", "Making", (design.making,), _making, making_rows),
     )
     return tuple(
-        CardState(name, title, summary(design), partial(rows, design, rows_of))
-        for name, title, summary, rows in parts
+        CardState(name, title, source, partial(summary, design), partial(rows, design, rows_of))
+        for name, title, source, summary, rows in parts
     )
 
 

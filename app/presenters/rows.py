@@ -93,18 +93,38 @@ Row = Heading | Field | Choice | Deeds
 class CardState:
     """One folded card: what stands on it when it is closed, and its rows.
 
-    Rows are made when they are looked at: those of a closed card never are.
+    Both are made when they are looked at: rows of a closed card never are.
+
+    Attributes
+    ----------
+    id, title : str
+    source : tuple
+        All parts of the design that the card tells of: where these are the same, so is the card.
     """
 
     def __init__(
-        self, name: str, title: str, summary: str, make_rows: Callable[[], tuple[Row, ...]]
+        self,
+        name: str,
+        title: str,
+        source: tuple[object, ...],
+        summary: Callable[[], str],
+        rows: Callable[[], tuple[Row, ...]],
     ) -> None:
-        self.id, self.title, self.summary = name, title, summary
-        self._make_rows = make_rows
+        self.id, self.title, self.source = name, title, source
+        self._summary, self._rows = summary, rows
+
+    def is_like(self, other: CardState) -> bool:
+        """Whether another state is made of the very same parts."""
+        pairs = zip(self.source, other.source, strict=True)
+        return self.title == other.title and all(one is another for one, another in pairs)
+
+    @cached_property
+    def summary(self) -> str:
+        return self._summary()
 
     @cached_property
     def rows(self) -> tuple[Row, ...]:
-        return self._make_rows()
+        return self._rows()
 
 
 class Rows:

@@ -111,10 +111,17 @@ class Card(QFrame):
         self.header.setChecked(is_open)
 
     def show_state(self, state: CardState) -> None:
+        if self._is_settled and self._state.is_like(state):
+            return
         self._state, self._is_behind = state, True
         self.header.show_words(state.title, state.summary)
         if self.is_open:  # a closed form catches up when it is looked at
             self._catch_up()
+
+    @property
+    def _is_settled(self) -> bool:
+        """Whether the form shows its state, and nobody is typing in it."""
+        return self._form is not None and not self._is_behind and not self._form.key_in_use
 
     def focus_field(self, key: str) -> None:
         """Open the card at a field."""

@@ -144,9 +144,13 @@ class LineField(FieldView):
         self._line = Line(row.steps)
         self._shown: Field | None = None
         self.place(self._line, name)
-        self._line.committed.connect(lambda text: self.edited.emit(self.key, text))
+        self._line.committed.connect(self._on_committed)
         self._line.stepped.connect(lambda n, held: self.stepped.emit(self.key, n, held))
         self._line.taken_back.connect(lambda: self.show_refusal(""))
+
+    def _on_committed(self, text: str) -> None:
+        self.show_refusal("")  # told again where it is refused again
+        self.edited.emit(self.key, text)
 
     def show_row(self, row: Field) -> None:
         if row == self._shown and self._line.property("refused"):

@@ -115,9 +115,15 @@ def sample(layout: Layout, frequencies: Floats) -> Samples:
     branches = build_branches(layout.feed, layout.stack, layout.foil, frequencies)
     reference = layout.ports[0].impedance
     omega = TWO_PI * frequencies
-    z_in, currents, accepted = _joined(cavity, branches, omega)
+    voltage, current, currents = _joined(cavity, branches, omega)
     voltages = cavity.mode_voltages(omega, currents)
-    powers = cavity.space_powers(voltages) / accepted
+    radiated = cavity.space_powers(voltages)
+    # Corner and tee formulas stretched far beyond their range can give back a trace of power;
+    # what is accepted is never less than what is seen to be radiated.
+    accepted = np.maximum(0.5 * np.real(voltage * np.conj(current)), np.sum(radiated, axis=0))
+    accepted = np.maximum(accepted, _LEAST_POWER)
+    z_in = 2.0 * accepted / np.abs(current) ** 2 + 1j * np.imag(voltage / current)
+    powers = radiated / accepted
     return Samples(
         frequency=frequencies,
         s11=(z_in - reference) / (z_in + reference),
@@ -130,8 +136,8 @@ def sample(layout: Layout, frequencies: Floats) -> Samples:
 
 def _joined(
     cavity: Cavity, branches: Branches, omega: Floats
-) -> tuple[Complexes, Complexes, Floats]:
-    """Input impedance, landing currents and accepted power for 1 V at the tee.
+) -> tuple[Complexes, Complexes, Complexes]:
+    """Voltage and current at the connector, and landing currents, for 1 V at the tee.
 
     An arm from the tee: V = a V_i + b I_i and I = c V_i + d I_i; the element: V_i = Z I_i.
     """
@@ -150,9 +156,11 @@ def _joined(
         into_tee += branches.arms[i].c * ends[:, i] + branches.arms[i].d * currents[:, i]
     voltage = branches.trunk.a + branches.trunk.b * into_tee
     current = branches.trunk.c + branches.trunk.d * into_tee
-    accepted = np.maximum(0.5 * np.real(voltage * np.conj(current)), _LEAST_POWER)
-    z_in = np.asarray(voltage / current)
-    return z_in, np.asarray(currents, dtype=np.complex128), np.asarray(accepted)
+    return (
+        np.asarray(voltage, dtype=np.complex128),
+        np.asarray(current, dtype=np.complex128),
+        np.asarray(currents, dtype=np.complex128),
+    )
 
 
 def _field(

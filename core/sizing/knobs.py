@@ -29,6 +29,8 @@ Rounding = Callable[[float], float]
 GRID = 1e-5  # m; sized lengths are whole hundredths of a millimetre
 _SIDE_RANGE = 1.3
 _NARROWEST_RATIO = 0.012  # width over spacer height; the line formulas begin at 0.01
+_LEAST_TEE = 1e-5  # of the strip's half: a length of 0 or one that has a meaning
+_MOST_APART = 0.4  # of the sides of a nearly square element
 _EDGE = 0.02  # of a side, kept free at the corner and short of the middle
 
 
@@ -116,7 +118,8 @@ def probe_boxes(design: Design, side: float, quality: float) -> tuple[Box, ...]:
         The probe near the diagonal of a nearly square element; the shorter side along x,
         which makes the right-hand sense.
     """
-    apart = 1.0 / quality  # Balanis' rule for the two sides; first order in 1/Q
+    # Balanis' rule for the two sides, first order in 1/Q; not for a spacer that leaves no Q.
+    apart = min(1.0 / quality, _MOST_APART)
     width, length = side * (1 - apart / 2), side * (1 + apart / 2)
     place_x = Knob("probe x", 0.02, 1.0, 0.35, high_reason="the element's edge")
     place_y = Knob("probe y", 0.02, 1.0, 0.35, high_reason="the element's edge")
@@ -221,7 +224,7 @@ class _DualEdge:
             self._width("first branch"),
             self._width("second branch"),
             self._width("delay strip"),
-            Knob("tee", 0.0, 0.98, self.tee),
+            Knob("tee", _LEAST_TEE, 0.98, self.tee),
         ]
         if lead:
             low = min(self.design.making.narrowest_strip, 0.5 * self.lead_room)

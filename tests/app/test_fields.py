@@ -69,6 +69,15 @@ def test_a_refusal_goes_when_another_edit_makes_the_field_right(window, qtbot):
     assert refusal_of(line) == ""
 
 
+def test_a_refusal_goes_when_the_old_value_is_typed_again(window, qtbot):
+    line = line_of(window, "element.width")
+    old = line.text()
+    type_into(qtbot, line, "fuzz")
+    type_into(qtbot, line, "5.524 cm")
+    assert refusal_of(line) == ""
+    assert line.text() == old
+
+
 def test_leaving_a_field_untouched_keeps_every_digit(window, qtbot):
     design = edit.with_number(window.document.design, "element.width", 0.0512345678912)
     window.document.change(design, "Change width")

@@ -21,7 +21,7 @@ from core.lines.stack import Layer
 from core.live.modes import element_modes
 from core.live.respond import sample
 from core.progress import SILENT
-from core.response.bands import band_under
+from core.response.bands import band_under, frequency_grid
 from core.response.model import Reading
 from core.response.polarisation import sense
 
@@ -358,3 +358,19 @@ def test_the_layout_of_the_other_sense_answers_as_the_mirror_image(feed):
     assert other.spot.efficiency == pytest.approx(one.spot.efficiency, rel=1e-9)
     assert other.beamwidth == pytest.approx(one.beamwidth, rel=1e-9)
     assert other.trust == one.trust
+
+
+def test_a_layout_far_beyond_the_formulas_stays_passive():
+    design = with_texts(
+        default_design(),
+        [
+            ("feed.delay_width", "190mm"),
+            ("element.width", "29.9mm"),
+            ("stock.spacer", "polystyrene:21.5mm"),
+        ],
+    )
+    layout = build_layout(design)
+    response = ENGINES["live"](layout, frequency_grid(layout.frequency), SILENT)
+    assert np.max(np.abs(response.sweep.s11)) <= 1.0
+    assert np.max(response.sweep.efficiency) <= 1.0 + 1e-12
+    assert np.all(np.isfinite(response.sweep.realised_gain_dbi(design.brief.polarisation)))

@@ -134,3 +134,12 @@ def test_linear_dual_edge_is_refused() -> None:
 def test_same_brief_gives_the_same_design() -> None:
     first: Sizing = size(seed(*ROWS[0]))
     assert first == size(seed(*ROWS[0]))
+
+
+@pytest.mark.parametrize(
+    ("feed", "polarisation"), [("probe", "rhcp"), ("probe", "linear"), ("dual-edge", "rhcp")]
+)
+def test_a_spacer_that_leaves_no_element_is_told_in_words(feed: str, polarisation: str) -> None:
+    sizing = size(seed("FR-4:117mm", 2.32e9, "knife", feed, polarisation))
+    assert not sizing.met
+    assert sizing.reason.endswith(".")
