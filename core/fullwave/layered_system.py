@@ -43,8 +43,8 @@ if TYPE_CHECKING:
 
     Complexes = NDArray[np.complex128]
 
-_THIN: Final = 0.25  # height in radians of the stack up to which a uniform current will do
-_PROFILES: Final = 3  # vertical currents beyond that
+_THIN: Final = 0.5  # height of the stack, rad, up to which few vertical currents will do
+_FEW, _MORE = 3, 5  # vertical currents: the first two also for the charge near both ends
 _NEAR: Final = 1.5  # longest cells, to which images are integrated exactly
 
 
@@ -210,4 +210,4 @@ def _profiles(layers: tuple[Layer, ...], wavenumber: float) -> int:
     turns = sum(
         wavenumber * abs(complex_permittivity(layer)) ** 0.5 * layer.thickness for layer in layers
     )
-    return 1 if turns < _THIN else _PROFILES
+    return _FEW if turns < _THIN else _MORE

@@ -19,7 +19,7 @@ from math import log, pi
 from typing import TYPE_CHECKING
 
 import numpy as np
-from scipy.special import ellipe, ellipk, elliprf, elliprj
+from scipy.special import ellipe, ellipk, ellipkm1, elliprf, elliprj
 
 from core.constants import VACUUM_PERMITTIVITY
 from core.fullwave.mesh_model import Sheet
@@ -85,13 +85,19 @@ def ring_capacitance(ring: CoaxRing) -> float:
         Of the ring alone; the ground plate's share comes with the currents.
     """
     x, w = np.polynomial.legendre.leggauss(40)
-    y, v = np.polynomial.legendre.leggauss(41)  # other points, to keep off equal radii
-    middle, half = (ring.inner + ring.outer) / 2.0, (ring.outer - ring.inner) / 2.0
-    one, two = (middle + half * x)[:, None], middle + half * y
-    m = 4.0 * one * two / (one + two) ** 2
+    share, weight = (1.0 + x) / 2.0, w / 2.0
+    one = (ring.inner + share * (ring.outer - ring.inner))[:, None]
+    # The other loop from the first one outwards and inwards, crowded where they meet: their
+    # inductance grows there as a logarithm.
+    to_end = np.concatenate([ring.outer - one, ring.inner - one], axis=1)
+    two = one[..., None] + to_end[..., None] * share**2
+    apart = (to_end[..., None] * share**2 / (one[..., None] + two)) ** 2  # 1 - m
+    m = 1.0 - apart
     root = np.sqrt(m)
-    loops = 2.0 / np.sqrt(one * two) * ((2.0 / root - root) * ellipk(m) - 2.0 / root * ellipe(m))
-    total = float((w * half) @ loops @ (v * half))
+    loops = (2.0 / root - root) * ellipkm1(apart) - 2.0 / root * ellipe(m)
+    loops *= 2.0 / np.sqrt(one[..., None] * two) * np.abs(to_end)[..., None]
+    inner = np.sum(loops * (2.0 * share * weight), axis=(1, 2))
+    total = float(inner @ weight) * (ring.outer - ring.inner)
     return VACUUM_PERMITTIVITY * total / (2.0 * log(ring.outer / ring.inner) ** 2)
 
 
