@@ -94,6 +94,7 @@ class Card(QFrame):
         layout.addWidget(self.header)
         self._shape: tuple[object, ...] = ()
         self._form: CardForm | None = None
+        self._state: CardState
         self.show_state(state)
 
     @property
