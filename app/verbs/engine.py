@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import argparse
+from functools import partial
 from typing import TYPE_CHECKING, Any
 
 from app.verbs.arguments import VerbParser, unknown_word
@@ -11,17 +12,19 @@ from core.engines import ENGINES
 from core.materials.table import folded
 
 if TYPE_CHECKING:
+    from collections.abc import Collection
+
     from core.response.model import Response, Trust
 
 
-def add_engine(parser: VerbParser) -> None:
-    """Give a verb the choice of the engine that answers."""
+def add_engine(parser: VerbParser, names: Collection[str] = tuple(ENGINES)) -> None:
+    """Give a verb the choice of the engine that answers, out of those that it can use."""
     parser.add_argument(
         "--engine",
         metavar="NAME",
-        type=_engine,
-        default=next(iter(ENGINES)),
-        help=f"what works it out: {' or '.join(ENGINES)}",
+        type=partial(_engine, names=names),
+        default=next(iter(names)),
+        help=f"what works it out: {' or '.join(names)}",
     )
 
 
@@ -53,9 +56,9 @@ def _cure(trust: Trust) -> str:
     return f"; {trust.remedy}" if trust.remedy else ""
 
 
-def _engine(text: str) -> str:
+def _engine(text: str, names: Collection[str]) -> str:
     """Name of an engine, however it is spelled."""
-    for name in ENGINES:
+    for name in names:
         if folded(name) == folded(text):
             return name
-    raise argparse.ArgumentTypeError(unknown_word(text, ENGINES, "engine"))
+    raise argparse.ArgumentTypeError(unknown_word(text, names, "engine"))

@@ -27,7 +27,7 @@ from core.design.model import Brief
 from core.design.polarisation import Polarisation
 from core.design.record import to_record
 from core.design.stock import DiscGround, Stock
-from core.engines import ENGINES
+from core.engines import ENGINES, LIVE
 from core.layout.build import build_layout
 from core.materials.table import dielectrics, find, foils, folded, processes
 from core.progress import SILENT
@@ -67,7 +67,7 @@ def add(parser: VerbParser) -> None:
     _option(parser, "element", "SHAPE", taken_by(spelled.element), "found; rect:WxL is kept")
     _option(parser, "process", "NAME", str, "knife, or toner-etch on a board")
     _option(parser, "name", "TEXT", str, _NAME, _NAME)
-    add_engine(parser)
+    add_engine(parser, (LIVE,))
     add_output(parser, "write the project there")
     add_json(parser)
     parser.epilog = (

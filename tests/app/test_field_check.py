@@ -265,7 +265,7 @@ def test_a_tiny_design_is_solved_beside_the_window(open_window, qtbot):
         {"feed": "probe", "brief.polarisation": "linear", "stock.ground": "rect:80mmx80mm"}.items(),
     )
     window.document.start(small, None)
-    qtbot.waitUntil(lambda: window.field.current is not None, timeout=60_000)
+    qtbot.waitUntil(lambda: window.field.current is not None, timeout=300_000)
     response = window.field.current.evaluation.response
     assert response.engine == "field"
     # A lossless antenna radiates all it takes but what the foil turns to heat.

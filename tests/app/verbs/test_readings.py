@@ -152,7 +152,7 @@ def test_what_cannot_be_built_is_said_with_the_numbers(readings):
 @pytest.mark.parametrize(
     ("words", "said"),
     [
-        (["--engine", "field"], "--engine: 'field' is no engine; accepted: live"),
+        (["--engine", "guess"], "--engine: 'guess' is no engine; accepted: live, field"),
         (["--engine", ""], "--engine: '' is no engine; accepted: live"),
         (["--points", "1"], "points: 1 is out of range; accepted: 2 to 20001"),
         (["--points", "-5"], "points: -5 is out of range; accepted: 2 to 20001"),
