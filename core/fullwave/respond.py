@@ -14,7 +14,7 @@ import numpy as np
 from scipy.interpolate import PchipInterpolator
 
 from core.constants import FREE_SPACE_IMPEDANCE
-from core.fullwave.far_field import direction_frame
+from core.fullwave.far_field import direction_frame, sphere_power
 from core.fullwave.layered_fields import BoardCurrents, power_into_waves, space_field
 from core.fullwave.layered_mesh import build_board_mesh
 from core.fullwave.layered_system import (
@@ -52,6 +52,7 @@ ENGINE: Final = "field"
 MOST_AIR_LIKE: Final = 1.5
 """Thickness-averaged permittivity up to which the finite plate is meshed in free space."""
 
+_UNBALANCED = 0.02  # share of the power that may go missing in free space
 _TOLERANCE = 2e-3  # of reflection coefficient and field ratio in a sweep
 _MODE_REACH = 1.3  # ratio to the brief's frequency within which a pole is a mode of the element
 _LOWEST_Q, _HIGHEST_Q = 2.0, 2000.0
@@ -200,7 +201,18 @@ class _FreeSpace(_Solver):
         return float(front / back)
 
     def doubts(self) -> dict[Reading, Trust]:
-        return {}
+        frequency = self.spot.frequency
+        sent = sphere_power(
+            lambda towards: radiated_field(self.system, self.spot.currents, frequency, towards),
+            frequency,
+            float(np.ptp(self.system.mesh.vertices, axis=0).max()),
+        )
+        missing = abs(1.0 - self.spot.lost - 2.0 * sent / self.spot.admittance.real)
+        if missing < _UNBALANCED:
+            return {}
+        reason = f"{100.0 * missing:.0f} % of the power that goes in is not found again"
+        doubt = Trust(TrustLevel.ROUGH, reason, "a thinner or lighter spacer is told better")
+        return dict.fromkeys((Reading.GAIN, Reading.EFFICIENCY, Reading.PATTERN), doubt)
 
 
 @dataclass(frozen=True, eq=False)
