@@ -85,8 +85,15 @@ def test_nearby_rim_makes_the_resonance_rough(patch):
     assert doubts[Reading.RESONANCE].level is TrustLevel.ROUGH
     assert "2.0 board heights" in doubts[Reading.RESONANCE].reason
     far = rim_doubts(1e-4, 0.9, layout)
-    assert Reading.RESONANCE not in far
-    assert far[Reading.GAIN].level is TrustLevel.GOOD
+    assert set(far) == {Reading.PATTERN}
+
+
+def test_surface_waves_make_the_gain_rough(patch):
+    # A tenth of the power sent on in phase: 20 log(1 + sqrt(0.1)) = 2.4 dB.
+    doubts = rim_doubts(0.05, 0.5, patch[0])
+    assert "2.4 dB at boresight" in doubts[Reading.GAIN].reason
+    assert Reading.EFFICIENCY not in doubts  # 0.4 dB more at most
+    assert "3.0 dB more" in rim_doubts(0.5, 0.5, patch[0])[Reading.EFFICIENCY].reason
 
 
 def test_dual_edge_board_has_both_components():
