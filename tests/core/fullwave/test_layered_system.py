@@ -108,6 +108,23 @@ def test_power_in_is_power_out(name):
         assert sent / (solution.admittance.real / 2.0) == pytest.approx(1.0, abs=2e-3)
 
 
+@pytest.mark.parametrize("number", range(20))
+def test_power_of_patches_drawn_by_lot(number):
+    draw = np.random.default_rng(number)
+    frequency, eps_r = 10.0 ** draw.uniform(9.0, 10.0), round(draw.uniform(2.0, 10.5), 3)
+    inside = SPEED_OF_LIGHT / frequency / eps_r**0.5
+    height = inside * 10.0 ** draw.uniform(-2.3, -0.9)
+    width, length = inside * draw.uniform(0.35, 0.7), inside * draw.uniform(0.36, 0.49)
+    layout = board_patch(width, length, height, eps_r, frequency, draw.uniform(0.08, 0.4))
+    system = built(layout, Level.COARSE, frequency, (Layer(height, eps_r),))
+    solution = solve_layered(system, frequency)
+    flowing = board_currents(system, solution.currents, frequency)
+    accepted = solution.admittance.real / 2.0
+    assert accepted > 0.0
+    guided = power_into_waves(flowing) / accepted
+    assert 1.0 - solution.lost + guided == pytest.approx(1.0, abs=5e-3)
+
+
 @pytest.mark.parametrize("name", ["ceramic", "three layers"])
 def test_losses_take_power(name):
     layout, _, middle = BOARDS[name]
