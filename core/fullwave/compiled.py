@@ -187,7 +187,7 @@ def _project(
 
 
 @njit(fastmath=_FAST, cache=True)
-def _half_moments(
+def half_moments(
     t: int,
     vector: Floats,
     scalar: Floats,
@@ -196,8 +196,25 @@ def _half_moments(
     work: Floats,
     out: Floats,
 ) -> None:
-    """Moments of a kernel (9, t) with the halves of triangle t and those from t on: (3, 3, t).
+    """Moments of a kernel with the halves of triangle t and those from t on.
 
+    Parameters
+    ----------
+    t : int
+        Test triangle.
+    vector, scalar : (9, t) ndarray of float
+        Kernel of currents and of charges at the pairs of points.
+    charge : float
+        What the charges are multiplied by, m².
+    geometry : tuple
+        As `add_free_space` takes it.
+    work : (14, t) ndarray of float
+        Written to.
+    out : (3, 3, t) ndarray of float
+        Written.
+
+    Notes
+    -----
     `vector` weighs currents; `scalar` weighs charges, times `charge`. The sum over points of
     (r - p).(r' - p') splits into the kernel's moments 1, r, r' and r.r', taken about the
     middle of triangle t to lose no digits. Each loop has few arrays, or the compiler makes
@@ -253,8 +270,19 @@ def _add_near(
 
 
 @njit(fastmath=_FAST, cache=True)
-def _settle_own(t: int, sheet: complex, overlaps: Floats, real: Floats, imag: Floats) -> None:
-    """Add the voltage drop in the foil of triangle t; halve it all: the transpose follows."""
+def settle_own(t: int, sheet: complex, overlaps: Floats, real: Floats, imag: Floats) -> None:
+    """Add the voltage drop in the foil of triangle t; halve it all: the transpose follows.
+
+    Parameters
+    ----------
+    t : int
+    sheet : complex
+        Impedance of the foil over what the sums are multiplied by, m.
+    overlaps : (t, 3, 3) ndarray of float
+        m².
+    real, imag : (3, 3, t) ndarray of float
+        Written to.
+    """
     for a in range(3):
         for b in range(3):
             real[a, b, t] = 0.5 * (real[a, b, t] + sheet.real * overlaps[t, a, b])
@@ -262,7 +290,7 @@ def _settle_own(t: int, sheet: complex, overlaps: Floats, real: Floats, imag: Fl
 
 
 @njit(fastmath=_FAST, cache=True)
-def _add_rows(
+def add_rows(
     t: int,
     real: Floats,
     imag: Floats,
@@ -270,7 +298,20 @@ def _add_rows(
     functions: tuple[Ints, Ints, Floats, Ints, Ints],
     matrix: Complexes,
 ) -> None:
-    """Add the halves of triangle t to the rows of the functions that they belong to."""
+    """Add the halves of triangle t to the rows of the functions that they belong to.
+
+    Parameters
+    ----------
+    t : int
+    real, imag : (3, 3, t) ndarray of float
+        Sums of its halves with all others.
+    factor : complex
+        What they are multiplied by.
+    functions : tuple
+        As `add_free_space` takes it.
+    matrix : (n, n) ndarray of complex
+        Written to.
+    """
     starts, rows, signs, plus, minus = functions
     triangles = real.shape[2]
     for a in range(3):
@@ -365,8 +406,8 @@ def add_free_space(
         _free_space_row(t, k, points, real, imag)
         if not in_air:
             _scalar_row(t, k, points, spacer, (real, imag), (scalar_real, scalar_imag))
-        _half_moments(t, real, scalar_real, charge, geometry, work, real_out)
-        _half_moments(t, imag, scalar_imag, charge, geometry, work, imag_out)
+        half_moments(t, real, scalar_real, charge, geometry, work, real_out)
+        half_moments(t, imag, scalar_imag, charge, geometry, work, imag_out)
         _add_near(t, k * k, near, half_lengths, real_out, imag_out)
-        _settle_own(t, sheets[t], overlaps, real_out, imag_out)
-        _add_rows(t, real_out, imag_out, factor, functions, matrix)
+        settle_own(t, sheets[t], overlaps, real_out, imag_out)
+        add_rows(t, real_out, imag_out, factor, functions, matrix)

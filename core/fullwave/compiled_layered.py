@@ -13,7 +13,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 from numba import njit
 
-from core.fullwave.compiled import _add_rows, _half_moments, _settle_own
+from core.fullwave.compiled import add_rows, half_moments, settle_own
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
@@ -128,11 +128,11 @@ def add_layered(
         real[:, :, :t] = 0.0
         imag[:, :, :t] = 0.0
         _kernel_row(t, table, per_step, source, points, kernel)
-        _half_moments(t, kernel[0], kernel[2], charge, geometry, work, real)
-        _half_moments(t, kernel[1], kernel[3], charge, geometry, work, imag)
+        half_moments(t, kernel[0], kernel[2], charge, geometry, work, real)
+        half_moments(t, kernel[1], kernel[3], charge, geometry, work, imag)
         slopes = (vector_kink.real, scalar_kink.real)
         _add_near(t, charge, slopes, near, 0, half_lengths, real)
         slopes = (vector_kink.imag, scalar_kink.imag)
         _add_near(t, charge, slopes, near, 1, half_lengths, imag)
-        _settle_own(t, sheets[t], overlaps, real, imag)
-        _add_rows(t, real, imag, factor, functions, matrix)
+        settle_own(t, sheets[t], overlaps, real, imag)
+        add_rows(t, real, imag, factor, functions, matrix)

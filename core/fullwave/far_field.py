@@ -46,7 +46,7 @@ def far_field(basis: Basis, currents: Complexes, frequency: float, directions: F
     (d, 3) ndarray of complex
         x, y and z components of r exp(jkr) E, V.
     """
-    points, moments = _current_moments(basis, currents)
+    points, moments = current_moments(basis, currents)
     k = TWO_PI * frequency / SPEED_OF_LIGHT
     field = np.empty((len(directions), 3), dtype=np.complex128)
     for start in range(0, len(directions), _AT_ONCE):
@@ -57,8 +57,22 @@ def far_field(basis: Basis, currents: Complexes, frequency: float, directions: F
     return np.asarray(field * (-1j * TWO_PI * frequency * VACUUM_PERMEABILITY / (4.0 * pi)))
 
 
-def _current_moments(basis: Basis, currents: Complexes) -> tuple[Floats, Complexes]:
-    """Points (3 t, 3), m, and what current flows at each, times its share of area, A m."""
+def current_moments(basis: Basis, currents: Complexes) -> tuple[Floats, Complexes]:
+    """Currents as moments at points.
+
+    Parameters
+    ----------
+    basis : Basis
+    currents : (n,) ndarray of complex
+        A/m.
+
+    Returns
+    -------
+    points : (3 t, 3) ndarray of float
+        m.
+    moments : (3 t, 3) ndarray of complex
+        Current at each times its share of area, A m.
+    """
     points = np.einsum("ic,tcx->tix", COARSE_RULE[:, :3], basis.corners)
     arms = points[:, :, None] - basis.corners[:, None]
     halves = basis.on_halves(currents) * basis.lengths / 2.0

@@ -13,7 +13,7 @@ import numpy as np
 
 from core.constants import FREE_SPACE_IMPEDANCE, SPEED_OF_LIGHT, TWO_PI
 from core.fullwave.coax_mouth import mouth_field
-from core.fullwave.far_field import _current_moments
+from core.fullwave.far_field import current_moments
 from core.fullwave.layered_radiation import layered_radiation
 from core.fullwave.surface_waves import launched_power, surface_waves
 
@@ -74,7 +74,7 @@ class BoardCurrents:
         probe: tuple[Floats, Complexes, CoaxRing],
     ) -> BoardCurrents:
         """Of solved functions; feet, rising currents and mouth are the probe's."""
-        points, moments = _current_moments(basis, solved)
+        points, moments = current_moments(basis, solved)
         wavenumber = TWO_PI * frequency / SPEED_OF_LIGHT
         return cls(layers, wavenumber, ground_impedance, points[:, :2], moments[:, :2], *probe)
 

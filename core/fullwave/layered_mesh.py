@@ -7,24 +7,13 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from core.constants import SPEED_OF_LIGHT
-from core.fullwave.mesh import (
-    EDGE_ROW,
-    FINENESS,
-    Level,
-    _joined,
-    _mouth,
-    _plate,
-    _prism,
-    _sheets,
-)
+from core.fullwave.mesh import joined, mouth, top_plates
 from core.fullwave.mesh_model import CoaxRing, Sheet
-from core.fullwave.mesh_sizes import top_sizes
-from core.layout.model import Role
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
+    from core.fullwave.mesh import Level
     from core.layout.model import Layout
 
     Floats = NDArray[np.float64]
@@ -38,7 +27,7 @@ class BoardMesh:
     Attributes
     ----------
     vertices : (v, 3) ndarray of float
-        m; z = 0 is the plane of the copper.
+        m; z = 0 is the ground plane.
     triangles : (t, 3) ndarray of int
         Counter-clockwise seen from above.
     pin : (e, 2) ndarray of int
@@ -70,14 +59,9 @@ def build_board_mesh(layout: Layout, level: Level) -> BoardMesh:
     ModelError
         If the probe does not meet the copper, or an outline cannot be meshed.
     """
-    fine, port = FINENESS[level], layout.ports[0]
-    chord = SPEED_OF_LIGHT / (layout.frequency * fine.per_wavelength)
-    pin = _prism(port, fine.probe_sides)
-    pieces = _sheets(layout, Role.TOP_COPPER, pin, chord)
-    row = EDGE_ROW * layout.height
-    parts = [_plate(piece, top_sizes(layout, piece, pin, fine), row, pin, 0.0) for piece in pieces]
-    mesh = _joined(parts, [Sheet.TOP] * len(parts), _mouth(layout))
-    return BoardMesh(mesh.vertices, mesh.triangles, _pin_edges(mesh.vertices, pin), _mouth(layout))
+    pin, _, parts = top_plates(layout, level)
+    mesh = joined(parts, [Sheet.TOP] * len(parts), mouth(layout))
+    return BoardMesh(mesh.vertices, mesh.triangles, _pin_edges(mesh.vertices, pin), mouth(layout))
 
 
 def _pin_edges(vertices: Floats, pin: Floats) -> Ints:

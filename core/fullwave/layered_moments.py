@@ -12,7 +12,6 @@ profile by profile.
 
 from __future__ import annotations
 
-from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass
 from math import pi
 from typing import TYPE_CHECKING, Final
@@ -21,7 +20,14 @@ import numpy as np
 
 from core.constants import FREE_SPACE_IMPEDANCE
 from core.fullwave.basis import Basis, build_basis
-from core.fullwave.moments import _BATCH, _RULES, _WORKERS, _colours, _functions, _overlaps
+from core.fullwave.moments import (
+    fill,
+    half_functions,
+    half_overlaps,
+    near_image,
+    pair_terms,
+    triangle_colours,
+)
 from core.fullwave.quadrature import COARSE_RULE
 from core.fullwave.static_images import image_potential
 
@@ -126,9 +132,9 @@ def build_layered_moments(basis: Basis, triangles: Ints, plan: TablePlan) -> Lay
         basis,
         geometry,
         _near(basis, triangles, plan),
-        _overlaps(basis),
-        _functions(basis),
-        tuple(colour[colour < len(triangles)] for colour in _colours(basis)),
+        half_overlaps(basis),
+        half_functions(basis),
+        tuple(colour[colour < len(triangles)] for colour in triangle_colours(basis)),
     )
 
 
@@ -152,7 +158,6 @@ def layered_matrix(
     (n, n) ndarray of complex
         Symmetric, ohm m².
     """
-    from core.fullwave.compiled import add_transpose  # noqa: PLC0415 - slow to load
     from core.fullwave.compiled_layered import add_layered  # noqa: PLC0415 - slow to load
 
     # omega mu0 = k0 eta0
@@ -181,10 +186,7 @@ def layered_matrix(
             matrix,
         )
 
-    with ThreadPoolExecutor(_WORKERS) as pool:
-        for colour in moments.colours:
-            list(pool.map(add, (colour[first::_WORKERS] for first in range(_WORKERS))))
-        list(pool.map(lambda first: add_transpose(matrix, first, _WORKERS), range(_WORKERS)))
+    fill(matrix, moments.colours, add)
     return matrix
 
 
@@ -213,28 +215,27 @@ def _near(
     basis: Basis, triangles: Ints, plan: TablePlan
 ) -> tuple[Ints, Ints, Floats, Floats, Floats, Floats]:
     """Near terms of every triangle with itself and later ones, source and images summed."""
-    from core.fullwave.compiled_near import find_near, near_terms  # noqa: PLC0415 - slow to load
+    from core.fullwave.compiled_near import find_near  # noqa: PLC0415 - slow to load
 
-    corners = np.ascontiguousarray(basis.corners[:-1])
-    starts, sources, kinds = find_near(corners, triangles)
+    starts, sources, kinds = find_near(np.ascontiguousarray(basis.corners[:-1]), triangles)
     pairs = np.column_stack([np.repeat(np.arange(len(triangles)), np.diff(starts)), sources])
-    rules = np.concatenate(_RULES), np.cumsum([0, *(len(rule) for rule in _RULES)])
-    terms, means = np.empty((len(pairs), 2, 3, 3)), np.empty((len(pairs), 2))
-    currents, charges = np.zeros((len(pairs), 3, 3)), np.zeros((len(pairs), 2))
-    current_slopes, charge_slopes = np.zeros((len(pairs), 3, 3)), np.zeros(len(pairs))
-    for depth in sorted({image.depth for kind in plan.near for image in kind}):
-
-        def work_out(share: slice, lift: float = depth) -> None:
-            near_terms(corners, pairs[share], kinds[share], lift, rules, terms[share], means[share])
-
-        with ThreadPoolExecutor(_WORKERS) as pool:
-            list(pool.map(work_out, (slice(i, i + _BATCH) for i in range(0, len(pairs), _BATCH))))
+    terms, means = pair_terms(basis, pairs, kinds, (1.0, 0.0))
+    weights = [kind[0].weight for kind in plan.near]
+    currents = complex(weights[0]).real * terms[:, 0]
+    charges = means[:, :1] * _parts(weights[1])
+    for depth in sorted({image.depth for kind in plan.near for image in kind[1:]}):
+        near, kinds = near_image(basis.corners, pairs, (1.0, depth))
+        lifted, lifted_means = pair_terms(basis, pairs[near], kinds, (1.0, depth))
         current, charge = (
             sum(image.weight for image in kind if image.depth == depth) for kind in plan.near
         )
-        currents += complex(current).real * terms[:, 0]
-        charges += means[:, :1] * [complex(charge).real, complex(charge).imag]
-        if depth == 0.0:
-            current_slopes, charge_slopes = terms[:, 1].copy(), means[:, 1].copy()
+        currents[near] += complex(current).real * lifted[:, 0]
+        charges[near] += lifted_means[:, :1] * _parts(charge)
+    current_slopes, charge_slopes = terms[:, 1].copy(), means[:, 1].copy()
     starts = np.append(starts, starts[-1])
     return starts, sources, currents, current_slopes, charges, charge_slopes
+
+
+def _parts(weight: complex) -> Floats:
+    """Real and imaginary part."""
+    return np.array([weight.real, weight.imag])

@@ -13,7 +13,7 @@ if TYPE_CHECKING:
 _CLEAR: Final = 6.0
 """Board heights between element and rim from which the rim leaves a resonance alone; common
 practice, no source."""
-_FAINT: Final = 1.0  # dB at boresight from the rim that still count as good
+_FAINT: Final = 1.0  # dB from the rim that still count as good
 
 
 def rim_doubts(guided: float, sent: float, layout: Layout) -> dict[Reading, Trust]:
@@ -28,7 +28,7 @@ def rim_doubts(guided: float, sent: float, layout: Layout) -> dict[Reading, Trus
     Returns
     -------
     dict of Reading to Trust
-        Empty where the rim changes nothing worth telling.
+        Those that the rim makes rough.
 
     Notes
     -----
@@ -36,18 +36,22 @@ def rim_doubts(guided: float, sent: float, layout: Layout) -> dict[Reading, Trus
     or against it at boresight, the field there would change by the root of their ratio: a bound
     for a rim that sends about as the element does.
     """
-    doubts: dict[Reading, Trust] = {}
     swing = 20.0 * log10(1.0 + sqrt(guided / sent))
     waves = (
         f"solved on an endless board; {100.0 * guided:.0f} % of the power runs into its surface "
-        f"waves, and the rim of the real one sends it on: up to {swing:.1f} dB at boresight"
+        "waves, and the rim of the real one sends it on"
     )
-    far = TrustLevel.GOOD if swing <= _FAINT else TrustLevel.ROUGH
-    for reading in (Reading.GAIN, Reading.AXIAL_RATIO, Reading.EFFICIENCY):
-        doubts[reading] = Trust(far, waves)
-    doubts[Reading.PATTERN] = Trust(
-        TrustLevel.ROUGH, waves + "; nothing is known behind the board or along it"
-    )
+    doubts = {
+        Reading.PATTERN: Trust(
+            TrustLevel.ROUGH, waves + "; nothing is known behind the board or along it"
+        )
+    }
+    if swing > _FAINT:
+        boresight = Trust(TrustLevel.ROUGH, waves + f": up to {swing:.1f} dB at boresight")
+        doubts |= dict.fromkeys((Reading.GAIN, Reading.AXIAL_RATIO), boresight)
+    rise = 10.0 * log10(1.0 + guided / sent)
+    if rise > _FAINT:
+        doubts[Reading.EFFICIENCY] = Trust(TrustLevel.ROUGH, waves + f": up to {rise:.1f} dB more")
     heights = layout.ground_reach / layout.height
     if heights < _CLEAR:
         close = Trust(

@@ -71,24 +71,64 @@ def build_mesh(layout: Layout, level: Level) -> Mesh:
     """
     fine, height = FINENESS[level], layout.height
     wavelength = SPEED_OF_LIGHT / (layout.frequency * _TOP_FREQUENCY)
-    port = layout.ports[0]
-    pin = _prism(port, fine.probe_sides)
     cell = wavelength / fine.per_wavelength
-    top = _sheets(layout, Role.TOP_COPPER, pin, cell)
+    pin, top, parts = top_plates(layout, level)
     ground = _sheets(layout, Role.GROUND_COPPER, pin, cell)
-    row = EDGE_ROW * height
-    parts = []
-    for piece in top:
-        parts.append(_plate(piece, top_sizes(layout, piece, pin, fine), row, pin, height))
     sizes, traces = ground_plan(layout, top, pin, fine, cell)
     rim = EDGE_ROW * max(height, cell / 2.0) if fine.ground_row else 0.0
     parts += [_plate(piece, sizes, rim, pin, 0.0, traces) for piece in ground]
     parts.append(_tube(pin, height, max(1, ceil(height / (fine.probe_cell * wavelength)))))
     sheets = [Sheet.TOP] * len(top) + [Sheet.GROUND] * len(ground) + [Sheet.PROBE]
-    return _joined(parts, sheets, _mouth(layout))
+    return joined(parts, sheets, mouth(layout))
 
 
-def _mouth(layout: Layout) -> CoaxRing:
+def top_plates(
+    layout: Layout, level: Level
+) -> tuple[Floats, tuple[shapely.Polygon, ...], list[tuple[Floats, Ints]]]:
+    """Triangles over a layout's top copper, the probe's outline cut out.
+
+    Parameters
+    ----------
+    layout : Layout
+    level : Level
+
+    Returns
+    -------
+    pin : (e, 2) ndarray of float
+        Corners of the probe's prism, m.
+    pieces : tuple of shapely.Polygon
+        Connected sheets, m.
+    parts : list of ((v, 3) ndarray of float, (t, 3) ndarray of int)
+        Vertices, m, and triangles of each.
+
+    Raises
+    ------
+    ModelError
+        If the probe does not meet the copper, or an outline cannot be meshed.
+    """
+    fine, port = FINENESS[level], layout.ports[0]
+    chord = SPEED_OF_LIGHT / (layout.frequency * _TOP_FREQUENCY * fine.per_wavelength)
+    pin = _prism(port, fine.probe_sides)
+    pieces = _sheets(layout, Role.TOP_COPPER, pin, chord)
+    row = EDGE_ROW * layout.height
+    parts = [
+        _plate(piece, top_sizes(layout, piece, pin, fine), row, pin, layout.height)
+        for piece in pieces
+    ]
+    return pin, pieces, parts
+
+
+def mouth(layout: Layout) -> CoaxRing:
+    """Mouth of the coax under a layout's probe.
+
+    Parameters
+    ----------
+    layout : Layout
+
+    Returns
+    -------
+    CoaxRing
+    """
     port = layout.ports[0]
     clearance = max(
         hole.diameter for hole in layout.holes if hypot(hole.x - port.x, hole.y - port.y) < 1e-9
@@ -177,8 +217,21 @@ def _tube(pin: Floats, height: float, rows: int) -> tuple[Floats, Ints]:
     return vertices, np.concatenate([first, second]).astype(np.int64)
 
 
-def _joined(parts: list[tuple[Floats, Ints]], sheets: list[Sheet], port: CoaxRing) -> Mesh:
-    """One mesh of several, vertices in the same place made one."""
+def joined(parts: list[tuple[Floats, Ints]], sheets: list[Sheet], port: CoaxRing) -> Mesh:
+    """One mesh of several, vertices in the same place made one.
+
+    Parameters
+    ----------
+    parts : list of ((v, 3) ndarray of float, (t, 3) ndarray of int)
+        Vertices, m, and triangles of each.
+    sheets : list of Sheet
+        Of each part.
+    port : CoaxRing
+
+    Returns
+    -------
+    Mesh
+    """
     vertices = np.concatenate([points for points, _ in parts])
     starts = np.cumsum([0, *(len(points) for points, _ in parts)])
     triangles = np.concatenate([t + s for (_, t), s in zip(parts, starts, strict=False)])

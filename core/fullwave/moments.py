@@ -23,6 +23,8 @@ from core.fullwave.quadrature import COARSE_RULE, triangle_rule
 from core.fullwave.spacer_images import FACES, spacer_images
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from numpy.typing import NDArray
 
     from core.fullwave.spacer_images import SpacerImages
@@ -100,9 +102,9 @@ def build_moments(
         _near(basis, triangles, sheets, images),
         _runs(sheets),
         images,
-        _overlaps(basis),
-        _functions(basis),
-        _colours(basis),
+        half_overlaps(basis),
+        half_functions(basis),
+        triangle_colours(basis),
     )
 
 
@@ -126,7 +128,7 @@ def impedance_matrix(
     (n, n) ndarray of complex
         Symmetric, ohm m²: voltage over current density times edge lengths.
     """
-    from core.fullwave.compiled import add_free_space, add_transpose  # noqa: PLC0415 - slow to load
+    from core.fullwave.compiled import add_free_space  # noqa: PLC0415 - slow to load
 
     factor = 1j * TWO_PI * frequency * VACUUM_PERMEABILITY / (4.0 * pi)
     matrix = np.zeros((moments.basis.count, moments.basis.count), dtype=np.complex128)
@@ -151,11 +153,28 @@ def impedance_matrix(
             matrix,
         )
 
+    fill(matrix, moments.colours, add)
+    return matrix
+
+
+def fill(matrix: Complexes, colours: tuple[Ints, ...], add: Callable[[Ints], None]) -> None:
+    """Fill a symmetric matrix by threads: half of it by triangles, then its transpose.
+
+    Parameters
+    ----------
+    matrix : (n, n) ndarray of complex
+        Written to.
+    colours : tuple of (...,) ndarray of int
+        Triangles that may be added at a time.
+    add : callable
+        Adds the part of some triangles to the half-filled matrix.
+    """
+    from core.fullwave.compiled import add_transpose  # noqa: PLC0415 - slow to load
+
     with ThreadPoolExecutor(_WORKERS) as pool:
-        for colour in moments.colours:
+        for colour in colours:
             list(pool.map(add, (colour[first::_WORKERS] for first in range(_WORKERS))))
         list(pool.map(lambda first: add_transpose(matrix, first, _WORKERS), range(_WORKERS)))
-    return matrix
 
 
 def currents(matrix: Complexes, excitations: Complexes) -> Complexes:
@@ -185,7 +204,7 @@ def _near(
 
     starts, sources, kinds = find_near(basis.corners, triangles)
     pairs = np.column_stack([np.repeat(np.arange(basis.triangles), np.diff(starts)), sources])
-    terms, plain = _near_terms(basis, pairs, kinds, (1.0, 0.0))
+    terms, plain = pair_terms(basis, pairs, kinds, (1.0, 0.0))
     here, there = sheets[pairs[:, 0]], sheets[pairs[:, 1]]
     charges = images.direct[here, there][:, None] * plain
     for own, other in np.ndindex(FACES, FACES):
@@ -193,14 +212,31 @@ def _near(
         for i in range(images.starts[own, other], images.stops[own, other]):
             if images.weights[i] != 0.0:
                 image = images.turns[i], images.shifts[i]
-                near, kinds = _near_image(basis.corners, pairs[chosen], image)
-                _, more = _near_terms(basis, pairs[chosen[near]], kinds, image)
+                near, kinds = near_image(basis.corners, pairs[chosen], image)
+                _, more = pair_terms(basis, pairs[chosen[near]], kinds, image)
                 charges[chosen[near], 0] += images.weights[i] * more[:, 0]
     return starts, sources, terms, charges
 
 
-def _near_image(corners: Floats, pairs: Ints, image: tuple[float, float]) -> tuple[Ints, Ints]:
-    """Pairs whose second triangle has its image near the first one, and how close they are."""
+def near_image(corners: Floats, pairs: Ints, image: tuple[float, float]) -> tuple[Ints, Ints]:
+    """Pairs whose second triangle has its image near the first one.
+
+    Parameters
+    ----------
+    corners : (t, 3, 3) ndarray of float
+        m.
+    pairs : (p, 2) ndarray of int
+        Triangles.
+    image : tuple of (float, float)
+        Turn and shift: heights of an image are turn z + shift, m.
+
+    Returns
+    -------
+    near : (q,) ndarray of int
+        Which pairs.
+    kinds : (q,) ndarray of int
+        How close, as `pair_terms` takes it.
+    """
     middles = corners.mean(axis=1)
     radii = np.linalg.norm(corners - middles[:, None], axis=2).max(axis=1)
     one, two = middles[pairs[:, 0]], middles[pairs[:, 1]] * (1.0, 1.0, image[0])
@@ -213,10 +249,26 @@ def _near_image(corners: Floats, pairs: Ints, image: tuple[float, float]) -> tup
     return near, np.where(flat, _TOUCHING, _APART)
 
 
-def _near_terms(
+def pair_terms(
     basis: Basis, pairs: Ints, kinds: Ints, image: tuple[float, float]
 ) -> tuple[Floats, Floats]:
-    """Terms of currents and of charges of pairs of triangles, the second at its image."""
+    """Near terms of pairs of triangles, the second at its image.
+
+    Parameters
+    ----------
+    basis : Basis
+    pairs : (p, 2) ndarray of int
+    kinds : (p,) ndarray of int
+        How close.
+    image : tuple of (float, float)
+        Turn and shift: heights of an image are turn z + shift, m; (1, 0) for itself.
+
+    Returns
+    -------
+    currents : (p, 2, 3, 3) ndarray of float
+    charges : (p, 2) ndarray of float
+        As `core.fullwave.compiled_near.near_terms` writes them.
+    """
     from core.fullwave.compiled_near import near_terms  # noqa: PLC0415 - slow to load
 
     turn, lift = image
@@ -237,8 +289,18 @@ def _runs(sheets: Ints) -> Ints:
     return np.column_stack([first, np.append(first[1:], len(sheets)), sheets[first]])
 
 
-def _overlaps(basis: Basis) -> Floats:
-    """Integrals (t, 3, 3) of f_a . f_b over each triangle."""
+def half_overlaps(basis: Basis) -> Floats:
+    """Integrals of f_a . f_b over each triangle.
+
+    Parameters
+    ----------
+    basis : Basis
+
+    Returns
+    -------
+    (t, 3, 3) ndarray of float
+        m².
+    """
     rule = triangle_rule(2)
     arms = np.einsum("qc,tcx->tqx", rule[:, :3], basis.corners)[:, :, None] - basis.corners[:, None]
     means = np.einsum("q,tqax,tqbx->tab", rule[:, 3], arms, arms)
@@ -246,8 +308,18 @@ def _overlaps(basis: Basis) -> Floats:
     return np.asarray(means * half[:, :, None] * half[:, None, :] / basis.areas[:, None, None])
 
 
-def _functions(basis: Basis) -> tuple[Ints, Ints, Floats, Ints, Ints]:
-    """Functions by half, with signs."""
+def half_functions(basis: Basis) -> tuple[Ints, Ints, Floats, Ints, Ints]:
+    """Functions by half, with signs.
+
+    Parameters
+    ----------
+    basis : Basis
+
+    Returns
+    -------
+    tuple
+        As `core.fullwave.compiled.add_free_space` takes it.
+    """
     halves = np.concatenate([basis.plus, basis.minus])
     numbers = np.tile(np.arange(basis.count), 2)
     signs = np.repeat([1.0, -1.0], basis.count)
@@ -256,8 +328,17 @@ def _functions(basis: Basis) -> tuple[Ints, Ints, Floats, Ints, Ints]:
     return starts, numbers[order], signs[order], basis.plus, basis.minus
 
 
-def _colours(basis: Basis) -> tuple[Ints, ...]:
-    """Triangles by colour, so that no two of a colour share a function."""
+def triangle_colours(basis: Basis) -> tuple[Ints, ...]:
+    """Triangles by colour, so that no two of a colour share a function.
+
+    Parameters
+    ----------
+    basis : Basis
+
+    Returns
+    -------
+    tuple of (...,) ndarray of int
+    """
     neighbours: list[list[int]] = [[] for _ in range(basis.triangles)]
     one, two = basis.plus % basis.triangles, basis.minus % basis.triangles
     # A common triangle of a junction keeps all of its partners apart from itself only; two

@@ -52,11 +52,12 @@ _ENGINE: Final = "field"
 MOST_AIR_LIKE: Final = 1.5
 """Thickness-averaged permittivity up to which the finite plate is meshed in free space."""
 
+_UNBALANCED = 0.02  # share of the power that may go missing in free space
 _TOLERANCE = 2e-3  # of reflection coefficient and field ratio in a sweep
-_BALANCE = 0.01  # of the power accepted
-_MODE_REACH = 1.05  # how far beyond the solved band a pole still means something
+_MODE_REACH = 1.3  # ratio to the brief's frequency within which a pole is a mode of the element
 _LOWEST_Q, _HIGHEST_Q = 2.0, 2000.0
 _SEEN = 0.15  # least height of a mode's peak over what is usual in the band
+_APART = 0.5  # least distance of two modes of one direction, in half a width
 _BESIDE = 1e-7  # of a pole, to take its residue at
 
 
@@ -107,7 +108,7 @@ def respond(
         reference_impedance=impedance,
         sweep=_samples(wanted, sweep, solver, impedance),
         spot=at_spot,
-        modes=_modes(sweep, band),
+        modes=_modes(sweep, layout.frequency),
         directivity=gain / float(at_spot.efficiency),
         cuts=tuple(_cut(solver, phi) for phi in (0.0, pi / 2)),
         front_to_back=solver.front_to_back(),
@@ -178,23 +179,23 @@ class _FreeSpace(_Solver):
         return float(front / back)
 
     def doubts(self) -> dict[Reading, Trust]:
-        """What the power balance says against the solution: nothing, unless it is broken."""
-        spot, system = self.spot, self.system
-        radiated = sphere_power(
-            lambda towards: radiated_field(system, spot.currents, spot.frequency, towards),
-            spot.frequency,
-            float(np.ptp(system.mesh.vertices, axis=0).max()),
+        frequency = self.spot.frequency
+        sent = sphere_power(
+            lambda towards: radiated_field(self.system, self.spot.currents, frequency, towards),
+            frequency,
+            float(np.ptp(self.system.mesh.vertices, axis=0).max()),
         )
-        missing = 1.0 - spot.lost - radiated / (spot.admittance.real / 2.0)
-        if abs(missing) <= _BALANCE:
+        missing = abs(1.0 - self.spot.lost - 2.0 * sent / self.spot.admittance.real)
+        if missing < _UNBALANCED:
             return {}
-        quality = mesh_quality(system.mesh)
+        quality = mesh_quality(self.system.mesh)
         reason = (
-            f"the power does not balance by {100.0 * missing:.1f} % on a mesh of "
+            f"{100.0 * missing:.0f} % of the power that goes in is not found again, on "
             f"{quality.triangles} triangles with angles down to "
-            f"{np.degrees(quality.smallest_angle):.0f} degrees: it is too coarse"
+            f"{np.degrees(quality.smallest_angle):.0f} degrees"
         )
-        return dict.fromkeys(Reading, Trust(TrustLevel.ROUGH, reason, "choose a finer mesh"))
+        doubt = Trust(TrustLevel.ROUGH, reason, "a thinner or lighter spacer is told better")
+        return dict.fromkeys((Reading.GAIN, Reading.EFFICIENCY, Reading.PATTERN), doubt)
 
 
 @dataclass(frozen=True, eq=False)
@@ -268,7 +269,7 @@ def _smooth(solved: Floats, values: Floats, wanted: Floats) -> Floats:
     return np.asarray(np.polynomial.polynomial.polyval((wanted - middle) / half, cubic))
 
 
-def _modes(sweep: Sweep, band: tuple[float, float]) -> tuple[Mode, ...]:
+def _modes(sweep: Sweep, frequency: float) -> tuple[Mode, ...]:
     """Natural resonances with the port open: poles of the impedance.
 
     exp(j omega t) dies away for poles above the real axis; f = f_r (sqrt(1 - 1/4Q²) + j/2Q).
@@ -279,20 +280,31 @@ def _modes(sweep: Sweep, band: tuple[float, float]) -> tuple[Mode, ...]:
     fit = fit_rational(sweep.frequencies, opened, (count * quantities + 1) // (quantities + 1))
     usual = np.sqrt(np.mean(np.abs(opened) ** 2, axis=0))
     usual[1:] = np.linalg.norm(usual[1:])
-    modes = []
-    low, high = band
+    found: list[tuple[float, complex, str]] = []
     for pole in fit.poles():
         size = abs(pole)
-        if pole.imag <= 0.0 or not low / _MODE_REACH < size < high * _MODE_REACH:
+        if pole.imag <= 0.0 or not 1.0 / _MODE_REACH < size / frequency < _MODE_REACH:
             continue
-        quality = size / (2.0 * pole.imag)
         step = _BESIDE * size
         peak = np.abs(fit.at(np.array([pole + step]))[0]) * step / pole.imag / usual
+        strength = max(peak[0], float(np.linalg.norm(peak[1:])))
         # What is hardly excited is there by the mesh's want of symmetry alone.
-        if _LOWEST_Q < quality < _HIGHEST_Q and max(peak[0], np.linalg.norm(peak[1:])) > _SEEN:
-            name = "along x" if peak[1] > peak[2] else "along y"
-            modes.append(Mode(name, float(size), float(quality)))
-    return tuple(modes)
+        if _LOWEST_Q < size / (2.0 * pole.imag) < _HIGHEST_Q and strength > _SEEN:
+            found.append((strength, pole, "along x" if peak[1] > peak[2] else "along y"))
+    return tuple(_mode(pole, name) for pole, name in _told_apart(found))
+
+
+def _told_apart(found: list[tuple[float, complex, str]]) -> list[tuple[complex, str]]:
+    """Poles and names by rising frequency, the strongest of those that run into one."""
+    kept: list[tuple[complex, str]] = []
+    for _, pole, name in sorted(found, key=lambda one: -one[0]):
+        if all(name != other or abs(pole - at) > _APART * at.imag for at, other in kept):
+            kept.append((pole, name))
+    return sorted(kept, key=lambda one: abs(one[0]))
+
+
+def _mode(pole: complex, name: str) -> Mode:
+    return Mode(name, float(abs(pole)), float(abs(pole) / (2.0 * pole.imag)))
 
 
 def _cut(solver: _Solver, phi: float) -> PatternCut:

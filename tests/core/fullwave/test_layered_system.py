@@ -6,18 +6,20 @@ from pathlib import Path
 import numpy as np
 import pytest
 from board_shapes import IDEAL, board_dual_edge, board_patch
-from fullwave_shapes import grid, moments_of, probe_patch
+from fullwave_shapes import grid, moments_of, probe_patch, stripline_design
 
 from core.constants import SPEED_OF_LIGHT, TWO_PI
+from core.fullwave.far_field import direction_frame
 from core.fullwave.kernel_table import plan_tables
-from core.fullwave.layered_fields import power_into_space, power_into_waves
+from core.fullwave.layered_fields import power_into_space, power_into_waves, space_field
 from core.fullwave.layered_mesh import BoardMesh, build_board_mesh
 from core.fullwave.layered_moments import board_basis, build_layered_moments, layered_matrix
 from core.fullwave.layered_system import board_currents, build_layered_system, solve_layered
 from core.fullwave.mesh import Level, build_mesh
 from core.fullwave.mesh_model import CoaxRing
 from core.fullwave.moments import impedance_matrix
-from core.fullwave.system import build_system, solve
+from core.fullwave.system import build_system, radiated_field, solve
+from core.layout.build import build_layout
 from core.lines.stack import Layer
 
 PUBLISHED = Path(__file__).parents[2] / "published" / "patch_resonance.toml"
@@ -74,6 +76,26 @@ def test_air_board_is_a_patch_over_a_large_plate():
         assert abs(difference) < 0.03
 
 
+def test_air_board_sends_as_copper_over_a_large_plate():
+    # Its rim adds ripples of about a tenth.
+    layout = build_layout(
+        stripline_design("air:6mm", 300, (52, 49), (24, 4, 2), (23, 4, 4), (2, 62), 28)
+    )
+    finite = build_system(build_mesh(layout, Level.COARSE), IDEAL)
+    endless = built(layout, Level.COARSE, 2.5e9)
+    one, other = solve(finite, 2.45e9), solve_layered(endless, 2.45e9)
+    assert other.e_y / other.e_x == pytest.approx(one.e_y / one.e_x, abs=0.15)
+    theta = np.radians([-30.0, 0.0, 30.0])
+    flowing = board_currents(endless, other.currents, 2.45e9)
+    for phi in (0.0, 1.0, 2.5):
+        towards, along_theta, along_phi = direction_frame(theta, phi)
+        field = radiated_field(finite, one.currents, 2.45e9, towards)
+        found = space_field(flowing, theta, np.full(3, phi))
+        for along, mine in zip((along_theta, along_phi), found, strict=True):
+            expected = np.sum(field * along, axis=1)
+            assert mine / mine[1] == pytest.approx(expected / expected[1], abs=0.2)
+
+
 @pytest.mark.parametrize("name", BOARDS)
 def test_power_in_is_power_out(name):
     layout, layers, middle = BOARDS[name]
@@ -84,6 +106,23 @@ def test_power_in_is_power_out(name):
         flowing = board_currents(system, solution.currents, frequency)
         sent = power_into_space(flowing) + power_into_waves(flowing)
         assert sent / (solution.admittance.real / 2.0) == pytest.approx(1.0, abs=2e-3)
+
+
+@pytest.mark.parametrize("number", range(20))
+def test_power_of_patches_drawn_by_lot(number):
+    draw = np.random.default_rng(number)
+    frequency, eps_r = 10.0 ** draw.uniform(9.0, 10.0), round(draw.uniform(2.0, 10.5), 3)
+    inside = SPEED_OF_LIGHT / frequency / eps_r**0.5
+    height = inside * 10.0 ** draw.uniform(-2.3, -0.9)
+    width, length = inside * draw.uniform(0.35, 0.7), inside * draw.uniform(0.36, 0.49)
+    layout = board_patch(width, length, height, eps_r, frequency, draw.uniform(0.08, 0.4))
+    system = built(layout, Level.COARSE, frequency, (Layer(height, eps_r),))
+    solution = solve_layered(system, frequency)
+    flowing = board_currents(system, solution.currents, frequency)
+    accepted = solution.admittance.real / 2.0
+    assert accepted > 0.0
+    guided = power_into_waves(flowing) / accepted
+    assert 1.0 - solution.lost + guided == pytest.approx(1.0, abs=5e-3)
 
 
 @pytest.mark.parametrize("name", ["ceramic", "three layers"])
