@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING, Any
 
 from app.verbs.arguments import VerbParser, unknown_word
 from app.verbs.output import table
-from core.engines import ENGINES
+from core.engines import ENGINES, LEVELS
 from core.materials.table import folded
 
 if TYPE_CHECKING:
@@ -22,9 +22,19 @@ def add_engine(parser: VerbParser, names: Collection[str] = tuple(ENGINES)) -> N
     parser.add_argument(
         "--engine",
         metavar="NAME",
-        type=partial(_engine, names=names),
+        type=partial(_known, names=names, what="engine"),
         default=next(iter(names)),
         help=f"what works it out: {' or '.join(names)}",
+    )
+
+
+def add_mesh(parser: VerbParser) -> None:
+    """Give a verb the choice of how fine the field solver's mesh is."""
+    parser.add_argument(
+        "--mesh",
+        metavar="LEVEL",
+        type=partial(_known, names=LEVELS, what="mesh"),
+        help=f"mesh of the field solver: {', '.join(LEVELS)}; normal if left out",
     )
 
 
@@ -56,9 +66,9 @@ def _cure(trust: Trust) -> str:
     return f"; {trust.remedy}" if trust.remedy else ""
 
 
-def _engine(text: str, names: Collection[str]) -> str:
-    """Name of an engine, however it is spelled."""
+def _known(text: str, names: Collection[str], what: str) -> str:
+    """One of a few names, however it is spelled."""
     for name in names:
         if folded(name) == folded(text):
             return name
-    raise argparse.ArgumentTypeError(unknown_word(text, names, "engine"))
+    raise argparse.ArgumentTypeError(unknown_word(text, names, what))

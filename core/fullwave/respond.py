@@ -13,7 +13,9 @@ from typing import TYPE_CHECKING, ClassVar, Final
 import numpy as np
 
 from core.constants import FREE_SPACE_IMPEDANCE
+from core.errors import InputError
 from core.fullwave.far_field import direction_frame, sphere_power
+from core.fullwave.far_sphere import full_sphere, half_sphere
 from core.fullwave.layered_fields import BoardCurrents, power_into_waves, space_field
 from core.fullwave.layered_mesh import build_board_mesh
 from core.fullwave.layered_system import (
@@ -24,28 +26,32 @@ from core.fullwave.layered_system import (
 )
 from core.fullwave.layered_trust import rim_doubts
 from core.fullwave.mesh import Level, build_mesh
-from core.fullwave.mesh_model import mesh_quality
+from core.fullwave.mesh_model import Sheet
+from core.fullwave.mesh_report import coarse_doubts, mesh_report
 from core.fullwave.rational import fit_rational
 from core.fullwave.sweep import Sweep, adaptive_sweep
 from core.fullwave.system import Solution, System, build_system, radiated_field, solve
 from core.lines.stack import series_permittivity
 from core.response.model import (
+    FarSphere,
     Mode,
-    PatternCut,
     Reading,
     Response,
     Samples,
     Trust,
     TrustLevel,
 )
+from core.response.sphere import pattern_cut
 
 if TYPE_CHECKING:
     from numpy.typing import ArrayLike, NDArray
 
     from core.layout.model import Layout
+    from core.layout.tail import Tail
     from core.progress import Progress
 
     Floats = NDArray[np.float64]
+    Ints = NDArray[np.int64]
     Complexes = NDArray[np.complex128]
 
 _ENGINE: Final = "field"
@@ -62,7 +68,11 @@ _BESIDE = 1e-7  # of a pole, to take its residue at
 
 
 def respond(
-    layout: Layout, frequencies: ArrayLike, progress: Progress, level: Level = Level.NORMAL
+    layout: Layout,
+    frequencies: ArrayLike,
+    progress: Progress,
+    level: Level = Level.NORMAL,
+    tail: Tail | None = None,
 ) -> Response:
     """Response of a layout by a full-wave solution.
 
@@ -75,6 +85,8 @@ def respond(
         Told after each solved frequency; may cancel.
     level : Level
         Fineness of the mesh.
+    tail : Tail, optional
+        A cable behind the ground plate to solve with it.
 
     Returns
     -------
@@ -84,6 +96,8 @@ def respond(
     ------
     ModelError
         If the stack is outside what the solver covers.
+    InputError
+        If a tail is asked for over an endless ground.
     ConvergenceError
         If the sweep does not settle.
     Cancelled
@@ -91,7 +105,7 @@ def respond(
     """
     wanted = np.asarray(frequencies, dtype=np.float64)
     band = (min(wanted[0], layout.frequency), max(wanted[-1], layout.frequency))
-    solver = _solver(layout, level, band[1])
+    solver = _solver(layout, level, band[1], tail)
     impedance = layout.ports[0].impedance
     sweep = adaptive_sweep(
         solver.quantities,
@@ -102,6 +116,9 @@ def respond(
         progress,
     )
     at_spot = _samples(np.array([layout.frequency]), sweep, solver, impedance).at(0)
+    sphere = solver.sphere()
+    report = mesh_report(*solver.meshed, level, (band[1], layout.stack))
+    doubts = solver.doubts(), coarse_doubts(report, band[1], layout.frequency)
     gain = abs(complex(at_spot.e_x)) ** 2 + abs(complex(at_spot.e_y)) ** 2
     return Response(
         engine=_ENGINE,
@@ -110,9 +127,11 @@ def respond(
         spot=at_spot,
         modes=_modes(sweep, layout.frequency),
         directivity=gain / float(at_spot.efficiency),
-        cuts=tuple(_cut(solver, phi) for phi in (0.0, pi / 2)),
-        front_to_back=solver.front_to_back(),
-        trust=_trust(level, sweep) | solver.doubts(),
+        cuts=tuple(pattern_cut(sphere, phi) for phi in (0.0, pi / 2)),
+        front_to_back=_front_to_back(sphere),
+        trust=_trust(level, sweep, doubts),
+        sphere=sphere,
+        mesh=report,
     )
 
 
@@ -136,21 +155,23 @@ class _Solver(ABC):
         return np.array([solution.admittance, solution.e_x * volts, solution.e_y * volts])
 
     @property
+    def scale(self) -> float:
+        """Of far fields of the solved spot, V, that makes gains of their squares."""
+        accepted = self.spot.admittance.real
+        return float(np.sqrt(4.0 * pi / (FREE_SPACE_IMPEDANCE * accepted)))
+
+    @property
     @abstractmethod
-    def angles(self) -> Floats:
-        """Angles from boresight at which there is a far field, rad."""
+    def meshed(self) -> tuple[Floats, Ints, int]:
+        """Corners of the triangles (t, 3, 3), m, their sheets (t,) and the unknowns."""
 
     @abstractmethod
     def solve(self, frequency: float) -> Solution:
         """Solution at one frequency."""
 
     @abstractmethod
-    def pattern(self, phi: float) -> tuple[Complexes, Complexes]:
-        """Far field along theta and phi at the angles in one plane, V."""
-
-    @abstractmethod
-    def front_to_back(self) -> float | None:
-        """Power at boresight over that straight behind, where there is a behind."""
+    def sphere(self) -> FarSphere:
+        """Far field in all directions."""
 
     @abstractmethod
     def doubts(self) -> dict[Reading, Trust]:
@@ -162,21 +183,24 @@ class _FreeSpace(_Solver):
     """Copper in free space, its ground plate as large as it is."""
 
     system: System
-    angles: ClassVar[Floats] = np.radians(np.arange(-180.0, 181.0, 2.0))
+
+    @property
+    def meshed(self) -> tuple[Floats, Ints, int]:
+        basis = self.system.moments.basis
+        return basis.corners, self.system.mesh.sheet, basis.count
 
     def solve(self, frequency: float) -> Solution:
         return solve(self.system, frequency)
 
-    def pattern(self, phi: float) -> tuple[Complexes, Complexes]:
-        towards, along_theta, along_phi = direction_frame(self.angles, phi)
-        field = radiated_field(self.system, self.spot.currents, self.spot.frequency, towards)
-        return np.sum(field * along_theta, axis=1), np.sum(field * along_phi, axis=1)
+    def sphere(self) -> FarSphere:
+        def field(theta: Floats, phi: Floats) -> tuple[Complexes, Complexes]:
+            towards, along_theta, along_phi = direction_frame(theta, phi)
+            solved = radiated_field(self.system, self.spot.currents, self.spot.frequency, towards)
+            solved *= self.scale
+            return np.sum(solved * along_theta, axis=1), np.sum(solved * along_phi, axis=1)
 
-    def front_to_back(self) -> float:
-        ends = np.array([[0.0, 0.0, 1.0], [0.0, 0.0, -1.0]])
-        field = radiated_field(self.system, self.spot.currents, self.spot.frequency, ends)
-        front, back = np.sum(np.abs(field) ** 2, axis=1)
-        return float(front / back)
+        reach = float(np.linalg.norm(self.system.mesh.vertices, axis=1).max())
+        return full_sphere(field, self.spot.frequency, reach)
 
     def doubts(self) -> dict[Reading, Trust]:
         frequency = self.spot.frequency
@@ -188,12 +212,7 @@ class _FreeSpace(_Solver):
         missing = abs(1.0 - self.spot.lost - 2.0 * sent / self.spot.admittance.real)
         if missing < _UNBALANCED:
             return {}
-        quality = mesh_quality(self.system.mesh)
-        reason = (
-            f"{100.0 * missing:.0f} % of the power that goes in is not found again, on "
-            f"{quality.triangles} triangles with angles down to "
-            f"{np.degrees(quality.smallest_angle):.0f} degrees"
-        )
+        reason = f"{100.0 * missing:.0f} % of the power that goes in is not found again"
         doubt = Trust(TrustLevel.ROUGH, reason, "a thinner or lighter spacer is told better")
         return dict.fromkeys((Reading.GAIN, Reading.EFFICIENCY, Reading.PATTERN), doubt)
 
@@ -203,20 +222,30 @@ class _Board(_Solver):
     """Copper on a board, the board and its ground plane taken as infinite."""
 
     system: LayeredSystem
-    angles: ClassVar[Floats] = np.radians(np.arange(-88.0, 89.0, 2.0))
+    angles: ClassVar[Floats] = np.radians(np.arange(0.0, 89.0, 2.0))
 
     @property
     def _flowing(self) -> BoardCurrents:
         return board_currents(self.system, self.spot.currents, self.spot.frequency)
 
+    @property
+    def meshed(self) -> tuple[Floats, Ints, int]:
+        mesh, basis = self.system.mesh, self.system.moments.basis
+        sheets = np.full(len(mesh.triangles), int(Sheet.TOP))
+        return mesh.vertices[mesh.triangles], sheets, basis.count
+
     def solve(self, frequency: float) -> Solution:
         return solve_layered(self.system, frequency)
 
-    def pattern(self, phi: float) -> tuple[Complexes, Complexes]:
-        return space_field(self._flowing, self.angles, np.full(len(self.angles), phi))
+    def sphere(self) -> FarSphere:
+        flowing, scale = self._flowing, self.scale
 
-    def front_to_back(self) -> None:
-        return None
+        def field(theta: Floats, phi: Floats) -> tuple[Complexes, Complexes]:
+            e_theta, e_phi = space_field(flowing, theta, phi)
+            return scale * e_theta, scale * e_phi
+
+        reach = float(np.linalg.norm(self.system.mesh.vertices[:, :2], axis=1).max())
+        return half_sphere(field, self.spot.frequency, reach, self.angles)
 
     def doubts(self) -> dict[Reading, Trust]:
         accepted = self.spot.admittance.real / 2.0
@@ -225,12 +254,19 @@ class _Board(_Solver):
         )
 
 
-def _solver(layout: Layout, level: Level, highest: float) -> _Solver:
+def _solver(layout: Layout, level: Level, highest: float, tail: Tail | None) -> _Solver:
     """Solver that suits a layout's stack, up to a frequency (Hz)."""
     if series_permittivity(layout.stack) > MOST_AIR_LIKE:
-        mesh = build_board_mesh(layout, level)
-        return _Board(layout, build_layered_system(mesh, layout.stack, layout.foil, highest))
-    return _FreeSpace(layout, build_system(build_mesh(layout, level), layout.foil, layout.stack))
+        if tail is not None:
+            raise InputError(
+                "coax tail: a board's ground plane is solved as endless, and nothing behind it "
+                "is felt; accepted: a spacer of air, foam or card",
+                field="tail",
+            )
+        board = build_board_mesh(layout, level)
+        return _Board(layout, build_layered_system(board, layout.stack, layout.foil, highest))
+    mesh = build_mesh(layout, level, tail)
+    return _FreeSpace(layout, build_system(mesh, layout.foil, layout.stack))
 
 
 def _apart(one: Complexes, other: Complexes, impedance: float) -> Floats:
@@ -307,17 +343,27 @@ def _mode(pole: complex, name: str) -> Mode:
     return Mode(name, float(abs(pole)), float(abs(pole) / (2.0 * pole.imag)))
 
 
-def _cut(solver: _Solver, phi: float) -> PatternCut:
-    """Pattern in a plane through boresight, as far round as there is a field."""
-    e_theta, e_phi = solver.pattern(phi)
-    scale = np.sqrt(4.0 * pi / (FREE_SPACE_IMPEDANCE * solver.spot.admittance.real))
-    return PatternCut(phi, solver.angles, e_theta * scale, e_phi * scale)
+def _front_to_back(sphere: FarSphere) -> float | None:
+    """Power at boresight over that straight behind, where there is a behind."""
+    if sphere.theta[-1] < pi:
+        return None
+    power = np.abs(sphere.e_theta[:, 0]) ** 2 + np.abs(sphere.e_phi[:, 0]) ** 2
+    return float(power[0] / power[-1])
 
 
-def _trust(level: Level, sweep: Sweep) -> dict[Reading, Trust]:
+def _trust(
+    level: Level, sweep: Sweep, doubts: tuple[dict[Reading, Trust], ...]
+) -> dict[Reading, Trust]:
+    """Trust in every reading: what is doubted most."""
     reason = (
         f"full-wave solution on the {level.value} mesh, {len(sweep.frequencies)} frequencies "
         f"solved, the fit between them true to {sweep.error:.1g}"
     )
     grade = TrustLevel.ROUGH if level is Level.COARSE else TrustLevel.GOOD
-    return dict.fromkeys(Reading, Trust(grade, reason))
+    trust = dict.fromkeys(Reading, Trust(grade, reason))
+    order = list(TrustLevel)
+    for some in doubts:
+        for reading, doubt in some.items():
+            if order.index(doubt.level) >= order.index(trust[reading].level):
+                trust[reading] = doubt
+    return trust
