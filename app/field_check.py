@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from contextlib import suppress
 from dataclasses import dataclass, replace
 from importlib.metadata import version
 from typing import TYPE_CHECKING, Final, Protocol
@@ -9,8 +10,11 @@ from typing import TYPE_CHECKING, Final, Protocol
 from PySide6.QtCore import QObject, QTimer, Signal
 
 from app.jobs.runner import Request
+from core.engines import NEXT_COARSER
+from core.errors import ModelError
 from core.response.bands import frequency_grid
 from core.response.judge import judge
+from core.response.spread import with_spread
 
 if TYPE_CHECKING:
     from numpy.typing import ArrayLike
@@ -21,6 +25,7 @@ if TYPE_CHECKING:
     from app.settings import Settings
     from core.errors import CoreError
     from core.layout.model import Layout
+    from core.layout.tail import Tail
     from core.progress import Progress
     from core.response.model import Response
 
@@ -31,10 +36,15 @@ _PREPARING: Final = "Preparing the field check…"
 
 
 class Solve(Protocol):
-    """A field solver: takes a layout, frequencies (Hz), a listener and a level of mesh."""
+    """A field solver: takes a layout, frequencies (Hz), a listener, a level of mesh, a cable."""
 
     def __call__(
-        self, layout: Layout, frequencies: ArrayLike, progress: Progress, level: str
+        self,
+        layout: Layout,
+        frequencies: ArrayLike,
+        progress: Progress,
+        level: str,
+        tail: Tail | None = None,
     ) -> Response: ...
 
 
@@ -118,11 +128,12 @@ class FieldCheck(QObject):
         if not self.is_on or current.layout is None or self._is_done():
             return
         level = COARSE if self._is_held else str(self._settings.value("mesh_level"))
+        known = self.current
         self._tell(busy="Field check: first frequency" if self._is_ready else _PREPARING)
         self._runner.start(
             Request(
                 KIND,
-                lambda progress: _checked(current, level, self._solve, progress),
+                lambda progress: _checked(current, level, self._solve, progress, known),
                 self._on_checked,
                 lambda error: self._tell(problem=_reason(error)),
                 self._on_stepped,
@@ -191,16 +202,6 @@ class FieldCheck(QObject):
         self._tell()
 
 
-def solve_by_mesh(
-    layout: Layout, frequencies: ArrayLike, progress: Progress, level: str
-) -> Response:
-    """Solve with the field solver, which is loaded when it is first asked."""
-    from core.fullwave.mesh import Level  # noqa: PLC0415 - takes half a second
-    from core.fullwave.respond import respond  # noqa: PLC0415
-
-    return respond(layout, frequencies, progress, Level(level))
-
-
 def _reason(error: CoreError) -> str:
     return str(error).removeprefix("field solver: ")
 
@@ -217,11 +218,37 @@ class _Counted:
         self._progress.step(done, total)
 
 
-def _checked(current: Evaluation, level: str, solve: Solve, progress: Progress) -> Checked:
-    """Solve a design at the frequencies of the curves and hold it against its brief."""
-    assert current.layout is not None
-    brief, counted = current.design.brief, _Counted(progress)
-    response = solve(current.layout, frequency_grid(brief.frequency), counted, level)
+class _Before:
+    """Passes on that work goes on, as long as what is counted has not begun."""
+
+    def __init__(self, progress: Progress) -> None:
+        self._progress = progress
+
+    def step(self, _done: int, total: int) -> None:
+        self._progress.step(0, total)
+
+
+def _checked(
+    current: Evaluation, level: str, solve: Solve, progress: Progress, known: Checked | None
+) -> Checked:
+    """Solve a design at the frequencies of the curves and hold it against its brief.
+
+    On the next coarser mesh too, if that is not known already: how far the two differ is told.
+    """
+    layout, brief, counted = current.layout, current.design.brief, _Counted(progress)
+    assert layout is not None
+    frequencies = frequency_grid(brief.frequency)
+    coarser = NEXT_COARSER.get(level)
+    other = None
+    if known is not None and known.level == coarser:
+        other = known.evaluation.response
+    elif coarser is not None:
+        # The finer mesh may do where this one does not; then its readings have no plus and minus.
+        with suppress(ModelError):
+            other = solve(layout, frequencies, _Before(progress), coarser)
+    response = solve(layout, frequencies, counted, level)
+    if other is not None and coarser is not None:
+        response = with_spread(response, other, coarser, brief.polarisation)
     verdicts = judge(response, brief.polarisation, brief.vswr, brief.axial_ratio_db)
     evaluation = replace(current, response=response, verdicts=verdicts, problem="")
     return Checked(evaluation, level, counted.count)

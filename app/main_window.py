@@ -12,7 +12,7 @@ from app.actions import make_actions
 from app.curves.panel import CurvesPanel
 from app.dialogs.preferences import PreferencesDialog
 from app.document import Document
-from app.field_check import FieldCheck, Solve, solve_by_mesh
+from app.field_check import FieldCheck, Solve
 from app.mat.mat import Mat
 from app.menus import add_file_menus
 from app.pipeline import Pipeline
@@ -22,12 +22,14 @@ from app.presenters.mat_presenter import MatPresenter
 from app.presenters.readings_presenter import ReadingsPresenter
 from app.presenters.sizing import SizingPresenter
 from app.recovery import Recovery
+from app.tail_check import TailCheck
 from app.views.card_column import CardColumn
 from app.views.header import Header
 from app.views.notice_bar import NoticeBar
 from app.views.readings_view import ReadingsView
 from app.wiring import connect_actions, connect_views, place_words
 from core.design.defaults import default_design
+from core.engines import respond_on_mesh
 
 if TYPE_CHECKING:
     from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent
@@ -55,7 +57,7 @@ class MainWindow(QMainWindow):
         runner: Runner,
         folder: Path,
         asker: WindowAsks | None = None,
-        solve: Solve = solve_by_mesh,
+        solve: Solve = respond_on_mesh,
     ) -> None:
         super().__init__()
         self.settings, self.runner = settings, runner
@@ -63,6 +65,7 @@ class MainWindow(QMainWindow):
         self.document = Document(default_design(), self)
         self.pipeline = Pipeline(self.document)
         self.field = FieldCheck(self.pipeline, settings, runner, solve)
+        self.tail = TailCheck(self.pipeline, self.field, runner, solve)
         self.window_actions = make_actions(self, self.document.stack)
         self._make_views()
         self._make_presenters()
@@ -118,6 +121,7 @@ class MainWindow(QMainWindow):
         geometry = bytes(self.saveGeometry().toBase64().data()).decode()
         self.settings.set("geometry", geometry)
         self.field.close()
+        self.tail.close()
         self.runner.close()
         self.recovery.close()
         super().closeEvent(event)
@@ -158,7 +162,7 @@ class MainWindow(QMainWindow):
         self.cards_presenter = CardsPresenter(document, self.cards)
         self.mat_presenter = MatPresenter(document, pipeline, self.mat)
         self.readings_presenter = ReadingsPresenter(
-            pipeline, self.field, self.settings, self.readings, self.curves
+            pipeline, self.field, self.settings, self.readings, self.curves, self.tail
         )
         self.sizing = SizingPresenter(
             document, self.runner, self.mat_presenter, self.readings_presenter, self.notices

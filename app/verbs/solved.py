@@ -12,7 +12,7 @@ from app.verbs.output import table
 from app.verbs.response_record import cut_records, sphere_record, tail_record
 from core.engines import FIELD, NEXT_COARSER, respond_on_mesh
 from core.layout.tail import coax_tail
-from core.response.change import change_text
+from core.response.change import change_details, change_text
 from core.response.sphere import pattern_cut
 from core.response.spread import with_spread
 from core.units import Quantity, format_quantity
@@ -170,8 +170,10 @@ def solved_text(answer: Solved, wanted: Asked, brief: Brief) -> str:
     response = answer.response
     parts = []
     if answer.hung is not None and wanted.tail is not None:
-        change = change_text(response, answer.hung, brief.polarisation)
-        parts.append(f"{tail_words(wanted.tail)}\n  {change}\n")
+        both = response, answer.hung, brief.polarisation
+        parts.append(
+            f"{_tail_words(wanted.tail)}\n  {change_text(*both)}\n  {change_details(*both)}\n"
+        )
     if response.sphere is not None:
         parts += [_cut_text(pattern_cut(response.sphere, phi)) for phi in wanted.azimuths]
     if wanted.wants_mesh and response.mesh is not None:
@@ -181,7 +183,7 @@ def solved_text(answer: Solved, wanted: Asked, brief: Brief) -> str:
     return "\n".join(parts)
 
 
-def tail_words(tail: Tail) -> str:
+def _tail_words(tail: Tail) -> str:
     """What a coax tail is."""
     long, thick = (_mm(one) for one in (tail.length, tail.diameter))
     words = f"With a coax tail {long} long and {thick} thick"

@@ -96,7 +96,7 @@ def change_text(one: Response, other: Response, polarisation: Polarisation) -> s
     Returns
     -------
     str
-        Whole sentences.
+        One sentence on match, axial ratio, gain and pattern.
     """
     moved = change(one, other, polarisation)
     here, there = one.spot, other.spot
@@ -107,6 +107,27 @@ def change_text(one: Response, other: Response, polarisation: Polarisation) -> s
         )
     gains = (float(spot.gain_dbi(polarisation)) for spot in (here, there))
     parts.append("gain {:.1f} to {:.1f} dBi".format(*gains))
+    if moved.pattern_db is not None:
+        parts.append(f"pattern by up to {moved.pattern_db:.1f} dB")
+    return f"{', '.join(parts)}."
+
+
+def change_details(one: Response, other: Response, polarisation: Polarisation) -> str:
+    """Tell what else changes from one response to another at the brief's frequency.
+
+    Parameters
+    ----------
+    one, other : Response
+        Before and after.
+    polarisation : Polarisation
+        Asked for.
+
+    Returns
+    -------
+    str
+        One sentence on reflection, beam and what goes backwards.
+    """
+    parts = [f"S11 moves by {change(one, other, polarisation).s11:.3f}"]
     if one.sphere is not None and other.sphere is not None:
         tilts = (beam(sphere, polarisation).tilt for sphere in (one.sphere, other.sphere))
         tilt_texts = (format_quantity(tilt, Quantity.ANGLE, digits=2) for tilt in tilts)
@@ -114,10 +135,7 @@ def change_text(one: Response, other: Response, polarisation: Polarisation) -> s
     if one.front_to_back and other.front_to_back:
         levels = (10.0 * np.log10(each) for each in (one.front_to_back, other.front_to_back))
         parts.append("front to back {:.1f} to {:.1f} dB".format(*levels))
-    text = f"{', '.join(parts)}; S11 moves by {moved.s11:.3f}"
-    if moved.pattern_db is not None:
-        text += f", the pattern by up to {moved.pattern_db:.1f} dB where it is strong"
-    return f"{text}."
+    return f"{', '.join(parts)}."
 
 
 def _ratio(value: Floats) -> str:

@@ -22,6 +22,11 @@ if TYPE_CHECKING:
     from core.response.bands import Band
     from core.response.model import FarSphere, Response
 
+# Where a beam leans, seen from the front, by eighths of a turn from x.
+_WAYS = (
+    *("right", "up and right", "up", "up and left"),
+    *("left", "down and left", "down", "down and right"),
+)
 _STRAIGHT = np.radians(1.0)  # tilt of a beam that is still straight ahead
 _SLACK = 1e-9  # of a step, so that rounding up does not start from a rounding error
 
@@ -221,14 +226,15 @@ def _by_direction(sphere: FarSphere, polarisation: Polarisation) -> str:
             format_quantity(angle, Quantity.ANGLE, digits=digits)
             for angle, digits in ((found.tilt, 2), (found.azimuth, 3))
         )
-        parts = [f"Strongest {tilt} from straight ahead, towards {azimuth} from x"]
+        way = _WAYS[round(found.azimuth / (np.pi / 4.0)) % len(_WAYS)]
+        parts = [f"Strongest {tilt} {way} of straight ahead ({azimuth} from x)"]
     if polarisation is not Polarisation.LINEAR:
         worst = worst_axial_ratio_db(sphere, polarisation)
         cone = format_quantity(CONE, Quantity.ANGLE)
         if np.isinf(worst):
-            parts.append(f"within {cone} of it somewhere of the other sense")
+            parts.append(f"of the other sense somewhere within {cone}")
         else:
-            parts.append(f"axial ratio up to {_level(worst)} within {cone} of it")
+            parts.append(f"axial ratio up to {_level(worst)} within {cone}")
     return f"{'; '.join(parts)}."
 
 

@@ -7,14 +7,15 @@ from PySide6.QtGui import QAccessible
 
 from app.curves.legend import engine_words
 from app.dialogs.export import ExportDialog
-from app.field_check import KIND, FieldCheck, solve_by_mesh
+from app.field_check import KIND, FieldCheck
 from app.jobs.runner import InlineRunner, JobRunner
 from app.main_window import MainWindow
-from app.presenters.check_words import CANCEL, CHECK_NOW
+from app.presenters.check_words import CANCEL, CHECK_NOW, TRY_CABLE
+from app.tail_check import KIND as TAIL
 from app.window import dress
 from core.design import edit
 from core.design.defaults import default_design
-from core.engines import ENGINES, LIVE
+from core.engines import ENGINES, LIVE, respond_on_mesh
 from core.errors import ModelError
 from core.progress import SILENT
 from core.response.model import Reading, Trust, TrustLevel
@@ -24,19 +25,24 @@ class FakeSolver:
     """Answers like a field solver, from the live model; may refuse, or say what it is asked."""
 
     def __init__(self):
-        self.levels, self.designs = [], []
-        self.refusal = ""
+        self.levels, self.tails = [], []
+        self.behind = 20.0
+        self.refusal = self.refused = ""
         self.frequencies = 6
 
-    def __call__(self, layout, frequencies, progress, level):
+    def __call__(self, layout, frequencies, progress, level, tail=None):
         self.levels.append(level)
+        self.tails.append(tail)
         for done in range(self.frequencies):
             progress.step(done, 7)
+        if level == self.refused:
+            raise ModelError("this mesh is too coarse")
         if self.refusal:
             raise ModelError(self.refusal)
         known = Trust(TrustLevel.GOOD, "solved")
         trust = dict.fromkeys(Reading, known)
-        return replace(ENGINES[LIVE](layout, frequencies, SILENT), engine="field", trust=trust)
+        answer = ENGINES[LIVE](layout, frequencies, SILENT)
+        return replace(answer, engine="field", trust=trust, front_to_back=self.behind)
 
 
 class HeldRunner(InlineRunner):
@@ -163,7 +169,8 @@ def test_the_hand_gets_a_coarse_mesh_and_the_chosen_one_when_it_lets_go(
     assert "coarse" in engine(window)
     mouse.release()
     at_rest(window, runner, qtbot)
-    assert solver.levels == ["normal", "fine", "coarse", "fine"]
+    # Each on the next coarser mesh as well, to tell how far the two differ.
+    assert solver.levels == ["coarse", "normal", "fine", "coarse", "normal", "fine"]
     assert "fine mesh" in engine(window)
 
 
@@ -258,7 +265,7 @@ def test_the_line_is_named_for_screen_readers(window, runner):
 def test_a_tiny_design_is_solved_beside_the_window(open_window, qtbot):
     """One true solution in a thread: the answer comes back, and the window ends cleanly."""
     runner = JobRunner()
-    window = open_window(runner, solve_by_mesh)
+    window = open_window(runner, respond_on_mesh)
     window.settings.set("mesh_level", "coarse")
     small = edit.with_texts(
         default_design(),
@@ -271,6 +278,75 @@ def test_a_tiny_design_is_solved_beside_the_window(open_window, qtbot):
     # A lossless antenna radiates all it takes but what the foil turns to heat.
     assert 0.5 < float(response.spot.efficiency) <= 1.0
     assert engine(window).startswith("field solver, coarse mesh")
+
+
+def test_readings_carry_what_changes_from_the_coarser_mesh(window, runner, solver):
+    runner.run()
+    spread = window.field.current.evaluation.response.spread
+    assert (spread.against, solver.levels) == ("coarse", ["coarse", "normal"])
+    assert any("±" in line.words for line in window.readings._state.lines)
+
+
+def test_a_coarse_answer_of_the_same_design_is_not_solved_again(
+    window, runner, qtbot, hand, solver
+):
+    runner.run()
+    mouse = hand(window.mat.plan).press("element.width").move(6, 0)
+    at_rest(window, runner, qtbot)
+    solver.levels.clear()
+    mouse.release()
+    at_rest(window, runner, qtbot)
+    assert solver.levels == ["normal"]
+    assert window.field.current.evaluation.response.spread.against == "coarse"
+
+
+def test_where_only_the_finer_mesh_will_do_there_is_no_plus_and_minus(window, runner, solver):
+    solver.refused = "coarse"
+    runner.run()
+    assert window.field.current.evaluation.response.spread is None
+
+
+def test_a_cable_is_solved_when_it_is_asked_for(window, runner, solver):
+    runner.run()
+    check = window.readings.check
+    assert check.button.text() == TRY_CABLE
+    check.button.click()
+    assert check.button.text() == CANCEL
+    runner.run()
+    tail = solver.tails[-1]
+    assert tail.length == pytest.approx(0.5 * 299792458 / window.document.design.brief.frequency)
+    assert check.cable.startswith("With ")
+    assert "of cable: VSWR" in check.cable
+    assert not check.button.isVisible()
+    widen(window)
+    assert check.cable == ""
+    window.window_actions["undo"].trigger()
+    assert check.cable.startswith("With ")
+
+
+def test_an_edit_stops_the_cable(window, runner):
+    runner.run()
+    window.readings.check.button.click()
+    assert TAIL in runner.waiting
+    widen(window)
+    assert TAIL not in runner.waiting
+    assert not window.tail.is_busy
+
+
+def test_a_board_over_an_endless_ground_offers_no_cable(window, runner, solver):
+    solver.behind = None
+    runner.run()
+    assert window.readings.check.button.text() != TRY_CABLE
+
+
+def test_a_cable_that_cannot_be_solved_says_why(window, runner, solver):
+    runner.run()
+    window.readings.check.button.click()
+    solver.refusal = "coax tail: the cable reaches over the rim"
+    runner.run()
+    assert window.readings.check.cable == (
+        "No answer with a cable: coax tail: the cable reaches over the rim"
+    )
 
 
 def test_a_check_is_for_one_design_only(window, runner):
