@@ -68,9 +68,8 @@ def ring_excitation(mesh: Mesh, basis: Basis, ring: CoaxRing) -> Floats:
     mean = potential @ rule[:, 3]
     halves = basis.lengths * mean
     # From plate to pin the potential jumps by the voltage; no field stands behind that step.
-    below = plate | tail
-    on_plate, on_pin = below[basis.plus % basis.triangles], pin[basis.plus % basis.triangles]
-    to_plate, to_pin = below[basis.minus % basis.triangles], pin[basis.minus % basis.triangles]
+    on_plate, on_pin = plate[basis.plus % basis.triangles], pin[basis.plus % basis.triangles]
+    to_plate, to_pin = plate[basis.minus % basis.triangles], pin[basis.minus % basis.triangles]
     steps = (on_pin & to_plate).astype(float) - (on_plate & to_pin).astype(float)
     width = basis.lengths.reshape(-1)[basis.plus]
     return np.asarray(basis.tested(halves.astype(np.complex128)).real - steps * width)

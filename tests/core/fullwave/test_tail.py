@@ -143,6 +143,16 @@ def test_a_tail_feels_the_spacer_as_the_plate_does_where_it_leaves_it(sheet, hei
     assert abs(below) < abs(at_plate)
 
 
+def test_all_that_a_tail_sees_is_at_the_plate_or_above():
+    """Below the plate there is air: the potential has no source there but the tail itself."""
+    images = spacer_images(STACK)
+    for sheet, heights in ((Sheet.GROUND, [0.0]), (Sheet.PROBE, [0.0, 6e-3]), (Sheet.TOP, [6e-3])):
+        own = slice(images.starts[Sheet.TAIL, sheet], images.stops[Sheet.TAIL, sheet])
+        places = np.outer(heights, images.turns[own]) + images.shifts[own]
+        assert places.shape[1] > 1
+        assert places.min() >= 0.0
+
+
 def test_far_below_a_tail_feels_no_spacer():
     images = spacer_images(STACK)
     bare = np.hypot(0.01, 0.0)
