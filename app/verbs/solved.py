@@ -14,7 +14,7 @@ from core.engines import FIELD, NEXT_COARSER, respond_on_mesh
 from core.layout.tail import coax_tail
 from core.response.change import change_details, change_text
 from core.response.sphere import pattern_cut
-from core.response.spread import with_spread
+from core.response.spread import LEAST_SHIFT, with_spread
 from core.units import Quantity, format_quantity
 
 if TYPE_CHECKING:
@@ -179,7 +179,10 @@ def solved_text(answer: Solved, wanted: Asked, brief: Brief) -> str:
     if wanted.wants_mesh and response.mesh is not None:
         parts.append(_mesh_text(response.mesh))
     if response.spread is not None:
-        parts.append(f"± is what changes from the {response.spread.against} mesh to this one.\n")
+        against, shift = response.spread.against, 100.0 * LEAST_SHIFT
+        parts.append(
+            f"± is what changes from the {against} mesh to this one and with {shift:g} % of shift\n"
+        )
     return "\n".join(parts)
 
 

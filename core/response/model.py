@@ -259,9 +259,10 @@ class MeshReport:
 
 @dataclass(frozen=True)
 class Spread:
-    """How far readings at the brief's frequency move from a coarser mesh to this one.
+    """How far readings at the brief's frequency may be off: their plus and minus.
 
-    The plain difference, nothing taken off: the error left on this mesh is usually less.
+    How far they move from a coarser mesh to this one and with a little shift in frequency, as
+    `core.response.spread.with_spread` adds them up.
 
     Attributes
     ----------
