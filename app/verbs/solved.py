@@ -13,6 +13,8 @@ from app.verbs.response_record import cut_records, sphere_record, tail_record
 from core.engines import FIELD, NEXT_COARSER, respond_on_mesh
 from core.layout.tail import coax_tail
 from core.response.change import change_details, change_text
+from core.response.judge import SENSE_WORDS
+from core.response.polarisation import axial_ratio_db, intended_power, sense
 from core.response.sphere import pattern_cut
 from core.response.spread import LEAST_SHIFT, with_spread
 from core.units import Quantity, format_quantity
@@ -23,6 +25,7 @@ if TYPE_CHECKING:
     from numpy.typing import ArrayLike
 
     from core.design.model import Brief
+    from core.design.polarisation import Polarisation
     from core.layout.model import Layout
     from core.layout.tail import Tail
     from core.progress import Progress
@@ -30,6 +33,7 @@ if TYPE_CHECKING:
 
 _NORMAL: Final = "normal"
 _TEXT_STEP: Final = 10.0  # degrees between the lines of a cut
+_LINEAR: Final = 60.0  # dB
 
 
 @dataclass(frozen=True)
@@ -175,7 +179,8 @@ def solved_text(answer: Solved, wanted: Asked, brief: Brief) -> str:
             f"{_tail_words(wanted.tail)}\n  {change_text(*both)}\n  {change_details(*both)}\n"
         )
     if response.sphere is not None:
-        parts += [_cut_text(pattern_cut(response.sphere, phi)) for phi in wanted.azimuths]
+        cuts = [pattern_cut(response.sphere, phi) for phi in wanted.azimuths]
+        parts += [_cut_text(cut, brief.polarisation) for cut in cuts]
     if wanted.wants_mesh and response.mesh is not None:
         parts.append(_mesh_text(response.mesh))
     if response.spread is not None:
@@ -196,18 +201,21 @@ def _tail_words(tail: Tail) -> str:
     return f"{words}, {_mm(tail.drop)} back and then towards {azimuth} from x:"
 
 
-def _cut_text(cut: PatternCut) -> str:
+def _cut_text(cut: PatternCut, polarisation: Polarisation) -> str:
     """Table of a cut, every ten degrees."""
     every = np.abs(np.remainder(np.degrees(cut.theta) + 0.5, _TEXT_STEP) - 0.5) < 1e-6
-    rows = [("degrees", "dBi", "axial ratio")]
-    ratios = cut.axial_ratio_db
-    for theta, gain, ratio in zip(
-        np.degrees(cut.theta[every]), cut.gain_dbi[every], ratios[every], strict=True
-    ):
-        shown = f"{ratio:.1f} dB" if ratio < 60.0 else "over 60 dB"
-        rows.append((f"{theta:.0f}", f"{gain:.1f}", shown))
+    e_theta, e_phi = cut.e_theta[every], cut.e_phi[every]
+    gains = 10.0 * np.log10(intended_power(e_theta, e_phi, polarisation))
+    ratios = axial_ratio_db(e_theta, e_phi)
+    rows = [("degrees", "dBi", "axial ratio", "sense")]
+    for i, theta in enumerate(np.degrees(cut.theta[every])):
+        found = sense(complex(e_theta[i]), complex(e_phi[i]), polarisation)
+        shown = f"{ratios[i]:.1f} dB" if ratios[i] < _LINEAR else f"over {_LINEAR:g} dB"
+        word = "all but linear" if found is None else SENSE_WORDS[found]
+        rows.append((f"{theta:.0f}", f"{gains[i]:.1f}", shown, word))
     azimuth = format_quantity(cut.phi, Quantity.ANGLE, digits=3)
-    return f"Cut at {azimuth} from x\n{table(rows, '  ')}"
+    asked_for = SENSE_WORDS[polarisation]
+    return f"Cut at {azimuth} from x, gain to {asked_for} waves\n{table(rows, '  ')}"
 
 
 def _mesh_text(report: MeshReport) -> str:

@@ -103,8 +103,8 @@ def coarse_doubts(report: MeshReport, band_top: float, frequency: float) -> dict
     Notes
     -----
     Limits from solved examples (docs/models/response.md): up to a quarter of a wavelength the
-    gain stays within 0.3 dB of that on a mesh made for the frequency, at half a wavelength it
-    is 1 dB off, and resonances of a board are lost.
+    gain stays within 0.3 dB of that on a fine mesh made for the frequency, beyond half a
+    wavelength it is up to 1.2 dB off, and resonances of a board are lost before that.
     """
     worst = max(report.sheets, key=lambda sheet: sheet.longest_in_wavelengths)
     doubts: dict[Reading, Trust] = {}

@@ -221,7 +221,9 @@ def _by_direction(sphere: FarSphere, polarisation: Polarisation) -> str:
     """Where the beam points, and how its polarisation holds away from boresight."""
     found = beam(sphere, polarisation)
     parts = ["Strongest straight ahead"]
-    if found.tilt > _STRAIGHT:
+    if found.tilt > np.pi / 2.0:
+        parts = ["Strongest behind the plate"]
+    elif found.tilt > _STRAIGHT:
         tilt, azimuth = (
             format_quantity(angle, Quantity.ANGLE, digits=digits)
             for angle, digits in ((found.tilt, 2), (found.azimuth, 3))

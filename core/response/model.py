@@ -177,11 +177,6 @@ class PatternCut:
         return _decibels(np.abs(self.e_theta) ** 2 + np.abs(self.e_phi) ** 2)
 
     @property
-    def axial_ratio_db(self) -> Floats:
-        """Axial ratio in each direction, dB; infinite for a linear wave."""
-        return axial_ratio_db(self.e_theta, self.e_phi)
-
-    @property
     def beamwidth(self) -> float:
         """Angle around boresight within 3 dB of it, rad; the whole cut where it never falls."""
         power = np.abs(self.e_theta) ** 2 + np.abs(self.e_phi) ** 2
