@@ -11,6 +11,7 @@ from scipy.sparse.csgraph import connected_components
 
 from core.design.defaults import default_design
 from core.design.polarisation import Polarisation
+from core.engines import LEVELS
 from core.errors import ModelError
 from core.fullwave.basis import build_basis
 from core.fullwave.mesh import Level, build_mesh
@@ -68,6 +69,10 @@ def test_sheets_have_the_area_of_the_copper(name, level):
 
 def unknowns(mesh):
     return build_basis(mesh.vertices, mesh.triangles, mesh.sheet).count
+
+
+def test_the_levels_are_those_that_the_program_offers():
+    assert tuple(level.value for level in Level) == LEVELS
 
 
 def test_levels_have_the_sizes_they_promise():
