@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from contextlib import suppress
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any, Final
 
@@ -11,6 +12,7 @@ from app.verbs.arguments import BadInputError, VerbParser, quantity
 from app.verbs.output import table
 from app.verbs.response_record import cut_records, sphere_record, tail_record
 from core.engines import FIELD, NEXT_COARSER, respond_on_mesh
+from core.errors import ModelError
 from core.layout.tail import coax_tail
 from core.response.change import change_details, change_text
 from core.response.judge import SENSE_WORDS
@@ -152,8 +154,10 @@ def solve(
     response = respond_on_mesh(layout, frequencies, progress, wanted.level)
     coarser = NEXT_COARSER.get(wanted.level)
     if coarser is not None and not wanted.is_single:
-        other = respond_on_mesh(layout, frequencies, progress, coarser)
-        response = with_spread(response, other, coarser, brief.polarisation)
+        # Where only the finer mesh will do, its readings stand, without plus and minus.
+        with suppress(ModelError):
+            other = respond_on_mesh(layout, frequencies, progress, coarser)
+            response = with_spread(response, other, coarser, brief.polarisation)
     return Solved(response, hung)
 
 
@@ -183,11 +187,15 @@ def solved_text(answer: Solved, wanted: Asked, brief: Brief) -> str:
         parts += [_cut_text(cut, brief.polarisation) for cut in cuts]
     if wanted.wants_mesh and response.mesh is not None:
         parts.append(_mesh_text(response.mesh))
+    coarser = NEXT_COARSER.get(wanted.level)
     if response.spread is not None:
         against, shift = response.spread.against, 100.0 * LEAST_SHIFT
         parts.append(
-            f"± is what changes from the {against} mesh to this one and with {shift:g} % of shift\n"
+            f"± is what changes from the {against} mesh to this one, and with a shift of "
+            f"{shift:g} % in frequency.\n"
         )
+    elif coarser is not None and not wanted.is_single:
+        parts.append(f"± unknown: there is no solution on the {coarser} mesh.\n")
     return "\n".join(parts)
 
 

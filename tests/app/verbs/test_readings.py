@@ -9,6 +9,8 @@ from sample_designs import tape_design
 
 from app.command import main
 from core.design.edit import with_texts
+from core.engines import respond_on_mesh
+from core.errors import ModelError
 from core.storage.project import write_project
 
 ARRAYS = (
@@ -262,6 +264,18 @@ def test_plus_and_minus_come_from_the_next_coarser_mesh(solved):
     assert apart <= told["gain_db"] < apart + 0.2
     assert all(by is None or by > 0.0 for by in told["modes_hz"])
     assert solved("--single")["plus_minus"] is None
+
+
+def test_without_a_coarser_solution_the_readings_stand_and_say_so(solved, monkeypatch):
+    def only_normal(layout, frequencies, progress, level, tail=None):
+        if level != "normal":
+            raise ModelError("too coarse")
+        return respond_on_mesh(layout, frequencies, progress, "coarse", tail)
+
+    monkeypatch.setattr("app.verbs.solved.respond_on_mesh", only_normal)
+    told = solved(text=True)
+    assert "± unknown: there is no solution on the coarse mesh." in told
+    assert told.count("±") == 1
 
 
 def test_a_coax_tail_is_solved_beside(solved):
