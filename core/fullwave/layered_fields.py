@@ -137,10 +137,26 @@ def space_field(flowing: BoardCurrents, theta: Floats, phi: Floats) -> tuple[Com
     return e_theta, factors.across[0, number] * across
 
 
-def boresight_field(flowing: BoardCurrents) -> Complexes:
-    """Far field r E exp(j k r) straight up, along x and y, V: (2,)."""
-    e_theta, e_phi = space_field(flowing, np.zeros(1), np.zeros(1))
-    return np.array([e_theta[0], e_phi[0]])
+def boresight_of_moments(flowing: BoardCurrents) -> Complexes:
+    """Far field r E exp(j k r) straight up along x and y over the moments along them.
+
+    Parameters
+    ----------
+    flowing : BoardCurrents
+        On this board at this frequency.
+
+    Returns
+    -------
+    (2, 1) ndarray of complex
+        Ohm/m. Neither vertical currents nor a mouth send anything that way.
+    """
+    factors = layered_radiation(
+        flowing.layers,
+        np.array([flowing.wavenumber]),
+        np.zeros(1),
+        ground_impedance=flowing.ground_impedance,
+    )
+    return np.array([factors.along[0], factors.across[0]])
 
 
 def power_into_space(flowing: BoardCurrents) -> float:

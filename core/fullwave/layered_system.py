@@ -10,10 +10,12 @@ import numpy as np
 
 from core.constants import FREE_SPACE_IMPEDANCE, SPEED_OF_LIGHT, TWO_PI
 from core.fullwave.coax_mouth import mouth_capacitance
+from core.fullwave.equations import Equations
+from core.fullwave.far_field import moment_weights
 from core.fullwave.kernel_table import TablePlan, plan_tables
 from core.fullwave.layered_fields import (
     BoardCurrents,
-    boresight_field,
+    boresight_of_moments,
     power_into_space,
     power_into_waves,
 )
@@ -150,6 +152,23 @@ def solve_layered(system: LayeredSystem, frequency: float) -> Solution:
     Solution
         `lost` is all that does not go into space: heat and surface waves.
     """
+    posed = layered_equations(system, frequency)
+    return layered_solution(system, posed, currents(posed.matrix, posed.excitation))
+
+
+def layered_equations(system: LayeredSystem, frequency: float) -> Equations:
+    """Equations at one frequency.
+
+    Parameters
+    ----------
+    system : LayeredSystem
+    frequency : float
+        Hz, > 0, up to what the system was built for.
+
+    Returns
+    -------
+    Equations
+    """
     wavenumber = TWO_PI * frequency / SPEED_OF_LIGHT
     sheet = sheet_impedance(system.foil, frequency)
     tables = system.plan(wavenumber).tables(np.array([wavenumber]), sheet)
@@ -157,24 +176,44 @@ def solve_layered(system: LayeredSystem, frequency: float) -> Solution:
     matrix = layered_matrix(system.moments, tables, wavenumber, sheet)
     pin = sheet * total_thickness(system.layers)
     add_probe(matrix, basis, system.probe, tables, wavenumber, pin)
-    volts = port_voltages(basis, system.probe, tables)
-    solved = currents(matrix, volts)
-    flowing = board_currents(system, solved, frequency)
-    mouth = flowing.mouth_alone()
+    mouth = board_currents(system, np.zeros(basis.count, complex), frequency).mouth_alone()
     sent = power_into_space(mouth) + power_into_waves(mouth)
-    admittance = complex(volts @ solved) + 2.0 * sent
-    admittance += 1j * TWO_PI * frequency * system.capacitance
-    accepted = admittance.real / 2.0
-    e_x, e_y = boresight_field(flowing) * np.sqrt(
-        4.0 * pi / (2.0 * FREE_SPACE_IMPEDANCE * accepted)
-    )
-    return Solution(
+    return Equations(
         frequency=frequency,
+        matrix=matrix,
+        excitation=port_voltages(basis, system.probe, tables),
+        shunt=2.0 * sent + 1j * TWO_PI * frequency * system.capacitance,
+        boresight=boresight_of_moments(mouth) * moment_weights(basis, 0.0),
+    )
+
+
+def layered_solution(system: LayeredSystem, posed: Equations, solved: Complexes) -> Solution:
+    """What currents that were found mean.
+
+    Parameters
+    ----------
+    system : LayeredSystem
+    posed : Equations
+        That they solve; the matrix is not read.
+    solved : (n,) ndarray of complex
+        A/m.
+
+    Returns
+    -------
+    Solution
+    """
+    admittance = posed.admittance(solved)
+    accepted = admittance.real / 2.0
+    flowing = board_currents(system, solved, posed.frequency)
+    field = posed.boresight @ solved
+    field *= np.sqrt(4.0 * pi / (2.0 * FREE_SPACE_IMPEDANCE * accepted))
+    return Solution(
+        frequency=posed.frequency,
         currents=solved,
         admittance=admittance,
         lost=1.0 - power_into_space(flowing) / accepted,
-        e_x=complex(e_x),
-        e_y=complex(e_y),
+        e_x=complex(field[0]),
+        e_y=complex(field[1]),
     )
 
 

@@ -13,6 +13,7 @@ from typing import TYPE_CHECKING, ClassVar, Final
 import numpy as np
 
 from core.constants import FREE_SPACE_IMPEDANCE
+from core.fullwave.equations import Equations, project
 from core.fullwave.far_field import direction_frame, sphere_power
 from core.fullwave.layered_fields import BoardCurrents, power_into_waves, space_field
 from core.fullwave.layered_mesh import build_board_mesh
@@ -20,15 +21,25 @@ from core.fullwave.layered_system import (
     LayeredSystem,
     board_currents,
     build_layered_system,
-    solve_layered,
+    layered_equations,
+    layered_solution,
 )
 from core.fullwave.layered_trust import rim_doubts
 from core.fullwave.mesh import Level, build_mesh
 from core.fullwave.mesh_model import mesh_quality
+from core.fullwave.moments import currents
 from core.fullwave.rational import fit_rational
-from core.fullwave.sweep import Sweep, adaptive_sweep
-from core.fullwave.system import Solution, System, build_system, radiated_field, solve
+from core.fullwave.sweep import Sweep, adaptive_sweep, first_points
+from core.fullwave.system import (
+    Solution,
+    System,
+    build_system,
+    equations,
+    radiated_field,
+    solution,
+)
 from core.lines.stack import series_permittivity
+from core.progress import SILENT
 from core.response.model import (
     Mode,
     PatternCut,
@@ -52,6 +63,7 @@ _ENGINE: Final = "field"
 MOST_AIR_LIKE: Final = 1.5
 """Thickness-averaged permittivity up to which the finite plate is meshed in free space."""
 
+_QUICK_POINTS: Final = 3  # frequencies solved at the quick level
 _UNBALANCED = 0.02  # share of the power that may go missing in free space
 _TOLERANCE = 2e-3  # of reflection coefficient and field ratio in a sweep
 _MODE_REACH = 1.3  # ratio to the brief's frequency within which a pole is a mode of the element
@@ -93,14 +105,7 @@ def respond(
     band = (min(wanted[0], layout.frequency), max(wanted[-1], layout.frequency))
     solver = _solver(layout, level, band[1])
     impedance = layout.ports[0].impedance
-    sweep = adaptive_sweep(
-        solver.quantities,
-        band,
-        layout.frequency,
-        lambda one, other: _apart(one, other, impedance),
-        _TOLERANCE,
-        progress,
-    )
+    sweep = _swept(solver, level, band, impedance, progress)
     at_spot = _samples(np.array([layout.frequency]), sweep, solver, impedance).at(0)
     gain = abs(complex(at_spot.e_x)) ** 2 + abs(complex(at_spot.e_y)) ** 2
     return Response(
@@ -112,8 +117,31 @@ def respond(
         directivity=gain / float(at_spot.efficiency),
         cuts=tuple(_cut(solver, phi) for phi in (0.0, pi / 2)),
         front_to_back=solver.front_to_back(),
-        trust=_trust(level, sweep) | solver.doubts(),
+        trust=_trust(level, sweep) | solver.doubts(level),
     )
+
+
+def _swept(
+    solver: _Solver,
+    level: Level,
+    band: tuple[float, float],
+    impedance: float,
+    progress: Progress,
+) -> Sweep:
+    """Solve over a band: at each frequency of the sweep, or quickly at three for them all."""
+    spot = solver.layout.frequency
+    quantities = solver.quantities
+    tolerance = _TOLERANCE
+    if level is Level.QUICK:
+        points = first_points(band, spot, _QUICK_POINTS)
+        projection, solved = project(solver.posed, points, progress)
+        solver.solved[spot] = solver.finished(*solved[spot])
+        quantities, progress, tolerance = projection.quantities, SILENT, _TOLERANCE / 10.0
+
+    def distance(one: Complexes, other: Complexes) -> Floats:
+        return _apart(one, other, impedance)
+
+    return adaptive_sweep(quantities, band, spot, distance, tolerance, progress)
 
 
 @dataclass(frozen=True, eq=False)
@@ -130,10 +158,10 @@ class _Solver(ABC):
 
     def quantities(self, frequency: float) -> Complexes:
         """Admittance and boresight field of 1 V at the port, analytic in the frequency."""
-        solution = self.solve(frequency)
-        self.solved[frequency] = solution
-        volts = np.sqrt(FREE_SPACE_IMPEDANCE * solution.admittance.real / (4.0 * pi))
-        return np.array([solution.admittance, solution.e_x * volts, solution.e_y * volts])
+        posed = self.posed(frequency)
+        found = currents(posed.matrix, posed.excitation)
+        self.solved[frequency] = self.finished(posed, found)
+        return np.array([posed.admittance(found), *(posed.boresight @ found)])
 
     @property
     @abstractmethod
@@ -141,8 +169,12 @@ class _Solver(ABC):
         """Angles from boresight at which there is a far field, rad."""
 
     @abstractmethod
-    def solve(self, frequency: float) -> Solution:
-        """Solution at one frequency."""
+    def posed(self, frequency: float) -> Equations:
+        """Equations at one frequency (Hz)."""
+
+    @abstractmethod
+    def finished(self, posed: Equations, found: Complexes) -> Solution:
+        """Solution from the currents that solve them."""
 
     @abstractmethod
     def pattern(self, phi: float) -> tuple[Complexes, Complexes]:
@@ -153,7 +185,7 @@ class _Solver(ABC):
         """Power at boresight over that straight behind, where there is a behind."""
 
     @abstractmethod
-    def doubts(self) -> dict[Reading, Trust]:
+    def doubts(self, level: Level) -> dict[Reading, Trust]:
         """What the system leaves out of some readings."""
 
 
@@ -164,8 +196,11 @@ class _FreeSpace(_Solver):
     system: System
     angles: ClassVar[Floats] = np.radians(np.arange(-180.0, 181.0, 2.0))
 
-    def solve(self, frequency: float) -> Solution:
-        return solve(self.system, frequency)
+    def posed(self, frequency: float) -> Equations:
+        return equations(self.system, frequency)
+
+    def finished(self, posed: Equations, found: Complexes) -> Solution:
+        return solution(self.system, posed, found)
 
     def pattern(self, phi: float) -> tuple[Complexes, Complexes]:
         towards, along_theta, along_phi = direction_frame(self.angles, phi)
@@ -178,7 +213,9 @@ class _FreeSpace(_Solver):
         front, back = np.sum(np.abs(field) ** 2, axis=1)
         return float(front / back)
 
-    def doubts(self) -> dict[Reading, Trust]:
+    def doubts(self, level: Level) -> dict[Reading, Trust]:
+        if level is Level.QUICK:  # the power over the sphere takes as long as one more frequency
+            return {}
         frequency = self.spot.frequency
         sent = sphere_power(
             lambda towards: radiated_field(self.system, self.spot.currents, frequency, towards),
@@ -209,8 +246,11 @@ class _Board(_Solver):
     def _flowing(self) -> BoardCurrents:
         return board_currents(self.system, self.spot.currents, self.spot.frequency)
 
-    def solve(self, frequency: float) -> Solution:
-        return solve_layered(self.system, frequency)
+    def posed(self, frequency: float) -> Equations:
+        return layered_equations(self.system, frequency)
+
+    def finished(self, posed: Equations, found: Complexes) -> Solution:
+        return layered_solution(self.system, posed, found)
 
     def pattern(self, phi: float) -> tuple[Complexes, Complexes]:
         return space_field(self._flowing, self.angles, np.full(len(self.angles), phi))
@@ -218,7 +258,7 @@ class _Board(_Solver):
     def front_to_back(self) -> None:
         return None
 
-    def doubts(self) -> dict[Reading, Trust]:
+    def doubts(self, level: Level) -> dict[Reading, Trust]:
         accepted = self.spot.admittance.real / 2.0
         return rim_doubts(
             power_into_waves(self._flowing) / accepted, 1.0 - self.spot.lost, self.layout
@@ -251,21 +291,23 @@ def _samples(frequencies: Floats, sweep: Sweep, solver: _Solver, impedance: floa
     values = sweep.fit.at(frequencies)
     accepted = np.maximum(values[:, 0].real, 1e-12)
     scale = np.sqrt(4.0 * pi / (FREE_SPACE_IMPEDANCE * accepted))
-    lost = np.array([solver.solved[float(one)].lost for one in sweep.frequencies])
+    solved = sorted(solver.solved)
+    lost = np.array([solver.solved[one].lost for one in solved])
     return Samples(
         frequency=frequencies,
         s11=_reflection(values[:, 0], impedance),
         z_in=1.0 / values[:, 0],
         e_x=values[:, 1] * scale,
         e_y=values[:, 2] * scale,
-        efficiency=1.0 - np.clip(_smooth(sweep.frequencies, lost, frequencies), 0.0, 1.0),
+        efficiency=1.0 - np.clip(_smooth(np.array(solved), lost, frequencies), 0.0, 1.0),
     )
 
 
 def _smooth(solved: Floats, values: Floats, wanted: Floats) -> Floats:
-    """Cubic through what changes slowly: the share of the power that is lost."""
-    middle, half = float(np.mean(solved)), float(np.ptp(solved)) / 2.0
-    cubic = np.polynomial.polynomial.polyfit((solved - middle) / half, values, 3)
+    """Cubic at most through what changes slowly: the share of the power that is lost."""
+    middle, half = float(np.mean(solved)), float(np.ptp(solved)) / 2.0 or 1.0
+    order = min(len(solved) - 1, 3)
+    cubic = np.polynomial.polynomial.polyfit((solved - middle) / half, values, order)
     return np.asarray(np.polynomial.polynomial.polyval((wanted - middle) / half, cubic))
 
 
@@ -315,6 +357,12 @@ def _cut(solver: _Solver, phi: float) -> PatternCut:
 
 
 def _trust(level: Level, sweep: Sweep) -> dict[Reading, Trust]:
+    if level is Level.QUICK:
+        reason = (
+            f"full-wave solution on the quick mesh, {_QUICK_POINTS} frequencies solved, what lies "
+            "between not checked; the efficiency is that at the brief's frequency"
+        )
+        return dict.fromkeys(Reading, Trust(TrustLevel.ROUGH, reason))
     reason = (
         f"full-wave solution on the {level.value} mesh, {len(sweep.frequencies)} frequencies "
         f"solved, the fit between them true to {sweep.error:.1g}"
