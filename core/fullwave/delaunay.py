@@ -75,15 +75,16 @@ class _Net:
     """Triangles as a table from each directed edge to the corner on its left."""
 
     def __init__(self, points: Floats, triangles: Ints, fixed: Ints) -> None:
-        self._points = points
+        self._points = [(x, y) for x, y in points.tolist()]
         self._apex: dict[tuple[int, int], int] = {}
+        self._around: list[set[int]] = [set() for _ in self._points]
+        self._first_seen: dict[tuple[int, int], int] = {}
         for u, v, w in triangles.tolist():
             self._apex[u, v], self._apex[v, w], self._apex[w, u] = w, u, v
         self._fixed = {frozenset(line) for line in fixed.tolist()}
-        # Every edge there ever was; those swapped away are left out when they are used.
-        known = [edge for edge in self._apex if edge[0] < edge[1]]
-        self._known, self._ever = np.array(known), set(known)
-        self._later: list[tuple[int, int]] = []
+        for u, v in self._apex:
+            if u < v or (v, u) not in self._apex:
+                self._note(u, v)
 
     def join(self, a: int, b: int) -> bool:
         """Make a-b an edge by swapping the diagonals in its way; tell whether it is one."""
@@ -111,22 +112,35 @@ class _Net:
         found = [(u, v, w) for (u, v), w in self._apex.items() if u < v and u < w]
         return np.array(sorted(found), dtype=np.int64)
 
+    def _note(self, u: int, v: int) -> None:
+        """Keep books of an edge."""
+        self._around[u].add(v)
+        self._around[v].add(u)
+        self._first_seen.setdefault((min(u, v), max(u, v)), len(self._first_seen))
+
     def _crossings(self, a: int, b: int) -> list[tuple[int, int]]:
-        """Inner edges that the line a-b crosses."""
-        edges = np.vstack([self._known, *self._later])
-        p = self._points
-        start, end = p[edges[:, 0]], p[edges[:, 1]]
-        one = _cross(p[b] - p[a], start - p[a]) * _cross(p[b] - p[a], end - p[a])
-        two = _cross(end - start, p[a] - start) * _cross(end - start, p[b] - start)
-        free = ~np.isin(edges, (a, b)).any(axis=1)
-        met = edges[(one < 0.0) & (two < 0.0) & free].tolist()
-        return [(u, v) for u, v in met if (u, v) in self._apex and (v, u) in self._apex]
+        """Inner edges that the line a-b crosses, in the order in which they came up."""
+        met: list[tuple[int, int]] = []
+        fan = ((v, self._apex[a, v]) for v in self._around[a] if (a, v) in self._apex)
+        ahead = next((edge for edge in fan if self._meet(*edge, a, b)), None)
+        while ahead is not None:
+            u, v = ahead
+            met.append((min(u, v), max(u, v)))
+            beyond = self._apex.get((v, u), b)
+            sides = ((u, beyond), (beyond, v)) if beyond != b else ()
+            ahead = next((edge for edge in sides if self._meet(*edge, a, b)), None)
+        return sorted(met, key=lambda edge: self._first_seen[edge])
 
     def _meet(self, u: int, v: int, a: int, b: int) -> bool:
         """Whether the lines u-v and a-b cross inside both."""
-        p = self._points
-        one = float(_cross(p[b] - p[a], p[u] - p[a]) * _cross(p[b] - p[a], p[v] - p[a]))
-        two = float(_cross(p[v] - p[u], p[a] - p[u]) * _cross(p[v] - p[u], p[b] - p[u]))
+        ax, ay = self._points[a]
+        bx, by = self._points[b]
+        ux, uy = self._points[u]
+        vx, vy = self._points[v]
+        one = (bx - ax) * (uy - ay) - (by - ay) * (ux - ax)
+        one *= (bx - ax) * (vy - ay) - (by - ay) * (vx - ax)
+        two = (vx - ux) * (ay - uy) - (vy - uy) * (ax - ux)
+        two *= (vx - ux) * (by - uy) - (vy - uy) * (bx - ux)
         return one < 0.0 and two < 0.0
 
     def _swap(self, u: int, v: int, w: int, x: int) -> None:
@@ -135,7 +149,6 @@ class _Net:
         del apex[u, v], apex[v, u]
         apex[u, x], apex[x, w], apex[w, u] = w, u, x
         apex[x, v], apex[v, w], apex[w, x] = w, x, v
-        new = (min(w, x), max(w, x))
-        if new not in self._ever:
-            self._ever.add(new)
-            self._later.append(new)
+        self._around[u].discard(v)
+        self._around[v].discard(u)
+        self._note(w, x)

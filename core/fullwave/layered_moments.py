@@ -224,8 +224,8 @@ def _near(
     currents = complex(weights[0]).real * terms[:, 0]
     charges = means[:, :1] * _parts(weights[1])
     for depth in sorted({image.depth for kind in plan.near for image in kind[1:]}):
-        near, kinds = near_image(basis.corners, pairs, (1.0, depth))
-        lifted, lifted_means = pair_terms(basis, pairs[near], kinds, (1.0, depth))
+        near, close = near_image(basis.corners, pairs, kinds, (1.0, depth))
+        lifted, lifted_means = pair_terms(basis, pairs[near], close, (1.0, depth))
         current, charge = (
             sum(image.weight for image in kind if image.depth == depth) for kind in plan.near
         )

@@ -212,13 +212,15 @@ def _near(
         for i in range(images.starts[own, other], images.stops[own, other]):
             if images.weights[i] != 0.0:
                 image = images.turns[i], images.shifts[i]
-                near, kinds = near_image(basis.corners, pairs[chosen], image)
-                _, more = pair_terms(basis, pairs[chosen[near]], kinds, image)
-                charges[chosen[near], 0] += images.weights[i] * more[:, 0]
+                near, close = near_image(basis.corners, pairs[chosen], kinds[chosen], image)
+                more = _image_charges(basis, pairs[chosen[near]], close, image)
+                charges[chosen[near], 0] += images.weights[i] * more
     return starts, sources, terms, charges
 
 
-def near_image(corners: Floats, pairs: Ints, image: tuple[float, float]) -> tuple[Ints, Ints]:
+def near_image(
+    corners: Floats, pairs: Ints, kinds: Ints, image: tuple[float, float]
+) -> tuple[Ints, Ints]:
     """Pairs whose second triangle has its image near the first one.
 
     Parameters
@@ -227,6 +229,8 @@ def near_image(corners: Floats, pairs: Ints, image: tuple[float, float]) -> tupl
         m.
     pairs : (p, 2) ndarray of int
         Triangles.
+    kinds : (p,) ndarray of int
+        How close they are themselves: an image is never closer.
     image : tuple of (float, float)
         Turn and shift: heights of an image are turn z + shift, m.
 
@@ -234,8 +238,8 @@ def near_image(corners: Floats, pairs: Ints, image: tuple[float, float]) -> tupl
     -------
     near : (q,) ndarray of int
         Which pairs.
-    kinds : (q,) ndarray of int
-        How close, as `pair_terms` takes it.
+    close : (q,) ndarray of int
+        How close their images are, as `pair_terms` takes it.
     """
     middles = corners.mean(axis=1)
     radii = np.linalg.norm(corners - middles[:, None], axis=2).max(axis=1)
@@ -246,7 +250,7 @@ def near_image(corners: Floats, pairs: Ints, image: tuple[float, float]) -> tupl
     near = np.flatnonzero(distance < _NEAR_IMAGE * reach)
     # An image is never in the very place of its source: the rule of touching triangles will do.
     flat = np.abs(one - two)[near, 2] < _FLAT * reach[near]
-    return near, np.where(flat, _TOUCHING, _APART)
+    return near, np.where(flat & (kinds[near] > _APART), _TOUCHING, _APART)
 
 
 def pair_terms(
@@ -272,16 +276,45 @@ def pair_terms(
     from core.fullwave.compiled_near import near_terms  # noqa: PLC0415 - slow to load
 
     turn, lift = image
-    rules = np.concatenate(_RULES), np.cumsum([0, *(len(rule) for rule in _RULES)])
     terms, charges = np.empty((len(pairs), 2, 3, 3)), np.empty((len(pairs), 2))
 
     def work_out(share: slice) -> None:
         out = terms[share], charges[share]
-        near_terms(basis.corners, pairs[share], kinds[share], lift, rules, *out, turn)
+        near_terms(basis.corners, pairs[share], kinds[share], lift, _rules(), *out, turn)
 
-    with ThreadPoolExecutor(_WORKERS) as pool:
-        list(pool.map(work_out, (slice(i, i + _BATCH) for i in range(0, len(pairs), _BATCH))))
+    _by_threads(work_out, len(pairs))
     return terms, charges
+
+
+def _image_charges(
+    basis: Basis, pairs: Ints, kinds: Ints, image: tuple[float, float]
+) -> Floats:
+    """Near terms (p,) of 1/R alone, for the charges of pairs of triangles."""
+    from core.fullwave.compiled_near import near_charges  # noqa: PLC0415 - slow to load
+
+    charges, place = np.empty(len(pairs)), (float(image[0]), float(image[1]))
+
+    def work_out(share: slice) -> None:
+        near_charges(
+            basis.corners, pairs[share], kinds[share], place, _rules(), charges[share]
+        )
+
+    _by_threads(work_out, len(pairs))
+    return charges
+
+
+def _rules() -> tuple[Floats, Ints]:
+    """Rules for pairs as `core.fullwave.compiled_near.near_terms` takes them."""
+    return np.concatenate(_RULES), np.cumsum([0, *(len(rule) for rule in _RULES)])
+
+
+def _by_threads(work_out: Callable[[slice], None], count: int) -> None:
+    shares = [slice(i, i + _BATCH) for i in range(0, count, _BATCH)]
+    if len(shares) == 1:
+        work_out(shares[0])
+        return
+    with ThreadPoolExecutor(_WORKERS) as pool:
+        list(pool.map(work_out, shares))
 
 
 def _runs(sheets: Ints) -> Ints:
