@@ -51,7 +51,9 @@ def far_field(basis: Basis, currents: Complexes, frequency: float, directions: F
     field = np.empty((len(directions), 3), dtype=np.complex128)
     for start in range(0, len(directions), _AT_ONCE):
         towards = directions[start : start + _AT_ONCE]
-        summed = np.exp(1j * k * (towards @ points.T)) @ moments
+        turns = k * (towards @ points.T)
+        # Sine and cosine of numbers take a third of the time of complex exponentials.
+        summed = np.cos(turns) @ moments + 1j * (np.sin(turns) @ moments)
         along = np.sum(summed * towards, axis=1, keepdims=True)
         field[start : start + _AT_ONCE] = summed - along * towards
     return np.asarray(field * (-1j * TWO_PI * frequency * VACUUM_PERMEABILITY / (4.0 * pi)))

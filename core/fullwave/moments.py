@@ -36,11 +36,13 @@ if TYPE_CHECKING:
 
 _WORKERS = min(4, os.cpu_count() or 1)
 _BATCH = 1000  # pairs to a task
-# By kind of pair: the fill's own, apart, touching or nearly, sharing an edge, the triangle itself.
-_APART, _TOUCHING = 1, 2
+# By kind of pair: the fill's own, apart, touching or nearly, sharing an edge, the triangle
+# itself; and touching where little depends on it.
+_APART, _TOUCHING, _FAINTLY = 1, 2, 5
+_FAINT = 0.1  # weight of such an image: three points do it to 1e-3 of the reflection coefficient
 _NEAR_IMAGE = 1.5  # distance of middles, in sums of radii, up to which an image is near
 _FLAT = 0.3  # height of an image, in the same, under which its source is integrated exactly
-_RULES: Final = (COARSE_RULE, *(triangle_rule(order) for order in (4, 3, 5, 6)))
+_RULES: Final = (COARSE_RULE, *(triangle_rule(order) for order in (4, 3, 5, 6)), COARSE_RULE)
 
 
 @dataclass(frozen=True, eq=False)
@@ -206,27 +208,47 @@ def _near(
     pairs = np.column_stack([np.repeat(np.arange(basis.triangles), np.diff(starts)), sources])
     terms, plain = pair_terms(basis, pairs, kinds, (1.0, 0.0))
     here, there = sheets[pairs[:, 0]], sheets[pairs[:, 1]]
-    charges = images.direct[here, there][:, None] * plain
+    charges, rounds = images.direct[here, there][:, None] * plain, triangle_rounds(basis.corners)
     for own, other in np.ndindex(FACES, FACES):
         chosen = np.flatnonzero((here == own) & (there == other))
         for i in range(images.starts[own, other], images.stops[own, other]):
             if images.weights[i] != 0.0:
                 image = images.turns[i], images.shifts[i]
-                near, close = near_image(basis.corners, pairs[chosen], kinds[chosen], image)
+                near, close = near_image(rounds, pairs[chosen], kinds[chosen], image)
+                if abs(images.weights[i]) < _FAINT:
+                    close = np.where(close == _TOUCHING, _FAINTLY, close)
                 more = _image_charges(basis, pairs[chosen[near]], close, image)
                 charges[chosen[near], 0] += images.weights[i] * more
     return starts, sources, terms, charges
 
 
-def near_image(
-    corners: Floats, pairs: Ints, kinds: Ints, image: tuple[float, float]
-) -> tuple[Ints, Ints]:
-    """Pairs whose second triangle has its image near the first one.
+def triangle_rounds(corners: Floats) -> Floats:
+    """Middles of triangles and their radii about them.
 
     Parameters
     ----------
     corners : (t, 3, 3) ndarray of float
         m.
+
+    Returns
+    -------
+    (t, 4) ndarray of float
+        x, y, z and radius, m.
+    """
+    middles = corners.mean(axis=1)
+    radii = np.linalg.norm(corners - middles[:, None], axis=2).max(axis=1)
+    return np.column_stack([middles, radii])
+
+
+def near_image(
+    rounds: Floats, pairs: Ints, kinds: Ints, image: tuple[float, float]
+) -> tuple[Ints, Ints]:
+    """Pairs whose second triangle has its image near the first one.
+
+    Parameters
+    ----------
+    rounds : (t, 4) ndarray of float
+        From `triangle_rounds`.
     pairs : (p, 2) ndarray of int
         Triangles.
     kinds : (p,) ndarray of int
@@ -241,15 +263,14 @@ def near_image(
     close : (q,) ndarray of int
         How close their images are, as `pair_terms` takes it.
     """
-    middles = corners.mean(axis=1)
-    radii = np.linalg.norm(corners - middles[:, None], axis=2).max(axis=1)
-    one, two = middles[pairs[:, 0]], middles[pairs[:, 1]] * (1.0, 1.0, image[0])
-    two[:, 2] += image[1]
-    distance = np.linalg.norm(one - two, axis=1)
-    reach = radii[pairs[:, 0]] + radii[pairs[:, 1]]
-    near = np.flatnonzero(distance < _NEAR_IMAGE * reach)
+    gaps, other = rounds[pairs[:, 0]], rounds[pairs[:, 1]]
+    reach = gaps[:, 3] + other[:, 3]
+    gaps[:, :2] -= other[:, :2]
+    gaps[:, 2] -= image[0] * other[:, 2] + image[1]
+    squared = gaps[:, 0] ** 2 + gaps[:, 1] ** 2 + gaps[:, 2] ** 2
+    near = np.flatnonzero(squared < (_NEAR_IMAGE * reach) ** 2)
     # An image is never in the very place of its source: the rule of touching triangles will do.
-    flat = np.abs(one - two)[near, 2] < _FLAT * reach[near]
+    flat = np.abs(gaps[near, 2]) < _FLAT * reach[near]
     return near, np.where(flat & (kinds[near] > _APART), _TOUCHING, _APART)
 
 

@@ -105,7 +105,7 @@ def respond(
     band = (min(wanted[0], layout.frequency), max(wanted[-1], layout.frequency))
     solver = _solver(layout, level, band[1])
     impedance = layout.ports[0].impedance
-    sweep = _swept(solver, level, band, impedance, progress)
+    sweep = _swept(solver, band, impedance, progress)
     at_spot = _samples(np.array([layout.frequency]), sweep, solver, impedance).at(0)
     gain = abs(complex(at_spot.e_x)) ** 2 + abs(complex(at_spot.e_y)) ** 2
     return Response(
@@ -117,22 +117,18 @@ def respond(
         directivity=gain / float(at_spot.efficiency),
         cuts=tuple(_cut(solver, phi) for phi in (0.0, pi / 2)),
         front_to_back=solver.front_to_back(),
-        trust=_trust(level, sweep) | solver.doubts(level),
+        trust=_trust(level, sweep) | solver.doubts(),
     )
 
 
 def _swept(
-    solver: _Solver,
-    level: Level,
-    band: tuple[float, float],
-    impedance: float,
-    progress: Progress,
+    solver: _Solver, band: tuple[float, float], impedance: float, progress: Progress
 ) -> Sweep:
     """Solve over a band: at each frequency of the sweep, or quickly at three for them all."""
     spot = solver.layout.frequency
     quantities = solver.quantities
     tolerance = _TOLERANCE
-    if level is Level.QUICK:
+    if solver.level is Level.QUICK:
         points = first_points(band, spot, _QUICK_POINTS)
         projection, solved = project(solver.posed, points, progress)
         solver.solved[spot] = solver.finished(*solved[spot])
@@ -148,7 +144,11 @@ def _swept(
 class _Solver(ABC):
     """A system and what has been solved of it."""
 
+    farthest: ClassVar[float]
+    """Angle from boresight up to which there is a far field, degrees."""
+
     layout: Layout
+    level: Level
     solved: dict[float, Solution] = field(default_factory=dict, init=False)
 
     @property
@@ -164,9 +164,10 @@ class _Solver(ABC):
         return np.array([posed.admittance(found), *(posed.boresight @ found)])
 
     @property
-    @abstractmethod
     def angles(self) -> Floats:
-        """Angles from boresight at which there is a far field, rad."""
+        """Angles from boresight at which the far field is worked out, rad."""
+        step = 4.0 if self.level is Level.QUICK else 2.0
+        return np.radians(np.arange(-self.farthest, self.farthest + 1.0, step))
 
     @abstractmethod
     def posed(self, frequency: float) -> Equations:
@@ -185,7 +186,7 @@ class _Solver(ABC):
         """Power at boresight over that straight behind, where there is a behind."""
 
     @abstractmethod
-    def doubts(self, level: Level) -> dict[Reading, Trust]:
+    def doubts(self) -> dict[Reading, Trust]:
         """What the system leaves out of some readings."""
 
 
@@ -194,7 +195,7 @@ class _FreeSpace(_Solver):
     """Copper in free space, its ground plate as large as it is."""
 
     system: System
-    angles: ClassVar[Floats] = np.radians(np.arange(-180.0, 181.0, 2.0))
+    farthest: ClassVar[float] = 180.0
 
     def posed(self, frequency: float) -> Equations:
         return equations(self.system, frequency)
@@ -213,8 +214,8 @@ class _FreeSpace(_Solver):
         front, back = np.sum(np.abs(field) ** 2, axis=1)
         return float(front / back)
 
-    def doubts(self, level: Level) -> dict[Reading, Trust]:
-        if level is Level.QUICK:  # the power over the sphere takes as long as one more frequency
+    def doubts(self) -> dict[Reading, Trust]:
+        if self.level is Level.QUICK:  # the power over the sphere takes as long as one more frequency
             return {}
         frequency = self.spot.frequency
         sent = sphere_power(
@@ -240,7 +241,7 @@ class _Board(_Solver):
     """Copper on a board, the board and its ground plane taken as infinite."""
 
     system: LayeredSystem
-    angles: ClassVar[Floats] = np.radians(np.arange(-88.0, 89.0, 2.0))
+    farthest: ClassVar[float] = 88.0
 
     @property
     def _flowing(self) -> BoardCurrents:
@@ -258,7 +259,7 @@ class _Board(_Solver):
     def front_to_back(self) -> None:
         return None
 
-    def doubts(self, level: Level) -> dict[Reading, Trust]:
+    def doubts(self) -> dict[Reading, Trust]:
         accepted = self.spot.admittance.real / 2.0
         return rim_doubts(
             power_into_waves(self._flowing) / accepted, 1.0 - self.spot.lost, self.layout
@@ -268,9 +269,11 @@ class _Board(_Solver):
 def _solver(layout: Layout, level: Level, highest: float) -> _Solver:
     """Solver that suits a layout's stack, up to a frequency (Hz)."""
     if series_permittivity(layout.stack) > MOST_AIR_LIKE:
-        mesh = build_board_mesh(layout, level)
-        return _Board(layout, build_layered_system(mesh, layout.stack, layout.foil, highest))
-    return _FreeSpace(layout, build_system(build_mesh(layout, level), layout.foil, layout.stack))
+        board = build_board_mesh(layout, level)
+        system = build_layered_system(board, layout.stack, layout.foil, highest)
+        return _Board(layout, level, system)
+    mesh = build_mesh(layout, level)
+    return _FreeSpace(layout, level, build_system(mesh, layout.foil, layout.stack))
 
 
 def _apart(one: Complexes, other: Complexes, impedance: float) -> Floats:
