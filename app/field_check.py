@@ -26,9 +26,9 @@ if TYPE_CHECKING:
 
 KIND: Final = "field-check"
 REST: Final = 400  # ms that an edit must rest before it is solved
-COARSE: Final = "coarse"
+QUICK: Final = "quick"
 _PREPARING: Final = "Preparing the field check…"
-_FOLLOWS: Final = "The field check follows the hand on a coarse mesh."
+_FOLLOWS: Final = "The field check follows the hand on a quick, coarse mesh."
 
 
 class Solver(Protocol):
@@ -37,6 +37,7 @@ class Solver(Protocol):
     def solve(
         self, layout: Layout, frequencies: ArrayLike, progress: Progress, level: str
     ) -> Response: ...
+    def drop(self) -> None: ...
     def close(self) -> None: ...
 
 
@@ -49,7 +50,7 @@ class Checked:
     evaluation : Evaluation
         With the solver's response and the verdicts on it.
     level : str
-        Fineness of the mesh: coarse, normal or fine.
+        Fineness of the mesh: quick, coarse, normal or fine.
     solved : int
         Frequencies that were solved.
     """
@@ -72,7 +73,7 @@ class FieldCheck(QObject):
     """Keeps the last answer of the field solver, and asks for the next one.
 
     An edit stops what is being solved; when edits rest, the design is solved beside the
-    window. As long as the hand holds on, coarse answers follow it one after the other.
+    window. As long as the hand holds on, quick answers follow it one after the other.
 
     Attributes
     ----------
@@ -119,7 +120,7 @@ class FieldCheck(QObject):
         current = self._pipeline.current
         if not self.is_on or current.layout is None or self._is_done():
             return
-        level = COARSE if self._is_held else str(self._settings.value("mesh_level"))
+        level = QUICK if self._is_held else str(self._settings.value("mesh_level"))
         busy = _FOLLOWS if self._is_held else "Field check: first frequency"
         self._tell(busy=busy if self._is_ready else _PREPARING)
         self._runner.start(
@@ -134,7 +135,7 @@ class FieldCheck(QObject):
 
     def stop(self) -> None:
         """Stop solving until the next edit."""
-        self._runner.stop(KIND)
+        self._leave()
         self._rest.stop()
         self._tell(is_stopped=True)
 
@@ -148,7 +149,7 @@ class FieldCheck(QObject):
         """The hand has taken hold of something, or let go of it."""
         self._is_held = is_held
         if self.busy:
-            self._runner.stop(KIND)
+            self._leave()
             self.busy = ""
         if not is_held and not self._is_done() and not self.is_stopped:
             self._wait()
@@ -167,24 +168,29 @@ class FieldCheck(QObject):
         if self.is_on:
             self._rest.start()
 
+    def _leave(self) -> None:
+        """Leave what is being solved."""
+        self._runner.stop(KIND)
+        self._solver.drop()
+
     def _tell(self, *, busy: str = "", problem: str = "", is_stopped: bool = False) -> None:
         self.busy, self.problem, self.is_stopped = busy, problem, is_stopped
         self.changed.emit()
 
     def _on_evaluated(self, _evaluation: Evaluation) -> None:
         if self._is_held:
-            if not self.busy and not self.problem:
+            if not self.busy:
                 self.start()
             return
         if self.busy:
-            self._runner.stop(KIND)
+            self._leave()
         self.busy, self.problem, self.is_stopped = "", "", False
         self._wait()
 
     def _on_setting(self, key: str) -> None:
         if key not in ("field_check", "mesh_level"):
             return
-        self._runner.stop(KIND)
+        self._leave()
         self._rest.stop()
         if not self.is_on:
             self.last = None

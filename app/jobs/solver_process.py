@@ -17,7 +17,7 @@ from typing import TYPE_CHECKING, Any, Final
 from core.errors import Cancelled, CoreError, ModelError
 
 if TYPE_CHECKING:
-    from collections.abc import Iterator
+    from collections.abc import Callable, Iterator
     from multiprocessing.connection import Connection
     from multiprocessing.context import SpawnProcess
 
@@ -27,16 +27,20 @@ if TYPE_CHECKING:
     from core.progress import Progress
     from core.response.model import Response
 
+_DROPPED: Final = "dropped"
 _NICENESS: Final = 5  # the window goes first where both want a processor
 
 _THREADS: Final = "OPENBLAS_NUM_THREADS"
+
+
+_GONE: Final = "field solver: its process has ended; it starts again with the next edit"
 
 
 class SolverProcess:
     """Answers from any thread; the process starts with the first question."""
 
     def __init__(self) -> None:
-        self._turn = Lock()
+        self._turn, self._speaking = Lock(), Lock()
         self._pipe: Connection | None = None
         self._process: SpawnProcess | None = None
         self._is_closed = False
@@ -44,7 +48,7 @@ class SolverProcess:
     def solve(
         self, layout: Layout, frequencies: ArrayLike, progress: Progress, level: str
     ) -> Response:
-        """Solve a layout at some frequencies (Hz, rising) on a coarse, normal or fine mesh.
+        """Solve a layout at some frequencies (Hz, rising) on a mesh of some level.
 
         Raises
         ------
@@ -56,13 +60,19 @@ class SolverProcess:
         with self._turn:
             try:
                 pipe = self._open()
-                pipe.send((layout, frequencies, level))
-                return _heard(pipe, progress)
+                self._say((layout, frequencies, level))
+                return _heard(pipe, progress, self.drop)
             except (EOFError, OSError) as error:
                 self._end()
                 if self._is_closed:
                     raise Cancelled from error
-                raise ModelError("field solver: its process has ended by itself") from error
+                raise ModelError(_GONE) from error
+
+    def drop(self) -> None:
+        """Have the question that is being answered left; it ends at its next step."""
+        # A pipe that has just broken is found out by who listens to it.
+        with contextlib.suppress(OSError):
+            self._say(_DROPPED)
 
     def close(self) -> None:
         """End the process, whatever it is at."""
@@ -70,36 +80,52 @@ class SolverProcess:
         process = self._process
         if process is not None:
             process.terminate()
+        if self._turn.acquire(blocking=False):  # else who listens to the process ends it
+            try:
+                self._end()
+            finally:
+                self._turn.release()
+
+    def _say(self, what: Any) -> None:
+        with self._speaking:
+            if self._pipe is not None:
+                self._pipe.send(what)
 
     def _open(self) -> Connection:
         if self._is_closed:
             raise EOFError
         if self._pipe is None:
             context = multiprocessing.get_context("spawn")
-            self._pipe, far_end = context.Pipe()
-            self._process = context.Process(target=_serve, args=(far_end,), daemon=True)
+            near_end, far_end = context.Pipe()
+            process = context.Process(target=_serve, args=(far_end,), daemon=True)
             with _one_thread():
-                self._process.start()
+                process.start()
             far_end.close()
+            self._pipe, self._process = near_end, process
         return self._pipe
 
     def _end(self) -> None:
-        if self._pipe is not None:
-            self._pipe.close()
+        with self._speaking:
+            if self._pipe is not None:
+                self._pipe.close()
+            self._pipe = None
         if self._process is not None:
+            self._process.terminate()
             self._process.join()
-        self._pipe = self._process = None
+            self._process.close()
+        self._process = None
 
 
-class _Asking:
-    """Tells the window of each step and asks whether to go on."""
+class _Telling:
+    """Tells the window of each step, and does not wait for it; stops if it has been told to."""
 
     def __init__(self, pipe: Connection) -> None:
         self._pipe = pipe
 
     def step(self, done: int, total: int) -> None:
         self._pipe.send(("stepped", (done, total)))
-        if not self._pipe.recv():
+        if self._pipe.poll():
+            self._pipe.recv()  # while a question is open there is only one thing to be told
             raise Cancelled
 
 
@@ -121,18 +147,18 @@ def _one_thread() -> Iterator[None]:
             os.environ[_THREADS] = before
 
 
-def _heard(pipe: Connection, progress: Progress) -> Response:
+def _heard(pipe: Connection, progress: Progress, drop: Callable[[], None]) -> Response:
     """Listen until the answer comes."""
     is_wanted = True
     while True:
         what, told = pipe.recv()
-        if what == "stepped" and is_wanted:
+        if what == "stepped":
             try:
-                progress.step(*told)
+                if is_wanted:
+                    progress.step(*told)
             except Cancelled:
                 is_wanted = False
-        if what == "stepped":
-            pipe.send(is_wanted)
+                drop()
         elif what == "cancelled" or not is_wanted:
             raise Cancelled
         elif what == "refused":
@@ -152,7 +178,8 @@ def _serve(pipe: Connection) -> None:
     with contextlib.suppress(EOFError, OSError):
         while True:
             question = pipe.recv()
-            pipe.send(_answer(question, _Asking(pipe)))
+            if question != _DROPPED:  # which comes too late where all has been answered
+                pipe.send(_answer(question, _Telling(pipe)))
 
 
 def _answer(question: tuple[Layout, ArrayLike, str], progress: Progress) -> tuple[str, Any]:

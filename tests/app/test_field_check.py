@@ -31,6 +31,8 @@ class FakeSolver:
 
     def close(self): ...
 
+    def drop(self): ...
+
     def solve(self, layout, frequencies, progress, level):
         self.levels.append(level)
         for done in range(self.frequencies):
@@ -155,23 +157,23 @@ def test_an_answer_for_an_older_design_is_not_current(window, runner):
     assert engine(window).startswith("live")
 
 
-def test_the_hand_gets_a_coarse_mesh_and_the_chosen_one_when_it_lets_go(
+def test_the_hand_gets_a_quick_mesh_and_the_chosen_one_when_it_lets_go(
     window, runner, qtbot, hand, solver
 ):
     runner.run()
     window.settings.set("mesh_level", "fine")
     at_rest(window, runner, qtbot)
     mouse = hand(window.mat.plan).press("element.width").move(6, 0)
-    assert window.readings.check.words == "The field check follows the hand on a coarse mesh."
+    assert window.readings.check.words == "The field check follows the hand on a quick, coarse mesh."
     mouse.move(6, 0)  # while the first step is being solved
     assert len(runner.waiting) == 1
     runner.run()
     assert window.field.current is None
     runner.run()
-    assert "coarse" in engine(window)
+    assert "quick mesh" in engine(window)
     mouse.release()
     at_rest(window, runner, qtbot)
-    assert solver.levels == ["normal", "fine", "coarse", "coarse", "fine"]
+    assert solver.levels == ["normal", "fine", "quick", "quick", "fine"]
     assert "fine mesh" in engine(window)
 
 
