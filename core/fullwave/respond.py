@@ -116,6 +116,29 @@ def respond(
     )
 
 
+def solve_once(layout: Layout, frequency: float, level: Level) -> Solution:
+    """Solve a layout at one frequency, for work that needs no band.
+
+    Parameters
+    ----------
+    layout : Layout
+    frequency : float
+        Hz, > 0.
+    level : Level
+        Fineness of the mesh.
+
+    Returns
+    -------
+    Solution
+
+    Raises
+    ------
+    ModelError
+        If the copper cannot be meshed, or the stack is outside what the solver covers.
+    """
+    return _solver(layout, level, frequency).solve(frequency)
+
+
 @dataclass(frozen=True, eq=False)
 class _Solver(ABC):
     """A system and what has been solved of it."""

@@ -1,0 +1,328 @@
+"""Correction of a design by the field solver, until the solved response meets the brief."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator
+from dataclasses import dataclass, replace
+from functools import partial
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from core.constants import SPEED_OF_LIGHT
+from core.design.feed import ProbeFeed
+from core.design.polarisation import Polarisation
+from core.errors import LayoutError, ModelError
+from core.findings import Severity
+from core.fullwave.mesh import Level
+from core.fullwave.respond import solve_once
+from core.layout.build import build_layout, electrical_layout
+from core.live.respond import sample
+from core.progress import SILENT, Progress
+from core.sizing.descent import made_buildable, room_left
+from core.sizing.freedoms import Freedoms, freedoms
+from core.sizing.goal import Goal
+from core.sizing.knobs import on_grid
+from core.sizing.search import Search
+from core.sizing.seed import THICKEST
+from core.sizing.size import GOAL_AXIAL_RATIO_DB, GOAL_VSWR, size
+from core.sizing.starts import family_starts
+from core.sizing.surrogate import Model, linearised
+
+if TYPE_CHECKING:
+    from numpy.typing import NDArray
+
+    from core.design.model import Design
+    from core.layout.model import Layout
+
+    Floats = NDArray[np.float64]
+
+Spot = Callable[["Layout", float, Level], tuple[complex, complex, complex]]
+"""Admittance at the port (S) and field at boresight along x and y, at one frequency (Hz)."""
+
+_AIM = 0.3  # of the goals: where the coarse search is done
+_AIM_AT_LAST = 0.5  # and the search at the finest level
+_WORTH = 0.95  # of the goals: coarse results that are worth a finer look
+_NEAR = 2.0  # in units of the goals: a design given as near as this is not sized first
+_MOST_COARSE, _MOST_FINE = 50, 6  # solutions from one start
+_MOST = 240  # solutions after which no new start is made
+_LIVE_TRUST = 1.0  # how far off the live model may be, and a coarse mesh
+_MESH_TRUST = 0.1
+
+
+@dataclass(frozen=True)
+class Settling:
+    """What settling by field check came to.
+
+    Attributes
+    ----------
+    design : Design
+        The best found, lengths on a grid of a hundredth of a millimetre.
+    met : bool
+        Whether its solved response reaches the goals.
+    reason : str
+        One sentence: what was reached, and what stood in the way where it was not met.
+    vswr, axial_ratio_db : float
+        Solved at `level`; infinite where nothing could be solved. The axial ratio is 0 for
+        linear polarisation, where it is of no concern.
+    solves : int
+        Solutions in all: one is one factorisation at one frequency.
+    fine_solves : int
+        Of them at `level`.
+    level : Level
+        Mesh that it was judged on.
+    """
+
+    design: Design
+    met: bool
+    reason: str
+    vswr: float
+    axial_ratio_db: float
+    solves: int
+    fine_solves: int
+    level: Level
+
+
+def field_spot(layout: Layout, frequency: float, level: Level) -> tuple[complex, complex, complex]:
+    """Solve a layout by the field solver: what settling needs of it.
+
+    Parameters
+    ----------
+    layout : Layout
+    frequency : float
+        Hz, > 0.
+    level : Level
+
+    Returns
+    -------
+    admittance, e_x, e_y : complex
+        At the port, S; at boresight, any common scale.
+    """
+    solution = solve_once(layout, frequency, level)
+    return solution.admittance, solution.e_x, solution.e_y
+
+
+def settle(
+    design: Design,
+    *,
+    vswr: float | None = None,
+    axial_ratio_db: float | None = None,
+    level: Level = Level.FINE,
+    spot: Spot = field_spot,
+    progress: Progress = SILENT,
+) -> Settling:
+    """Correct a design until its solved response meets the brief.
+
+    Parameters
+    ----------
+    design : Design
+        Its brief, stock, process, kind of feed and probe's pin are kept. Where it is far off
+        it is sized first; where that does not settle, other families of feed are tried.
+    vswr, axial_ratio_db : float, optional
+        Goals; 1.5 (dB), or the brief's own where those are stricter, if left out.
+    level : Level
+        Mesh to judge on; the search before it is on the coarse one.
+    spot : Spot
+        The solver.
+    progress : Progress
+        Told after each solution; may cancel.
+
+    Returns
+    -------
+    Settling
+
+    Raises
+    ------
+    ModelError
+        If the solver does not cover the stack.
+    Cancelled
+        If the progress asks for it.
+
+    Notes
+    -----
+    Space mapping: the live model stands in for the coarse mesh, and that for the fine one,
+    each corrected through what has been solved (`core.sizing.surrogate`). The left-hand
+    antenna is the mirror image of the right-hand one, which is what is solved.
+    """
+    brief = design.brief
+    is_left = brief.polarisation is Polarisation.LHCP
+    right = replace(brief, polarisation=Polarisation.RHCP) if is_left else brief
+    goal = Goal(
+        right.polarisation,
+        brief.impedance,
+        min(GOAL_VSWR, brief.vswr) if vswr is None else vswr,
+        min(GOAL_AXIAL_RATIO_DB, brief.axial_ratio_db)
+        if axial_ratio_db is None
+        else axial_ratio_db,
+    )
+    solver = _Solver(goal, spot, progress)
+    found = _best_found(replace(design, brief=right), solver, level)
+    return _settling(design, found, solver, level)
+
+
+@dataclass(frozen=True, eq=False)
+class _Found:
+    """Where the search from one start ended."""
+
+    free: Freedoms
+    turns: Floats
+    missing: Floats
+    level: Level
+
+    @property
+    def design(self) -> Design:
+        return self.free.box.design(self.turns, on_grid)
+
+
+class _Solver:
+    """Solves designs, counts how often, and says why a design could not be solved."""
+
+    def __init__(self, goal: Goal, spot: Spot, progress: Progress) -> None:
+        self.goal, self.refusal = goal, ""
+        self.counts = dict.fromkeys(Level, 0)
+        self._spot, self._progress = spot, progress
+
+    @property
+    def solves(self) -> int:
+        return sum(self.counts.values())
+
+    def missing(self, design: Design, level: Level) -> Floats | None:
+        """Residuals of a design, solved; None where it can't be made or meshed."""
+        self._progress.step(min(self.solves, _MOST), _MOST)
+        try:
+            layout = build_layout(design)
+        except LayoutError as error:
+            self.refusal = str(error)
+            return None
+        for finding in layout.findings:
+            if finding.severity is Severity.REFUSAL or finding.code == "strip-off-ground":
+                self.refusal = finding.message
+                return None
+        try:
+            solved = self._spot(layout, design.brief.frequency, level)
+        except ModelError as error:
+            if not self.solves:
+                raise
+            self.refusal = f"{error}."
+            return None
+        self.counts[level] += 1
+        return self.goal.missing(*solved)
+
+    def enough(self, aim: float) -> Callable[[Floats], bool]:
+        """Test of residuals against a part of the goals."""
+        return lambda missing: self.goal.worst(missing) <= aim
+
+
+class _Start:
+    """A design to start from, made buildable, and solved on the coarse mesh."""
+
+    def __init__(self, design: Design, solver: _Solver, knows: bool) -> None:
+        self.free = free = freedoms(design)
+        self._solver = solver
+        turns = made_buildable(free)
+
+        def live(at: Floats) -> Model:
+            return linearised(lambda one: _live_missing(free, one, solver.goal), at, free.steps)
+
+        base = live if knows else None
+        solve = partial(solver.missing, level=Level.COARSE)
+        self.search = Search(free, solve, base, _LIVE_TRUST, looks=True)
+        self.is_solved = room_left(free, turns) >= 0.0 and self.search.begin(turns)
+
+    @property
+    def worst(self) -> float:
+        """How far off it is, in units of the goals."""
+        return self._solver.goal.worst(self.search.missing) if self.is_solved else np.inf
+
+    def searched(self, level: Level) -> _Found:
+        """Where a search from here ends, at the wanted level if it comes that far."""
+        first, solver = self.search, self._solver
+        first.run(solver.enough(_AIM), _MOST_COARSE)
+        found = _Found(self.free, first.turns, first.missing, Level.COARSE)
+        if level is Level.COARSE or self.worst > _WORTH:
+            return found
+        coarse = first.model()
+        solve = partial(solver.missing, level=level)
+        last = Search(self.free, solve, lambda _: coarse, _MESH_TRUST, looks=False)
+        if not last.begin(first.turns):
+            return found
+        last.run(solver.enough(_AIM_AT_LAST), _MOST_FINE)
+        return _Found(self.free, last.turns, last.missing, level)
+
+
+def _best_found(design: Design, solver: _Solver, level: Level) -> _Found | None:
+    """Best of the starts, one after another until one meets the goals."""
+    best: _Found | None = None
+    for start in _starts(design, solver):
+        if not start.is_solved:
+            continue
+        found = start.searched(level)
+        if best is None or _rank(found, solver, level) < _rank(best, solver, level):
+            best = found
+        if _is_met(best, solver, level) or solver.solves > _MOST:
+            break
+    if best is not None and best.level is not level:
+        missing = solver.missing(best.design, level)
+        best = best if missing is None else replace(best, missing=missing, level=level)
+    return best
+
+
+def _starts(design: Design, solver: _Solver) -> Iterator[_Start]:
+    """Design as given, or as sized by equations where that is nearer, then other families."""
+    given = _Start(design, solver, knows=True)
+    if given.worst <= _NEAR:
+        yield given
+    sized = _Start(size(design).design, solver, knows=True)
+    if given.worst > _NEAR:
+        yield min(sized, given, key=lambda start: start.worst)
+    else:
+        yield sized
+    for family in family_starts(design):
+        yield _Start(family, solver, knows=False)
+
+
+def _rank(found: _Found, solver: _Solver, level: Level) -> tuple[bool, float]:
+    return found.level is not level, solver.goal.worst(found.missing)
+
+
+def _is_met(found: _Found, solver: _Solver, level: Level) -> bool:
+    return found.level is level and solver.goal.worst(found.missing) <= 1.0
+
+
+def _live_missing(free: Freedoms, turns: Floats, goal: Goal) -> Floats:
+    """Residuals by the live model."""
+    design = free.box.design(np.clip(turns, 0.0, 1.0), on_grid)
+    spot = sample(electrical_layout(design), np.array([design.brief.frequency])).at(0)
+    return goal.missing(1.0 / complex(spot.z_in), complex(spot.e_x), complex(spot.e_y))
+
+
+def _settling(design: Design, found: _Found | None, solver: _Solver, level: Level) -> Settling:
+    """Put what was reached, and what stood in the way, in one sentence."""
+    count = solver.solves, solver.counts[level]
+    if found is None:
+        reason = f"No design was found that can be made. {solver.refusal}".strip()
+        return Settling(design, False, reason, np.inf, np.inf, *count, level)
+    vswr, ratio = solver.goal.reached(found.missing)
+    reached = f"VSWR {vswr:.2f}"
+    if design.brief.polarisation is not Polarisation.LINEAR:
+        reached += f", axial ratio {min(ratio, 60.0):.2f} dB"
+    met = _is_met(found, solver, level)
+    reason = (
+        f"Solved on the {level.value} mesh: {reached}."
+        if met
+        else f"The best found has {reached}: {_obstacle(found)}."
+    )
+    settled = replace(found.design, brief=design.brief)
+    return Settling(settled, met, reason, vswr, ratio, *count, level)
+
+
+def _obstacle(found: _Found) -> str:
+    """What a search that fell short ran into."""
+    stops = found.free.box.limits_reached(found.turns)
+    if stops:
+        return stops
+    design = found.design
+    thickness = design.stock.height * design.brief.frequency / SPEED_OF_LIGHT
+    if isinstance(design.feed, ProbeFeed) and thickness > THICKEST:
+        return f"a straight probe is too inductive on a spacer of {thickness:.2f} wavelength"
+    return "nothing that the solver tried on this stock with this feed did better"

@@ -1,0 +1,83 @@
+"""Where the field check may begin: shapes of dual-edge feeds that have settled before."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+from typing import TYPE_CHECKING
+
+from core.constants import SPEED_OF_LIGHT
+from core.design.feed import Branch, DualEdge, LeadIn
+from core.design.model import Element
+from core.sizing.knobs import on_grid
+from core.sizing.seed import starting_values
+
+if TYPE_CHECKING:
+    from core.design.model import Design
+
+_THICK = 0.09  # free-space wavelengths, from which a lead-in is tried first
+
+
+@dataclass(frozen=True)
+class _Shape:
+    """Landings and lead-in by the element's side; tee by the strip's length."""
+
+    first: float
+    second: float
+    tee: float
+    lead: float = 0.0
+
+
+_SHAPES = (
+    _Shape(0.48, 0.25, 0.02),
+    _Shape(0.25, 0.48, 0.5),
+    _Shape(0.25, 0.25, 0.02),
+)
+_LED_SHAPES = (
+    _Shape(0.48, 0.48, 0.4, 0.4),
+    _Shape(0.48, 0.25, 0.02, 0.25),
+)
+_STRIP, _GAP = 0.06, 0.03  # of the side
+
+
+def family_starts(design: Design) -> tuple[Design, ...]:
+    """Rough designs on the same stock, one of each family of shapes.
+
+    Parameters
+    ----------
+    design : Design
+        Its brief, stock, process, probe and corners are kept.
+
+    Returns
+    -------
+    tuple of Design
+        The likeliest first; none for a probe feed. They may not be buildable yet.
+    """
+    feed = design.feed
+    if not isinstance(feed, DualEdge):
+        return ()
+    side = starting_values(design.brief, design.stock).square
+    thickness = design.stock.height * design.brief.frequency / SPEED_OF_LIGHT
+    shapes = (*_LED_SHAPES, *_SHAPES) if thickness > _THICK else (*_SHAPES, *_LED_SHAPES)
+    return tuple(_shaped(design, feed, shape, side) for shape in shapes)
+
+
+def _shaped(design: Design, feed: DualEdge, shape: _Shape, side: float) -> Design:
+    making = design.making
+    width = on_grid(max(making.narrowest_strip, _STRIP * side))
+    clear = making.narrowest_gap + (feed.probe.pad - width) / 2
+    gap = on_grid(max(making.narrowest_gap, _GAP * side, clear))
+    first, second = on_grid(shape.first * side), on_grid(shape.second * side)
+    length = on_grid(first + second + 2 * gap + width)
+    return replace(
+        design,
+        element=Element(on_grid(side), on_grid(side)),
+        feed=replace(
+            feed,
+            first=Branch(first, gap, width),
+            second=Branch(second, gap, width),
+            delay_width=width,
+            delay_length=length,
+            tee=on_grid(shape.tee * length),
+            lead_in=LeadIn(on_grid(shape.lead * side), width),
+        ),
+    )
