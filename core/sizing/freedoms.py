@@ -18,6 +18,7 @@ from core.design.feed import Branch, DualEdge, LeadBend, LeadIn, ProbeFeed
 from core.design.model import Element
 from core.design.polarisation import Polarisation
 from core.sizing.knobs import GRID, Box, Knob
+from core.sizing.seed import starting_values
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
@@ -34,7 +35,8 @@ _NARROWEST_RATIO = 0.01  # width over spacer height
 _WIDEST, _WIDEST_LEAD = 0.25, 0.5  # strips, of the element's shorter side
 _FARTHEST = 0.75  # landing from the shared corner, of its side
 # How far each may go, in turns of its knob, with the response still about linear.
-_SIDE_STEP, _STRIP_STEP, _TEE_STEP, _LEAD_STEP, _PROBE_STEP = 0.12, 0.25, 0.15, 0.12, 0.1
+_STRIP_STEP, _TEE_STEP, _LEAD_STEP, _PROBE_STEP = 0.25, 0.15, 0.12, 0.1
+_BANDWIDTHS = 1.2  # and a side, in bandwidths of the element's mode
 
 
 @dataclass(frozen=True, eq=False)
@@ -70,7 +72,9 @@ def freedoms(design: Design) -> Freedoms:
     feed = design.feed
     box, steps = _probe_box(design, feed) if isinstance(feed, ProbeFeed) else _strip_box(design)
     start = np.array([knob.turn(knob.start) for knob in box.knobs])
-    return Freedoms(box, start, np.array([_SIDE_STEP, _SIDE_STEP, *steps]))
+    quality = starting_values(design.brief, design.stock).quality
+    side = _BANDWIDTHS / quality / (2.0 * np.log(_SIDE_RANGE))
+    return Freedoms(box, start, np.array([side, side, *steps]))
 
 
 def _probe_box(design: Design, feed: ProbeFeed) -> tuple[Box, list[float]]:

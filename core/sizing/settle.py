@@ -12,11 +12,8 @@ import numpy as np
 from core.constants import SPEED_OF_LIGHT
 from core.design.feed import ProbeFeed
 from core.design.polarisation import Polarisation
-from core.errors import LayoutError, ModelError
-from core.findings import Severity
 from core.fullwave.mesh import Level
-from core.fullwave.respond import solve_once
-from core.layout.build import build_layout, electrical_layout
+from core.layout.build import electrical_layout
 from core.live.respond import sample
 from core.progress import SILENT, Progress
 from core.sizing.descent import made_buildable, room_left
@@ -26,24 +23,23 @@ from core.sizing.knobs import on_grid
 from core.sizing.search import Search
 from core.sizing.seed import THICKEST
 from core.sizing.size import GOAL_AXIAL_RATIO_DB, GOAL_VSWR, size
+from core.sizing.solved import SolvedDesigns, Spot, field_spot
 from core.sizing.starts import family_starts
 from core.sizing.surrogate import Model, linearised
+from core.sizing.tuning import in_tune
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
     from core.design.model import Design
-    from core.layout.model import Layout
 
     Floats = NDArray[np.float64]
-
-Spot = Callable[["Layout", float, Level], tuple[complex, complex, complex]]
-"""Admittance at the port (S) and field at boresight along x and y, at one frequency (Hz)."""
 
 _AIM = 0.3  # of the goals: where the coarse search is done
 _AIM_AT_LAST = 0.5  # and the search at the finest level
 _WORTH = 0.95  # of the goals: coarse results that are worth a finer look
 _NEAR = 2.0  # in units of the goals: a design given as near as this is not sized first
+_FAR = 4.0  # in units of the goals: a start as far off as this is brought into tune first
 _MOST_COARSE, _MOST_FINE = 50, 6  # solutions from one start
 _MOST = 240  # solutions after which no new start is made
 _LIVE_TRUST = 1.0  # how far off the live model may be, and a coarse mesh
@@ -81,25 +77,6 @@ class Settling:
     solves: int
     fine_solves: int
     level: Level
-
-
-def field_spot(layout: Layout, frequency: float, level: Level) -> tuple[complex, complex, complex]:
-    """Solve a layout by the field solver: what settling needs of it.
-
-    Parameters
-    ----------
-    layout : Layout
-    frequency : float
-        Hz, > 0.
-    level : Level
-
-    Returns
-    -------
-    admittance, e_x, e_y : complex
-        At the port, S; at boresight, any common scale.
-    """
-    solution = solve_once(layout, frequency, level)
-    return solution.admittance, solution.e_x, solution.e_y
 
 
 def settle(
@@ -155,7 +132,7 @@ def settle(
         if axial_ratio_db is None
         else axial_ratio_db,
     )
-    solver = _Solver(goal, spot, progress)
+    solver = SolvedDesigns(goal, spot, progress, _MOST)
     found = _best_found(replace(design, brief=right), solver, level)
     return _settling(design, found, solver, level)
 
@@ -174,49 +151,10 @@ class _Found:
         return self.free.box.design(self.turns, on_grid)
 
 
-class _Solver:
-    """Solves designs, counts how often, and says why a design could not be solved."""
-
-    def __init__(self, goal: Goal, spot: Spot, progress: Progress) -> None:
-        self.goal, self.refusal = goal, ""
-        self.counts = dict.fromkeys(Level, 0)
-        self._spot, self._progress = spot, progress
-
-    @property
-    def solves(self) -> int:
-        return sum(self.counts.values())
-
-    def missing(self, design: Design, level: Level) -> Floats | None:
-        """Residuals of a design, solved; None where it can't be made or meshed."""
-        self._progress.step(min(self.solves, _MOST), _MOST)
-        try:
-            layout = build_layout(design)
-        except LayoutError as error:
-            self.refusal = str(error)
-            return None
-        for finding in layout.findings:
-            if finding.severity is Severity.REFUSAL or finding.code == "strip-off-ground":
-                self.refusal = finding.message
-                return None
-        try:
-            solved = self._spot(layout, design.brief.frequency, level)
-        except ModelError as error:
-            if not self.solves:
-                raise
-            self.refusal = f"{error}."
-            return None
-        self.counts[level] += 1
-        return self.goal.missing(*solved)
-
-    def enough(self, aim: float) -> Callable[[Floats], bool]:
-        """Test of residuals against a part of the goals."""
-        return lambda missing: self.goal.worst(missing) <= aim
-
-
 class _Start:
     """A design to start from, made buildable, and solved on the coarse mesh."""
 
-    def __init__(self, design: Design, solver: _Solver, knows: bool) -> None:
+    def __init__(self, design: Design, solver: SolvedDesigns, knows: bool) -> None:
         self.free = free = freedoms(design)
         self._solver = solver
         turns = made_buildable(free)
@@ -230,6 +168,11 @@ class _Start:
         self.is_solved = room_left(free, turns) >= 0.0 and self.search.begin(turns)
 
     @property
+    def design(self) -> Design:
+        """Best so far."""
+        return self.free.box.design(self.search.turns, on_grid)
+
+    @property
     def worst(self) -> float:
         """How far off it is, in units of the goals."""
         return self._solver.goal.worst(self.search.missing) if self.is_solved else np.inf
@@ -237,7 +180,7 @@ class _Start:
     def searched(self, level: Level) -> _Found:
         """Where a search from here ends, at the wanted level if it comes that far."""
         first, solver = self.search, self._solver
-        first.run(solver.enough(_AIM), _MOST_COARSE)
+        first.run(_within(solver.goal, _AIM), _MOST_COARSE)
         found = _Found(self.free, first.turns, first.missing, Level.COARSE)
         if level is Level.COARSE or self.worst > _WORTH:
             return found
@@ -246,11 +189,11 @@ class _Start:
         last = Search(self.free, solve, lambda _: coarse, _MESH_TRUST, looks=False)
         if not last.begin(first.turns):
             return found
-        last.run(solver.enough(_AIM_AT_LAST), _MOST_FINE)
+        last.run(_within(solver.goal, _AIM_AT_LAST), _MOST_FINE)
         return _Found(self.free, last.turns, last.missing, level)
 
 
-def _best_found(design: Design, solver: _Solver, level: Level) -> _Found | None:
+def _best_found(design: Design, solver: SolvedDesigns, level: Level) -> _Found | None:
     """Best of the starts, one after another until one meets the goals."""
     best: _Found | None = None
     for start in _starts(design, solver):
@@ -267,25 +210,40 @@ def _best_found(design: Design, solver: _Solver, level: Level) -> _Found | None:
     return best
 
 
-def _starts(design: Design, solver: _Solver) -> Iterator[_Start]:
+def _starts(design: Design, solver: SolvedDesigns) -> Iterator[_Start]:
     """Design as given, or as sized by equations where that is nearer, then other families."""
     given = _Start(design, solver, knows=True)
     if given.worst <= _NEAR:
         yield given
-    sized = _Start(size(design).design, solver, knows=True)
+    sized = _tuned(size(design).design, solver, knows=True)
     if given.worst > _NEAR:
         yield min(sized, given, key=lambda start: start.worst)
     else:
         yield sized
     for family in family_starts(design):
-        yield _Start(family, solver, knows=False)
+        yield _tuned(family, solver, knows=False)
 
 
-def _rank(found: _Found, solver: _Solver, level: Level) -> tuple[bool, float]:
+def _tuned(design: Design, solver: SolvedDesigns, knows: bool) -> _Start:
+    """Start that is scaled into tune where it is far off."""
+    start = _Start(design, solver, knows)
+    if not start.is_solved or start.worst <= _FAR:
+        return start
+    solve_at = partial(solver.at, level=Level.COARSE)
+    tuned = _Start(in_tune(start.design, solve_at, solver.goal), solver, knows)
+    return min(start, tuned, key=lambda one: one.worst)
+
+
+def _within(goal: Goal, part: float) -> Callable[[Floats], bool]:
+    """Test of residuals against a part of the goals."""
+    return lambda missing: goal.worst(missing) <= part
+
+
+def _rank(found: _Found, solver: SolvedDesigns, level: Level) -> tuple[bool, float]:
     return found.level is not level, solver.goal.worst(found.missing)
 
 
-def _is_met(found: _Found, solver: _Solver, level: Level) -> bool:
+def _is_met(found: _Found, solver: SolvedDesigns, level: Level) -> bool:
     return found.level is level and solver.goal.worst(found.missing) <= 1.0
 
 
@@ -296,7 +254,9 @@ def _live_missing(free: Freedoms, turns: Floats, goal: Goal) -> Floats:
     return goal.missing(1.0 / complex(spot.z_in), complex(spot.e_x), complex(spot.e_y))
 
 
-def _settling(design: Design, found: _Found | None, solver: _Solver, level: Level) -> Settling:
+def _settling(
+    design: Design, found: _Found | None, solver: SolvedDesigns, level: Level
+) -> Settling:
     """Put what was reached, and what stood in the way, in one sentence."""
     count = solver.solves, solver.counts[level]
     if found is None:

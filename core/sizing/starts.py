@@ -5,7 +5,6 @@ from __future__ import annotations
 from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
-from core.constants import SPEED_OF_LIGHT
 from core.design.feed import Branch, DualEdge, LeadIn
 from core.design.model import Element
 from core.sizing.knobs import on_grid
@@ -13,8 +12,6 @@ from core.sizing.seed import starting_values
 
 if TYPE_CHECKING:
     from core.design.model import Design
-
-_THICK = 0.09  # free-space wavelengths, from which a lead-in is tried first
 
 
 @dataclass(frozen=True)
@@ -28,13 +25,10 @@ class _Shape:
 
 
 _SHAPES = (
-    _Shape(0.48, 0.25, 0.02),
-    _Shape(0.25, 0.48, 0.5),
-    _Shape(0.25, 0.25, 0.02),
-)
-_LED_SHAPES = (
     _Shape(0.48, 0.48, 0.4, 0.4),
+    _Shape(0.25, 0.48, 0.5),
     _Shape(0.48, 0.25, 0.02, 0.25),
+    _Shape(0.48, 0.25, 0.02),
 )
 _STRIP, _GAP = 0.06, 0.03  # of the side
 
@@ -56,9 +50,7 @@ def family_starts(design: Design) -> tuple[Design, ...]:
     if not isinstance(feed, DualEdge):
         return ()
     side = starting_values(design.brief, design.stock).square
-    thickness = design.stock.height * design.brief.frequency / SPEED_OF_LIGHT
-    shapes = (*_LED_SHAPES, *_SHAPES) if thickness > _THICK else (*_SHAPES, *_LED_SHAPES)
-    return tuple(_shaped(design, feed, shape, side) for shape in shapes)
+    return tuple(_shaped(design, feed, shape, side) for shape in _SHAPES)
 
 
 def _shaped(design: Design, feed: DualEdge, shape: _Shape, side: float) -> Design:
