@@ -78,21 +78,26 @@ def freedoms(design: Design) -> Freedoms:
 
 
 def _probe_box(design: Design, feed: ProbeFeed) -> tuple[Box, list[float]]:
-    """Sides and the probe's place: on the axis for linear polarisation along it."""
-    element = design.element
+    """Sides and the probe's place, on the nearer axis for linear polarisation."""
+    element, edge = design.element, ("the element's edge",) * 2
     room = feed.probe.pad / 2
     reach_x, reach_y = element.width / 2 - room, element.length / 2 - room
-    place_y = Knob("probe y", -reach_y, reach_y, feed.y, False, *["the element's edge"] * 2)
-    place_x = Knob("probe x", -reach_x, reach_x, feed.x, False, *["the element's edge"] * 2)
+    place_x = Knob("probe x", -reach_x, reach_x, feed.x, False, *edge)
+    place_y = Knob("probe y", -reach_y, reach_y, feed.y, False, *edge)
+    is_linear = design.brief.polarisation is Polarisation.LINEAR
+    is_along_x = abs(feed.x) / element.width > abs(feed.y) / element.length
 
     def place(values: list[float], rounding: Rounding) -> Design:
-        width, length, y, *rest = map(rounding, values)
-        x = rest[0] if rest else feed.x
-        return replace(design, element=Element(width, length), feed=replace(feed, x=x, y=y))
+        width, length, *at = map(rounding, values)
+        if is_linear:
+            at = [at[0], 0.0] if is_along_x else [0.0, at[0]]
+        moved = replace(feed, x=at[0], y=at[1])
+        return replace(design, element=Element(width, length), feed=moved)
 
-    if design.brief.polarisation is Polarisation.LINEAR:
-        return Box((*_sides(element), place_y), place), [_PROBE_STEP]
-    return Box((*_sides(element), place_y, place_x), place), [_PROBE_STEP] * 2
+    places = (place_x, place_y)
+    if is_linear:
+        places = (place_x,) if is_along_x else (place_y,)
+    return Box((*_sides(element), *places), place), [_PROBE_STEP] * len(places)
 
 
 def _strip_box(design: Design) -> tuple[Box, list[float]]:
