@@ -80,7 +80,7 @@ class _Net:
         for u, v, w in triangles.tolist():
             self._apex[u, v], self._apex[v, w], self._apex[w, u] = w, u, v
         self._fixed = {frozenset(line) for line in fixed.tolist()}
-        self._spokes = dict(self._apex)  # a neighbour of each point
+        self._spokes = dict(iter(self._apex))  # a neighbour of each point
 
     def join(self, a: int, b: int) -> bool:
         """Make a-b an edge by swapping the diagonals in its way; tell whether it is one."""
