@@ -94,7 +94,7 @@ def _probe_box(design: Design, feed: ProbeFeed) -> tuple[Box, list[float]]:
         moved = replace(feed, x=at[0], y=at[1])
         return replace(design, element=Element(width, length), feed=moved)
 
-    places = (place_x, place_y)
+    places: tuple[Knob, ...] = (place_x, place_y)
     if is_linear:
         places = (place_x,) if is_along_x else (place_y,)
     return Box((*_sides(element), *places), place), [_PROBE_STEP] * len(places)

@@ -23,7 +23,7 @@ from core.sizing.knobs import on_grid
 from core.sizing.search import Search
 from core.sizing.seed import THICKEST
 from core.sizing.size import GOAL_AXIAL_RATIO_DB, GOAL_VSWR, size
-from core.sizing.solved import SolvedDesigns, Spot, field_spot
+from core.sizing.solved import FieldSpot, SolvedDesigns, Spot
 from core.sizing.starts import family_starts
 from core.sizing.surrogate import Model, linearised
 from core.sizing.tuning import in_tune
@@ -85,7 +85,7 @@ def settle(
     vswr: float | None = None,
     axial_ratio_db: float | None = None,
     level: Level = Level.FINE,
-    spot: Spot = field_spot,
+    spot: Spot | None = None,
     progress: Progress = SILENT,
 ) -> Settling:
     """Correct a design until its solved response meets the brief.
@@ -99,8 +99,8 @@ def settle(
         Goals; 1.5 (dB), or the brief's own where those are stricter, if left out.
     level : Level
         Mesh to judge on; the search before it is on the coarse one.
-    spot : Spot
-        The solver.
+    spot : Spot, optional
+        The solver; the field solver if left out.
     progress : Progress
         Told after each solution; may cancel.
 
@@ -132,7 +132,7 @@ def settle(
         if axial_ratio_db is None
         else axial_ratio_db,
     )
-    solver = SolvedDesigns(goal, spot, progress, _MOST)
+    solver = SolvedDesigns(goal, spot or FieldSpot(), progress, _MOST)
     found = _best_found(replace(design, brief=right), solver, level)
     return _settling(design, found, solver, level)
 

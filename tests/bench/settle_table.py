@@ -30,7 +30,7 @@ from core.layout.build import build_layout
 from core.response.polarisation import axial_ratio_db
 from core.sizing.seed import seed_design
 from core.sizing.settle import Settling, settle
-from core.sizing.solved import field_spot
+from core.sizing.solved import FieldSpot
 
 SEED = 20
 RANDOM_AIR, RANDOM_BOARDS = 20, 20
@@ -112,7 +112,7 @@ def other_sense(settling: Settling) -> tuple[float, float]:
     """VSWR and axial ratio of the mirror image, solved afresh; the ratio negative if right-hand."""
     design = settling.design
     mirrored = replace(design, brief=replace(design.brief, polarisation=Polarisation.LHCP))
-    admittance, e_x, e_y = field_spot(build_layout(mirrored), design.brief.frequency, Level.FINE)
+    admittance, e_x, e_y = FieldSpot()(build_layout(mirrored), design.brief.frequency, Level.FINE)
     reflection = abs((1 - 50 * admittance) / (1 + 50 * admittance))
     ratio = float(axial_ratio_db(e_x, e_y))
     is_left = abs(e_x - 1j * e_y) > abs(e_x + 1j * e_y)
@@ -150,7 +150,8 @@ def line(row: dict) -> str:
     lead = f"{row['lead'] * 1e3:.1f} mm" if row["lead"] else ""
     return (
         f"| {row['name']} | {row['frequency'] / 1e9:.3f} GHz | {row['spacer']} "
-        f"| {height * row['frequency'] / SPEED_OF_LIGHT / 1e3:.3f} | {row['diameter'] * 1e3:.0f} mm "
+        f"| {height * row['frequency'] / SPEED_OF_LIGHT / 1e3:.3f} "
+        f"| {row['diameter'] * 1e3:.0f} mm "
         f"| {'yes' if row['met'] else 'no'} | {row['vswr']:.2f} | {row['ratio']:.2f} "
         f"| {vswr:.2f}, {ratio:.2f} | {lead} | {row['solves'] - row['fine']} + {row['fine']} "
         f"| {row['seconds']:.1f} ({row['load']}) | {why} |"
