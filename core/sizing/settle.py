@@ -85,6 +85,7 @@ def settle(
     vswr: float | None = None,
     axial_ratio_db: float | None = None,
     level: Level = Level.FINE,
+    keep_element: bool = False,
     spot: Spot | None = None,
     progress: Progress = SILENT,
 ) -> Settling:
@@ -99,6 +100,8 @@ def settle(
         Goals; 1.5 (dB), or the brief's own where those are stricter, if left out.
     level : Level
         Mesh to judge on; the search before it is on the coarse one.
+    keep_element : bool
+        Keep the sides as well.
     spot : Spot, optional
         The solver; the field solver if left out.
     progress : Progress
@@ -133,7 +136,7 @@ def settle(
         else axial_ratio_db,
     )
     solver = SolvedDesigns(goal, spot or FieldSpot(), progress, _MOST)
-    found = _best_found(replace(design, brief=right), solver, level)
+    found = _best_found(_Starts(replace(design, brief=right), solver, keep_element), level)
     return _settling(design, found, solver, level)
 
 
@@ -154,8 +157,10 @@ class _Found:
 class _Start:
     """A design to start from, made buildable, and solved on the coarse mesh."""
 
-    def __init__(self, design: Design, solver: SolvedDesigns, knows: bool) -> None:
-        self.free = free = freedoms(design)
+    def __init__(
+        self, design: Design, solver: SolvedDesigns, keep_element: bool, knows: bool
+    ) -> None:
+        self.free = free = freedoms(design, keep_element=keep_element)
         self._solver = solver
         turns = made_buildable(free)
 
@@ -193,10 +198,43 @@ class _Start:
         return _Found(self.free, last.turns, last.missing, level)
 
 
-def _best_found(design: Design, solver: SolvedDesigns, level: Level) -> _Found | None:
+@dataclass(frozen=True, eq=False)
+class _Starts:
+    """Where to begin, one after another."""
+
+    given: Design
+    solver: SolvedDesigns
+    keep_element: bool
+
+    def __iter__(self) -> Iterator[_Start]:
+        """Design as given, or as sized by equations where that is nearer, then other families."""
+        given = self._start(self.given, knows=True)
+        if given.worst <= _NEAR:
+            yield given
+        sized = size(self.given, keep_element=self.keep_element).design
+        tuned = self._tuned(sized, knows=True)
+        yield tuned if given.worst <= _NEAR else min(tuned, given, key=lambda one: one.worst)
+        for family in family_starts(self.given, keep_element=self.keep_element):
+            yield self._tuned(family, knows=False)
+
+    def _tuned(self, design: Design, knows: bool) -> _Start:
+        """Start that is scaled into tune where it is far off."""
+        start = self._start(design, knows)
+        if self.keep_element or not start.is_solved or start.worst <= _FAR:
+            return start
+        solve_at = partial(self.solver.at, level=Level.COARSE)
+        tuned = self._start(in_tune(start.design, solve_at, self.solver.goal), knows)
+        return min(start, tuned, key=lambda one: one.worst)
+
+    def _start(self, design: Design, knows: bool) -> _Start:
+        return _Start(design, self.solver, self.keep_element, knows)
+
+
+def _best_found(starts: _Starts, level: Level) -> _Found | None:
     """Best of the starts, one after another until one meets the goals."""
     best: _Found | None = None
-    for start in _starts(design, solver):
+    solver = starts.solver
+    for start in starts:
         if not start.is_solved:
             continue
         found = start.searched(level)
@@ -208,30 +246,6 @@ def _best_found(design: Design, solver: SolvedDesigns, level: Level) -> _Found |
         missing = solver.missing(best.design, level)
         best = best if missing is None else replace(best, missing=missing, level=level)
     return best
-
-
-def _starts(design: Design, solver: SolvedDesigns) -> Iterator[_Start]:
-    """Design as given, or as sized by equations where that is nearer, then other families."""
-    given = _Start(design, solver, knows=True)
-    if given.worst <= _NEAR:
-        yield given
-    sized = _tuned(size(design).design, solver, knows=True)
-    if given.worst > _NEAR:
-        yield min(sized, given, key=lambda start: start.worst)
-    else:
-        yield sized
-    for family in family_starts(design):
-        yield _tuned(family, solver, knows=False)
-
-
-def _tuned(design: Design, solver: SolvedDesigns, knows: bool) -> _Start:
-    """Start that is scaled into tune where it is far off."""
-    start = _Start(design, solver, knows)
-    if not start.is_solved or start.worst <= _FAR:
-        return start
-    solve_at = partial(solver.at, level=Level.COARSE)
-    tuned = _Start(in_tune(start.design, solve_at, solver.goal), solver, knows)
-    return min(start, tuned, key=lambda one: one.worst)
 
 
 def _within(goal: Goal, part: float) -> Callable[[Floats], bool]:
