@@ -75,16 +75,12 @@ class _Net:
     """Triangles as a table from each directed edge to the corner on its left."""
 
     def __init__(self, points: Floats, triangles: Ints, fixed: Ints) -> None:
-        self._points = [(x, y) for x, y in points.tolist()]
+        self._points: list[list[float]] = points.tolist()
         self._apex: dict[tuple[int, int], int] = {}
-        self._around: list[set[int]] = [set() for _ in self._points]
-        self._first_seen: dict[tuple[int, int], int] = {}
         for u, v, w in triangles.tolist():
             self._apex[u, v], self._apex[v, w], self._apex[w, u] = w, u, v
         self._fixed = {frozenset(line) for line in fixed.tolist()}
-        for u, v in self._apex:
-            if u < v or (v, u) not in self._apex:
-                self._note(u, v)
+        self._spokes = dict(iter(self._apex))  # a neighbour of each point
 
     def join(self, a: int, b: int) -> bool:
         """Make a-b an edge by swapping the diagonals in its way; tell whether it is one."""
@@ -112,36 +108,45 @@ class _Net:
         found = [(u, v, w) for (u, v), w in self._apex.items() if u < v and u < w]
         return np.array(sorted(found), dtype=np.int64)
 
-    def _note(self, u: int, v: int) -> None:
-        """Keep books of an edge."""
-        self._around[u].add(v)
-        self._around[v].add(u)
-        self._first_seen.setdefault((min(u, v), max(u, v)), len(self._first_seen))
-
     def _crossings(self, a: int, b: int) -> list[tuple[int, int]]:
-        """Inner edges that the line a-b crosses, in the order in which they came up."""
-        met: list[tuple[int, int]] = []
-        fan = ((v, self._apex[a, v]) for v in self._around[a] if (a, v) in self._apex)
-        ahead = next((edge for edge in fan if self._meet(*edge, a, b)), None)
-        while ahead is not None:
-            u, v = ahead
-            met.append((min(u, v), max(u, v)))
-            beyond = self._apex.get((v, u), b)
-            sides = ((u, beyond), (beyond, v)) if beyond != b else ()
-            ahead = next((edge for edge in sides if self._meet(*edge, a, b)), None)
-        return sorted(met, key=lambda edge: self._first_seen[edge])
+        """Edges that the line a-b crosses, from a on; none where it runs through a point."""
+        edge = next((one for one in self._facing(a) if self._meet(*one, a, b)), None)
+        met = []
+        while edge is not None:
+            u, v = edge
+            met.append(edge)
+            ahead = self._apex.get((v, u))
+            if ahead == b:
+                return met
+            ways = [] if ahead is None else [(u, ahead), (ahead, v)]
+            edge = next((one for one in ways if self._meet(*one, a, b)), None)
+        return []
+
+    def _facing(self, a: int) -> list[tuple[int, int]]:
+        """Edges opposite a point in the triangles round it, counter-clockwise."""
+        first = v = self._spokes[a]
+        edges = []
+        while (w := self._apex.get((a, v))) is not None:
+            edges.append((v, w))
+            v = w
+            if v == first:
+                return edges
+        v = first  # an edge of the hull stops the way round: the rest lies on its other side
+        while (w := self._apex.get((v, a))) is not None:
+            edges.append((w, v))
+            v = w
+        return edges
 
     def _meet(self, u: int, v: int, a: int, b: int) -> bool:
         """Whether the lines u-v and a-b cross inside both."""
-        ax, ay = self._points[a]
-        bx, by = self._points[b]
-        ux, uy = self._points[u]
-        vx, vy = self._points[v]
-        one = (bx - ax) * (uy - ay) - (by - ay) * (ux - ax)
-        one *= (bx - ax) * (vy - ay) - (by - ay) * (vx - ax)
-        two = (vx - ux) * (ay - uy) - (vy - uy) * (ax - ux)
-        two *= (vx - ux) * (by - uy) - (vy - uy) * (bx - ux)
-        return one < 0.0 and two < 0.0
+        return self._parts(a, b, u, v) and self._parts(u, v, a, b)
+
+    def _parts(self, a: int, b: int, u: int, v: int) -> bool:
+        """Whether the endless line through a and b runs between u and v."""
+        (ax, ay), (bx, by), (ux, uy), (vx, vy) = (self._points[i] for i in (a, b, u, v))
+        dx, dy = bx - ax, by - ay
+        one, other = dx * (uy - ay) - dy * (ux - ax), dx * (vy - ay) - dy * (vx - ax)
+        return one < 0.0 < other or other < 0.0 < one
 
     def _swap(self, u: int, v: int, w: int, x: int) -> None:
         """Replace the diagonal u-v of the quadrilateral u, x, v, w by x-w."""
@@ -149,6 +154,4 @@ class _Net:
         del apex[u, v], apex[v, u]
         apex[u, x], apex[x, w], apex[w, u] = w, u, x
         apex[x, v], apex[v, w], apex[w, x] = w, x, v
-        self._around[u].discard(v)
-        self._around[v].discard(u)
-        self._note(w, x)
+        self._spokes.update({u: x, x: v, v: w, w: u})

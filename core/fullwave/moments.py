@@ -42,6 +42,7 @@ _APART, _TOUCHING, _FAINTLY = 1, 2, 5
 _FAINT = 0.1  # weight of such an image: three points do it to 1e-3 of the reflection coefficient
 _NEAR_IMAGE = 1.5  # distance of middles, in sums of radii, up to which an image is near
 _FLAT = 0.3  # height of an image, in the same, under which its source is integrated exactly
+_NOTHING = 1e-3  # weight of an image whose points will do however near it is, as in air
 _RULES: Final = (COARSE_RULE, *(triangle_rule(order) for order in (4, 3, 5, 6)), COARSE_RULE)
 
 
@@ -212,7 +213,7 @@ def _near(
     for own, other in np.ndindex(FACES, FACES):
         chosen = np.flatnonzero((here == own) & (there == other))
         for i in range(images.starts[own, other], images.stops[own, other]):
-            if images.weights[i] != 0.0:
+            if abs(images.weights[i]) > _NOTHING:
                 image = images.turns[i], images.shifts[i]
                 near, close = near_image(rounds, pairs[chosen], kinds[chosen], image)
                 if abs(images.weights[i]) < _FAINT:
@@ -307,18 +308,14 @@ def pair_terms(
     return terms, charges
 
 
-def _image_charges(
-    basis: Basis, pairs: Ints, kinds: Ints, image: tuple[float, float]
-) -> Floats:
+def _image_charges(basis: Basis, pairs: Ints, kinds: Ints, image: tuple[float, float]) -> Floats:
     """Near terms (p,) of 1/R alone, for the charges of pairs of triangles."""
     from core.fullwave.compiled_near import near_charges  # noqa: PLC0415 - slow to load
 
     charges, place = np.empty(len(pairs)), (float(image[0]), float(image[1]))
 
     def work_out(share: slice) -> None:
-        near_charges(
-            basis.corners, pairs[share], kinds[share], place, _rules(), charges[share]
-        )
+        near_charges(basis.corners, pairs[share], kinds[share], place, _rules(), charges[share])
 
     _by_threads(work_out, len(pairs))
     return charges

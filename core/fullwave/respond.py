@@ -13,6 +13,7 @@ from typing import TYPE_CHECKING, ClassVar, Final
 import numpy as np
 
 from core.constants import FREE_SPACE_IMPEDANCE
+from core.fullwave.board_kernels import BoardKernels
 from core.fullwave.equations import Equations, project
 from core.fullwave.far_field import direction_frame, sphere_power
 from core.fullwave.layered_fields import BoardCurrents, power_into_waves, space_field
@@ -65,6 +66,7 @@ MOST_AIR_LIKE: Final = 1.5
 
 _QUICK_POINTS: Final = 3  # frequencies solved at the quick level
 _UNBALANCED = 0.02  # share of the power that may go missing in free space
+_BAND = 1.2  # that kernels made for single frequencies reach, of the brief's frequency
 _TOLERANCE = 2e-3  # of reflection coefficient and field ratio in a sweep
 _MODE_REACH = 1.3  # ratio to the brief's frequency within which a pole is a mode of the element
 _LOWEST_Q, _HIGHEST_Q = 2.0, 2000.0
@@ -103,7 +105,7 @@ def respond(
     """
     wanted = np.asarray(frequencies, dtype=np.float64)
     band = (min(wanted[0], layout.frequency), max(wanted[-1], layout.frequency))
-    solver = _solver(layout, level, band[1])
+    solver = _solver(layout, level, _kernels(layout, band[1]))
     impedance = layout.ports[0].impedance
     sweep = _swept(solver, band, impedance, progress)
     at_spot = _samples(np.array([layout.frequency]), sweep, solver, impedance).at(0)
@@ -140,6 +142,41 @@ def _swept(
     return adaptive_sweep(quantities, band, spot, distance, tolerance, progress)
 
 
+class Solving:
+    """Solves layouts of one stack one after another, each at one frequency.
+
+    What they have in common is worked out once.
+    """
+
+    def __init__(self) -> None:
+        self._kernels: BoardKernels | None = None
+
+    def __call__(self, layout: Layout, frequency: float, level: Level) -> Solution:
+        """Solve a layout.
+
+        Parameters
+        ----------
+        layout : Layout
+            Of the same stack, foil and brief's frequency as the first.
+        frequency : float
+            Hz, at most a fifth over the brief's.
+        level : Level
+            Fineness of the mesh.
+
+        Returns
+        -------
+        Solution
+
+        Raises
+        ------
+        ModelError
+            If the copper cannot be meshed, or the stack is outside what the solver covers.
+        """
+        if self._kernels is None or self._kernels.layers != layout.stack:
+            self._kernels = _kernels(layout, _BAND * layout.frequency)
+        return _solver(layout, level, self._kernels).solve(frequency)
+
+
 @dataclass(frozen=True, eq=False)
 class _Solver(ABC):
     """A system and what has been solved of it."""
@@ -163,11 +200,17 @@ class _Solver(ABC):
         self.solved[frequency] = self.finished(posed, found)
         return np.array([posed.admittance(found), *(posed.boresight @ found)])
 
+    def solve(self, frequency: float) -> Solution:
+        """Solution at one frequency (Hz), not kept."""
+        posed = self.posed(frequency)
+        return self.finished(posed, currents(posed.matrix, posed.excitation))
+
     @property
     def angles(self) -> Floats:
         """Angles from boresight at which the far field is worked out, rad."""
         step = 4.0 if self.level is Level.QUICK else 2.0
-        return np.radians(np.arange(-self.farthest, self.farthest + 1.0, step))
+        found: Floats = np.radians(np.arange(-self.farthest, self.farthest + 1.0, step))
+        return found
 
     @abstractmethod
     def posed(self, frequency: float) -> Equations:
@@ -215,7 +258,7 @@ class _FreeSpace(_Solver):
         return float(front / back)
 
     def doubts(self) -> dict[Reading, Trust]:
-        if self.level is Level.QUICK:  # the power over the sphere takes as long as one more frequency
+        if self.level is Level.QUICK:  # the balance takes as long as one more frequency
             return {}
         frequency = self.spot.frequency
         sent = sphere_power(
@@ -266,14 +309,20 @@ class _Board(_Solver):
         )
 
 
-def _solver(layout: Layout, level: Level, highest: float) -> _Solver:
-    """Solver that suits a layout's stack, up to a frequency (Hz)."""
-    if series_permittivity(layout.stack) > MOST_AIR_LIKE:
-        board = build_board_mesh(layout, level)
-        system = build_layered_system(board, layout.stack, layout.foil, highest)
-        return _Board(layout, level, system)
-    mesh = build_mesh(layout, level)
-    return _FreeSpace(layout, level, build_system(mesh, layout.foil, layout.stack))
+def _solver(layout: Layout, level: Level, kernels: BoardKernels | None) -> _Solver:
+    """Solver that suits a layout's stack; a board has kernels."""
+    if kernels is not None:
+        return _Board(layout, level, build_layered_system(build_board_mesh(layout, level), kernels))
+    return _FreeSpace(
+        layout, level, build_system(build_mesh(layout, level), layout.foil, layout.stack)
+    )
+
+
+def _kernels(layout: Layout, highest: float) -> BoardKernels | None:
+    """Kernels up to a frequency (Hz) if the stack is a board."""
+    if series_permittivity(layout.stack) <= MOST_AIR_LIKE:
+        return None
+    return BoardKernels(layout.stack, layout.foil, highest)
 
 
 def _apart(one: Complexes, other: Complexes, impedance: float) -> Floats:
