@@ -55,7 +55,7 @@ _ROOM: Final = 2.2  # wavelengths of ground plate that the search has before it 
 _WIDEST: Final = 4.0  # m
 _SHOWN: Final = ("stock.ground.", "element.", "feed.")
 _LEFT_OUT: Final = "; if left out: live where it can tell the match and axial ratio, else field"
-_SETTLING: Final = "settling: {done} designs solved, {total} at most"
+_SETTLING: Final = "settling: {done} designs solved; it gives up near {total}"
 _READINGS: Final = "kerfwave readings --engine field will tell"
 
 

@@ -41,7 +41,7 @@ _WORTH = 0.95  # of the goals: coarse results that are worth a finer look
 _NEAR = 2.0  # in units of the goals: a design given as near as this is not sized first
 _FAR = 4.0  # in units of the goals: a start as far off as this is brought into tune first
 _MOST_COARSE, _MOST_FINE = 50, 6  # solutions from one start
-_MOST = 240  # solutions after which no new start is made
+_MOST = 200  # solutions after which no search goes on
 _LIVE_TRUST = 1.0  # how far off the live model may be, and a coarse mesh
 _MESH_TRUST = 0.1
 
@@ -185,7 +185,7 @@ class _Start:
     def searched(self, level: Level) -> _Found:
         """Where a search from here ends, at the wanted level if it comes that far."""
         first, solver = self.search, self._solver
-        first.run(_within(solver.goal, _AIM), _MOST_COARSE)
+        first.run(_within(solver.goal, _AIM), min(_MOST_COARSE, _MOST - solver.solves))
         found = _Found(self.free, first.turns, first.missing, Level.COARSE)
         if level is Level.COARSE or self.worst > _WORTH:
             return found
@@ -240,7 +240,7 @@ def _best_found(starts: _Starts, level: Level) -> _Found | None:
         found = start.searched(level)
         if best is None or _rank(found, solver, level) < _rank(best, solver, level):
             best = found
-        if _is_met(best, solver, level) or solver.solves > _MOST:
+        if _is_met(best, solver, level) or solver.solves >= _MOST:
             break
     if best is not None and best.level is not level:
         missing = solver.missing(best.design, level)
