@@ -362,10 +362,7 @@ def _cut(solver: _Solver, phi: float) -> PatternCut:
 
 def _trust(level: Level, sweep: Sweep) -> dict[Reading, Trust]:
     if level is Level.QUICK:
-        reason = (
-            f"full-wave solution on the quick mesh, {_QUICK_POINTS} frequencies solved, what lies "
-            "between not checked; the efficiency is that at the brief's frequency"
-        )
+        reason = f"quick mesh, {_QUICK_POINTS} frequencies solved, not checked between them"
         return dict.fromkeys(Reading, Trust(TrustLevel.ROUGH, reason))
     reason = (
         f"full-wave solution on the {level.value} mesh, {len(sweep.frequencies)} frequencies "

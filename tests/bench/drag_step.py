@@ -7,6 +7,7 @@ the hand, at least 3 a second; "alone" switches them off.
 """
 
 import gc
+import multiprocessing
 import os
 import sys
 import tempfile
@@ -115,17 +116,30 @@ def settle(window, app):
         time.sleep(1e-3)
 
 
+def solver_seconds():
+    """Processor time of the solver's process so far; nan where the system does not tell."""
+    try:
+        (process,) = multiprocessing.active_children()
+        stat = Path(f"/proc/{process.pid}/stat").read_text()
+        user, system = stat.rpartition(")")[2].split()[11:13]
+        return (int(user) + int(system)) / os.sysconf("SC_CLK_TCK")
+    except (OSError, ValueError):
+        return float("nan")
+
+
 def measured(window, app, name):
     """Drag a handle and print how it went."""
     settle(window, app)
     answers = Answers(window.field)
-    begin = time.perf_counter()
+    begin, spent = time.perf_counter(), solver_seconds()
     seconds = drag(window, app, name)
     rate = answers.count / (time.perf_counter() - begin)
+    each = 1e3 * (solver_seconds() - spent) / max(answers.count, 1)
     whole, work = np.array(seconds).T * 1e3
     middle, high = np.percentile(whole, [50, 99])
     within = middle <= LONGEST_STEP and high <= LONGEST_RARE_STEP
-    checks = f"; {rate:.1f} checks a second" + ("" if rate >= LEAST_CHECKS else ", TOO FEW")
+    checks = f"; {rate:.1f} checks a second{'' if rate >= LEAST_CHECKS else ', TOO FEW'}"
+    checks += f" ({each:.0f} ms of a processor each)"
     print(
         f"  {name:<26} median {middle:5.1f} ms, 99 % {high:5.1f} ms, "
         f"{'within' if within else 'OVER'} the budget (work {np.median(work):4.1f}, "
@@ -157,7 +171,8 @@ def main():
                 f"{window.document.design.name}, {app.platformName()} {size}, load {load:.1f}",
                 flush=True,
             )
-            for name in HANDLES:
+            names = HANDLES if path is None else HANDLES[:2] + HANDLES[-1:]
+            for name in names:
                 if found(window, name)[1] is not None:
                     measured(window, app, name)
         window.document.stack.setClean()
