@@ -65,7 +65,9 @@ class Checked:
 
     @property
     def mark(self) -> str:
-        """What the sheets of this design say."""
+        """What the sheets of this design say; a quick answer is none to cut by."""
+        if self.level == QUICK:
+            return ""
         return f"Field-checked: {self.level} mesh, Kerfwave {version('kerfwave')}"
 
 

@@ -35,7 +35,8 @@ if TYPE_CHECKING:
     Complexes = NDArray[np.complex128]
 
 _WORKERS = min(4, os.cpu_count() or 1)
-_BATCH = 1000  # pairs to a task
+_BATCH = 4000  # pairs to a task
+_ALONE = 700  # unknowns up to which threads would wait for each other longer than they work
 # By kind of pair: the fill's own, apart, touching or nearly, sharing an edge, the triangle
 # itself; and touching where little depends on it.
 _APART, _TOUCHING, _FAINTLY = 1, 2, 5
@@ -161,7 +162,10 @@ def impedance_matrix(
 
 
 def fill(matrix: Complexes, colours: tuple[Ints, ...], add: Callable[[Ints], None]) -> None:
-    """Fill a symmetric matrix by threads: half of it by triangles, then its transpose.
+    """Fill a symmetric matrix: half of it by triangles, then its transpose.
+
+    A large one is filled by threads. A small one is not: it is one of many while a hand moves,
+    and the window needs a processor for itself.
 
     Parameters
     ----------
@@ -174,6 +178,11 @@ def fill(matrix: Complexes, colours: tuple[Ints, ...], add: Callable[[Ints], Non
     """
     from core.fullwave.compiled import add_transpose  # noqa: PLC0415 - slow to load
 
+    if len(matrix) <= _ALONE:
+        for colour in colours:
+            add(colour)
+        add_transpose(matrix, 0, 1)
+        return
     with ThreadPoolExecutor(_WORKERS) as pool:
         for colour in colours:
             list(pool.map(add, (colour[first::_WORKERS] for first in range(_WORKERS))))

@@ -6,7 +6,7 @@ Shapes: k solved frequencies, n wanted ones, m angles.
 from __future__ import annotations
 
 from abc import ABC, abstractmethod
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from math import pi
 from typing import TYPE_CHECKING, ClassVar, Final
 
@@ -109,6 +109,7 @@ def respond(
     impedance = layout.ports[0].impedance
     sweep = _swept(solver, band, impedance, progress)
     at_spot = _samples(np.array([layout.frequency]), sweep, solver, impedance).at(0)
+    at_spot = replace(at_spot, efficiency=np.float64(1.0 - np.clip(solver.spot.lost, 0.0, 1.0)))
     gain = abs(complex(at_spot.e_x)) ** 2 + abs(complex(at_spot.e_y)) ** 2
     return Response(
         engine=_ENGINE,
@@ -410,10 +411,7 @@ def _cut(solver: _Solver, phi: float) -> PatternCut:
 
 def _trust(level: Level, sweep: Sweep) -> dict[Reading, Trust]:
     if level is Level.QUICK:
-        reason = (
-            f"full-wave solution on the quick mesh, {_QUICK_POINTS} frequencies solved, what lies "
-            "between not checked; the efficiency is that at the brief's frequency"
-        )
+        reason = f"quick mesh, {_QUICK_POINTS} frequencies solved, not checked between them"
         return dict.fromkeys(Reading, Trust(TrustLevel.ROUGH, reason))
     reason = (
         f"full-wave solution on the {level.value} mesh, {len(sweep.frequencies)} frequencies "

@@ -173,10 +173,37 @@ def test_the_hand_gets_a_quick_mesh_and_the_chosen_one_when_it_lets_go(
     assert window.field.current is None
     runner.run()
     assert "quick mesh" in engine(window)
+    assert window.readings.check.words.startswith("Solved on a quick mesh; the chosen one follows")
+    assert window.field.current.mark == ""  # nothing to put on a sheet
     mouse.release()
     at_rest(window, runner, qtbot)
     assert solver.levels == ["normal", "fine", "quick", "quick", "fine"]
     assert "fine mesh" in engine(window)
+
+
+def test_the_hand_is_followed_past_a_shape_that_is_refused(window, runner, hand, solver):
+    runner.run()
+    mouse = hand(window.mat.plan).press("element.width").move(6, 0)
+    solver.refusal = "field solver: an outline crosses itself; accepted: it may not"
+    runner.run()
+    assert window.readings.check.words.startswith("No field check: an outline crosses itself")
+    solver.refusal = ""
+    mouse.move(6, 0)
+    runner.run()
+    assert "quick mesh" in engine(window)
+    mouse.release()
+
+
+def test_while_the_hand_moves_what_was_solved_is_greyed(window, runner, hand):
+    runner.run()
+    mouse = hand(window.mat.plan).press("element.width").move(6, 0)
+    runner.run()
+    mouse.move(6, 0)
+    assert engine(window) == "live estimate, by equations"
+    shown = window.curves.match.state
+    assert (shown.engine, shown.beside.engine, shown.beside.is_stale) == (LIVE, "field", True)
+    assert window.readings.check.before.endswith("(quick mesh).")
+    mouse.release()
 
 
 def test_progress_is_told_and_can_be_cancelled(window, runner):
