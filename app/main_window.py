@@ -12,7 +12,8 @@ from app.actions import make_actions
 from app.curves.panel import CurvesPanel
 from app.dialogs.preferences import PreferencesDialog
 from app.document import Document
-from app.field_check import FieldCheck, Solve, solve_by_mesh
+from app.field_check import FieldCheck, Solver
+from app.jobs.solver_process import SolverProcess
 from app.mat.mat import Mat
 from app.menus import add_file_menus
 from app.pipeline import Pipeline
@@ -55,14 +56,14 @@ class MainWindow(QMainWindow):
         runner: Runner,
         folder: Path,
         asker: WindowAsks | None = None,
-        solve: Solve = solve_by_mesh,
+        solver: Solver | None = None,
     ) -> None:
         super().__init__()
         self.settings, self.runner = settings, runner
         self.asker: WindowAsks = asker or _own_asker(self)
         self.document = Document(default_design(), self)
         self.pipeline = Pipeline(self.document)
-        self.field = FieldCheck(self.pipeline, settings, runner, solve)
+        self.field = FieldCheck(self.pipeline, settings, runner, solver or SolverProcess())
         self.window_actions = make_actions(self, self.document.stack)
         self._make_views()
         self._make_presenters()

@@ -87,11 +87,13 @@ def connect_views(window: Window) -> None:
         view.pull_ended.connect(hand.end_pull)
         view.pull_cancelled.connect(hand.cancel_pull)
         view.nudged.connect(hand.nudge)
-        view.pull_started.connect(window.field.hold)
-        view.pull_ended.connect(window.field.let_go)
-        view.pull_cancelled.connect(window.field.let_go)
+        view.pull_started.connect(lambda _name: window.field.hold(True))
+        view.pull_ended.connect(lambda: window.field.hold(False))
+        view.pull_cancelled.connect(lambda: window.field.hold(False))
     mat.plan.pointed.connect(window.show_place)
     mat.spacing_taken.connect(hand.take_slider)
+    mat.spacing_taken.connect(lambda: window.field.hold(True))
+    mat.spacing_left.connect(lambda: window.field.hold(False))
     mat.spacing_set.connect(hand.set_spacing)
     readings = window.readings
     readings.field_asked.connect(cards.focus_field)
@@ -111,6 +113,7 @@ def connect_views(window: Window) -> None:
     window.settings.changed.connect(lambda key, _: _on_setting(window, key))
     # Bound to the window itself, so that they end with it: the stack outlives it by a moment.
     document = window.document
+    document.started.connect(window.field.forget)
     for signal in (document.stack.cleanChanged, document.design_changed, document.path_changed):
         signal.connect(window.show_name)
 
