@@ -14,15 +14,18 @@ import traceback
 from threading import Lock
 from typing import TYPE_CHECKING, Any, Final
 
+from app.jobs.settling import settled
 from core.errors import Cancelled, CoreError, ModelError
 
 if TYPE_CHECKING:
-    from collections.abc import Iterator
+    from collections.abc import Callable, Iterator
     from multiprocessing.connection import Connection
     from multiprocessing.context import SpawnProcess
 
     from numpy.typing import ArrayLike
 
+    from app.jobs.settling import Best, Settled
+    from core.design.model import Design
     from core.layout.model import Layout
     from core.progress import Progress
     from core.response.model import Response
@@ -53,11 +56,33 @@ class SolverProcess:
         Cancelled
             If the progress asks for it, or the window closes.
         """
+        response: Response = self._asked(("solve", layout, frequencies, level), progress)
+        return response
+
+    def settle(self, design: Design, progress: Progress, tell: Callable[[Best], None]) -> Settled:
+        """Settle a design by field check; tells of each better one on the way.
+
+        Raises
+        ------
+        ModelError
+            If nothing can be settled, or the process ends.
+        Cancelled
+            If the progress asks for it, or the window closes.
+        """
+        answer: Settled = self._asked(("settle", design), progress, tell)
+        return answer
+
+    def _asked(
+        self,
+        question: tuple[Any, ...],
+        progress: Progress,
+        tell: Callable[[Any], None] = lambda _news: None,
+    ) -> Any:  # noqa: ANN401 - what is sent through the pipe has any type
         with self._turn:
             try:
                 pipe = self._open()
-                pipe.send((layout, frequencies, level))
-                return _heard(pipe, progress)
+                pipe.send(question)
+                return _heard(pipe, progress, tell)
             except (EOFError, OSError) as error:
                 self._end()
                 if self._is_closed:
@@ -102,6 +127,9 @@ class _Asking:
         if not self._pipe.recv():
             raise Cancelled
 
+    def tell(self, best: Best) -> None:
+        self._pipe.send(("told", best))
+
 
 @contextlib.contextmanager
 def _one_thread() -> Iterator[None]:
@@ -121,11 +149,14 @@ def _one_thread() -> Iterator[None]:
             os.environ[_THREADS] = before
 
 
-def _heard(pipe: Connection, progress: Progress) -> Response:
+def _heard(pipe: Connection, progress: Progress, tell: Callable[[Any], None]) -> Any:  # noqa: ANN401 - as above
     """Listen until the answer comes."""
     is_wanted = True
     while True:
         what, told = pipe.recv()
+        if what == "told":
+            tell(told)
+            continue
         if what == "stepped" and is_wanted:
             try:
                 progress.step(*told)
@@ -140,8 +171,7 @@ def _heard(pipe: Connection, progress: Progress) -> Response:
         elif what == "broken":
             raise RuntimeError(told)
         else:
-            response: Response = told
-            return response
+            return told
 
 
 def _serve(pipe: Connection) -> None:
@@ -155,14 +185,25 @@ def _serve(pipe: Connection) -> None:
             pipe.send(_answer(question, _Asking(pipe)))
 
 
-def _answer(question: tuple[Layout, ArrayLike, str], progress: Progress) -> tuple[str, Any]:
+def _solved(layout: Layout, frequencies: ArrayLike, level: str, progress: Progress) -> Response:
     # Loaded here: only this process needs it, and it takes half a second.
     from core.fullwave.mesh import Level  # noqa: PLC0415
     from core.fullwave.respond import respond  # noqa: PLC0415
 
-    layout, frequencies, level = question
+    return respond(layout, frequencies, progress, Level(level))
+
+
+def _settled(design: Design, asking: _Asking) -> Settled:
+    return settled(design, asking, asking.tell)
+
+
+_WORK: Final[dict[str, Callable[..., Any]]] = {"solve": _solved, "settle": _settled}
+
+
+def _answer(question: tuple[Any, ...], asking: _Asking) -> tuple[str, Any]:
+    kind, *arguments = question
     try:
-        return "answered", respond(layout, frequencies, progress, Level(level))
+        return "answered", _WORK[kind](*arguments, asking)
     except Cancelled:
         return "cancelled", None
     except CoreError as error:
