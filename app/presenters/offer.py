@@ -101,12 +101,11 @@ def changed_lengths(before: Design, after: Design) -> tuple[str, ...]:
     changes = []
     for one in parameters(after):
         was = old.get(one.key)
-        if one.spec is None or was == one.value or not isinstance(one.value, float):
+        if was == one.value or not isinstance(one.value, float) or not isinstance(was, float):
             continue
         place = next((name for start, name in _PLACES.items() if one.key.startswith(start)), "")
         label = f"{place}, {one.label.lower()}" if place else one.label
-        from_ = _length(was) if isinstance(was, float) else "none"
-        changes.append(f"{label}: {from_} → {_length(one.value)}")
+        changes.append(f"{label} {_length(was)} → {_length(one.value)}")
     return tuple(changes)
 
 

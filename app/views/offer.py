@@ -8,7 +8,6 @@ from PySide6.QtCore import Qt, Signal
 from PySide6.QtWidgets import QHBoxLayout, QLabel, QPushButton, QToolButton, QVBoxLayout, QWidget
 
 from app.presenters.readings import Line
-from app.views.drawer import Drawer
 from app.views.lines import IconLine
 
 if TYPE_CHECKING:
@@ -16,7 +15,7 @@ if TYPE_CHECKING:
 
 
 class Offer(QWidget):
-    """Words, buttons, and the lengths that would change."""
+    """Words, and buttons for what can be done."""
 
     size_asked = Signal()
     settle_asked = Signal()
@@ -36,27 +35,12 @@ class Offer(QWidget):
         )
         self.accept_button, self.discard_button = QPushButton("Accept"), QPushButton("Discard")
         self.stop_button = QPushButton("Stop")
-        self.fold = QToolButton()
-        self.fold.setCheckable(True)
-        self.fold.setChecked(True)
-        self.fold.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
-        self._changes = QLabel()
-        self._changes.setObjectName("muted")
-        self._changes.setAccessibleName("Lengths that would change")
-        self._drawer = Drawer("Lengths that would change")
-        self._drawer.add(self._changes)
-        self.fold.toggled.connect(self._drawer.setVisible)
         self._lay_out()
 
     @property
     def words(self) -> str:
         """What is told about a sizing; empty where nothing is."""
         return self._line.line.words if self._line.line is not None else ""
-
-    @property
-    def changes(self) -> str:
-        """Lengths that would change, a line each."""
-        return self._changes.text()
 
     def show_state(self, state: ReadingsState) -> None:
         offer = state.offer
@@ -69,14 +53,6 @@ class Offer(QWidget):
         self.accept_button.setVisible(offer.is_proposal)
         self.discard_button.setVisible(offer.is_proposal)
         self.stop_button.setVisible(offer.is_busy)
-        changes = "\n".join(offer.changes)
-        if self._changes.text() != changes:
-            self._changes.setText(changes)
-            count = len(offer.changes)
-            self.fold.setText(f"What would change ({count})")
-            self.fold.setAccessibleName(self.fold.text())
-        self.fold.setVisible(bool(changes))
-        self._drawer.setVisible(bool(changes) and self.fold.isChecked())
 
     def _lay_out(self) -> None:
         buttons = QHBoxLayout()
@@ -97,5 +73,35 @@ class Offer(QWidget):
         layout.setSpacing(4)
         layout.addWidget(self._line)
         layout.addLayout(buttons)
+
+
+class Changes(QWidget):
+    """Lengths that a proposal would change, a line each, under a button that folds them."""
+
+    def __init__(self) -> None:
+        super().__init__()
+        self.setAccessibleName("What would change")
+        self.fold = QToolButton()
+        self.fold.setCheckable(True)
+        self.fold.setChecked(True)
+        self.fold.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+        self._lines = QLabel()
+        self._lines.setAccessibleName("Lengths that would change")
+        self.fold.toggled.connect(self._lines.setVisible)
+        layout = QVBoxLayout(self)
+        layout.setContentsMargins(0, 0, 0, 0)
+        layout.setSpacing(2)
         layout.addWidget(self.fold)
-        layout.addWidget(self._drawer)
+        layout.addWidget(self._lines)
+        self.show_changes(())
+
+    @property
+    def words(self) -> str:
+        """The lines."""
+        return self._lines.text()
+
+    def show_changes(self, changes: tuple[str, ...]) -> None:
+        self.fold.setText(f"What would change ({len(changes)})")
+        self.fold.setAccessibleName(self.fold.text())
+        self._lines.setText("\n".join(changes))
+        self.setVisible(bool(changes))

@@ -17,7 +17,7 @@ from PySide6.QtWidgets import (
 from app.views.check_line import CheckLine
 from app.views.drawer import Drawer
 from app.views.lines import LineList
-from app.views.offer import Offer
+from app.views.offer import Changes, Offer
 
 if TYPE_CHECKING:
     from app.presenters.readings import ReadingsState
@@ -77,7 +77,8 @@ class ReadingsView(QFrame):
         layout.addLayout(head)
         below = Drawer("Findings and cautions")
         folds = (self._caution_fold, self.cautions, self._piece_fold, self.pieces)
-        for widget in (self.findings, self._more, *folds):
+        self.changes = Changes()
+        for widget in (self.changes, self.findings, self._more, *folds):
             below.add(widget)
         for part in (self.lines, self.check, self.offer, below):
             layout.addWidget(part)
@@ -94,6 +95,8 @@ class ReadingsView(QFrame):
         self._fade(state.is_stale)
         self.check.show_state(state.check)
         self.offer.show_state(state)
+        if before is None or before.offer.changes != state.offer.changes:
+            self.changes.show_changes(state.offer.changes)
         if before is None or before.findings != state.findings:
             self._show_findings()
         if before is None or before.cautions != state.cautions:

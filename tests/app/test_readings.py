@@ -139,7 +139,7 @@ def test_sizing_shows_a_ghost_first_and_is_one_undo_step(window):
     window.window_actions["size"].trigger()
     assert window.document.design == missed
     assert window.mat.plan.state.ghost
-    proposed = window.sizing.proposed.design
+    proposed = window.sizing.proposed
     window.readings.accepted.emit()
     assert window.document.design == proposed
     assert window.mat.plan.state.ghost == ()
