@@ -6,6 +6,7 @@ What is told here is light to load: the window never loads the solver itself.
 from __future__ import annotations
 
 from dataclasses import dataclass
+from math import isfinite
 from typing import TYPE_CHECKING
 
 from core.design.polarisation import Polarisation
@@ -51,6 +52,7 @@ class Settled:
         Solutions in all, and of them on the mesh that it was judged on.
     level : str
     copper : tuple of Region
+        None where nothing could be solved.
     """
 
     design: Design
@@ -82,7 +84,7 @@ def settled(design: Design, progress: Progress, tell: Callable[[Best], None]) ->
         solves=found.solves,
         fine_solves=found.fine_solves,
         level=found.level.value,
-        copper=top_copper(build_layout(found.design)),
+        copper=top_copper(build_layout(found.design)) if isfinite(found.vswr) else (),
     )
 
 

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from math import isfinite
 from typing import TYPE_CHECKING
 
 from core.design.edit import parameters
@@ -79,20 +80,18 @@ def settled_offer(design: Design, settled: Settled, seconds: float) -> OfferStat
         settled.vswr <= brief.vswr
         and (_is_linear(brief) or settled.axial_ratio_db <= brief.axial_ratio_db)
     )
-    within = " That is within the brief." if is_met and not settled.met else ""
-    cost = (
-        f"{_counted(settled.solves, 'solve')}, {settled.fine_solves} of them on the "
-        f"{settled.level} mesh, {seconds:.0f} s."
-    )
     icon = "met" if is_met else "missed"
-    if settled.design == design:
-        return OfferState(f"Nothing to change. {settled.reason}{within} {cost}", icon)
-    return OfferState(
-        f"Dashed on the Mat. {settled.reason}{within} {cost}",
-        icon,
-        changed_lengths(design, settled.design),
-        is_proposal=True,
+    if not isfinite(settled.vswr):
+        return OfferState(settled.reason, icon)
+    within = " That is within the brief." if is_met and not settled.met else ""
+    told = (
+        f"{settled.reason}{within} {_counted(settled.solves, 'solve')}, "
+        f"{settled.fine_solves} of them on the {settled.level} mesh, {seconds:.0f} s."
     )
+    if settled.design == design:
+        return OfferState(f"Nothing would change. {told}", icon)
+    changes = changed_lengths(design, settled.design)
+    return OfferState(f"Dashed on the Mat. {told}", icon, changes, is_proposal=True)
 
 
 def changed_lengths(before: Design, after: Design) -> tuple[str, ...]:

@@ -2,6 +2,7 @@
 
 from dataclasses import replace
 from itertools import count
+from math import inf
 
 import pytest
 from PySide6.QtGui import QAccessible
@@ -221,11 +222,21 @@ def test_short_of_the_goals_may_still_be_within_the_brief():
 def test_where_nothing_would_change_nothing_is_offered(window, runner, settler):
     settler.changes = {"design": MISSED}
     settle(window, runner)
-    assert offer(window).words.startswith("Nothing to change. ")
+    assert offer(window).words.startswith("Nothing would change. ")
     assert not offer(window).accept_button.isVisible()
     assert window.mat.plan.state.ghost == ()
     window.cards.edited.emit("element.width", "50 mm")
     assert offer(window).words == ""
+
+
+def test_where_nothing_can_be_made_that_is_all_that_is_said(window, runner, settler):
+    reason = "No design was found that can be made."
+    nothing = {"met": False, "reason": reason, "vswr": inf, "axial_ratio_db": inf, "copper": ()}
+    settler.changes = nothing
+    settle(window, runner)
+    assert (offer(window).words, icon(window)) == (reason, "missed")
+    assert not offer(window).accept_button.isVisible()
+    assert window.sizing.proposed is None
 
 
 def test_a_refusal_is_told_in_one_line(window, runner, settler):
