@@ -183,6 +183,7 @@ class MainWindow(QMainWindow):
         column.setContentsMargins(0, 0, 0, 0)
         column.setSpacing(em // 2)
         column.addWidget(self.readings)
+        self.curves.setMinimumHeight(em * 13)  # what can scroll in the Readings gives way
         column.addWidget(self.curves, 1)
         self.columns = QSplitter(Qt.Orientation.Horizontal)
         self.columns.setHandleWidth(em // 2)

@@ -45,6 +45,7 @@ class Offer(QWidget):
     def show_state(self, state: ReadingsState) -> None:
         offer = state.offer
         self._line.show_line(Line(offer.icon, offer.words))
+        had_focus = any(button.hasFocus() for button in self._buttons)
         is_open = state.can_size and not (offer.is_busy or offer.is_proposal)
         self.setVisible(bool(offer.words) or is_open)
         self._line.setVisible(bool(offer.words))
@@ -53,6 +54,20 @@ class Offer(QWidget):
         self.accept_button.setVisible(offer.is_proposal)
         self.discard_button.setVisible(offer.is_proposal)
         self.stop_button.setVisible(offer.is_busy)
+        if had_focus:
+            self._keep_focus()
+
+    @property
+    def _buttons(self) -> tuple[QPushButton, ...]:
+        """Those that may be pressed without a look first in front."""
+        ours = (self.stop_button, self.discard_button, self.settle_button)
+        return (*ours, self.size_button, self.accept_button)
+
+    def _keep_focus(self) -> None:
+        """Keep the focus here when the button that had it goes."""
+        shown = [button for button in self._buttons if not button.isHidden()]
+        if shown and not any(button.hasFocus() for button in shown):
+            shown[0].setFocus()
 
     def _lay_out(self) -> None:
         buttons = QHBoxLayout()

@@ -5,6 +5,7 @@ from itertools import count
 from math import inf
 
 import pytest
+from PySide6.QtCore import Qt
 from PySide6.QtGui import QAccessible
 
 from app.field_check import KIND as CHECK
@@ -315,6 +316,14 @@ def test_the_field_check_follows_what_is_taken(open_window, runner, qtbot):
     runner.run()
     assert window.field.current.evaluation.design == answer(MISSED).design
     assert window.field.current.mark.startswith("Field-checked: coarse mesh")
+
+
+def test_the_focus_stays_with_the_offer(window, runner, qtbot):
+    offer(window).settle_button.setFocus()
+    qtbot.keyClick(offer(window).settle_button, Qt.Key.Key_Space)
+    assert offer(window).stop_button.hasFocus()
+    runner.run()
+    assert offer(window).discard_button.hasFocus()
 
 
 def test_buttons_have_names_for_screen_readers(window, runner):
