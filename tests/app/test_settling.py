@@ -182,7 +182,7 @@ def test_what_is_settled_is_a_ghost_first_and_then_one_undo_step(window, runner)
         offer(window).words
     )
     assert window.readings.changes.words == (
-        "Width (x) 55.24 mm → 53.24 mm\nLength (y) 51.8 mm → 50.8 mm"
+        "Width (x) 54.16 mm → 52.16 mm\nLength (y) 51.22 mm → 50.22 mm"
     )
     offer(window).accept_button.click()
     assert window.document.design == expected.design
@@ -352,8 +352,8 @@ def test_changes_name_the_branch(qapp):
         default_design(), {"feed.second.landing": "20 mm", "feed.tee": "30 mm"}.items()
     )
     assert changed_lengths(default_design(), after) == (
-        "Second branch, landing 25.72 mm → 20 mm",
-        "Tee position 31.47 mm → 30 mm",
+        "Second branch, landing 22.42 mm → 20 mm",
+        "Tee position 30.43 mm → 30 mm",
     )
 
 

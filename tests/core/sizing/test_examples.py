@@ -10,7 +10,7 @@ from core.design.model import Design
 from core.findings import has_refusal
 from core.fullwave.mesh import Level
 from core.layout.build import build_layout
-from core.sizing.settle import settling_goal
+from core.sizing.goal import Goal
 from core.sizing.solved import field_spot
 from core.storage.project import read_project
 
@@ -27,6 +27,6 @@ def test_it_can_be_built_and_is_within_its_brief_on_the_finest_mesh(design: Desi
     layout = build_layout(design)
     assert not has_refusal(layout.findings)
     brief = design.brief
-    goal = settling_goal(brief, brief.vswr, brief.axial_ratio_db)
+    goal = Goal(brief.polarisation, brief.impedance, brief.vswr, brief.axial_ratio_db)
     solved = field_spot(layout, brief.frequency, Level.FINE)
     assert goal.worst(goal.missing(*solved)) <= 1.0
