@@ -59,7 +59,7 @@ class Offer(QWidget):
 
     @property
     def _buttons(self) -> tuple[QPushButton, ...]:
-        """Those that may be pressed without a look first in front."""
+        """Buttons, the harmless ones first."""
         ours = (self.stop_button, self.discard_button, self.settle_button)
         return (*ours, self.size_button, self.accept_button)
 
