@@ -69,7 +69,8 @@ class SolverProcess:
         Cancelled
             If the progress asks for it, or the window closes.
         """
-        answer: Settled = self._asked(("settle", design), progress, tell)
+        # It is seldom asked for: the process ends with it and gives its memory back.
+        answer: Settled = self._asked(("settle", design), progress, tell, ends=True)
         return answer
 
     def _asked(
@@ -77,6 +78,8 @@ class SolverProcess:
         question: tuple[Any, ...],
         progress: Progress,
         tell: Callable[[Any], None] = lambda _news: None,
+        *,
+        ends: bool = False,
     ) -> Any:  # noqa: ANN401 - what is sent through the pipe has any type
         with self._turn:
             try:
@@ -88,6 +91,9 @@ class SolverProcess:
                 if self._is_closed:
                     raise Cancelled from error
                 raise ModelError("field solver: its process has ended by itself") from error
+            finally:
+                if ends:
+                    self._end()
 
     def close(self) -> None:
         """End the process, whatever it is at."""
