@@ -158,7 +158,7 @@ class SizingPresenter:
     def _on_failed(self, error: CoreError) -> None:
         self.discard()
         notice = "size-failed" if self._deed == SIZE else "settle-failed"
-        self._bar.tell(notice, reason=str(error).removeprefix("field solver: "))
+        self._bar.tell(notice, reason=str(error))
 
     def _on_design_changed(self, _design: Design) -> None:
         """An edit overtakes a proposal for the design before it."""

@@ -241,9 +241,11 @@ def test_where_nothing_can_be_made_that_is_all_that_is_said(window, runner, sett
 
 
 def test_a_refusal_is_told_in_one_line(window, runner, settler):
-    settler.refusal = "field solver: the spacer is thicker than it covers"
+    settler.refusal = "field solver: its process has ended by itself"
     settle(window, runner)
-    assert window.notices.words == "Nothing was settled. the spacer is thicker than it covers"
+    assert (
+        window.notices.words == "Nothing was settled. field solver: its process has ended by itself"
+    )
     assert offer(window).words == ""
     assert window.document.design == MISSED
 
