@@ -70,10 +70,10 @@ def settled(design: Design, progress: Progress, tell: Callable[[Best], None]) ->
     """Settle a design, judged on the finest mesh; tells of each better one on the way."""
     # Loaded here: only the solver's process needs it, and it takes a second.
     from core.sizing.settle import settle, settling_goal  # noqa: PLC0415
-    from core.sizing.solved import field_spot  # noqa: PLC0415
+    from core.sizing.solved import FieldSpot  # noqa: PLC0415
 
     is_left = design.brief.polarisation is Polarisation.LHCP
-    spot = _WatchedSpot(field_spot, settling_goal(design.brief), is_left, tell)
+    spot = _WatchedSpot(FieldSpot(), settling_goal(design.brief), is_left, tell)
     found = settle(design, spot=spot, progress=progress)
     return Settled(
         design=found.design,

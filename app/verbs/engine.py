@@ -3,32 +3,31 @@
 from __future__ import annotations
 
 import argparse
-from functools import partial
 from typing import TYPE_CHECKING, Any
 
 from app.verbs.arguments import VerbParser, unknown_word
 from app.verbs.output import table
-from core.engines import ENGINES
+from core.engines import ENGINES, LIVE
 from core.materials.table import folded
 
 if TYPE_CHECKING:
-    from collections.abc import Collection
+    from collections.abc import Mapping
 
-    from core.response.model import Response, Trust
+    from core.response.model import Reading, Trust
 
 
-def add_engine(parser: VerbParser, names: Collection[str] = tuple(ENGINES)) -> None:
-    """Give a verb the choice of the engine that answers, out of those that it can use."""
+def add_engine(parser: VerbParser, default: str | None = LIVE, left_out: str = "") -> None:
+    """Give a verb the choice of the engine that answers."""
     parser.add_argument(
         "--engine",
         metavar="NAME",
-        type=partial(_engine, names=names),
-        default=next(iter(names)),
-        help=f"what works it out: {' or '.join(names)}",
+        type=_engine,
+        default=default,
+        help=f"what works it out: {' or '.join(ENGINES)}{left_out}",
     )
 
 
-def trust_record(response: Response) -> dict[str, dict[str, Any]]:
+def trust_record(told: Mapping[Reading, Trust]) -> dict[str, dict[str, Any]]:
     """How far each reading can be trusted, for programs."""
     return {
         reading.value: {
@@ -36,14 +35,14 @@ def trust_record(response: Response) -> dict[str, dict[str, Any]]:
             "reason": trust.reason,
             "remedy": trust.remedy or None,
         }
-        for reading, trust in response.trust.items()
+        for reading, trust in told.items()
     }
 
 
-def trust_text(response: Response) -> str:
+def trust_text(told: Mapping[Reading, Trust]) -> str:
     """How far each reading can be trusted, those alike in one line."""
     alike: dict[Trust, list[str]] = {}
-    for reading, trust in response.trust.items():
+    for reading, trust in told.items():
         alike.setdefault(trust, []).append(reading.replace("_", " "))
     rows = [
         (trust.level.value, f"{', '.join(names)}: {trust.reason}{_cure(trust)}")
@@ -56,9 +55,9 @@ def _cure(trust: Trust) -> str:
     return f"; {trust.remedy}" if trust.remedy else ""
 
 
-def _engine(text: str, names: Collection[str]) -> str:
+def _engine(text: str) -> str:
     """Name of an engine, however it is spelled."""
-    for name in names:
+    for name in ENGINES:
         if folded(name) == folded(text):
             return name
-    raise argparse.ArgumentTypeError(unknown_word(text, names, "engine"))
+    raise argparse.ArgumentTypeError(unknown_word(text, ENGINES, "engine"))

@@ -5,7 +5,7 @@ Shapes: q points, e edges round the probe, m vertical profiles, d directions, t 
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 from math import ceil, pi
 from typing import TYPE_CHECKING, Final
 
@@ -78,11 +78,20 @@ class BoardCurrents:
         wavenumber = TWO_PI * frequency / SPEED_OF_LIGHT
         return cls(layers, wavenumber, ground_impedance, points[:, :2], moments[:, :2], *probe)
 
-    def mouth_alone(self) -> BoardCurrents:
-        """The same without any current."""
-        return replace(
-            self, points=self.points[:1], moments=0.0 * self.moments[:1], rising=0.0 * self.rising
-        )
+    @classmethod
+    def mouth_alone(
+        cls,
+        layers: tuple[Layer, ...],
+        frequency: float,
+        ground_impedance: complex,
+        mouth: CoaxRing,
+        profiles: int,
+    ) -> BoardCurrents:
+        """Of a mouth without any copper."""
+        nowhere, nothing = np.zeros((1, 2)), np.zeros((1, 2), dtype=np.complex128)
+        still = np.zeros((profiles, 1), dtype=np.complex128)
+        wavenumber = TWO_PI * frequency / SPEED_OF_LIGHT
+        return cls(layers, wavenumber, ground_impedance, nowhere, nothing, nowhere, still, mouth)
 
     def transformed(
         self, wavenumber: Floats | float, phi: Floats

@@ -40,6 +40,7 @@ _BATCH = 1000  # pairs to a task
 _APART, _TOUCHING = 1, 2
 _NEAR_IMAGE = 1.5  # distance of middles, in sums of radii, up to which an image is near
 _FLAT = 0.3  # height of an image, in the same, under which its source is integrated exactly
+_FAINT = 1e-3  # weight of an image whose points will do however near it is, as in air
 _RULES: Final = (COARSE_RULE, *(triangle_rule(order) for order in (4, 3, 5, 6)))
 
 
@@ -210,7 +211,7 @@ def _near(
     for own, other in np.ndindex(FACES, FACES):
         chosen = np.flatnonzero((here == own) & (there == other))
         for i in range(images.starts[own, other], images.stops[own, other]):
-            if images.weights[i] != 0.0:
+            if abs(images.weights[i]) > _FAINT:
                 image = images.turns[i], images.shifts[i]
                 near, kinds = near_image(basis.corners, pairs[chosen], image)
                 _, more = pair_terms(basis, pairs[chosen[near]], kinds, image)

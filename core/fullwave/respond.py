@@ -13,6 +13,7 @@ from typing import TYPE_CHECKING, ClassVar, Final
 import numpy as np
 
 from core.constants import FREE_SPACE_IMPEDANCE
+from core.fullwave.board_kernels import BoardKernels
 from core.fullwave.far_field import direction_frame, sphere_power
 from core.fullwave.layered_fields import BoardCurrents, power_into_waves, space_field
 from core.fullwave.layered_mesh import build_board_mesh
@@ -53,6 +54,7 @@ MOST_AIR_LIKE: Final = 1.5
 """Thickness-averaged permittivity up to which the finite plate is meshed in free space."""
 
 _UNBALANCED = 0.02  # share of the power that may go missing in free space
+_BAND = 1.2  # that kernels made for single frequencies reach, of the brief's frequency
 _TOLERANCE = 2e-3  # of reflection coefficient and field ratio in a sweep
 _MODE_REACH = 1.3  # ratio to the brief's frequency within which a pole is a mode of the element
 _LOWEST_Q, _HIGHEST_Q = 2.0, 2000.0
@@ -91,7 +93,7 @@ def respond(
     """
     wanted = np.asarray(frequencies, dtype=np.float64)
     band = (min(wanted[0], layout.frequency), max(wanted[-1], layout.frequency))
-    solver = _solver(layout, level, band[1])
+    solver = _solver(layout, level, _kernels(layout, band[1]))
     impedance = layout.ports[0].impedance
     sweep = adaptive_sweep(
         solver.quantities,
@@ -116,27 +118,39 @@ def respond(
     )
 
 
-def solve_once(layout: Layout, frequency: float, level: Level) -> Solution:
-    """Solve a layout at one frequency, for work that needs no band.
+class Solving:
+    """Solves layouts of one stack one after another, each at one frequency.
 
-    Parameters
-    ----------
-    layout : Layout
-    frequency : float
-        Hz, > 0.
-    level : Level
-        Fineness of the mesh.
-
-    Returns
-    -------
-    Solution
-
-    Raises
-    ------
-    ModelError
-        If the copper cannot be meshed, or the stack is outside what the solver covers.
+    What they have in common is worked out once.
     """
-    return _solver(layout, level, frequency).solve(frequency)
+
+    def __init__(self) -> None:
+        self._kernels: BoardKernels | None = None
+
+    def __call__(self, layout: Layout, frequency: float, level: Level) -> Solution:
+        """Solve a layout.
+
+        Parameters
+        ----------
+        layout : Layout
+            Of the same stack, foil and brief's frequency as the first.
+        frequency : float
+            Hz, at most a fifth over the brief's.
+        level : Level
+            Fineness of the mesh.
+
+        Returns
+        -------
+        Solution
+
+        Raises
+        ------
+        ModelError
+            If the copper cannot be meshed, or the stack is outside what the solver covers.
+        """
+        if self._kernels is None or self._kernels.layers != layout.stack:
+            self._kernels = _kernels(layout, _BAND * layout.frequency)
+        return _solver(layout, level, self._kernels).solve(frequency)
 
 
 @dataclass(frozen=True, eq=False)
@@ -248,12 +262,18 @@ class _Board(_Solver):
         )
 
 
-def _solver(layout: Layout, level: Level, highest: float) -> _Solver:
-    """Solver that suits a layout's stack, up to a frequency (Hz)."""
-    if series_permittivity(layout.stack) > MOST_AIR_LIKE:
-        mesh = build_board_mesh(layout, level)
-        return _Board(layout, build_layered_system(mesh, layout.stack, layout.foil, highest))
+def _solver(layout: Layout, level: Level, kernels: BoardKernels | None) -> _Solver:
+    """Solver that suits a layout's stack; a board has kernels."""
+    if kernels is not None:
+        return _Board(layout, build_layered_system(build_board_mesh(layout, level), kernels))
     return _FreeSpace(layout, build_system(build_mesh(layout, level), layout.foil, layout.stack))
+
+
+def _kernels(layout: Layout, highest: float) -> BoardKernels | None:
+    """Kernels up to a frequency (Hz) if the stack is a board."""
+    if series_permittivity(layout.stack) <= MOST_AIR_LIKE:
+        return None
+    return BoardKernels(layout.stack, layout.foil, highest)
 
 
 def _apart(one: Complexes, other: Complexes, impedance: float) -> Floats:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cached_property
 from math import pi
 from typing import TYPE_CHECKING
 
@@ -16,6 +17,8 @@ from core.fullwave.ports import ring_capacitance, ring_excitation
 from core.fullwave.upright import add_upright_coupling, spacer_field
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from numpy.typing import NDArray
 
     from core.fullwave.mesh_model import Mesh
@@ -66,18 +69,23 @@ class Solution:
         Current density that leaves through each function's edge, A/m.
     admittance : complex
         At the port, S.
-    lost : float
-        Power turned to heat in the conductors and the spacer, over the power accepted.
     e_x, e_y : complex
         Far field at boresight in the scale of `core.response.model.Samples`.
+    losing : callable
+        Works `lost` out.
     """
 
     frequency: float
     currents: Complexes
     admittance: complex
-    lost: float
     e_x: complex
     e_y: complex
+    losing: Callable[[], float]
+
+    @cached_property
+    def lost(self) -> float:
+        """Power turned to heat in conductors and spacer over that accepted; of use to few."""
+        return self.losing()
 
 
 def build_system(mesh: Mesh, foil: Foil, layers: tuple[Layer, ...] = ()) -> System:
@@ -138,9 +146,9 @@ def solve(system: System, frequency: float) -> Solution:
         frequency=frequency,
         currents=solved,
         admittance=admittance,
-        lost=_heat(system, solved, frequency, accepted) / accepted,
         e_x=complex(field[0]),
         e_y=complex(field[1]),
+        losing=lambda: _heat(system, solved, frequency, accepted) / accepted,
     )
 
 

@@ -17,7 +17,7 @@ import numpy as np
 from core.design.feed import Branch, DualEdge, LeadBend, LeadIn, ProbeFeed
 from core.design.model import Element
 from core.design.polarisation import Polarisation
-from core.sizing.knobs import GRID, Box, Knob
+from core.sizing.knobs import GRID, Box, Knob, fixed_element_boxes
 from core.sizing.seed import starting_values
 
 if TYPE_CHECKING:
@@ -57,12 +57,14 @@ class Freedoms:
     steps: Floats
 
 
-def freedoms(design: Design) -> Freedoms:
+def freedoms(design: Design, *, keep_element: bool = False) -> Freedoms:
     """Every length of a design that the field check may move.
 
     Parameters
     ----------
     design : Design
+    keep_element : bool
+        Whether the sides stay as they are.
 
     Returns
     -------
@@ -71,14 +73,17 @@ def freedoms(design: Design) -> Freedoms:
     """
     feed = design.feed
     box, steps = _probe_box(design, feed) if isinstance(feed, ProbeFeed) else _strip_box(design)
+    if keep_element:
+        (box,) = fixed_element_boxes((box,), design.element)
+    else:
+        quality = starting_values(design.brief, design.stock).quality
+        steps = [_BANDWIDTHS / quality / (2.0 * np.log(_SIDE_RANGE))] * 2 + steps
     start = np.array([knob.turn(knob.start) for knob in box.knobs])
-    quality = starting_values(design.brief, design.stock).quality
-    side = _BANDWIDTHS / quality / (2.0 * np.log(_SIDE_RANGE))
-    return Freedoms(box, start, np.array([side, side, *steps]))
+    return Freedoms(box, start, np.array(steps))
 
 
 def _probe_box(design: Design, feed: ProbeFeed) -> tuple[Box, list[float]]:
-    """Sides and the probe's place, on the nearer axis for linear polarisation."""
+    """Sides and the place of the probe, on the nearer axis if linear; steps of the latter."""
     element, edge = design.element, ("the element's edge",) * 2
     room = feed.probe.pad / 2
     reach_x, reach_y = element.width / 2 - room, element.length / 2 - room
@@ -94,14 +99,14 @@ def _probe_box(design: Design, feed: ProbeFeed) -> tuple[Box, list[float]]:
         moved = replace(feed, x=at[0], y=at[1])
         return replace(design, element=Element(width, length), feed=moved)
 
-    places = (place_x, place_y)
+    places: tuple[Knob, ...] = (place_x, place_y)
     if is_linear:
         places = (place_x,) if is_along_x else (place_y,)
     return Box((*_sides(element), *places), place), [_PROBE_STEP] * len(places)
 
 
 def _strip_box(design: Design) -> tuple[Box, list[float]]:
-    """Sides and strips of a dual-edge design."""
+    """Sides and strips of a dual-edge design; steps of the strips."""
     feed, element = design.feed, design.element
     assert isinstance(feed, DualEdge)
     lead, branches = feed.lead_in, (feed.first, feed.second)

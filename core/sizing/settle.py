@@ -23,7 +23,7 @@ from core.sizing.knobs import on_grid
 from core.sizing.search import Search
 from core.sizing.seed import THICKEST
 from core.sizing.size import GOAL_AXIAL_RATIO_DB, GOAL_VSWR, size
-from core.sizing.solved import SolvedDesigns, Spot, field_spot
+from core.sizing.solved import FieldSpot, SolvedDesigns, Spot
 from core.sizing.starts import family_starts
 from core.sizing.surrogate import Model, linearised
 from core.sizing.tuning import in_tune
@@ -41,7 +41,7 @@ _WORTH = 0.95  # of the goals: coarse results that are worth a finer look
 _NEAR = 2.0  # in units of the goals: a design given as near as this is not sized first
 _FAR = 4.0  # in units of the goals: a start as far off as this is brought into tune first
 _MOST_COARSE, _MOST_FINE = 50, 6  # solutions from one start
-_MOST = 240  # solutions after which no new start is made
+_MOST = 200  # solutions after which no search goes on
 _LIVE_TRUST = 1.0  # how far off the live model may be, and a coarse mesh
 _MESH_TRUST = 0.1
 
@@ -85,7 +85,8 @@ def settle(
     vswr: float | None = None,
     axial_ratio_db: float | None = None,
     level: Level = Level.FINE,
-    spot: Spot = field_spot,
+    keep_element: bool = False,
+    spot: Spot | None = None,
     progress: Progress = SILENT,
 ) -> Settling:
     """Correct a design until its solved response meets the brief.
@@ -99,8 +100,10 @@ def settle(
         Goals; 1.5 (dB), or the brief's own where those are stricter, if left out.
     level : Level
         Mesh to judge on; the search before it is on the coarse one.
-    spot : Spot
-        The solver.
+    keep_element : bool
+        Keep the sides as well.
+    spot : Spot, optional
+        The solver; the field solver if left out.
     progress : Progress
         Told after each solution; may cancel.
 
@@ -122,9 +125,9 @@ def settle(
     antenna is the mirror image of the right-hand one, which is what is solved.
     """
     goal = settling_goal(design.brief, vswr, axial_ratio_db)
-    solver = SolvedDesigns(goal, spot, progress, _MOST)
-    right = replace(design.brief, polarisation=goal.polarisation)
-    found = _best_found(replace(design, brief=right), solver, level)
+    solver = SolvedDesigns(goal, spot or FieldSpot(), progress, _MOST)
+    right = replace(design, brief=replace(design.brief, polarisation=goal.polarisation))
+    found = _best_found(_Starts(right, solver, keep_element), level)
     return _settling(design, found, solver, level)
 
 
@@ -172,8 +175,10 @@ class _Found:
 class _Start:
     """A design to start from, made buildable, and solved on the coarse mesh."""
 
-    def __init__(self, design: Design, solver: SolvedDesigns, knows: bool) -> None:
-        self.free = free = freedoms(design)
+    def __init__(
+        self, design: Design, solver: SolvedDesigns, keep_element: bool, knows: bool
+    ) -> None:
+        self.free = free = freedoms(design, keep_element=keep_element)
         self._solver = solver
         turns = made_buildable(free)
 
@@ -198,7 +203,7 @@ class _Start:
     def searched(self, level: Level) -> _Found:
         """Where a search from here ends, at the wanted level if it comes that far."""
         first, solver = self.search, self._solver
-        first.run(_within(solver.goal, _AIM), _MOST_COARSE)
+        first.run(_within(solver.goal, _AIM), min(_MOST_COARSE, _MOST - solver.solves))
         found = _Found(self.free, first.turns, first.missing, Level.COARSE)
         if level is Level.COARSE or self.worst > _WORTH:
             return found
@@ -211,45 +216,54 @@ class _Start:
         return _Found(self.free, last.turns, last.missing, level)
 
 
-def _best_found(design: Design, solver: SolvedDesigns, level: Level) -> _Found | None:
+@dataclass(frozen=True, eq=False)
+class _Starts:
+    """Where to begin, one after another."""
+
+    given: Design
+    solver: SolvedDesigns
+    keep_element: bool
+
+    def __iter__(self) -> Iterator[_Start]:
+        """Design as given, or as sized by equations where that is nearer, then other families."""
+        given = self._start(self.given, knows=True)
+        if given.worst <= _NEAR:
+            yield given
+        sized = size(self.given, keep_element=self.keep_element, progress=self.solver)
+        tuned = self._tuned(sized.design, knows=True)
+        yield tuned if given.worst <= _NEAR else min(tuned, given, key=lambda one: one.worst)
+        for family in family_starts(self.given, keep_element=self.keep_element):
+            yield self._tuned(family, knows=False)
+
+    def _tuned(self, design: Design, knows: bool) -> _Start:
+        """Start that is scaled into tune where it is far off."""
+        start = self._start(design, knows)
+        if self.keep_element or not start.is_solved or start.worst <= _FAR:
+            return start
+        solve_at = partial(self.solver.at, level=Level.COARSE)
+        tuned = self._start(in_tune(start.design, solve_at, self.solver.goal), knows)
+        return min(start, tuned, key=lambda one: one.worst)
+
+    def _start(self, design: Design, knows: bool) -> _Start:
+        return _Start(design, self.solver, self.keep_element, knows)
+
+
+def _best_found(starts: _Starts, level: Level) -> _Found | None:
     """Best of the starts, one after another until one meets the goals."""
     best: _Found | None = None
-    for start in _starts(design, solver):
+    solver = starts.solver
+    for start in starts:
         if not start.is_solved:
             continue
         found = start.searched(level)
         if best is None or _rank(found, solver, level) < _rank(best, solver, level):
             best = found
-        if _is_met(best, solver, level) or solver.solves > _MOST:
+        if _is_met(best, solver, level) or solver.solves >= _MOST:
             break
     if best is not None and best.level is not level:
         missing = solver.missing(best.design, level)
         best = best if missing is None else replace(best, missing=missing, level=level)
     return best
-
-
-def _starts(design: Design, solver: SolvedDesigns) -> Iterator[_Start]:
-    """Design as given, or as sized by equations where that is nearer, then other families."""
-    given = _Start(design, solver, knows=True)
-    if given.worst <= _NEAR:
-        yield given
-    sized = _tuned(size(design, progress=solver).design, solver, knows=True)
-    if given.worst > _NEAR:
-        yield min(sized, given, key=lambda start: start.worst)
-    else:
-        yield sized
-    for family in family_starts(design):
-        yield _tuned(family, solver, knows=False)
-
-
-def _tuned(design: Design, solver: SolvedDesigns, knows: bool) -> _Start:
-    """Start that is scaled into tune where it is far off."""
-    start = _Start(design, solver, knows)
-    if not start.is_solved or start.worst <= _FAR:
-        return start
-    solve_at = partial(solver.at, level=Level.COARSE)
-    tuned = _Start(in_tune(start.design, solve_at, solver.goal), solver, knows)
-    return min(start, tuned, key=lambda one: one.worst)
 
 
 def _within(goal: Goal, part: float) -> Callable[[Floats], bool]:

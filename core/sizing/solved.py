@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 from core.errors import LayoutError, ModelError
 from core.findings import Severity
 from core.fullwave.mesh import Level
-from core.fullwave.respond import solve_once
+from core.fullwave.respond import Solving
 from core.layout.build import build_layout
 
 if TYPE_CHECKING:
@@ -27,23 +27,18 @@ Spot = Callable[["Layout", float, Level], tuple[complex, complex, complex]]
 a layout at one frequency (Hz)."""
 
 
-def field_spot(layout: Layout, frequency: float, level: Level) -> tuple[complex, complex, complex]:
-    """Solve a layout by the field solver.
+class FieldSpot:
+    """The field solver as a spot, for designs on one stock; what they share is kept."""
 
-    Parameters
-    ----------
-    layout : Layout
-    frequency : float
-        Hz, > 0.
-    level : Level
+    def __init__(self) -> None:
+        self._solve = Solving()
 
-    Returns
-    -------
-    admittance, e_x, e_y : complex
-        At the port, S; at boresight, in the scale of `Samples`.
-    """
-    solution = solve_once(layout, frequency, level)
-    return solution.admittance, solution.e_x, solution.e_y
+    def __call__(
+        self, layout: Layout, frequency: float, level: Level
+    ) -> tuple[complex, complex, complex]:
+        """Solve a layout at one frequency (Hz): admittance, S, and field along x and y."""
+        solution = self._solve(layout, frequency, level)
+        return solution.admittance, solution.e_x, solution.e_y
 
 
 class SolvedDesigns:

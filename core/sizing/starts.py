@@ -33,13 +33,15 @@ _SHAPES = (
 _STRIP, _GAP = 0.06, 0.03  # of the side
 
 
-def family_starts(design: Design) -> tuple[Design, ...]:
+def family_starts(design: Design, *, keep_element: bool = False) -> tuple[Design, ...]:
     """Rough designs on the same stock, one of each family of shapes.
 
     Parameters
     ----------
     design : Design
         Its brief, stock, process, probe and corners are kept.
+    keep_element : bool
+        Whether its sides are kept too; otherwise they are those of a resonant square.
 
     Returns
     -------
@@ -49,12 +51,14 @@ def family_starts(design: Design) -> tuple[Design, ...]:
     feed = design.feed
     if not isinstance(feed, DualEdge):
         return ()
-    side = starting_values(design.brief, design.stock).square
-    return tuple(_shaped(design, feed, shape, side) for shape in _SHAPES)
+    if not keep_element:
+        square = on_grid(starting_values(design.brief, design.stock).square)
+        design = replace(design, element=Element(square, square))
+    return tuple(_shaped(design, feed, shape) for shape in _SHAPES)
 
 
-def _shaped(design: Design, feed: DualEdge, shape: _Shape, side: float) -> Design:
-    making = design.making
+def _shaped(design: Design, feed: DualEdge, shape: _Shape) -> Design:
+    making, side = design.making, min(design.element.width, design.element.length)
     width = on_grid(max(making.narrowest_strip, _STRIP * side))
     clear = making.narrowest_gap + (feed.probe.pad - width) / 2
     gap = on_grid(max(making.narrowest_gap, _GAP * side, clear))
@@ -62,7 +66,6 @@ def _shaped(design: Design, feed: DualEdge, shape: _Shape, side: float) -> Desig
     length = on_grid(first + second + 2 * gap + width)
     return replace(
         design,
-        element=Element(on_grid(side), on_grid(side)),
         feed=replace(
             feed,
             first=Branch(first, gap, width),

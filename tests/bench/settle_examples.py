@@ -16,7 +16,7 @@ from core.design.defaults import default_design
 from core.fullwave.mesh import Level
 from core.layout.build import build_layout
 from core.sizing.settle import settle, settling_goal
-from core.sizing.solved import field_spot
+from core.sizing.solved import FieldSpot
 from core.storage.project import read_project, write_project
 
 
@@ -33,7 +33,7 @@ def main():
             write_project(path, settling.design, replace=True)
     design = default_design()
     goal = settling_goal(design.brief)
-    solved = field_spot(build_layout(design), design.brief.frequency, Level.FINE)
+    solved = FieldSpot()(build_layout(design), design.brief.frequency, Level.FINE)
     vswr, axial_ratio = goal.reached(goal.missing(*solved))
     print(f"default     VSWR {vswr:.2f}, axial ratio {axial_ratio:.2f} dB on the fine mesh")
 

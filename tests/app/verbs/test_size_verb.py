@@ -8,6 +8,8 @@ import pytest
 from app.command import main
 from core.design.polarisation import Polarisation
 from core.design.record import from_record
+from core.fullwave.mesh import Level
+from core.sizing.settle import Settling
 from core.storage.project import read_project
 
 
@@ -107,11 +109,68 @@ def test_every_layer_counts_however_it_is_given(sized):
     assert layers == ["foam", "card"]
 
 
-def test_where_equations_cannot_tell_that_is_said(sized, capsys):
-    told = sized("--spacer", "air:15mm", "--feed", "probe")
+THICK = ("--spacer", "air:15mm", "--feed", "probe")
+
+
+def test_where_equations_cannot_tell_that_is_said_if_they_are_asked_for(sized, capsys):
+    told = sized(*THICK, "--engine", "live")
+    assert told["engine"] == "live"
     assert told["trust"]["match"]["level"] == "unknown"
-    assert main(["size", "--spacer", "air:15mm", "--feed", "probe"]) == 0
+    assert (told["solves"], told["level"]) == (0, None)
+    assert main(["size", *THICK, "--engine", "live"]) == 0
     assert "unknown  match, axial ratio, bands, gain: the spacer is" in capsys.readouterr().out
+
+
+@pytest.fixture
+def settled(monkeypatch):
+    """What settling was asked for, answered at once."""
+    asked = []
+
+    def settle(design, *, keep_element, progress):
+        asked.append((design, keep_element))
+        progress.step(7, 200)
+        return Settling(design, True, "Solved.", 1.2, 0.4, 9, 2, Level.FINE)
+
+    monkeypatch.setattr("core.sizing.settle.settle", settle)
+    return asked
+
+
+def test_where_equations_cannot_tell_the_solver_goes_on(settled, capsys):
+    assert main(["size", *THICK, "--json"]) == 0
+    out, err = capsys.readouterr()
+    told = json.loads(out)
+    assert told["engine"] == "field"
+    assert (told["vswr"], told["axial_ratio_db"], told["met"]) == (1.2, 0.4, True)
+    assert (told["solves"], told["fine_solves"], told["level"]) == (9, 2, "fine")
+    assert told["trust"]["match"]["level"] == told["trust"]["axial_ratio"]["level"] == "good"
+    assert told["trust"]["gain"]["level"] == "unknown"
+    assert err == "settling: 7 designs solved; it gives up near 200\n"
+    ((design, keeps),) = settled
+    assert design == from_record(told["design"])
+    assert not keeps
+
+
+def test_where_equations_can_tell_the_solver_is_not_asked(settled, sized):
+    assert sized("--feed", "probe")["engine"] == "live"
+    assert settled == []
+
+
+def test_the_solver_keeps_a_given_element(settled, capsys):
+    words = ["--element", "rect:50mmx51mm", "--feed", "probe", "--engine", "field"]
+    assert main(["size", *words]) == 0
+    assert "\n9 designs solved, 2 of them on the fine mesh.\n" in capsys.readouterr().out
+    ((design, keeps),) = settled
+    assert (design.element.width, design.element.length, keeps) == (0.050, 0.051, True)
+
+
+def test_the_solver_sizes_a_board(capsys):
+    words = ["--spacer", "FR-4:1.6mm", "--polarisation", "linear", "--frequency", "5.7 GHz"]
+    assert main(["size", *words, "--engine", "field", "-o", "b.kerf", "--json"]) == 0
+    told = json.loads(capsys.readouterr().out)
+    assert told["met"] is True
+    assert 1.0 <= told["vswr"] <= 1.5
+    assert 1 <= told["fine_solves"] < told["solves"]
+    assert from_record(told["design"]) == read_project(Path("b.kerf"))
 
 
 def test_a_brief_that_cannot_be_met_says_why(sized):
@@ -130,7 +189,9 @@ def test_text_shows_the_sizes_and_the_file(capsys):
 
 
 def test_a_very_long_wave_is_sized_on_the_largest_plate(sized):
-    told = sized("--frequency", "60MHz", "--spacer", "air:100mm", "--feed", "probe")
+    told = sized(
+        "--frequency", "60MHz", "--spacer", "air:100mm", "--feed", "probe", "--engine", "live"
+    )
     assert told["design"]["stock"]["ground"]["diameter"] == 4.0
 
 
@@ -183,7 +244,7 @@ def test_a_failed_write_is_told(capsys):
         (["--name", "a\nb"], "name: 'a\\nb' is not taken; accepted: up to 60 printable"),
         (["--name", "n" * 61], "is not taken; accepted: up to 60 printable characters"),
         (["--name", "\udcff"], "name: '\\udcff' is not taken; accepted: up to 60 printable"),
-        (["--engine", "field"], "--engine: 'field' is no engine; accepted: live"),
+        (["--engine", "warp"], "--engine: 'warp' is no engine; accepted: live, field"),
         (["out.kerf"], "'out.kerf' is one word too many; accepted: kerfwave size "),
     ],
 )

@@ -11,7 +11,7 @@ from core.findings import has_refusal
 from core.fullwave.mesh import Level
 from core.layout.build import build_layout
 from core.sizing.goal import Goal
-from core.sizing.solved import field_spot
+from core.sizing.solved import FieldSpot
 from core.storage.project import read_project
 
 EXAMPLES = sorted(Path(str(files("assets").joinpath("examples"))).glob("*.kerf"))
@@ -28,5 +28,5 @@ def test_it_can_be_built_and_is_within_its_brief_on_the_finest_mesh(design: Desi
     assert not has_refusal(layout.findings)
     brief = design.brief
     goal = Goal(brief.polarisation, brief.impedance, brief.vswr, brief.axial_ratio_db)
-    solved = field_spot(layout, brief.frequency, Level.FINE)
+    solved = FieldSpot()(layout, brief.frequency, Level.FINE)
     assert goal.worst(goal.missing(*solved)) <= 1.0
