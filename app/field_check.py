@@ -28,14 +28,16 @@ KIND: Final = "field-check"
 REST: Final = 400  # ms that an edit must rest before it is solved
 COARSE: Final = "coarse"
 _PREPARING: Final = "Preparing the field check…"
+_FOLLOWS: Final = "The field check follows the hand on a coarse mesh."
 
 
-class Solve(Protocol):
+class Solver(Protocol):
     """A field solver: takes a layout, frequencies (Hz), a listener and a level of mesh."""
 
-    def __call__(
+    def solve(
         self, layout: Layout, frequencies: ArrayLike, progress: Progress, level: str
     ) -> Response: ...
+    def close(self) -> None: ...
 
 
 @dataclass(frozen=True)
@@ -70,7 +72,7 @@ class FieldCheck(QObject):
     """Keeps the last answer of the field solver, and asks for the next one.
 
     An edit stops what is being solved; when edits rest, the design is solved beside the
-    window, on a coarse mesh as long as the hand holds on.
+    window. As long as the hand holds on, coarse answers follow it one after the other.
 
     Attributes
     ----------
@@ -85,11 +87,11 @@ class FieldCheck(QObject):
     changed = Signal()
 
     def __init__(
-        self, pipeline: Pipeline, settings: Settings, runner: Runner, solve: Solve
+        self, pipeline: Pipeline, settings: Settings, runner: Runner, solver: Solver
     ) -> None:
         super().__init__(pipeline)
         self._pipeline, self._settings, self._runner = pipeline, settings, runner
-        self._solve = solve
+        self._solver = solver
         self.last: Checked | None = None
         self._is_held = self._is_ready = False
         self.busy, self.problem, self.is_stopped = "", "", False
@@ -118,11 +120,12 @@ class FieldCheck(QObject):
         if not self.is_on or current.layout is None or self._is_done():
             return
         level = COARSE if self._is_held else str(self._settings.value("mesh_level"))
-        self._tell(busy="Field check: first frequency" if self._is_ready else _PREPARING)
+        busy = _FOLLOWS if self._is_held else "Field check: first frequency"
+        self._tell(busy=busy if self._is_ready else _PREPARING)
         self._runner.start(
             Request(
                 KIND,
-                lambda progress: _checked(current, level, self._solve, progress),
+                lambda progress: _checked(current, level, self._solver, progress),
                 self._on_checked,
                 lambda error: self._tell(problem=_reason(error)),
                 self._on_stepped,
@@ -139,17 +142,21 @@ class FieldCheck(QObject):
         """End for good: nothing is solved and nobody is told."""
         self._rest.stop()
         self._runner.stop(KIND)
+        self._solver.close()
 
-    def hold(self) -> None:
-        """The hand has taken hold of something."""
-        self._is_held = True
-
-    def let_go(self) -> None:
-        """The hand has let go: what it left is solved on the chosen mesh."""
-        self._is_held = False
-        if not self._is_done() and not self.is_stopped:
+    def hold(self, is_held: bool) -> None:
+        """The hand has taken hold of something, or let go of it."""
+        self._is_held = is_held
+        if self.busy:
+            self._runner.stop(KIND)
+            self.busy = ""
+        if not is_held and not self._is_done() and not self.is_stopped:
             self._wait()
-            self.changed.emit()
+        self.changed.emit()
+
+    def forget(self) -> None:
+        """Forget the last answer: another design comes on the bench."""
+        self.last = None
 
     def _is_done(self) -> bool:
         """Whether the design on the bench is solved as finely as it is to be."""
@@ -165,6 +172,10 @@ class FieldCheck(QObject):
         self.changed.emit()
 
     def _on_evaluated(self, _evaluation: Evaluation) -> None:
+        if self._is_held:
+            if not self.busy and not self.problem:
+                self.start()
+            return
         if self.busy:
             self._runner.stop(KIND)
         self.busy, self.problem, self.is_stopped = "", "", False
@@ -183,22 +194,15 @@ class FieldCheck(QObject):
     def _on_stepped(self, done: int, total: int) -> None:
         # The first frequency of a session also loads the solver.
         self._is_ready = self._is_ready or done > 0
-        if self._is_ready:
+        if self._is_ready and not self._is_held:
             self._tell(busy=f"Field check: {done} of about {total} frequencies")
 
     def _on_checked(self, checked: Checked) -> None:
         self.last, self._is_ready = checked, True
-        self._tell()
-
-
-def solve_by_mesh(
-    layout: Layout, frequencies: ArrayLike, progress: Progress, level: str
-) -> Response:
-    """Solve with the field solver, which is loaded when it is first asked."""
-    from core.fullwave.mesh import Level  # noqa: PLC0415 - takes half a second
-    from core.fullwave.respond import respond  # noqa: PLC0415
-
-    return respond(layout, frequencies, progress, Level(level))
+        if self._is_held and self.current is None:
+            self.start()
+        else:
+            self._tell()
 
 
 def _reason(error: CoreError) -> str:
@@ -217,11 +221,11 @@ class _Counted:
         self._progress.step(done, total)
 
 
-def _checked(current: Evaluation, level: str, solve: Solve, progress: Progress) -> Checked:
+def _checked(current: Evaluation, level: str, solver: Solver, progress: Progress) -> Checked:
     """Solve a design at the frequencies of the curves and hold it against its brief."""
     assert current.layout is not None
     brief, counted = current.design.brief, _Counted(progress)
-    response = solve(current.layout, frequency_grid(brief.frequency), counted, level)
+    response = solver.solve(current.layout, frequency_grid(brief.frequency), counted, level)
     verdicts = judge(response, brief.polarisation, brief.vswr, brief.axial_ratio_db)
     evaluation = replace(current, response=response, verdicts=verdicts, problem="")
     return Checked(evaluation, level, counted.count)

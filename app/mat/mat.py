@@ -21,6 +21,7 @@ class Mat(QFrame):
 
     spacing_set = Signal(float)
     spacing_taken = Signal()
+    spacing_left = Signal()
 
     def __init__(self) -> None:
         super().__init__()
@@ -71,6 +72,7 @@ class Mat(QFrame):
         self.edge.looked.connect(self._on_edge_looked)
         self.edge.zoomed.connect(self._on_edge_zoomed)
         self.slider.sliderPressed.connect(self.spacing_taken)
+        self.slider.sliderReleased.connect(self.spacing_left)
         self.slider.valueChanged.connect(self._on_slider)
 
     def _on_edge_looked(self, camera: Camera) -> None:

@@ -45,7 +45,7 @@ def check_state(field: FieldCheck) -> CheckState:
     if field.is_stopped:
         return CheckState("Field check stopped until the next edit.", before, CHECK_NOW)
     if current is not None:
-        return CheckState(f"Sheets will say {current.mark}.")
+        return CheckState(f"Sheets will say: field-checked, {current.level} mesh.")
     return CheckState("The field check follows when the hand rests.", before)
 
 

@@ -126,8 +126,8 @@ def settle(
     """
     goal = settling_goal(design.brief, vswr, axial_ratio_db)
     solver = SolvedDesigns(goal, spot or FieldSpot(), progress, _MOST)
-    right = replace(design.brief, polarisation=goal.polarisation)
-    found = _best_found(_Starts(replace(design, brief=right), solver, keep_element), level)
+    right = replace(design, brief=replace(design.brief, polarisation=goal.polarisation))
+    found = _best_found(_Starts(right, solver, keep_element), level)
     return _settling(design, found, solver, level)
 
 
@@ -229,8 +229,8 @@ class _Starts:
         given = self._start(self.given, knows=True)
         if given.worst <= _NEAR:
             yield given
-        sizing = size(self.given, keep_element=self.keep_element, progress=self.solver)
-        tuned = self._tuned(sizing.design, knows=True)
+        sized = size(self.given, keep_element=self.keep_element, progress=self.solver)
+        tuned = self._tuned(sized.design, knows=True)
         yield tuned if given.worst <= _NEAR else min(tuned, given, key=lambda one: one.worst)
         for family in family_starts(self.given, keep_element=self.keep_element):
             yield self._tuned(family, knows=False)

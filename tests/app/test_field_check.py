@@ -7,8 +7,9 @@ from PySide6.QtGui import QAccessible
 
 from app.curves.legend import engine_words
 from app.dialogs.export import ExportDialog
-from app.field_check import KIND, FieldCheck, solve_by_mesh
-from app.jobs.runner import InlineRunner, JobRunner
+from app.field_check import KIND, FieldCheck
+from app.jobs.runner import JobRunner
+from app.jobs.solver_process import SolverProcess
 from app.main_window import MainWindow
 from app.presenters.check_words import CANCEL, CHECK_NOW
 from app.window import dress
@@ -24,11 +25,13 @@ class FakeSolver:
     """Answers like a field solver, from the live model; may refuse, or say what it is asked."""
 
     def __init__(self):
-        self.levels, self.designs = [], []
+        self.levels = []
         self.refusal = ""
         self.frequencies = 6
 
-    def __call__(self, layout, frequencies, progress, level):
+    def close(self): ...
+
+    def solve(self, layout, frequencies, progress, level):
         self.levels.append(level)
         for done in range(self.frequencies):
             progress.step(done, 7)
@@ -37,23 +40,6 @@ class FakeSolver:
         known = Trust(TrustLevel.GOOD, "solved")
         trust = dict.fromkeys(Reading, known)
         return replace(ENGINES[LIVE](layout, frequencies, SILENT), engine="field", trust=trust)
-
-
-class HeldRunner(InlineRunner):
-    """Keeps requests until it is told to run them."""
-
-    def __init__(self):
-        self.waiting = {}
-
-    def start(self, request):
-        self.waiting[request.kind] = request
-
-    def stop(self, kind):
-        self.waiting.pop(kind, None)
-
-    def run(self):
-        for kind in list(self.waiting):
-            super().start(self.waiting.pop(kind))
 
 
 @pytest.fixture
@@ -66,10 +52,10 @@ def open_window(qtbot, qapp, settings, asker, tmp_path, solver, monkeypatch):
     windows = []
     monkeypatch.setattr("app.field_check.REST", 1)
 
-    def make(runner, solve=solver):
+    def make(runner, solver=solver):
         settings.set("field_check", True)
         dress(qapp, settings)
-        window = MainWindow(settings, runner, tmp_path / "state", asker, solve)
+        window = MainWindow(settings, runner, tmp_path / "state", asker, solver)
         windows.append(window)
         window.resize(1280, 720)
         with qtbot.waitExposed(window):
@@ -81,11 +67,6 @@ def open_window(qtbot, qapp, settings, asker, tmp_path, solver, monkeypatch):
         window.document.stack.setClean()
         window.close()
         window.deleteLater()
-
-
-@pytest.fixture
-def runner():
-    return HeldRunner()
 
 
 @pytest.fixture
@@ -113,7 +94,7 @@ def test_readings_switch_to_what_is_solved_and_say_so(window, runner):
     assert engine(window) == "live estimate, by equations"
     runner.run()
     assert engine(window) == "field solver, normal mesh, 6 frequencies"
-    assert window.readings.check.words.startswith("Sheets will say Field-checked: normal mesh")
+    assert window.readings.check.words.startswith("Sheets will say: field-checked, normal mesh")
 
 
 def test_an_edit_makes_the_answer_stale_and_readings_live(window, runner):
@@ -159,11 +140,16 @@ def test_the_hand_gets_a_coarse_mesh_and_the_chosen_one_when_it_lets_go(
     window.settings.set("mesh_level", "fine")
     at_rest(window, runner, qtbot)
     mouse = hand(window.mat.plan).press("element.width").move(6, 0)
-    at_rest(window, runner, qtbot)
+    assert window.readings.check.words == "The field check follows the hand on a coarse mesh."
+    mouse.move(6, 0)  # while the first step is being solved
+    assert len(runner.waiting) == 1
+    runner.run()
+    assert window.field.current is None
+    runner.run()
     assert "coarse" in engine(window)
     mouse.release()
     at_rest(window, runner, qtbot)
-    assert solver.levels == ["normal", "fine", "coarse", "fine"]
+    assert solver.levels == ["normal", "fine", "coarse", "coarse", "fine"]
     assert "fine mesh" in engine(window)
 
 
@@ -212,7 +198,7 @@ def test_curves_name_their_engine_in_words(window, runner):
     assert spoken.startswith("field solver: Match")
     assert "; live: Match" in spoken
     widen(window)
-    assert "field solver, before this edit" in window.curves.match.accessibleDescription()
+    assert "solved before: Match" in window.curves.match.accessibleDescription()
 
 
 def test_solved_and_live_curves_differ_without_colour(window, runner, qtbot):
@@ -258,7 +244,7 @@ def test_the_line_is_named_for_screen_readers(window, runner):
 def test_a_tiny_design_is_solved_beside_the_window(open_window, qtbot):
     """One true solution in a thread: the answer comes back, and the window ends cleanly."""
     runner = JobRunner()
-    window = open_window(runner, solve_by_mesh)
+    window = open_window(runner, SolverProcess())
     window.settings.set("mesh_level", "coarse")
     small = edit.with_texts(
         default_design(),
