@@ -113,8 +113,6 @@ def settle(
 
     Raises
     ------
-    ModelError
-        If the solver does not cover the stack.
     Cancelled
         If the progress asks for it.
 
