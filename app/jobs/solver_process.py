@@ -30,16 +30,20 @@ if TYPE_CHECKING:
     from core.progress import Progress
     from core.response.model import Response
 
+_DROPPED: Final = "dropped"
 _NICENESS: Final = 5  # the window goes first where both want a processor
 
 _THREADS: Final = "OPENBLAS_NUM_THREADS"
+
+
+_GONE: Final = "field solver: its process has ended; it starts again with the next edit"
 
 
 class SolverProcess:
     """Answers from any thread; the process starts with the first question."""
 
     def __init__(self) -> None:
-        self._turn = Lock()
+        self._turn, self._speaking = Lock(), Lock()
         self._pipe: Connection | None = None
         self._process: SpawnProcess | None = None
         self._is_closed = False
@@ -47,7 +51,7 @@ class SolverProcess:
     def solve(
         self, layout: Layout, frequencies: ArrayLike, progress: Progress, level: str
     ) -> Response:
-        """Solve a layout at some frequencies (Hz, rising) on a coarse, normal or fine mesh.
+        """Solve a layout at some frequencies (Hz, rising) on a mesh of some level.
 
         Raises
         ------
@@ -80,20 +84,26 @@ class SolverProcess:
         tell: Callable[[Any], None] = lambda _news: None,
         *,
         ends: bool = False,
-    ) -> Any:  # noqa: ANN401 - what is sent through the pipe has any type
+    ) -> Any:  # noqa: ANN401 - what comes through the pipe has any type
         with self._turn:
             try:
                 pipe = self._open()
-                pipe.send(question)
-                return _heard(pipe, progress, tell)
+                self._say(question)
+                return _heard(pipe, progress, tell, self.drop)
             except (EOFError, OSError) as error:
                 self._end()
                 if self._is_closed:
                     raise Cancelled from error
-                raise ModelError("field solver: its process has ended by itself") from error
+                raise ModelError(_GONE) from error
             finally:
                 if ends:
                     self._end()
+
+    def drop(self) -> None:
+        """Have the question that is being answered left; it ends at its next step."""
+        # A pipe that has just broken is found out by who listens to it.
+        with contextlib.suppress(OSError):
+            self._say(_DROPPED)
 
     def close(self) -> None:
         """End the process, whatever it is at."""
@@ -101,36 +111,52 @@ class SolverProcess:
         process = self._process
         if process is not None:
             process.terminate()
+        if self._turn.acquire(blocking=False):  # else who listens to the process ends it
+            try:
+                self._end()
+            finally:
+                self._turn.release()
+
+    def _say(self, what: object) -> None:
+        with self._speaking:
+            if self._pipe is not None:
+                self._pipe.send(what)
 
     def _open(self) -> Connection:
         if self._is_closed:
             raise EOFError
         if self._pipe is None:
             context = multiprocessing.get_context("spawn")
-            self._pipe, far_end = context.Pipe()
-            self._process = context.Process(target=_serve, args=(far_end,), daemon=True)
+            near_end, far_end = context.Pipe()
+            process = context.Process(target=_serve, args=(far_end,), daemon=True)
             with _one_thread():
-                self._process.start()
+                process.start()
             far_end.close()
+            self._pipe, self._process = near_end, process
         return self._pipe
 
     def _end(self) -> None:
-        if self._pipe is not None:
-            self._pipe.close()
+        with self._speaking:
+            if self._pipe is not None:
+                self._pipe.close()
+            self._pipe = None
         if self._process is not None:
+            self._process.terminate()
             self._process.join()
-        self._pipe = self._process = None
+            self._process.close()
+        self._process = None
 
 
-class _Asking:
-    """Tells the window of each step and asks whether to go on."""
+class _Telling:
+    """Tells the window of each step, and does not wait for it; stops if it has been told to."""
 
     def __init__(self, pipe: Connection) -> None:
         self._pipe = pipe
 
     def step(self, done: int, total: int) -> None:
         self._pipe.send(("stepped", (done, total)))
-        if not self._pipe.recv():
+        if self._pipe.poll():
+            self._pipe.recv()  # while a question is open there is only one thing to be told
             raise Cancelled
 
     def tell(self, best: Best) -> None:
@@ -155,21 +181,25 @@ def _one_thread() -> Iterator[None]:
             os.environ[_THREADS] = before
 
 
-def _heard(pipe: Connection, progress: Progress, tell: Callable[[Any], None]) -> Any:  # noqa: ANN401 - as above
+def _heard(
+    pipe: Connection,
+    progress: Progress,
+    tell: Callable[[Any], None],
+    drop: Callable[[], None],
+) -> Any:  # noqa: ANN401 - as above
     """Listen until the answer comes."""
     is_wanted = True
     while True:
         what, told = pipe.recv()
-        if what == "told":
-            tell(told)
-            continue
-        if what == "stepped" and is_wanted:
+        if what == "stepped":
             try:
-                progress.step(*told)
+                if is_wanted:
+                    progress.step(*told)
             except Cancelled:
                 is_wanted = False
-        if what == "stepped":
-            pipe.send(is_wanted)
+                drop()
+        elif what == "told":
+            tell(told)
         elif what == "cancelled" or not is_wanted:
             raise Cancelled
         elif what == "refused":
@@ -188,7 +218,8 @@ def _serve(pipe: Connection) -> None:
     with contextlib.suppress(EOFError, OSError):
         while True:
             question = pipe.recv()
-            pipe.send(_answer(question, _Asking(pipe)))
+            if question != _DROPPED:  # which comes too late where all has been answered
+                pipe.send(_answer(question, _Telling(pipe)))
 
 
 def _solved(layout: Layout, frequencies: ArrayLike, level: str, progress: Progress) -> Response:
@@ -199,17 +230,17 @@ def _solved(layout: Layout, frequencies: ArrayLike, level: str, progress: Progre
     return respond(layout, frequencies, progress, Level(level))
 
 
-def _settled(design: Design, asking: _Asking) -> Settled:
-    return settled(design, asking, asking.tell)
+def _settled(design: Design, telling: _Telling) -> Settled:
+    return settled(design, telling, telling.tell)
 
 
 _WORK: Final[dict[str, Callable[..., Any]]] = {"solve": _solved, "settle": _settled}
 
 
-def _answer(question: tuple[Any, ...], asking: _Asking) -> tuple[str, Any]:
+def _answer(question: tuple[Any, ...], telling: _Telling) -> tuple[str, Any]:
     kind, *arguments = question
     try:
-        return "answered", _WORK[kind](*arguments, asking)
+        return "answered", _WORK[kind](*arguments, telling)
     except Cancelled:
         return "cancelled", None
     except CoreError as error:

@@ -23,9 +23,9 @@ def default_design() -> Design:
 
     Notes
     -----
-    Settled by field check and moved a fifth of the way back to what sizing by equations finds,
-    so that both say the brief is met: solved on the fine mesh VSWR 1.18 and axial ratio 1.10 dB,
-    by equations 1.78 and 2.87 dB.
+    Settled by field check and moved a fifth of the way back to what sizing by equations found,
+    so that both say that the brief is met. Solved on the fine mesh: VSWR 1.18, axial ratio
+    1.10 dB.
     """
     return Design(
         name="Glider field telemetry",

@@ -77,6 +77,8 @@ class FakeSolver:
         trust = dict.fromkeys(Reading, Trust(TrustLevel.GOOD, "solved"))
         return replace(ENGINES[LIVE](layout, frequencies, SILENT), engine="field", trust=trust)
 
+    def drop(self): ...
+
     def close(self): ...
 
 
