@@ -44,6 +44,10 @@ COMMANDS = (
         "Find lengths that meet the brief", group=True,
     ),
     Command(
+        "settle", "&Edit", "S&ettle by field check", ("Ctrl+Shift+B",),
+        "Correct lengths by the field solver until what is solved meets the brief",
+    ),
+    Command(
         "field-check", "&Edit", "Field &check", ("Ctrl+K",),
         "Solve the very shape on the Mat whenever an edit rests", checkable=True,
     ),

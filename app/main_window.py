@@ -21,7 +21,7 @@ from app.presenters.cards_presenter import CardsPresenter
 from app.presenters.files import Asker, FilesPresenter
 from app.presenters.mat_presenter import MatPresenter
 from app.presenters.readings_presenter import ReadingsPresenter
-from app.presenters.sizing import SizingPresenter
+from app.presenters.sizing import Settler, SizingPresenter
 from app.recovery import Recovery
 from app.views.card_column import CardColumn
 from app.views.header import Header
@@ -57,6 +57,7 @@ class MainWindow(QMainWindow):
         folder: Path,
         asker: WindowAsks | None = None,
         solver: Solver | None = None,
+        settler: Settler | None = None,
     ) -> None:
         super().__init__()
         self.settings, self.runner = settings, runner
@@ -64,6 +65,7 @@ class MainWindow(QMainWindow):
         self.document = Document(default_design(), self)
         self.pipeline = Pipeline(self.document)
         self.field = FieldCheck(self.pipeline, settings, runner, solver or SolverProcess())
+        self._settler = settler or SolverProcess()  # of its own: the field check goes on beside it
         self.window_actions = make_actions(self, self.document.stack)
         self._make_views()
         self._make_presenters()
@@ -119,6 +121,8 @@ class MainWindow(QMainWindow):
         geometry = bytes(self.saveGeometry().toBase64().data()).decode()
         self.settings.set("geometry", geometry)
         self.field.close()
+        self.sizing.discard()
+        self._settler.close()
         self.runner.close()
         self.recovery.close()
         super().closeEvent(event)
@@ -162,7 +166,12 @@ class MainWindow(QMainWindow):
             pipeline, self.field, self.settings, self.readings, self.curves
         )
         self.sizing = SizingPresenter(
-            document, self.runner, self.mat_presenter, self.readings_presenter, self.notices
+            document,
+            self.runner,
+            self._settler,
+            self.mat_presenter,
+            self.readings_presenter,
+            self.notices,
         )
         self.files = FilesPresenter(document, self.settings, self.asker, self.notices)
 
@@ -174,6 +183,7 @@ class MainWindow(QMainWindow):
         column.setContentsMargins(0, 0, 0, 0)
         column.setSpacing(em // 2)
         column.addWidget(self.readings)
+        self.curves.setMinimumHeight(em * 13)  # what can scroll in the Readings gives way
         column.addWidget(self.curves, 1)
         self.columns = QSplitter(Qt.Orientation.Horizontal)
         self.columns.setHandleWidth(em // 2)

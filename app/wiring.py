@@ -98,12 +98,14 @@ def connect_views(window: Window) -> None:
     readings = window.readings
     readings.field_asked.connect(cards.focus_field)
     readings.size_asked.connect(window.sizing.start)
+    readings.settle_asked.connect(window.sizing.settle)
     readings.accepted.connect(window.sizing.accept)
     readings.discarded.connect(window.sizing.discard)
     readings.stopped.connect(window.sizing.discard)
     readings.check_asked.connect(
         lambda what: window.field.stop() if what == CANCEL else window.field.start()
     )
+    window.field.changed.connect(lambda: _on_checked(window))
     window.curves.chosen.connect(lambda name: window.settings.set("curve", name))
     window.curves.match_as_chosen.connect(lambda name: window.settings.set("match_as", name))
     window.notices.closed.connect(
@@ -129,6 +131,7 @@ def connect_actions(window: Window) -> None:
         "template": window.show_export,
         "quit": window.close,
         "size": window.sizing.start,
+        "settle": window.sizing.settle,
         "preferences": window.show_preferences,
         "zoom-in": lambda: plan.zoom(1.25),
         "zoom-out": lambda: plan.zoom(0.8),
@@ -167,6 +170,12 @@ def _on_notice(window: Window, name: str, button: str) -> None:
         ("recovered", "Delete"): window.recovery.forget,
     }
     deeds[(name, button)]()
+
+
+def _on_checked(window: Window) -> None:
+    """What an edit has stopped is told until the field check has answered to the edit."""
+    if window.field.current is not None:
+        window.sizing.forget_stopped()
 
 
 def _keep_tick(window: Window, action: str, key: str) -> None:

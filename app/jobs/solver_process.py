@@ -14,6 +14,7 @@ import traceback
 from threading import Lock
 from typing import TYPE_CHECKING, Any, Final
 
+from app.jobs.settling import settled
 from core.errors import Cancelled, CoreError, ModelError
 
 if TYPE_CHECKING:
@@ -23,6 +24,8 @@ if TYPE_CHECKING:
 
     from numpy.typing import ArrayLike
 
+    from app.jobs.settling import Best, Settled
+    from core.design.model import Design
     from core.layout.model import Layout
     from core.progress import Progress
     from core.response.model import Response
@@ -57,16 +60,44 @@ class SolverProcess:
         Cancelled
             If the progress asks for it, or the window closes.
         """
+        response: Response = self._asked(("solve", layout, frequencies, level), progress)
+        return response
+
+    def settle(self, design: Design, progress: Progress, tell: Callable[[Best], None]) -> Settled:
+        """Settle a design by field check; tells of each better one on the way.
+
+        Raises
+        ------
+        ModelError
+            If nothing can be settled, or the process ends.
+        Cancelled
+            If the progress asks for it, or the window closes.
+        """
+        # It is seldom asked for: the process ends with it and gives its memory back.
+        answer: Settled = self._asked(("settle", design), progress, tell, ends=True)
+        return answer
+
+    def _asked(
+        self,
+        question: tuple[Any, ...],
+        progress: Progress,
+        tell: Callable[[Any], None] = lambda _news: None,
+        *,
+        ends: bool = False,
+    ) -> Any:  # noqa: ANN401 - what comes through the pipe has any type
         with self._turn:
             try:
                 pipe = self._open()
-                self._say((layout, frequencies, level))
-                return _heard(pipe, progress, self.drop)
+                self._say(question)
+                return _heard(pipe, progress, tell, self.drop)
             except (EOFError, OSError) as error:
                 self._end()
                 if self._is_closed:
                     raise Cancelled from error
                 raise ModelError(_GONE) from error
+            finally:
+                if ends:
+                    self._end()
 
     def drop(self) -> None:
         """Have the question that is being answered left; it ends at its next step."""
@@ -86,7 +117,7 @@ class SolverProcess:
             finally:
                 self._turn.release()
 
-    def _say(self, what: Any) -> None:
+    def _say(self, what: object) -> None:
         with self._speaking:
             if self._pipe is not None:
                 self._pipe.send(what)
@@ -128,6 +159,9 @@ class _Telling:
             self._pipe.recv()  # while a question is open there is only one thing to be told
             raise Cancelled
 
+    def tell(self, best: Best) -> None:
+        self._pipe.send(("told", best))
+
 
 @contextlib.contextmanager
 def _one_thread() -> Iterator[None]:
@@ -147,7 +181,12 @@ def _one_thread() -> Iterator[None]:
             os.environ[_THREADS] = before
 
 
-def _heard(pipe: Connection, progress: Progress, drop: Callable[[], None]) -> Response:
+def _heard(
+    pipe: Connection,
+    progress: Progress,
+    tell: Callable[[Any], None],
+    drop: Callable[[], None],
+) -> Any:  # noqa: ANN401 - as above
     """Listen until the answer comes."""
     is_wanted = True
     while True:
@@ -159,6 +198,8 @@ def _heard(pipe: Connection, progress: Progress, drop: Callable[[], None]) -> Re
             except Cancelled:
                 is_wanted = False
                 drop()
+        elif what == "told":
+            tell(told)
         elif what == "cancelled" or not is_wanted:
             raise Cancelled
         elif what == "refused":
@@ -166,8 +207,7 @@ def _heard(pipe: Connection, progress: Progress, drop: Callable[[], None]) -> Re
         elif what == "broken":
             raise RuntimeError(told)
         else:
-            response: Response = told
-            return response
+            return told
 
 
 def _serve(pipe: Connection) -> None:
@@ -182,14 +222,25 @@ def _serve(pipe: Connection) -> None:
                 pipe.send(_answer(question, _Telling(pipe)))
 
 
-def _answer(question: tuple[Layout, ArrayLike, str], progress: Progress) -> tuple[str, Any]:
+def _solved(layout: Layout, frequencies: ArrayLike, level: str, progress: Progress) -> Response:
     # Loaded here: only this process needs it, and it takes half a second.
     from core.fullwave.mesh import Level  # noqa: PLC0415
     from core.fullwave.respond import respond  # noqa: PLC0415
 
-    layout, frequencies, level = question
+    return respond(layout, frequencies, progress, Level(level))
+
+
+def _settled(design: Design, telling: _Telling) -> Settled:
+    return settled(design, telling, telling.tell)
+
+
+_WORK: Final[dict[str, Callable[..., Any]]] = {"solve": _solved, "settle": _settled}
+
+
+def _answer(question: tuple[Any, ...], telling: _Telling) -> tuple[str, Any]:
+    kind, *arguments = question
     try:
-        return "answered", respond(layout, frequencies, progress, Level(level))
+        return "answered", _WORK[kind](*arguments, telling)
     except Cancelled:
         return "cancelled", None
     except CoreError as error:

@@ -146,7 +146,7 @@ def add_probe(
     to_charges = np.empty((probe.profiles, edges, basis.triangles), dtype=np.complex128)
     for reader, which in probe.coupling:
         means = _read(reader, tables.coupling[:, 0])
-        to_charges[..., which] = means.reshape(probe.profiles, edges, -1)
+        to_charges[..., which] = means.reshape(probe.profiles, edges, len(which))
     rows = np.array(
         [basis.tested(basis.lengths * one) for one in to_charges.reshape(probe.count, -1)]
     )
@@ -208,8 +208,9 @@ def _coupling(
         which = np.flatnonzero(chosen)
         points = np.einsum("ic,tcx->tix", rule[:, :3], corners[which])
         apart = np.linalg.norm(places[:, None, :, None] - points[None, :, None], axis=-1)
-        apart = apart.reshape(len(places) * len(which), places.shape[1] * len(rule))
-        weights = np.broadcast_to(np.multiply.outer(along, rule[:, 3]).ravel(), apart.shape)
+        shares = np.multiply.outer(along, rule[:, 3]).ravel()
+        apart = apart.reshape(len(places) * len(which), len(shares))
+        weights = np.broadcast_to(shares, apart.shape)
         readers.append((_reader(apart, weights, grid), which))
     return tuple(readers)
 

@@ -31,7 +31,7 @@ from core.sizing.tuning import in_tune
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
-    from core.design.model import Design
+    from core.design.model import Brief, Design
 
     Floats = NDArray[np.float64]
 
@@ -113,8 +113,6 @@ def settle(
 
     Raises
     ------
-    ModelError
-        If the solver does not cover the stack.
     Cancelled
         If the progress asks for it.
 
@@ -124,20 +122,38 @@ def settle(
     each corrected through what has been solved (`core.sizing.surrogate`). The left-hand
     antenna is the mirror image of the right-hand one, which is what is solved.
     """
-    brief = design.brief
-    is_left = brief.polarisation is Polarisation.LHCP
-    right = replace(brief, polarisation=Polarisation.RHCP) if is_left else brief
-    goal = Goal(
-        right.polarisation,
+    goal = settling_goal(design.brief, vswr, axial_ratio_db)
+    solver = SolvedDesigns(goal, spot or FieldSpot(), progress, _MOST)
+    right = replace(design, brief=replace(design.brief, polarisation=goal.polarisation))
+    found = _best_found(_Starts(right, solver, keep_element), level)
+    return _settling(design, found, solver, level)
+
+
+def settling_goal(
+    brief: Brief, vswr: float | None = None, axial_ratio_db: float | None = None
+) -> Goal:
+    """What settling aims for.
+
+    Parameters
+    ----------
+    brief : Brief
+    vswr, axial_ratio_db : float, optional
+        Goals; 1.5 (dB), or the brief's own where those are stricter, if left out.
+
+    Returns
+    -------
+    Goal
+        For the right-hand antenna where the brief asks for the left-hand one, its mirror image.
+    """
+    is_linear = brief.polarisation is Polarisation.LINEAR
+    return Goal(
+        Polarisation.LINEAR if is_linear else Polarisation.RHCP,
         brief.impedance,
         min(GOAL_VSWR, brief.vswr) if vswr is None else vswr,
         min(GOAL_AXIAL_RATIO_DB, brief.axial_ratio_db)
         if axial_ratio_db is None
         else axial_ratio_db,
     )
-    solver = SolvedDesigns(goal, spot or FieldSpot(), progress, _MOST)
-    found = _best_found(_Starts(replace(design, brief=right), solver, keep_element), level)
-    return _settling(design, found, solver, level)
 
 
 @dataclass(frozen=True, eq=False)
@@ -211,8 +227,8 @@ class _Starts:
         given = self._start(self.given, knows=True)
         if given.worst <= _NEAR:
             yield given
-        sized = size(self.given, keep_element=self.keep_element).design
-        tuned = self._tuned(sized, knows=True)
+        sized = size(self.given, keep_element=self.keep_element, progress=self.solver)
+        tuned = self._tuned(sized.design, knows=True)
         yield tuned if given.worst <= _NEAR else min(tuned, given, key=lambda one: one.worst)
         for family in family_starts(self.given, keep_element=self.keep_element):
             yield self._tuned(family, knows=False)

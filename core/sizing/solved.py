@@ -71,6 +71,10 @@ class SolvedDesigns:
         """Solutions in all."""
         return sum(self.counts.values())
 
+    def step(self, _done: int, _total: int) -> None:
+        """Listen to work between solutions: what is told is how many are solved."""
+        self._progress.step(min(self.solves, self._most), self._most)
+
     def missing(self, design: Design, level: Level) -> Floats | None:
         """Residuals of a design; None where it can't be made or meshed."""
         solved = self.at(design, design.brief.frequency, level)
@@ -80,15 +84,13 @@ class SolvedDesigns:
         self, design: Design, frequency: float, level: Level
     ) -> tuple[complex, complex, complex] | None:
         """Admittance and field of a design; None where it can't be made or meshed."""
-        self._progress.step(min(self.solves, self._most), self._most)
+        self.step(0, 0)
         layout = self._buildable(design)
         if layout is None:
             return None
         try:
             solved = self._spot(layout, frequency, level)
         except ModelError as error:
-            if not self.solves:  # the stack, not this shape
-                raise
             self.refusal = f"{error}."
             return None
         self.counts[level] += 1

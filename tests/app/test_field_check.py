@@ -8,7 +8,7 @@ from PySide6.QtGui import QAccessible
 from app.curves.legend import engine_words
 from app.dialogs.export import ExportDialog
 from app.field_check import KIND, FieldCheck
-from app.jobs.runner import InlineRunner, JobRunner
+from app.jobs.runner import JobRunner
 from app.jobs.solver_process import SolverProcess
 from app.main_window import MainWindow
 from app.presenters.check_words import CANCEL, CHECK_NOW
@@ -44,23 +44,6 @@ class FakeSolver:
         return replace(ENGINES[LIVE](layout, frequencies, SILENT), engine="field", trust=trust)
 
 
-class HeldRunner(InlineRunner):
-    """Keeps requests until it is told to run them."""
-
-    def __init__(self):
-        self.waiting = {}
-
-    def start(self, request):
-        self.waiting[request.kind] = request
-
-    def stop(self, kind):
-        self.waiting.pop(kind, None)
-
-    def run(self):
-        for kind in list(self.waiting):
-            super().start(self.waiting.pop(kind))
-
-
 @pytest.fixture
 def solver():
     return FakeSolver()
@@ -86,11 +69,6 @@ def open_window(qtbot, qapp, settings, asker, tmp_path, solver, monkeypatch):
         window.document.stack.setClean()
         window.close()
         window.deleteLater()
-
-
-@pytest.fixture
-def runner():
-    return HeldRunner()
 
 
 @pytest.fixture

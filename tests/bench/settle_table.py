@@ -47,6 +47,20 @@ is that of one process on a busy two-core machine, its load average beside it. S
 margins keep to the process; boards are photo-etched with strips of at least 0.3 mm, taken as
 infinite, and {knife}.
 
+**Method.** What is missing is told by two complex numbers, in units of what the goals allow:
+the reflection coefficient, and the wrong-hand over the wanted field at boresight. Free are both
+sides, landings, gaps, widths of branches and delay strip, tee, and length, width and bends of a
+lead-in, or the place of a probe; ground plate, pin, stock and process are kept. The search
+starts from the design as given if that is near, otherwise from what equations size, brought
+into tune where it is far off: seven solved frequencies and a rational fit say by what ratio to
+scale it in plan. If that does not settle, four rough families of feeds are tried. From a start,
+differences between what is solved on the coarse mesh and a base model, the tangent of the live
+model, are learnt by a Gaussian process: space mapping (J. W. Bandler and others, IEEE Trans.
+Microw. Theory Techn. 42, 1994, 2536-2544). Least squares on the corrected model within a region
+of trust, by sequential quadratic programming under the margins of what can be built, give the
+next design to solve; where the base leads astray every freedom is tried once in turn. The
+coarse mesh so known is the base for the finest one, on which mostly one to four are solved.
+
 Random briefs: numpy's `default_rng({seed})`; {air} over air (0.03 to 0.08 wavelength thick,
 0.8 to 3 GHz, discs of 0.7 to 1.1 wavelength, knife) and {boards} boards (0.02 to 0.06
 wavelength in the dielectric, permittivity 2.2 to 4.5, loss tangent 0.001 to 0.02, 1 to 6 GHz).

@@ -87,12 +87,15 @@ def test_stricter_goals_are_kept_to():
     assert settling.axial_ratio_db <= 0.4
 
 
-def test_a_stack_that_the_solver_does_not_cover_is_an_error():
+def test_where_nothing_can_be_solved_that_is_told_and_nothing_changes():
     def spot(*_):
         raise ModelError("field solver: not this stack")
 
-    with pytest.raises(ModelError, match="not this stack"):
-        settle(seed(), spot=spot)
+    design = seed(feed="probe")
+    settling = settle(design, spot=spot)
+    assert (settling.met, settling.solves, settling.design) == (False, 0, design)
+    assert settling.reason.endswith("field solver: not this stack.")
+    assert np.isinf(settling.vswr)
 
 
 def test_a_shape_that_cannot_be_meshed_is_passed_over():
