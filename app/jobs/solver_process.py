@@ -86,7 +86,7 @@ class SolverProcess:
             finally:
                 self._turn.release()
 
-    def _say(self, what: Any) -> None:
+    def _say(self, what: object) -> None:
         with self._speaking:
             if self._pipe is not None:
                 self._pipe.send(what)

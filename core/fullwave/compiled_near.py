@@ -380,9 +380,7 @@ def _mean_potential(
 
 
 @njit(error_model="numpy", fastmath=_FAST, cache=True)
-def _edge_potential(
-    one: Floats, two: Floats, normal: Floats, foot: Floats, height: float
-) -> float:
+def _edge_potential(one: Floats, two: Floats, normal: Floats, foot: Floats, height: float) -> float:
     """What one edge of the source triangle gives of the integral of 1/R."""
     ax, ay, az = two[0] - one[0], two[1] - one[1], two[2] - one[2]
     length = np.sqrt(ax * ax + ay * ay + az * az)
@@ -401,9 +399,7 @@ def _edge_potential(
     if height < 1e-12 * length:
         return float(total)
     over, under = squared + height * r_high, squared + height * r_low
-    turned = np.arctan2(
-        away * (high * under - low * over), over * under + away * away * high * low
-    )
+    turned = np.arctan2(away * (high * under - low * over), over * under + away * away * high * low)
     return float(total - height * turned)
 
 

@@ -75,7 +75,7 @@ class _Net:
     """Triangles as a table from each directed edge to the corner on its left."""
 
     def __init__(self, points: Floats, triangles: Ints, fixed: Ints) -> None:
-        self._points = [(x, y) for x, y in points.tolist()]
+        self._points: list[tuple[float, float]] = [(x, y) for x, y in points.tolist()]
         self._apex: dict[tuple[int, int], int] = {}
         self._around: list[set[int]] = [set() for _ in self._points]
         self._first_seen: dict[tuple[int, int], int] = {}

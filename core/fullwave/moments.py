@@ -316,18 +316,14 @@ def pair_terms(
     return terms, charges
 
 
-def _image_charges(
-    basis: Basis, pairs: Ints, kinds: Ints, image: tuple[float, float]
-) -> Floats:
+def _image_charges(basis: Basis, pairs: Ints, kinds: Ints, image: tuple[float, float]) -> Floats:
     """Near terms (p,) of 1/R alone, for the charges of pairs of triangles."""
     from core.fullwave.compiled_near import near_charges  # noqa: PLC0415 - slow to load
 
     charges, place = np.empty(len(pairs)), (float(image[0]), float(image[1]))
 
     def work_out(share: slice) -> None:
-        near_charges(
-            basis.corners, pairs[share], kinds[share], place, _rules(), charges[share]
-        )
+        near_charges(basis.corners, pairs[share], kinds[share], place, _rules(), charges[share])
 
     _by_threads(work_out, len(pairs))
     return charges

@@ -164,7 +164,9 @@ def test_the_hand_gets_a_quick_mesh_and_the_chosen_one_when_it_lets_go(
     window.settings.set("mesh_level", "fine")
     at_rest(window, runner, qtbot)
     mouse = hand(window.mat.plan).press("element.width").move(6, 0)
-    assert window.readings.check.words == "The field check follows the hand on a quick, coarse mesh."
+    assert (
+        window.readings.check.words == "The field check follows the hand on a quick, coarse mesh."
+    )
     mouse.move(6, 0)  # while the first step is being solved
     assert len(runner.waiting) == 1
     runner.run()
