@@ -104,7 +104,7 @@ class FieldCheck(QObject):
         self._rest.timeout.connect(self.start)
         pipeline.evaluated.connect(self._on_evaluated)
         settings.changed.connect(lambda key, _: self._on_setting(key))
-        self._wait()
+        self._rest.start()
 
     @property
     def is_on(self) -> bool:
@@ -154,7 +154,7 @@ class FieldCheck(QObject):
             self._leave()
             self.busy = ""
         if not is_held and not self._is_done() and not self.is_stopped:
-            self._wait()
+            self._rest.start()
         self.changed.emit()
 
     def forget(self) -> None:
@@ -165,10 +165,6 @@ class FieldCheck(QObject):
         """Whether the design on the bench is solved as finely as it is to be."""
         current, level = self.current, self._settings.value("mesh_level")
         return current is not None and (self._is_held or current.level == level)
-
-    def _wait(self) -> None:
-        if self.is_on:
-            self._rest.start()
 
     def _leave(self) -> None:
         """Leave what is being solved."""
@@ -187,7 +183,7 @@ class FieldCheck(QObject):
         if self.busy:
             self._leave()
         self.busy, self.problem, self.is_stopped = "", "", False
-        self._wait()
+        self._rest.start()
 
     def _on_setting(self, key: str) -> None:
         if key not in ("field_check", "mesh_level"):
@@ -196,7 +192,7 @@ class FieldCheck(QObject):
         self._rest.stop()
         if not self.is_on:
             self.last = None
-        self._wait()
+        self._rest.start()
         self._tell()
 
     def _on_stepped(self, done: int, total: int) -> None:

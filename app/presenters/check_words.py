@@ -44,10 +44,11 @@ def check_state(field: FieldCheck) -> CheckState:
         return CheckState(f"No field check: {field.problem}", before)
     if field.is_stopped:
         return CheckState("Field check stopped until the next edit.", before, CHECK_NOW)
-    if current is not None and not current.mark:
-        return CheckState("Solved on a quick mesh; the chosen one follows when the hand rests.")
     if current is not None:
-        return CheckState(f"Sheets will say: field-checked, {current.level} mesh.")
+        quick = "Solved on a quick mesh; the chosen one follows when the hand rests."
+        return CheckState(
+            quick if not current.mark else f"Sheets will say: field-checked, {current.level} mesh."
+        )
     return CheckState("The field check follows when the hand rests.", before)
 
 

@@ -75,7 +75,7 @@ class _Net:
     """Triangles as a table from each directed edge to the corner on its left."""
 
     def __init__(self, points: Floats, triangles: Ints, fixed: Ints) -> None:
-        self._points: list[list[float]] = points.tolist()
+        self._points: list[tuple[float, float]] = [(x, y) for x, y in points.tolist()]
         self._apex: dict[tuple[int, int], int] = {}
         for u, v, w in triangles.tolist():
             self._apex[u, v], self._apex[v, w], self._apex[w, u] = w, u, v

@@ -24,11 +24,11 @@ from core.fullwave.layered_system import (
     build_layered_system,
     layered_equations,
     layered_solution,
+    solve_layered,
 )
 from core.fullwave.layered_trust import rim_doubts
 from core.fullwave.mesh import Level, build_mesh
 from core.fullwave.mesh_model import mesh_quality
-from core.fullwave.moments import currents
 from core.fullwave.rational import fit_rational
 from core.fullwave.sweep import Sweep, adaptive_sweep, first_points
 from core.fullwave.system import (
@@ -38,6 +38,7 @@ from core.fullwave.system import (
     equations,
     radiated_field,
     solution,
+    solve,
 )
 from core.lines.stack import series_permittivity
 from core.progress import SILENT
@@ -109,7 +110,7 @@ def respond(
     impedance = layout.ports[0].impedance
     sweep = _swept(solver, band, impedance, progress)
     at_spot = _samples(np.array([layout.frequency]), sweep, solver, impedance).at(0)
-    at_spot = replace(at_spot, efficiency=np.float64(1.0 - np.clip(solver.spot.lost, 0.0, 1.0)))
+    at_spot = replace(at_spot, efficiency=np.asarray(1.0 - np.clip(solver.spot.lost, 0.0, 1.0)))
     gain = abs(complex(at_spot.e_x)) ** 2 + abs(complex(at_spot.e_y)) ** 2
     return Response(
         engine=_ENGINE,
@@ -196,22 +197,20 @@ class _Solver(ABC):
 
     def quantities(self, frequency: float) -> Complexes:
         """Admittance and boresight field of 1 V at the port, analytic in the frequency."""
-        posed = self.posed(frequency)
-        found = currents(posed.matrix, posed.excitation)
-        self.solved[frequency] = self.finished(posed, found)
-        return np.array([posed.admittance(found), *(posed.boresight @ found)])
-
-    def solve(self, frequency: float) -> Solution:
-        """Solution at one frequency (Hz), not kept."""
-        posed = self.posed(frequency)
-        return self.finished(posed, currents(posed.matrix, posed.excitation))
+        solution = self.solve(frequency)
+        self.solved[frequency] = solution
+        volts = np.sqrt(FREE_SPACE_IMPEDANCE * solution.admittance.real / (4.0 * pi))
+        return np.array([solution.admittance, solution.e_x * volts, solution.e_y * volts])
 
     @property
     def angles(self) -> Floats:
         """Angles from boresight at which the far field is worked out, rad."""
         step = 4.0 if self.level is Level.QUICK else 2.0
-        found: Floats = np.radians(np.arange(-self.farthest, self.farthest + 1.0, step))
-        return found
+        return np.asarray(np.radians(np.arange(-self.farthest, self.farthest + 1.0, step)))
+
+    @abstractmethod
+    def solve(self, frequency: float) -> Solution:
+        """Solution at one frequency (Hz)."""
 
     @abstractmethod
     def posed(self, frequency: float) -> Equations:
@@ -240,6 +239,9 @@ class _FreeSpace(_Solver):
 
     system: System
     farthest: ClassVar[float] = 180.0
+
+    def solve(self, frequency: float) -> Solution:
+        return solve(self.system, frequency)
 
     def posed(self, frequency: float) -> Equations:
         return equations(self.system, frequency)
@@ -290,6 +292,9 @@ class _Board(_Solver):
     @property
     def _flowing(self) -> BoardCurrents:
         return board_currents(self.system, self.spot.currents, self.spot.frequency)
+
+    def solve(self, frequency: float) -> Solution:
+        return solve_layered(self.system, frequency)
 
     def posed(self, frequency: float) -> Equations:
         return layered_equations(self.system, frequency)

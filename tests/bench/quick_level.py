@@ -1,10 +1,11 @@
 """The quick level of the field solver, for a hand that moves: what it costs and how far it is off.
 
-Run from the top of the checkout: python tests/bench/quick_level.py [NAME ...]. For the default design, the
-shipped examples and four more builds it prints unknowns, processor time of one whole response,
-and the largest differences from the fine level over a fifth of the brief's frequency: of S11, of
-S11 after the one shift of frequency that suits best, of the unwanted over the wanted field at
-boresight. Then what the projection alone does: three solved frequencies against each solved.
+Run from the top of the checkout: python tests/bench/quick_level.py [NAME ...]. For the default
+design, the shipped examples and four more builds it prints unknowns, processor time of one whole
+response, and the largest differences from the fine level over a fifth of the brief's frequency:
+of S11, of S11 after the one shift of frequency that suits best, of the unwanted over the wanted
+field at boresight. Then what the projection alone does: three solved frequencies against each
+solved.
 """
 
 from __future__ import annotations

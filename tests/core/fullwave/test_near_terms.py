@@ -150,7 +150,7 @@ def test_pairs_are_found_and_told_apart():
 @pytest.mark.parametrize("kind", [1, 2])
 @pytest.mark.parametrize("image", [(1.0, 0.0), (0.0, -0.7), (-1.0, 2.0), (1.0, 0.8)])
 def test_charges_alone_are_those_of_the_whole_terms(kind, image):
-    corners = np.array([ACUTE, RIGHT + (0.9, 0.6, 0.3)])
+    corners = np.array([ACUTE, np.add(RIGHT, (0.9, 0.6, 0.3))])
     rules = np.concatenate([COARSE_RULE, triangle_rule(4), triangle_rule(6)])
     starts = np.array([0, 3, 3 + len(triangle_rule(4)), len(rules)])
     pairs, kinds = np.array([[0, 1], [1, 0]]), np.array([kind, kind])
