@@ -40,7 +40,7 @@ _BATCH = 1000  # pairs to a task
 _APART, _TOUCHING = 1, 2
 _NEAR_IMAGE = 1.5  # distance of middles, in sums of radii, up to which an image is near
 _FLAT = 0.3  # height of an image, in the same, under which its source is integrated exactly
-_FAINT = 1e-3  # weight of an image whose points will do however near it is, as in air
+_FAINT = 1e-2  # weight of an image whose points will do however near it is
 _RULES: Final = (COARSE_RULE, *(triangle_rule(order) for order in (4, 3, 5, 6)))
 
 
