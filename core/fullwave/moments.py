@@ -43,7 +43,7 @@ _APART, _TOUCHING, _FAINTLY = 1, 2, 5
 _FAINT = 0.1  # weight of such an image: three points do it to 1e-3 of the reflection coefficient
 _NEAR_IMAGE = 1.5  # distance of middles, in sums of radii, up to which an image is near
 _FLAT = 0.3  # height of an image, in the same, under which its source is integrated exactly
-_NOTHING = 1e-3  # weight of an image whose points will do however near it is, as in air
+_NOTHING = 1e-2  # weight of an image whose points will do however near it is
 _RULES: Final = (COARSE_RULE, *(triangle_rule(order) for order in (3, 3, 5, 6)), COARSE_RULE)
 
 

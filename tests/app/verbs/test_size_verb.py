@@ -1,6 +1,7 @@
 """``kerfwave size``: from options to a project whose readings meet its brief."""
 
 import json
+from dataclasses import replace
 from pathlib import Path
 
 import pytest
@@ -8,9 +9,14 @@ import pytest
 from app.command import main
 from core.design.polarisation import Polarisation
 from core.design.record import from_record
+from core.engines import ENGINES
 from core.fullwave.mesh import Level
+from core.live.respond import respond
+from core.response.model import Reading, Trust, TrustLevel
 from core.sizing.settle import Settling
 from core.storage.project import read_project
+
+LIVE = ("--engine", "live")
 
 
 @pytest.fixture(autouse=True)
@@ -24,7 +30,7 @@ def sized(capsys):
     """What `size` tells as JSON."""
 
     def call(*words):
-        assert main(["size", *words, "--json"]) == 0
+        assert main(["size", *LIVE, *words, "--json"]) == 0
         out, err = capsys.readouterr()
         assert err == ""
         return json.loads(out)
@@ -51,7 +57,7 @@ def test_without_any_word_a_good_antenna_comes_out(sized, readings):
 
 
 def test_without_a_file_nothing_is_written(folder, capsys):
-    assert main(["size", "--feed", "probe"]) == 0
+    assert main(["size", *LIVE, "--feed", "probe"]) == 0
     assert capsys.readouterr().out.endswith("\nnot written: -o FILE was left out\n")
     assert list(folder.iterdir()) == []
 
@@ -113,11 +119,11 @@ THICK = ("--spacer", "air:15mm", "--feed", "probe")
 
 
 def test_where_equations_cannot_tell_that_is_said_if_they_are_asked_for(sized, capsys):
-    told = sized(*THICK, "--engine", "live")
+    told = sized(*THICK)
     assert told["engine"] == "live"
     assert told["trust"]["match"]["level"] == "unknown"
     assert (told["solves"], told["level"]) == (0, None)
-    assert main(["size", *THICK, "--engine", "live"]) == 0
+    assert main(["size", *LIVE, *THICK]) == 0
     assert "unknown  match, axial ratio, bands, gain: the spacer is" in capsys.readouterr().out
 
 
@@ -135,8 +141,27 @@ def settled(monkeypatch):
     return asked
 
 
-def test_where_equations_cannot_tell_the_solver_goes_on(settled, capsys):
-    assert main(["size", *THICK, "--json"]) == 0
+@pytest.fixture
+def trusted(monkeypatch):
+    """Sets how far the live model says that its readings can be trusted."""
+
+    def call(**levels):
+        def engine(*asked):
+            response = respond(*asked)
+            told = {Reading(name): Trust(level, "so it is") for name, level in levels.items()}
+            return replace(response, trust={**response.trust, **told})
+
+        monkeypatch.setitem(ENGINES, "live", engine)
+
+    return call
+
+
+@pytest.mark.parametrize("lost", ["match", "axial_ratio"])
+def test_where_equations_cannot_tell_the_solver_goes_on(settled, trusted, capsys, lost):
+    trusted(
+        **{"match": TrustLevel.ROUGH, "axial_ratio": TrustLevel.ROUGH, lost: TrustLevel.UNKNOWN}
+    )
+    assert main(["size", "--feed", "probe", "--json"]) == 0
     out, err = capsys.readouterr()
     told = json.loads(out)
     assert told["engine"] == "field"
@@ -150,9 +175,12 @@ def test_where_equations_cannot_tell_the_solver_goes_on(settled, capsys):
     assert not keeps
 
 
-def test_where_equations_can_tell_the_solver_is_not_asked(settled, sized):
-    assert sized("--feed", "probe")["engine"] == "live"
-    assert settled == []
+def test_where_equations_can_tell_the_solver_is_not_asked(settled, trusted, capsys):
+    trusted(match=TrustLevel.ROUGH, axial_ratio=TrustLevel.GOOD, gain=TrustLevel.UNKNOWN)
+    assert main(["size", "--feed", "probe", "--json"]) == 0
+    out, err = capsys.readouterr()
+    assert json.loads(out)["engine"] == "live"
+    assert (err, settled) == ("", [])
 
 
 def test_the_solver_keeps_a_given_element(settled, capsys):
@@ -181,7 +209,7 @@ def test_a_brief_that_cannot_be_met_says_why(sized):
 
 
 def test_text_shows_the_sizes_and_the_file(capsys):
-    assert main(["size", "--feed", "probe", "-o", "p.kerf"]) == 0
+    assert main(["size", *LIVE, "--feed", "probe", "-o", "p.kerf"]) == 0
     text = capsys.readouterr().out
     assert "  element.width" in text
     assert "How far to trust this" in text
@@ -197,7 +225,7 @@ def test_a_very_long_wave_is_sized_on_the_largest_plate(sized):
 
 def test_a_file_is_replaced_only_when_told_to(capsys):
     Path("p.kerf").write_bytes(b"dear diary")
-    words = ["size", "--feed", "probe", "-o", "p.kerf"]
+    words = ["size", *LIVE, "--feed", "probe", "-o", "p.kerf"]
     assert main(words) == 2
     assert capsys.readouterr() == (
         "",
@@ -209,7 +237,7 @@ def test_a_file_is_replaced_only_when_told_to(capsys):
 
 
 def test_a_failed_write_is_told(capsys):
-    assert main(["size", "--feed", "probe", "-o", "none/p.kerf"]) == 1
+    assert main(["size", *LIVE, "--feed", "probe", "-o", "none/p.kerf"]) == 1
     assert "none/p.kerf: cannot be written (No such file" in capsys.readouterr().err
 
 
