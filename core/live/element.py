@@ -207,6 +207,7 @@ def quality_factors(
     loss_tangent: float = 0.0,
     conductivity: float = np.inf,
     roughness: float = 0.0,
+    side_ratio: float | None = None,
 ) -> QualityFactors:
     """Quality factors of one mode.
 
@@ -226,6 +227,9 @@ def quality_factors(
         Of foil and ground plane, S/m, > 0.
     roughness : float
         Root mean square, m, >= 0.
+    side_ratio : float, optional
+        Length over width in the energy that is stored; that of the physical sides where it is
+        not given.
 
     Returns
     -------
@@ -246,7 +250,8 @@ def quality_factors(
     """
     wavelength = SPEED_OF_LIGHT / frequency
     spread = float(_size_factor(width, length, frequency)) * _substrate_factor(eps_r)
-    space = 3.0 / 16.0 * eps_r / spread * length / width * wavelength / height
+    ratio = length / width if side_ratio is None else side_ratio
+    space = 3.0 / 16.0 * eps_r / spread * ratio * wavelength / height
     electrical_height = TWO_PI * height / wavelength
     trapped = 0.75 * pi * electrical_height / _substrate_factor(eps_r) * (1.0 - 1.0 / eps_r) ** 3
     sheet = _surface_resistance(frequency, conductivity, roughness)
