@@ -12,12 +12,13 @@ from typing import TYPE_CHECKING, Final
 import numpy as np
 from scipy.optimize import brentq
 
-from core.constants import SPEED_OF_LIGHT, TWO_PI
+from core.constants import FREE_SPACE_IMPEDANCE, SPEED_OF_LIGHT, TWO_PI
 from core.lines.discontinuities import open_end_extension_kirschning
 from core.lines.dispersion import dispersed_permittivity
 from core.lines.multilayer import equivalent_layer
 from core.lines.quasi_static import static_line
 from core.lines.stack import series_permittivity, total_thickness
+from core.live.edge import edge_pair
 from core.live.element import resonant_frequency
 
 if TYPE_CHECKING:
@@ -28,6 +29,8 @@ if TYPE_CHECKING:
 _RATIOS: Final = (0.01, 1000.0)  # of width to height, that the line formulas take
 _DENSEST: Final = 20.0  # permittivity that they take
 _DEEPEST: Final = 0.42 * pi  # electrical depth from which the slab's rise is held: 0.21 wavelength
+_STEPS: Final = 12  # of the search for a length: 1e-9 of it is left
+_LEAST: Final = 0.02  # of half a wavelength: spacing of edges where extensions use it up
 _LOWEST: Final = 1e-3  # of the highest frequency that a side can resonate at
 
 
@@ -72,15 +75,18 @@ def side_resonance(
     Half a wavelength of the line between two extended ends, both at the frequency that is
     looked for. Measured errors: docs/live-errors.md.
     """
-    fringing = _fringing_over_frequency(width, stack)
-    highest = SPEED_OF_LIGHT / (2.0 * length)
+    fringing = _fringing_over_frequency(length, width, stack)
 
-    def excess(frequency: float) -> float:
+    def told(frequency: float) -> float:
         now = fringing(frequency)
-        return resonant_frequency(length, now.eps_eff, now.extension) - frequency
+        return resonant_frequency(length, now.eps_eff, now.extension)
 
-    # The excess falls all the way from above 0 to below it.
-    frequency = float(brentq(excess, _LOWEST * highest, highest, rtol=1e-12, xtol=1e-3))
+    highest = SPEED_OF_LIGHT / (2.0 * length)
+    first = told(highest)
+    low, high = sorted((first, told(first)))
+    if not told(low) - low >= 0.0 >= told(high) - high:
+        low, high = _LOWEST * highest, highest
+    frequency = float(brentq(lambda one: told(one) - one, low, high, rtol=1e-11, xtol=1e-3))
     return frequency, fringing(frequency)
 
 
@@ -101,30 +107,40 @@ def resonant_length(frequency: float, width: float, stack: tuple[Layer, ...]) ->
     float
         m; may be 0 or negative where the extensions use up the half wavelength.
     """
-    now = _fringing_over_frequency(width, stack)(frequency)
-    return SPEED_OF_LIGHT / (2.0 * frequency * sqrt(now.eps_eff)) - 2.0 * now.extension
+    half_wave = SPEED_OF_LIGHT / (2.0 * frequency)
+    length = half_wave
+    for _ in range(_STEPS):  # a contraction: the edges hardly feel how far they are apart
+        now = _fringing_over_frequency(max(length, _LEAST * half_wave), width, stack)(frequency)
+        length = half_wave / sqrt(now.eps_eff) - 2.0 * now.extension
+    return length
 
 
-def _fringing_over_frequency(width: float, stack: tuple[Layer, ...]) -> Callable[[float], Fringing]:
+def _fringing_over_frequency(
+    length: float, width: float, stack: tuple[Layer, ...]
+) -> Callable[[float], Fringing]:
     """Effective permittivity and end extension of a strip as wide as a side.
 
     The line is that of Hammerstad and Jensen (1980) with the dispersion of Kirschning and
-    Jansen (1982), its end that of Kirschning, Jansen and Koster (1981), layers joined as under
-    any strip. The end is taken on a slab as thick as reflects the fringing field as this one
-    does, see `_slab_rise`.
+    Jansen (1982), layers joined as under any strip. Its end is the longer of two: on thin
+    spacers that of Kuester, Johnk and Chang (1982), which knows of the wave that leaves, see
+    `edge_pair`; on thick ones that of Kirschning, Jansen and Koster (1981), which knows how
+    narrow the strip is, on a slab as thick as reacts to the fringing field as this one does,
+    see `_slab_rise`.
     """
     height, across = total_thickness(stack), series_permittivity(stack)
     ratio = min(max(width / height, _RATIOS[0]), _RATIOS[1])
     eps_r = equivalent_layer(width, stack).eps_r
     line = static_line(ratio, min(eps_r, _DENSEST), 0.0)
     denser = (eps_r - 1.0) / (line.eps_r - 1.0) if eps_r > _DENSEST else 1.0
+    charge = FREE_SPACE_IMPEDANCE * sqrt(line.eps_eff) / (line.impedance * line.eps_r * ratio)
+    edges = edge_pair(ratio * height, length, height, eps_r, charge)
 
     def fringing(frequency: float) -> Fringing:
         dispersed = dispersed_permittivity(line, np.array([frequency * height]))
         eps_eff = 1.0 + denser * (float(dispersed[0]) - 1.0)
         thick = height * _slab_rise(height, across, frequency)
-        extension = open_end_extension_kirschning(ratio * height, thick, eps_r, eps_eff)
-        return Fringing(eps_eff, extension)
+        end = open_end_extension_kirschning(ratio * height, thick, eps_r, eps_eff)
+        return Fringing(eps_eff, max(end, edges.extension(frequency)))
 
     return fringing
 

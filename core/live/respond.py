@@ -24,7 +24,7 @@ if TYPE_CHECKING:
     from core.layout.model import Layout
     from core.lines.stack import Layer
     from core.live.branches import Branches
-    from core.live.modes import SideMode
+    from core.live.modes import ElementModes, SideMode
     from core.progress import Progress
 
     Floats = NDArray[np.float64]
@@ -61,9 +61,9 @@ def respond(layout: Layout, frequencies: ArrayLike, progress: Progress) -> Respo
     radiate. `trust` says where that fails.
     """
     sweep = np.asarray(frequencies, dtype=np.float64)
-    both = sample(layout, np.append(sweep, layout.frequency))
-    spot = both.at(-1)
     element = element_modes(layout.element_width, layout.element_length, layout.stack, layout.foil)
+    both = _sampled(layout, element, np.append(sweep, layout.frequency))
+    spot = both.at(-1)
     e_x, e_y = complex(spot.e_x), complex(spot.e_y)
     response = Response(
         engine=ENGINE,
@@ -110,6 +110,10 @@ def sample(layout: Layout, frequencies: Floats) -> Samples:
     lost: in strips, foil and substrate and to surface waves.
     """
     element = element_modes(layout.element_width, layout.element_length, layout.stack, layout.foil)
+    return _sampled(layout, element, frequencies)
+
+
+def _sampled(layout: Layout, element: ElementModes, frequencies: Floats) -> Samples:
     contacts = tuple(contact_of(landing, element) for landing in layout.feed.landings)
     cavity = build_cavity(contacts, element)
     branches = build_branches(layout.feed, layout.stack, layout.foil, frequencies)
