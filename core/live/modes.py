@@ -39,6 +39,11 @@ class SideMode:
     effective_length: float
     losses: QualityFactors
 
+    @property
+    def extension(self) -> float:
+        """Apparent lengthening at each open edge, m."""
+        return (self.effective_length - self.length) / 2.0
+
 
 @dataclass(frozen=True)
 class ElementModes:

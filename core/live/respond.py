@@ -116,7 +116,11 @@ def sample(layout: Layout, frequencies: Floats) -> Samples:
 def _sampled(layout: Layout, element: ElementModes, frequencies: Floats) -> Samples:
     contacts = tuple(contact_of(landing, element) for landing in layout.feed.landings)
     cavity = build_cavity(contacts, element)
-    branches = build_branches(layout.feed, layout.stack, layout.foil, frequencies)
+    extensions = tuple(
+        (element.x if landing.side == "x" else element.y).extension
+        for landing in layout.feed.landings
+    )
+    branches = build_branches(layout.feed, layout.stack, layout.foil, frequencies, extensions)
     reference = layout.ports[0].impedance
     omega = TWO_PI * frequencies
     voltage, current, currents = _joined(cavity, branches, omega)

@@ -6,6 +6,7 @@ A number always gives the same design, so that a run can be taken up where it st
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
+from functools import lru_cache
 from typing import TYPE_CHECKING, Final
 
 import numpy as np
@@ -59,23 +60,28 @@ class Drawn:
 
 def draw(number: int) -> Drawn:
     """Design of a number: sized to its brief where even, then also perturbed where odd."""
-    random = np.random.default_rng([SEED, number // 2])
+    random = np.random.default_rng([SEED, number])
+    stack, design = _sized(number // 2)
+    perturbed = bool(number % 2)
+    if perturbed:
+        design = _perturbed(design, random)
+    ground = design.stock.ground
+    side = ground.diameter if isinstance(ground, DiscGround) else ground.width
+    return Drawn(stack, side / max(design.element.width, design.element.length), perturbed, design)
+
+
+@lru_cache(maxsize=4)
+def _sized(pair: int) -> tuple[str, Design]:
+    """Buildable design of a pair of numbers, and what its spacer is made of."""
+    random = np.random.default_rng([SEED, pair])
     for _ in range(_TRIES):
         stack, design = _seed(random)
         try:
             design = size(design).design
         except CoreError:
             continue
-        if not _is_buildable(design):
-            continue
-        perturbed = bool(number % 2)
-        if perturbed:
-            design = _perturbed(design, random)
-        ground = design.stock.ground
-        side = ground.diameter if isinstance(ground, DiscGround) else ground.width
-        return Drawn(
-            stack, side / max(design.element.width, design.element.length), perturbed, design
-        )
+        if _is_buildable(design):
+            return stack, design
     raise AssertionError(f"nothing buildable after {_TRIES} tries")
 
 
