@@ -14,7 +14,7 @@ from core.live.branches import build_branches
 from core.live.cavity import X_MODE, Y_MODE, Cavity, build_cavity, contact_of
 from core.live.element import broadside_directivity
 from core.live.modes import element_modes
-from core.live.pattern import slot_cuts
+from core.live.pattern import plate_share, slot_cuts
 from core.live.trust import judge_trust
 from core.response.model import Mode, Response, Samples
 
@@ -57,8 +57,8 @@ def respond(layout: Layout, frequencies: ArrayLike, progress: Progress) -> Respo
 
     Notes
     -----
-    Ground plane infinite; strips do not couple to the element or to each other and do not
-    radiate. `trust` says where that fails.
+    Ground plane infinite but for its share of the directivity; strips do not couple to the
+    element or to each other and do not radiate. `trust` says where that fails.
     """
     sweep = np.asarray(frequencies, dtype=np.float64)
     element = element_modes(layout.element_width, layout.element_length, layout.stack, layout.foil)
@@ -132,12 +132,13 @@ def _sampled(layout: Layout, element: ElementModes, frequencies: Floats) -> Samp
     accepted = np.maximum(accepted, _LEAST_POWER)
     z_in = 2.0 * accepted / np.abs(current) ** 2 + 1j * np.imag(voltage / current)
     powers = radiated / accepted
+    beams = powers * plate_share(layout.ground_reach, element.substrate, frequencies)
     return Samples(
         frequency=frequencies,
         s11=(z_in - reference) / (z_in + reference),
         z_in=z_in,
-        e_x=_field(element.x, element.substrate, frequencies, voltages[X_MODE], powers[X_MODE]),
-        e_y=_field(element.y, element.substrate, frequencies, voltages[Y_MODE], powers[Y_MODE]),
+        e_x=_field(element.x, element.substrate, frequencies, voltages[X_MODE], beams[X_MODE]),
+        e_y=_field(element.y, element.substrate, frequencies, voltages[Y_MODE], beams[Y_MODE]),
         efficiency=np.sum(powers, axis=0),
     )
 

@@ -166,11 +166,11 @@ def measured_mode(row):
 @pytest.mark.parametrize("row", MEASURED["kara"]["rows"], ids=by_id)
 def test_modes_lie_at_or_below_measured_resonances(row):
     # What is published is where a probe-fed element matches best: above the mode, the more the
-    # lower its quality factor. Rows of a quality over 50 within 3 %, others down to 7 % below,
-    # half the width of their resonance.
+    # lower its quality factor. Rows of a quality over 50 within 3.5 %, others down to 7 % below,
+    # half the width of their resonance; the field solver's modes lie within 1 % of these.
     mode = measured_mode(row)
     below = 1.0 - mode.frequency / row["frequency"]
-    assert abs(below) < 0.03 if mode.losses.total > 50.0 else 0.0 < below < 0.07
+    assert 0.0 < below < (0.035 if mode.losses.total > 50.0 else 0.07)
 
 
 @pytest.mark.parametrize("row", MEASURED["chang"]["rows"], ids=by_id)

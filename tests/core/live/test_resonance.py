@@ -16,6 +16,7 @@ from core.lines.discontinuities import open_end_extension_kirschning
 from core.lines.microstrip import line_properties
 from core.lines.network import TwoPort
 from core.lines.stack import Layer
+from core.live.edge import edge_pair
 from core.live.element import quality_factors
 from core.live.modes import element_modes
 from core.live.resonance import resonant_length, side_resonance
@@ -33,11 +34,17 @@ def test_a_long_side_is_half_a_wavelength_of_the_line_under_it():
     assert frequency == pytest.approx(SPEED_OF_LIGHT / np.sqrt(fringing.eps_eff), rel=1e-3)
 
 
-def test_ends_in_air_are_the_published_ones_at_any_height():
-    for height in (1e-3, 6e-3, 15e-3):
-        _, fringing = side_resonance(50e-3, 48e-3, (Layer(height),))
+def test_ends_in_air_are_those_of_a_strip_where_it_is_thick_and_of_an_edge_where_it_is_thin():
+    found = {}
+    for height in (0.3e-3, 1e-3, 9e-3, 15e-3):
+        frequency, fringing = side_resonance(50e-3, 48e-3, (Layer(height),))
         published = open_end_extension_kirschning(48e-3, height, 1.0, 1.0)
-        assert fringing.extension == pytest.approx(published, rel=1e-9)
+        # Hammerstad and Jensen's line holds more than its area: about 48e-3 / height + 1.4.
+        bare = edge_pair(48e-3, 50e-3, height, 1.0, 1.0).extension(frequency)
+        found[height] = fringing.extension / published, bare / fringing.extension
+    assert [found[height][0] for height in (9e-3, 15e-3)] == pytest.approx([1.0, 1.0], rel=1e-9)
+    assert found[0.3e-3][0] > 1.4
+    assert 1.0 < found[0.3e-3][1] < found[1e-3][1] < 1.2
 
 
 def slab_reactance(height, eps_r, frequency):
