@@ -33,7 +33,7 @@ _A4: Final = 0.00761
 _C2: Final = -0.0914153
 
 
-def effective_permittivity(width_ratio: float, eps_r: float) -> float:
+def _effective_permittivity(width_ratio: float, eps_r: float) -> float:
     """Effective relative permittivity of a wide strip, quasi-static.
 
     Parameters
@@ -64,7 +64,7 @@ def effective_permittivity(width_ratio: float, eps_r: float) -> float:
     return (eps_r + 1.0) / 2.0 + (eps_r - 1.0) / 2.0 * spread
 
 
-def end_extension(width_ratio: float, eps_eff: float) -> float:
+def _end_extension(width_ratio: float, eps_eff: float) -> float:
     """Apparent lengthening at each open edge, in heights of the substrate.
 
     Parameters
@@ -164,9 +164,9 @@ def seed_length(frequency: float, width: float, height: float, eps_r: float) -> 
     ----------
     .. [1] C. A. Balanis, *Antenna Theory*, 4th ed., Wiley, 2016, eq. 14-7.
     """
-    eps_eff = effective_permittivity(width / height, eps_r)
+    eps_eff = _effective_permittivity(width / height, eps_r)
     half_wave = SPEED_OF_LIGHT / (2.0 * frequency * sqrt(eps_eff))
-    return half_wave - 2.0 * height * end_extension(width / height, eps_eff)
+    return half_wave - 2.0 * height * _end_extension(width / height, eps_eff)
 
 
 @dataclass(frozen=True)

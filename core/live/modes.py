@@ -135,6 +135,4 @@ def _side_mode(
         roughness=foil.roughness,
         side_ratio=ratio,
     )
-    return SideMode(
-        length, width, frequency, fringing.eps_eff, _extended(length, fringing), losses
-    )
+    return SideMode(length, width, frequency, fringing.eps_eff, _extended(length, fringing), losses)

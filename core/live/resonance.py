@@ -50,9 +50,7 @@ class Fringing:
     extension: float
 
 
-def side_resonance(
-    length: float, width: float, stack: tuple[Layer, ...]
-) -> tuple[float, Fringing]:
+def side_resonance(length: float, width: float, stack: tuple[Layer, ...]) -> tuple[float, Fringing]:
     """Frequency at which a side resonates, and the fringing there.
 
     Parameters

@@ -93,9 +93,7 @@ def _fed(design: Design) -> dict[str, Any]:
 def _bare(design: Design) -> dict[str, Any]:
     """Mode along y of the element, without its feed, and what it does at its resistance peak."""
     layout = build_layout(design)
-    mode = element_modes(
-        layout.element_width, layout.element_length, layout.stack, layout.foil
-    ).y
+    mode = element_modes(layout.element_width, layout.element_length, layout.stack, layout.foil).y
     grid = mode.frequency * np.linspace(1.0 - BARE_REACH, 1.0 + BARE_REACH, BARE_POINTS)
     response = ENGINES[FIELD](build_layout(bare_element(design, mode.frequency)), grid, SILENT)
     peak = int(np.argmax(response.sweep.z_in.real))

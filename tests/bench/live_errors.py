@@ -158,9 +158,7 @@ def _shift(live: Samples, field: Samples) -> tuple[float, float]:
     rests = []
     for shift in SHIFTS:
         at = relative[near] + shift
-        moved = np.interp(at, relative, live.s11.real) + 1j * np.interp(
-            at, relative, live.s11.imag
-        )
+        moved = np.interp(at, relative, live.s11.real) + 1j * np.interp(at, relative, live.s11.imag)
         rests.append(np.abs(moved - field.s11[near]))
     best = int(np.argmin([np.mean(rest**2) for rest in rests]))
     return float(SHIFTS[best]), float(np.max(rests[best]))
