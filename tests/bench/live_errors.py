@@ -5,6 +5,7 @@ Run from the top of the checkout: python tests/bench/live_errors.py FILE.jsonl
 
 from __future__ import annotations
 
+import itertools
 import json
 import sys
 from dataclasses import dataclass
@@ -33,23 +34,48 @@ if TYPE_CHECKING:
 
     from core.design.model import Design
 
-SHIFTS = np.linspace(-0.1, 0.1, 401)  # common shifts that are tried
+SHIFTS = np.linspace(-0.04, 0.04, 161)  # common shifts that are tried
 ABOUT = 0.02  # of the brief's frequency, over which S11 is compared
 WORST_DB = 40.0  # axial ratios over this count as this
 
 HEAD = """# The live model against the field solver
 
-Written by `tests/bench/live_errors.py` from what `tests/bench/live_against_field.py` solved: {count}
-random designs (seed {seed}) over 0.8 to 6 GHz; spacers of air, foam, polystyrene and foam under
-card, 0.005 to 0.12 free-space wavelength, their ground plate as large as it is; PTFE, woven PTFE
-(2.33), low-loss laminate and FR-4, 0.005 to 0.12 wavelength in the dielectric, on an endless board;
-half of them with two branches, half with a probe, circular and (probes) linear; ground plates from
-just larger than the copper to 2.5 times the element. Even numbers as the live model sized them to
-their brief, odd ones with sides up to 6 % and landing points, strips and probe up to 20 % off.
-Normal mesh. {refused} of them the solver refused or did not settle.
+Written by `tests/bench/live_errors.py` from what `tests/bench/live_against_field.py` solved:
+{count} random designs (seed {seed}) over 0.8 to 6 GHz; spacers of air, foam, polystyrene and foam
+under card, 0.005 to 0.12 free-space wavelength, their ground plate as large as it is; PTFE, woven
+PTFE (2.33), low-loss laminate and FR-4, 0.005 to 0.12 wavelength in the dielectric, on an endless
+board; half of them with two branches, half with a probe, circular and (probes) linear; ground
+plates from just larger than the copper to 2.5 times the element. Even numbers as the live model
+sized them to their brief, odd ones with sides up to 6 % and landing points, strips and probe up to
+20 % off. Normal mesh. {refused} of them the solver refused or did not settle.
 
 Each cell: median / 90 % / worst of the absolute difference, unless said otherwise. Heights are
 free-space wavelengths at the resonance.
+"""
+
+
+WORDS = """## What follows
+
+Resonances hold what is asked of them: within 2 % up to a height of 0.03 wavelength, 4 % up to
+0.12.
+
+The rest hangs on them. A resonance off by half a per cent moves S11 of a Q of 50 by half, and the
+axial ratio of two modes, each off by its own, by several decibels: no equation of this kind tells
+an axial ratio, and with two branches no match. The readings call those unknown, and the field
+check tells them. With a probe the match is told from 0.008 to 0.06 wavelength of height; below,
+the band is narrower than the resonance is known; above, the probe and the plate count for more
+than the equations have.
+
+What is behind the differences, where one experiment told:
+
+- Without its strips the element is met best. A strip that lands on a side takes part of the
+  side's fringing away and lifts the resonance by 0.3 to 0.5 %; the live model takes the strip's
+  charge there off, which is most of it.
+- A probe's hole in the ground plane lifts the resonance by up to 0.7 % on thin boards. The live
+  model leaves it out; most of the common shift of probes on boards is that.
+- Coupling between strips and element, and between strips, is left out.
+- Small plates raise the Q of an element by up to a third where they end with it, and take up to
+  1.4 dB of its directivity; the second is in the live model.
 """
 
 
@@ -239,7 +265,7 @@ def classes(
 ) -> dict[str, list[Compared]]:
     """Designs by what lies between edges."""
     rows = {}
-    for low, high in zip(edges, edges[1:], strict=False):
+    for low, high in itertools.pairwise(edges):
         text = f"up to {high:g} {unit}" if low <= 0.0 else f"{low:g} to {high:g} {unit}"
         text = f"over {low:g} {unit}" if high >= 10.0 else text
         rows[text.strip()] = [c for c in found if low <= getattr(c, name) < high]
@@ -262,6 +288,7 @@ def text_of(found: list[Compared], refused: int) -> str:
     air, board = [c for c in found if not c.is_board], [c for c in found if c.is_board]
     circular = [c for c in found if c.is_circular]
     sized = [c for c in circular if c.is_sized and c.live_vswr <= 1.5 and c.live_ratio <= 1.5]
+    matched = [c for c in found if c.is_sized and not c.is_circular and c.live_vswr <= 1.5]
     parts = [
         HEAD.format(count=len(found) + refused, seed=SEED, refused=refused),
         "## The element alone\n\nDriven along y by a thin probe, without branches.\n",
@@ -272,7 +299,8 @@ def text_of(found: list[Compared], refused: int) -> str:
         "Air-like, by how far the ground plate reaches beyond the element:\n",
         table("reach, wavelengths", classes(air, REACHES, "reach", ""), ELEMENT) + "\n",
         "## Fed as it is\n\nS11 as the size of the complex difference; *after the shift*: largest "
-        "within 2 % of the brief's frequency, after one common shift of frequency.\n",
+        "within 2 % of the brief's frequency,\nafter one common shift of frequency by at most "
+        "4 %.\n",
         table("kind, height", by_kind(found), FED) + "\n",
         table("air-like, reach", classes(air, REACHES, "reach", ""), FED) + "\n",
         "## Circular polarisation at the brief's frequency\n",
@@ -286,6 +314,9 @@ def text_of(found: list[Compared], refused: int) -> str:
         "## What becomes of designs sized by the live model\n\nCircular, VSWR and axial ratio of "
         "1.5 (dB) or better by the live model.\n",
         table("kind, height", by_kind(sized), SIZED) + "\n",
+        "Linear, VSWR of 1.5 or better by the live model.\n",
+        table("kind, height", by_kind(matched), dict(list(SIZED.items())[:3])) + "\n",
+        WORDS,
     ]
     return "\n".join(parts)
 
