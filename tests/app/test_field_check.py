@@ -224,10 +224,13 @@ def test_it_can_be_switched_off(window, runner, qtbot):
 def test_curves_name_their_engine_in_words(window, runner):
     runner.run()
     state = window.curves.match.state
-    assert [engine_words(one) for one in (state, state.beside)] == ["field solver", "live"]
+    assert [engine_words(one) for one in (state, state.beside)] == [
+        "field solver",
+        "live, estimate",
+    ]
     spoken = window.curves.match.accessibleDescription()
     assert spoken.startswith("field solver: Match")
-    assert "; live: Match" in spoken
+    assert "; live, estimate: Match" in spoken
     widen(window)
     assert "solved before: Match" in window.curves.match.accessibleDescription()
 

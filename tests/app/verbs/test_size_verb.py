@@ -52,8 +52,9 @@ def test_without_any_word_a_good_antenna_comes_out(sized, readings):
     assert told["met"] is True
     assert told["file"] == "first.kerf"
     assert from_record(told["design"]) == read_project(Path("first.kerf"))
+    # What is met is the estimate; with two branches nobody should cut by it.
     states = {one["reading"]: one["state"] for one in readings("first.kerf")["verdicts"]}
-    assert {states["match"], states["axial_ratio"]} <= {"met", "likely"}
+    assert states["match"] == states["axial_ratio"] == "unknown"
 
 
 def test_without_a_file_nothing_is_written(folder, capsys):
@@ -124,7 +125,7 @@ def test_where_equations_cannot_tell_that_is_said_if_they_are_asked_for(sized, c
     assert told["trust"]["match"]["level"] == "unknown"
     assert (told["solves"], told["level"]) == (0, None)
     assert main(["size", *LIVE, *THICK]) == 0
-    assert "unknown  match, axial ratio, bands, gain: the spacer is" in capsys.readouterr().out
+    assert "unknown  match, bands: the spacer is" in capsys.readouterr().out
 
 
 @pytest.fixture
