@@ -72,7 +72,7 @@ COMMANDS = (
         checkable=True,
     ),
     Command(
-        "show-ground", "&View", "Show &ground's current", ("F8",),
+        "show-ground", "&View", "Show &ground current", ("F8",),
         "Solved current on the ground plate", checkable=True,
     ),
     Command(

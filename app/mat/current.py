@@ -27,7 +27,6 @@ if TYPE_CHECKING:
 DECADES = 2  # of current that the colours tell apart
 _SEEN = 98.0  # per cent of the mesh's corners that the scale reaches
 _HALF = 3.0  # of a decade, as people round its half
-_BROAD, _NOTCH = 0.42, 0.5  # of a tick's half length: half its breadth, and its tail's notch
 _FREE = 1.3  # distances of ticks that are free round one in a strip
 _LEAST, _MOST = 0.25, 0.47  # half a tick where current is least and most, in their distance
 
@@ -160,14 +159,12 @@ def ticks_on(
     return Ticks(places[seen], density[seen] * reach[:, None])
 
 
-def needles(ticks: Ticks, phase: float) -> Floats:
-    """Corners (n, 4, 2) of the ticks about their places at one instant: darts, the tip first.
+def flows(ticks: Ticks, phase: float) -> Floats:
+    """Where the ticks point at one instant and half their lengths, (n, 2).
 
     In distances between ticks, y up; phase in rad.
     """
-    ahead = at_instant(ticks.currents, phase)
-    aside = np.stack([-ahead[:, 1], ahead[:, 0]], axis=1) * _BROAD
-    return np.stack([ahead, aside - ahead, -_NOTCH * ahead, -aside - ahead], axis=1)
+    return at_instant(ticks.currents, phase)
 
 
 def _stepped(half_decades: int) -> float:

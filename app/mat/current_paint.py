@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from functools import lru_cache
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -9,10 +10,12 @@ from PySide6.QtCore import QLineF, QPointF, Qt
 from PySide6.QtGui import QLinearGradient, QPainter, QPen
 
 from app import theme
+from app.mat.stamps import blank, paint_stamp
 from core.response.currents import greatest
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
+    from PySide6.QtGui import QPixmap
 
     from app.mat.camera import Camera
     from app.mat.current import Scale
@@ -22,6 +25,8 @@ if TYPE_CHECKING:
     Floats = NDArray[np.float64]
 
 _FLAT = 1e-9  # steepness under which a triangle is of one colour, per pixel
+_TURNS, _FINE = 120, 0.75  # angles of a tick that are told apart, and sizes, pixels
+_BROAD, _NOTCH = 0.42, 0.5  # half a tick's breadth and its tail's notch, of its half length
 
 
 def paint_mesh(
@@ -42,6 +47,8 @@ def paint_sheet(
     """Greatest current of a period in one hue, its logarithm linear over each triangle."""
     corners = _on_screen(sheet.vertices, camera)[sheet.triangles]
     values = scale.shares(greatest(sheet.at_vertices))[sheet.triangles]
+    seen = _in_view(corners, painter)
+    corners, values = corners[seen], values[seen]
     starts, stops = _gradients(corners, values)
     painter.setRenderHint(QPainter.RenderHint.Antialiasing, False)
     painter.setPen(Qt.PenStyle.NoPen)
@@ -55,20 +62,47 @@ def paint_sheet(
         painter.drawConvexPolygon([QPointF(*corner) for corner in triangle])
 
 
-def paint_needles(
-    painter: QPainter, places: Floats, shapes: Floats, camera: Camera, shades: Theme
+def paint_ticks(
+    painter: QPainter, places: Floats, ahead: Floats, camera: Camera, shades: Theme
 ) -> None:
-    """Ticks (n, 4, 2), pixels with y up, about their places (n, 2), m."""
-    corners = _on_screen(places, camera)[:, None] + shapes * (1.0, -1.0)
-    painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+    """Darts about their places (n, 2), m; half of them lies ahead (n, 2), pixels with y up."""
+    ratio = painter.device().devicePixelRatioF()
+    sizes = np.rint(np.hypot(ahead[:, 0], ahead[:, 1]) / _FINE).astype(int)
+    turns = np.rint(np.arctan2(ahead[:, 1], ahead[:, 0]) / (2 * np.pi) * _TURNS).astype(int)
+    pixels = _on_screen(places, camera)
+    for (across, down), size, turn in zip(
+        pixels.tolist(), sizes.tolist(), (turns % _TURNS).tolist(), strict=True
+    ):
+        if size:
+            paint_stamp(painter, QPointF(across, down), _dart(size, turn, shades, ratio))
+
+
+@lru_cache(4096)
+def _dart(size: int, turn: int, shades: Theme, ratio: float) -> QPixmap:
+    """Dart of so many steps of size and angle: drawn once, for it is seen again and again."""
+    half = size * _FINE
+    picture, painter = blank(2 * half + 4, 2 * half + 4, ratio)
+    painter.translate(half + 2, half + 2)
+    painter.rotate(-360.0 * turn / _TURNS)
     painter.setPen(QPen(theme.colour(shades.tick_edge, 140), 1.0))
     painter.setBrush(theme.colour(shades.tick))
-    for dart in corners.tolist():
-        painter.drawPolygon([QPointF(*corner) for corner in dart])
+    broad = half * _BROAD
+    corners = ((half, 0.0), (-half, broad), (-half * _NOTCH, 0.0), (-half, -broad))
+    painter.drawPolygon([QPointF(*corner) for corner in corners])
+    painter.end()
+    return picture
 
 
 def _on_screen(points: Floats, camera: Camera) -> Floats:
     return points * (camera.scale, -camera.scale) + (camera.left, camera.top)
+
+
+def _in_view(corners: Floats, painter: QPainter) -> NDArray[np.bool_]:
+    """Whether triangles (t, 3, 2) may reach into what is painted."""
+    room = painter.clipBoundingRect()
+    low, high = corners.min(axis=1), corners.max(axis=1)
+    inside = (high >= (room.left(), room.top())) & (low <= (room.right(), room.bottom()))
+    return np.asarray(inside.all(axis=1))
 
 
 def _gradients(corners: Floats, values: Floats) -> tuple[Floats, Floats]:

@@ -92,12 +92,12 @@ def _paint_scale(painter: QPainter, box: QRectF, scale: Scale, shades: Theme) ->
 
 @lru_cache(8)
 def turn_picture(
-    words: str, sense: Polarisation, shades: Theme, font: QFont, ratio: float
+    words: str, sense: Polarisation | None, shades: Theme, font: QFont, ratio: float
 ) -> QPixmap:
     """Words on a plate, with an arrow that goes round as the wave does, seen from the front."""
     metrics = QFontMetrics(font)
     line = metrics.height()
-    turn = 0 if sense is Polarisation.LINEAR else line
+    turn = line if sense in (Polarisation.RHCP, Polarisation.LHCP) else 0
     wide = metrics.horizontalAdvance(words) + 8 + turn
     picture, painter = blank(wide, line + 1, ratio)
     painter.setFont(font)
@@ -113,7 +113,7 @@ def turn_picture(
 
 
 def _paint_turn(
-    painter: QPainter, middle: QPointF, radius: float, sense: Polarisation, shades: Theme
+    painter: QPainter, middle: QPointF, radius: float, sense: Polarisation | None, shades: Theme
 ) -> None:
     """Most of a circle with a head: anticlockwise for right-hand (IEEE Std 145)."""
     way = 1.0 if sense is Polarisation.RHCP else -1.0

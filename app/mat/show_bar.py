@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Final
 
 from PySide6.QtCore import QEvent, QObject, Qt, Signal
-from PySide6.QtWidgets import QBoxLayout, QFrame, QHBoxLayout, QWidget
+from PySide6.QtWidgets import QBoxLayout, QComboBox, QFrame, QHBoxLayout, QWidget
 
 from app.mat.current import CurrentState, Shows
 from app.mat.legend import Legend
@@ -16,7 +16,7 @@ CHOICES: Final = {
     Shows.COPPER: "Copper",
     Shows.MESH: "Mesh",
     Shows.CURRENT: "Current",
-    Shows.GROUND: "Ground's current",
+    Shows.GROUND: "Ground current",
 }
 _MARGIN = 6  # pixels from the corner
 _ROW = 0.72  # of the view's breadth that one row may take: the rest has words of its own
@@ -36,6 +36,7 @@ class ShowBar(QFrame):
         self.chooser = Chooser(typed=False)
         self.chooser.setAccessibleName("Show on the Mat")
         self.chooser.setToolTip("Plain copper, the solver's mesh or the solved current")
+        self.chooser.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToContents)
         for value, words in CHOICES.items():
             self.chooser.addItem(words, value)
         self.chooser.activated.connect(

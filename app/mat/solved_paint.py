@@ -9,8 +9,8 @@ from PySide6.QtGui import QPainter, QPainterPath, QPen
 
 from app import theme
 from app.mat.copper_paint import paint_copper, paint_solder
-from app.mat.current import Shows, needles, scale_of, ticks_on
-from app.mat.current_paint import paint_mesh, paint_needles, paint_sheet
+from app.mat.current import Shows, flows, scale_of, ticks_on
+from app.mat.current_paint import paint_mesh, paint_sheet, paint_ticks
 from app.mat.legend import turn_picture
 from app.mat.paths import on_screen
 from app.views.kept import KeptPicture
@@ -26,11 +26,13 @@ if TYPE_CHECKING:
     from app.mat.plan import Sight
     from app.theme import Theme
 
-_APART = 1.5  # distance of ticks, in heights of a line of text
+_APART = 1.5  # least distance of ticks, in heights of a line of text
+_MOST = 700  # ticks, about
 _TURNS = {
     Polarisation.RHCP: "right-hand wave",
     Polarisation.LHCP: "left-hand wave",
     Polarisation.LINEAR: "linear wave",
+    None: "no clear sense",
 }
 
 
@@ -64,22 +66,30 @@ class SolvedPainting:
         """Paint the ticks of one instant."""
         if sight.current.sheet is None:
             return
-        step = _APART * painter.fontMetrics().height()
+        step = _distance(sight, painter.fontMetrics().height())
         key = (sight.current.sheet, sight.current.shows, sight.camera, sight.area, step)
         if self._ticks is None or self._ticks[0] != key:
             self._ticks = (key, _ticks(sight, step))
         ticks = self._ticks[1]
-        shapes = needles(ticks, sight.phase) * step
-        paint_needles(painter, ticks.places, shapes, sight.camera, shades)
+        ahead = flows(ticks, sight.phase) * step
+        paint_ticks(painter, ticks.places, ahead, sight.camera, shades)
 
     def paint_sense(self, painter: QPainter, sight: Sight, shades: Theme) -> None:
         """Say which way the wave turns, over the words in the lower left corner."""
         sense = sight.current.sense
-        if sense is None or sight.current.sheet is None:
+        if sight.current.sheet is None:
             return
         ratio, high = painter.device().devicePixelRatioF(), painter.fontMetrics().height()
         picture = turn_picture(_TURNS[sense], sense, shades, painter.font(), ratio)
         painter.drawPixmap(QPointF(sight.area.left() + 8, sight.area.bottom() - 3 * high), picture)
+
+
+def _distance(sight: Sight, line: int) -> float:
+    """Pixels between ticks: wider where a great deal of copper is in view."""
+    current, area, scale = sight.current, sight.area, sight.camera.scale
+    sheets = (current.sheet, current.currents.ground if current.currents is not None else None)
+    copper = max(float(sheet.areas.sum()) for sheet in sheets if sheet is not None) * scale**2
+    return float(max(_APART * line, (min(copper, area.width() * area.height()) / _MOST) ** 0.5))
 
 
 def _ticks(sight: Sight, step: float) -> Ticks:
