@@ -1,4 +1,4 @@
-"""Mesh and current on the Mat: what is drawn is what was solved, moves as it does, and ends with it."""
+"""Mesh and current on the Mat: what is drawn was solved, moves as it does, and ends with it."""
 
 from dataclasses import replace
 from math import pi
