@@ -25,7 +25,7 @@ if TYPE_CHECKING:
     Complexes = NDArray[np.complex128]
 
 DECADES = 2  # of current that the colours tell apart
-_SEEN = 98.0  # per cent of the mesh's corners that the scale reaches
+_OVER = 7.0  # times what half of the copper stays under: what the scale reaches at least
 _HALF = 3.0  # of a decade, as people round its half
 _FREE = 1.3  # distances of ticks that are free round one in a strip
 _LEAST, _MOST = 0.25, 0.47  # half a tick where current is least and most, in their distance
@@ -91,7 +91,7 @@ class Scale:
         """Places on the scale and what is written there, A/m."""
         count = 2 * DECADES
         values = [_stepped(round(2 * log10(self.top)) - back) for back in range(count, -1, -1)]
-        words = [f"{value:.3g}" for value in values]
+        words = [f"{value:.9g}" for value in values]
         words[0], words[-1] = f"≤ {words[0]}", f"≥ {words[-1]}"
         places = self.shares(np.array(values))
         return tuple(zip((float(place) for place in places), words, strict=True))
@@ -123,11 +123,17 @@ class Ticks:
 
 @lru_cache(4)
 def scale_of(sheet: SheetCurrent) -> Scale:
-    """Scale whose top few corners of a mesh pass: 1 or 3 times a power of ten."""
-    most = max(float(np.percentile(greatest(sheet.at_vertices), _SEEN)), 1e-6)
-    half = ceil(2 * log10(most) - 1e-9)
+    """Scale about what flows in the middle of a sheet; its top is 1 or 3 times a power of ten.
+
+    Strips and edges may pass it: they would push all else to the low end.
+    """
+    sizes = greatest(sheet.at_vertices)[sheet.triangles].mean(axis=1)
+    order = np.argsort(sizes)
+    half = np.searchsorted(np.cumsum(sheet.areas[order]), sheet.areas.sum() / 2.0)
+    top = max(_OVER * float(sizes[order[half]]), 1e-6)
+    step = ceil(2 * log10(top) - 1e-9)
     # A half decade is rounded down to 3: what lies between is the next one's.
-    return Scale(next(_stepped(i) for i in (half, half + 1) if _stepped(i) >= most))
+    return Scale(next(_stepped(i) for i in (step, step + 1) if _stepped(i) >= top))
 
 
 def ticks_on(

@@ -28,6 +28,7 @@ if TYPE_CHECKING:
 
 _APART = 1.5  # least distance of ticks, in heights of a line of text
 _MOST = 700  # ticks, about
+_ROUND = 2.5
 _TURNS = {
     Polarisation.RHCP: "right-hand wave",
     Polarisation.LHCP: "left-hand wave",
@@ -86,9 +87,11 @@ class SolvedPainting:
 
 def _distance(sight: Sight, line: int) -> float:
     """Pixels between ticks: wider where a great deal of copper is in view."""
-    current, area, scale = sight.current, sight.area, sight.camera.scale
-    sheets = (current.sheet, current.currents.ground if current.currents is not None else None)
-    copper = max(float(sheet.areas.sum()) for sheet in sheets if sheet is not None) * scale**2
+    current, area = sight.current, sight.area
+    assert current.sheet is not None
+    # Round the top copper the ground plate has ticks as well, of some times its area.
+    wider = 1.0 if current.shows is Shows.GROUND else _ROUND
+    copper = wider * float(current.sheet.areas.sum()) * sight.camera.scale**2
     return float(max(_APART * line, (min(copper, area.width() * area.height()) / _MOST) ** 0.5))
 
 

@@ -222,13 +222,22 @@ def test_ticks_stay_on_their_copper_and_apart(answers):
     assert len(below.places) > 20
 
 
-def test_scale_reaches_nearly_all_and_says_so(answers):
-    top = answers["right"].evaluation.response.currents.top
-    scale = scale_of(top)
-    assert np.mean(greatest(top.at_vertices) <= scale.top) >= 0.98
+@pytest.mark.parametrize("name", ["top", "ground"])
+def test_scale_lies_about_what_flows_in_the_middle(answers, name):
+    sheet = getattr(answers["right"].evaluation.response.currents, name)
+    scale = scale_of(sheet)
+    means = greatest(sheet.at_vertices)[sheet.triangles].mean(axis=1)
+    ends = scale.top * 10.0 ** (-DECADES * np.array([0.75, 0.25]))
+    low, high = (sheet.areas @ (means < end) / sheet.areas.sum() for end in ends)
+    assert low < 0.5 < high  # half of the copper lies in the middle half of the scale
     assert scale.shares(np.array([scale.top, scale.top / 10**DECADES])) == approx([1.0, 0.0])
+    assert scale.shares(np.array([0.0])) < 0.0
+
+
+def test_scale_is_marked_in_round_numbers():
     assert Scale(30.0).marks[0] == (approx(0.0), "≤ 0.3")
     assert [words for _, words in Scale(100.0).marks] == ["≤ 1", "3", "10", "30", "≥ 100"]
+    assert [words for _, words in Scale(1e3).marks] == ["≤ 10", "30", "100", "300", "≥ 1000"]
 
 
 def test_legend_is_spoken_with_its_unit(bench):
