@@ -74,6 +74,13 @@ class CurrentState:
             return None
         return self.currents.ground if self.shows is Shows.GROUND else self.currents.top
 
+    @property
+    def scale(self) -> Scale | None:
+        """Scale of that sheet: the copper's for both, so that their colours can be compared."""
+        if self.currents is None or self.sheet is None:
+            return None
+        return scale_of(self.currents.top)
+
 
 @dataclass(frozen=True)
 class Scale:

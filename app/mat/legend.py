@@ -11,14 +11,13 @@ from PySide6.QtGui import QFontMetrics, QLinearGradient, QPainter, QPainterPath,
 from PySide6.QtWidgets import QSizePolicy, QWidget
 
 from app import theme
-from app.mat.current import CurrentState, scale_of
 from app.mat.stamps import blank
 from core.design.polarisation import Polarisation
 
 if TYPE_CHECKING:
     from PySide6.QtGui import QFont, QPaintEvent, QPixmap
 
-    from app.mat.current import Scale
+    from app.mat.current import CurrentState, Scale
     from app.theme import Theme
 
 
@@ -39,7 +38,7 @@ class Legend(QWidget):
 
     def show_state(self, state: CurrentState) -> None:
         self._words = state.words
-        self._scale = None if state.sheet is None else scale_of(state.sheet)
+        self._scale = state.scale
         marks = "" if self._scale is None else ", ".join(words for _, words in self._scale.marks)
         self.setAccessibleDescription(f"{state.words}: {marks}" if marks else state.words)
         self.setToolTip(state.details)

@@ -9,7 +9,7 @@ from PySide6.QtGui import QPainter, QPainterPath, QPen
 
 from app import theme
 from app.mat.copper_paint import paint_copper, paint_solder
-from app.mat.current import Shows, flows, scale_of, ticks_on
+from app.mat.current import Shows, flows, ticks_on
 from app.mat.current_paint import paint_mesh, paint_sheet, paint_ticks
 from app.mat.legend import turn_picture
 from app.mat.paths import on_screen
@@ -28,7 +28,7 @@ if TYPE_CHECKING:
 
 _APART = 1.5  # least distance of ticks, in heights of a line of text
 _MOST = 700  # ticks, about
-_ROUND = 2.5
+_ROUND = 2.5  # areas of the top copper that have ticks: the ground plate round it has them too
 _TURNS = {
     Polarisation.RHCP: "right-hand wave",
     Polarisation.LHCP: "left-hand wave",
@@ -88,10 +88,8 @@ class SolvedPainting:
 def _distance(sight: Sight, line: int) -> float:
     """Pixels between ticks: wider where a great deal of copper is in view."""
     current, area = sight.current, sight.area
-    assert current.sheet is not None
-    # Round the top copper the ground plate has ticks as well, of some times its area.
-    wider = 1.0 if current.shows is Shows.GROUND else _ROUND
-    copper = wider * float(current.sheet.areas.sum()) * sight.camera.scale**2
+    assert current.currents is not None
+    copper = _ROUND * float(current.currents.top.areas.sum()) * sight.camera.scale**2
     return float(max(_APART * line, (min(copper, area.width() * area.height()) / _MOST) ** 0.5))
 
 
@@ -102,7 +100,8 @@ def _ticks(sight: Sight, step: float) -> Ticks:
     assert current.sheet is not None
     low_x, high_y = camera.to_mat(area.left(), area.top())
     high_x, low_y = camera.to_mat(area.right(), area.bottom())
-    view, scale = (low_x, low_y, high_x, high_y), scale_of(current.sheet)
+    view, scale = (low_x, low_y, high_x, high_y), current.scale
+    assert scale is not None
     ticks = ticks_on(current.sheet, scale, step / camera.scale, view)
     ground = current.currents.ground
     if current.shows is Shows.GROUND or ground is None:
@@ -126,9 +125,9 @@ def _paint_currents(painter: QPainter, sight: Sight, shades: Theme) -> None:
     """Current on the ground plate, and over it that of the copper or its outline alone."""
     current, camera, layout = sight.current, sight.camera, sight.state.layout
     assert current.currents is not None
-    assert current.sheet is not None
+    assert current.scale is not None
     assert layout is not None
-    scale, top = scale_of(current.sheet), QPainterPath()
+    scale, top = current.scale, QPainterPath()
     top.setFillRule(Qt.FillRule.WindingFill)
     for piece in layout.pieces:
         if piece.role is Role.TOP_COPPER:

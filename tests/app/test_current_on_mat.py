@@ -222,9 +222,8 @@ def test_ticks_stay_on_their_copper_and_apart(answers):
     assert len(below.places) > 20
 
 
-@pytest.mark.parametrize("name", ["top", "ground"])
-def test_scale_lies_about_what_flows_in_the_middle(answers, name):
-    sheet = getattr(answers["right"].evaluation.response.currents, name)
+def test_scale_lies_about_what_flows_in_the_middle(answers):
+    sheet = answers["right"].evaluation.response.currents.top
     scale = scale_of(sheet)
     means = greatest(sheet.at_vertices)[sheet.triangles].mean(axis=1)
     ends = scale.top * 10.0 ** (-DECADES * np.array([0.75, 0.25]))
@@ -238,6 +237,15 @@ def test_scale_is_marked_in_round_numbers():
     assert Scale(30.0).marks[0] == (approx(0.0), "≤ 0.3")
     assert [words for _, words in Scale(100.0).marks] == ["≤ 1", "3", "10", "30", "≥ 100"]
     assert [words for _, words in Scale(1e3).marks] == ["≤ 10", "30", "100", "300", "≥ 1000"]
+
+
+def test_both_sheets_have_the_scale_of_the_copper(bench):
+    legend = bench.mat.shown.legend
+    bench.settings.set("mat_shows", "current")
+    copper = legend.accessibleDescription()
+    bench.settings.set("mat_shows", "ground")
+    assert legend.accessibleDescription() == copper
+    assert bench.mat.plan.current.state.sheet is bench.mat.plan.current.state.currents.ground
 
 
 def test_legend_is_spoken_with_its_unit(bench):
