@@ -63,6 +63,26 @@ COMMANDS = (
         "dimensions", "&View", "&Dimensions", ("Ctrl+D",), "Draw dimensions", group=True,
         checkable=True,
     ),
+    Command(
+        "show-copper", "&View", "Show co&pper", ("F5",), "The copper as it is cut", group=True,
+        checkable=True,
+    ),
+    Command(
+        "show-mesh", "&View", "Show &mesh", ("F6",), "Triangles that the field check solves on",
+        checkable=True,
+    ),
+    Command(
+        "show-current", "&View", "Show curr&ent", ("F7",), "Solved current, in one hue and ticks",
+        checkable=True,
+    ),
+    Command(
+        "show-ground", "&View", "Show &ground current", ("F8",),
+        "Solved current on the ground plate", checkable=True,
+    ),
+    Command(
+        "animate", "&View", "&Let the current move", ("F9",), "Two seconds a period",
+        checkable=True,
+    ),
     Command("full-screen", "&View", "F&ull screen", ("F11",), "All of the screen", checkable=True),
     Command("keys", "&Help", "&Keys and gestures", ("F1",), "What the hand can do on the Mat"),
     Command("about", "&Help", "&About Kerfwave", (), "Version and licence"),

@@ -18,11 +18,13 @@ from app.mat.mat import Mat
 from app.menus import add_file_menus
 from app.pipeline import Pipeline
 from app.presenters.cards_presenter import CardsPresenter
+from app.presenters.current_presenter import CurrentPresenter
 from app.presenters.files import Asker, FilesPresenter
 from app.presenters.mat_presenter import MatPresenter
 from app.presenters.readings_presenter import ReadingsPresenter
 from app.presenters.sizing import Settler, SizingPresenter
 from app.recovery import Recovery
+from app.shown_wiring import connect_shown
 from app.views.card_column import CardColumn
 from app.views.header import Header
 from app.views.notice_bar import NoticeBar
@@ -72,6 +74,7 @@ class MainWindow(QMainWindow):
         self._lay_out()
         connect_views(self)
         connect_actions(self)
+        connect_shown(self, self)
         add_file_menus(self.header.menus["&File"], settings, self.files)
         self.setAcceptDrops(True)
         self.show_name()
@@ -162,6 +165,7 @@ class MainWindow(QMainWindow):
         document, pipeline = self.document, self.pipeline
         self.cards_presenter = CardsPresenter(document, self.cards)
         self.mat_presenter = MatPresenter(document, pipeline, self.mat)
+        self.current_presenter = CurrentPresenter(pipeline, self.field, self.settings, self.mat)
         self.readings_presenter = ReadingsPresenter(
             pipeline, self.field, self.settings, self.readings, self.curves
         )
@@ -207,7 +211,7 @@ class MainWindow(QMainWindow):
 
     def show_place(self, point: object) -> None:
         """Say where the pointer is on the Mat."""
-        self.place.setText(place_words(point))
+        self.place.setText(self.current_presenter.words_at(point) + place_words(point))
 
     def show_name(self) -> None:
         """Say whose design is on the bench, and whether it is saved."""

@@ -31,6 +31,8 @@ _KEYS = """<p><b>On the Mat</b></p>
 about their middle: the side across moves as far the other way.</p>
 <p>Wheel: zoom at the pointer. Middle button, Space or the bare mat: pan. Ctrl+0: the whole
 plate. Ctrl+2: the copper. Ctrl+1: true size.</p>
+<p>F5 shows the copper, F6 the mesh, F7 the solved current, F8 that of the ground plate; F9 lets
+it move or holds it.</p>
 <p><b>In a field</b></p>
 <p>Type a length as you write it: 41.5, 41.5 mm, 4.15 cm, 1 5/8 in, 62 mil. Enter takes it, Esc
 takes it back, the up and down keys step it.</p>"""

@@ -30,6 +30,7 @@ from core.fullwave.layered_trust import rim_doubts
 from core.fullwave.mesh import Level, build_mesh
 from core.fullwave.mesh_model import mesh_quality
 from core.fullwave.rational import fit_rational
+from core.fullwave.surface_currents import board_top_currents, plate_currents
 from core.fullwave.sweep import Sweep, adaptive_sweep, first_points
 from core.fullwave.system import (
     Solution,
@@ -57,6 +58,7 @@ if TYPE_CHECKING:
 
     from core.layout.model import Layout
     from core.progress import Progress
+    from core.response.currents import Currents
 
     Floats = NDArray[np.float64]
     Complexes = NDArray[np.complex128]
@@ -122,6 +124,7 @@ def respond(
         cuts=tuple(_cut(solver, phi) for phi in (0.0, pi / 2)),
         front_to_back=solver.front_to_back(),
         trust=_trust(level, sweep) | solver.doubts(),
+        currents=solver.currents(),
     )
 
 
@@ -229,6 +232,10 @@ class _Solver(ABC):
         """Power at boresight over that straight behind, where there is a behind."""
 
     @abstractmethod
+    def currents(self) -> Currents:
+        """Currents at the brief's frequency, 1 W accepted."""
+
+    @abstractmethod
     def doubts(self) -> dict[Reading, Trust]:
         """What the system leaves out of some readings."""
 
@@ -259,6 +266,9 @@ class _FreeSpace(_Solver):
         field = radiated_field(self.system, self.spot.currents, self.spot.frequency, ends)
         front, back = np.sum(np.abs(field) ** 2, axis=1)
         return float(front / back)
+
+    def currents(self) -> Currents:
+        return plate_currents(self.system, self.spot)
 
     def doubts(self) -> dict[Reading, Trust]:
         if self.level is Level.QUICK:  # the balance takes as long as one more frequency
@@ -307,6 +317,9 @@ class _Board(_Solver):
 
     def front_to_back(self) -> None:
         return None
+
+    def currents(self) -> Currents:
+        return board_top_currents(self.system, self.spot)
 
     def doubts(self) -> dict[Reading, Trust]:
         accepted = self.spot.admittance.real / 2.0

@@ -23,6 +23,7 @@ if TYPE_CHECKING:
     Complexes = NDArray[np.complex128]
 
     from core.design.polarisation import Polarisation
+    from core.response.currents import Currents
 
 
 class Reading(StrEnum):
@@ -210,6 +211,8 @@ class Response:
         is taken as infinite.
     trust : mapping of Reading to Trust
         For every reading.
+    currents : Currents or None
+        On the conductors at the brief's frequency; None where the engine solves for none.
     """
 
     engine: str
@@ -221,6 +224,7 @@ class Response:
     cuts: tuple[PatternCut, ...]
     front_to_back: float | None
     trust: Mapping[Reading, Trust]
+    currents: Currents | None = None
 
     @property
     def frequency(self) -> float:
