@@ -44,6 +44,10 @@ COMMANDS = (
         "Find lengths that meet the brief", group=True,
     ),
     Command(
+        "settle", "&Edit", "S&ettle by field check", ("Ctrl+Shift+B",),
+        "Correct lengths by the field solver until what is solved meets the brief",
+    ),
+    Command(
         "field-check", "&Edit", "Field &check", ("Ctrl+K",),
         "Solve the very shape on the Mat whenever an edit rests", checkable=True,
     ),
@@ -57,6 +61,26 @@ COMMANDS = (
     Command("true-size", "&View", "&True size", ("Ctrl+1",), "As large as it will be cut"),
     Command(
         "dimensions", "&View", "&Dimensions", ("Ctrl+D",), "Draw dimensions", group=True,
+        checkable=True,
+    ),
+    Command(
+        "show-copper", "&View", "Show co&pper", ("F5",), "The copper as it is cut", group=True,
+        checkable=True,
+    ),
+    Command(
+        "show-mesh", "&View", "Show &mesh", ("F6",), "Triangles that the field check solves on",
+        checkable=True,
+    ),
+    Command(
+        "show-current", "&View", "Show curr&ent", ("F7",), "Solved current, in one hue and ticks",
+        checkable=True,
+    ),
+    Command(
+        "show-ground", "&View", "Show &ground current", ("F8",),
+        "Solved current on the ground plate", checkable=True,
+    ),
+    Command(
+        "animate", "&View", "&Let the current move", ("F9",), "Two seconds a period",
         checkable=True,
     ),
     Command("full-screen", "&View", "F&ull screen", ("F11",), "All of the screen", checkable=True),

@@ -55,6 +55,7 @@ class Document(QObject):
     """Holds the current design; the only holder of state in the window."""
 
     design_changed = Signal(object)
+    started = Signal()
     path_changed = Signal(object)
 
     def __init__(self, design: Design, parent: QObject | None = None) -> None:
@@ -89,6 +90,7 @@ class Document(QObject):
 
     def start(self, design: Design, path: Path | None) -> None:
         """Begin with another file's design, or a new one."""
+        self.started.emit()
         self.stack.clear()
         self._set_path(path)
         self._show(design)

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from contextlib import suppress
 from dataclasses import dataclass, replace
 from importlib.metadata import version
 from typing import TYPE_CHECKING, Final, Protocol
@@ -11,7 +10,6 @@ from PySide6.QtCore import QObject, QTimer, Signal
 
 from app.jobs.runner import Request
 from core.engines import NEXT_COARSER
-from core.errors import ModelError
 from core.response.bands import frequency_grid
 from core.response.judge import judge
 from core.response.spread import with_spread
@@ -31,14 +29,16 @@ if TYPE_CHECKING:
 
 KIND: Final = "field-check"
 REST: Final = 400  # ms that an edit must rest before it is solved
-COARSE: Final = "coarse"
+QUICK: Final = "quick"
 _PREPARING: Final = "Preparing the field check…"
+_FOLLOWS: Final = "The field check follows the hand on a quick, coarse mesh."
+_COMPARING: Final = "Solved on the {level} mesh; now on the {coarser} one, for the ±."
 
 
-class Solve(Protocol):
+class Solver(Protocol):
     """A field solver: takes a layout, frequencies (Hz), a listener, a level of mesh, a cable."""
 
-    def __call__(
+    def solve(
         self,
         layout: Layout,
         frequencies: ArrayLike,
@@ -46,6 +46,8 @@ class Solve(Protocol):
         level: str,
         tail: Tail | None = None,
     ) -> Response: ...
+    def drop(self) -> None: ...
+    def close(self) -> None: ...
 
 
 @dataclass(frozen=True)
@@ -57,14 +59,17 @@ class Checked:
     evaluation : Evaluation
         With the solver's response and the verdicts on it.
     level : str
-        Fineness of the mesh: coarse, normal or fine.
+        Fineness of the mesh: quick, coarse, normal or fine.
     solved : int
         Frequencies that were solved.
+    is_compared : bool
+        The plus and minus from the next coarser mesh is known, or cannot be.
     """
 
     evaluation: Evaluation
     level: str
     solved: int
+    is_compared: bool
 
     @property
     def words(self) -> str:
@@ -72,7 +77,9 @@ class Checked:
 
     @property
     def mark(self) -> str:
-        """What the sheets of this design say."""
+        """What the sheets of this design say; a quick answer is none to cut by."""
+        if self.level == QUICK:
+            return ""
         return f"Field-checked: {self.level} mesh, Kerfwave {version('kerfwave')}"
 
 
@@ -80,7 +87,8 @@ class FieldCheck(QObject):
     """Keeps the last answer of the field solver, and asks for the next one.
 
     An edit stops what is being solved; when edits rest, the design is solved beside the
-    window, on a coarse mesh as long as the hand holds on.
+    window, and then on the next coarser mesh for the plus and minus. As long as the hand holds
+    on, quick answers follow it one after the other.
 
     Attributes
     ----------
@@ -95,11 +103,11 @@ class FieldCheck(QObject):
     changed = Signal()
 
     def __init__(
-        self, pipeline: Pipeline, settings: Settings, runner: Runner, solve: Solve
+        self, pipeline: Pipeline, settings: Settings, runner: Runner, solver: Solver
     ) -> None:
         super().__init__(pipeline)
         self._pipeline, self._settings, self._runner = pipeline, settings, runner
-        self._solve = solve
+        self._solver = solver
         self.last: Checked | None = None
         self._is_held = self._is_ready = False
         self.busy, self.problem, self.is_stopped = "", "", False
@@ -109,11 +117,16 @@ class FieldCheck(QObject):
         self._rest.timeout.connect(self.start)
         pipeline.evaluated.connect(self._on_evaluated)
         settings.changed.connect(lambda key, _: self._on_setting(key))
-        self._wait()
+        self._rest.start()
 
     @property
     def is_on(self) -> bool:
         return bool(self._settings.value("field_check"))
+
+    @property
+    def level(self) -> str:
+        """Level of mesh to solve on at rest."""
+        return str(self._settings.value("mesh_level"))
 
     @property
     def current(self) -> Checked | None:
@@ -124,82 +137,116 @@ class FieldCheck(QObject):
 
     def start(self) -> None:
         """Solve the design on the bench now."""
-        current = self._pipeline.current
+        current, checked = self._pipeline.current, self.current
         if not self.is_on or current.layout is None or self._is_done():
             return
-        level = COARSE if self._is_held else str(self._settings.value("mesh_level"))
+        if checked is not None and checked.level == self.level:
+            self._compare(checked)
+        else:
+            self._solve(current)
+
+    def stop(self) -> None:
+        """Stop solving until the next edit; an answer that only lacks its plus and minus stands."""
+        checked = self.current
+        self._leave()
+        self._rest.stop()
+        self._tell(is_stopped=checked is None or checked.level != self.level)
+
+    def close(self) -> None:
+        """End for good: nothing is solved and nobody is told."""
+        self._rest.stop()
+        self._runner.stop(KIND)
+        self._solver.close()
+
+    def hold(self, is_held: bool) -> None:
+        """The hand has taken hold of something, or let go of it."""
+        self._is_held = is_held
+        self._leave()
+        self.busy = ""
+        if not is_held and not self._is_done() and not self.is_stopped:
+            self._rest.start()
+        self.changed.emit()
+
+    def forget(self) -> None:
+        """Forget the last answer: another design comes on the bench."""
+        self.last = None
+
+    def _is_done(self) -> bool:
+        """Whether the design on the bench is solved as finely as it is to be."""
+        checked = self.current
+        if checked is None or self._is_held:
+            return checked is not None
+        return checked.level == self.level and checked.is_compared
+
+    def _solve(self, current: Evaluation) -> None:
+        level = QUICK if self._is_held else self.level
         known = self.current
-        self._tell(busy="Field check: first frequency" if self._is_ready else _PREPARING)
+        busy = _FOLLOWS if self._is_held else "Field check: first frequency"
+        self._tell(busy=busy if self._is_ready else _PREPARING)
         self._runner.start(
             Request(
                 KIND,
-                lambda progress: _checked(current, level, self._solve, progress, known),
+                lambda progress: _checked(current, level, self._solver, progress, known),
                 self._on_checked,
                 lambda error: self._tell(problem=_reason(error)),
                 self._on_stepped,
             )
         )
 
-    def stop(self) -> None:
-        """Stop solving until the next edit."""
-        self._runner.stop(KIND)
-        self._rest.stop()
-        self._tell(is_stopped=True)
+    def _compare(self, checked: Checked) -> None:
+        coarser = NEXT_COARSER[checked.level]
+        self._tell(busy=_COMPARING.format(level=checked.level, coarser=coarser))
+        self._runner.start(
+            Request(
+                KIND,
+                lambda progress: _compared(checked, self._solver, progress),
+                self._on_checked,
+                # The finer mesh may do where this one does not: its readings stand as they are.
+                lambda _error: self._on_checked(replace(checked, is_compared=True)),
+            )
+        )
 
-    def close(self) -> None:
-        """End for good: nothing is solved and nobody is told."""
-        self._rest.stop()
-        self._runner.stop(KIND)
-
-    def hold(self) -> None:
-        """The hand has taken hold of something."""
-        self._is_held = True
-
-    def let_go(self) -> None:
-        """The hand has let go: what it left is solved on the chosen mesh."""
-        self._is_held = False
-        if not self._is_done() and not self.is_stopped:
-            self._wait()
-            self.changed.emit()
-
-    def _is_done(self) -> bool:
-        """Whether the design on the bench is solved as finely as it is to be."""
-        current, level = self.current, self._settings.value("mesh_level")
-        return current is not None and (self._is_held or current.level == level)
-
-    def _wait(self) -> None:
-        if self.is_on:
-            self._rest.start()
+    def _leave(self) -> None:
+        """Leave what is being solved."""
+        if self.busy:  # else the solver may be at what others have asked
+            self._runner.stop(KIND)
+            self._solver.drop()
 
     def _tell(self, *, busy: str = "", problem: str = "", is_stopped: bool = False) -> None:
         self.busy, self.problem, self.is_stopped = busy, problem, is_stopped
         self.changed.emit()
 
     def _on_evaluated(self, _evaluation: Evaluation) -> None:
-        if self.busy:
-            self._runner.stop(KIND)
+        if self._is_held:
+            if not self.busy:
+                self.start()
+            return
+        self._leave()
         self.busy, self.problem, self.is_stopped = "", "", False
-        self._wait()
+        self._rest.start()
 
     def _on_setting(self, key: str) -> None:
         if key not in ("field_check", "mesh_level"):
             return
-        self._runner.stop(KIND)
+        self._leave()
         self._rest.stop()
         if not self.is_on:
             self.last = None
-        self._wait()
+        self._rest.start()
         self._tell()
 
     def _on_stepped(self, done: int, total: int) -> None:
         # The first frequency of a session also loads the solver.
         self._is_ready = self._is_ready or done > 0
-        if self._is_ready:
+        if self._is_ready and not self._is_held:
             self._tell(busy=f"Field check: {done} of about {total} frequencies")
 
     def _on_checked(self, checked: Checked) -> None:
         self.last, self._is_ready = checked, True
-        self._tell()
+        if self._is_done():
+            self._tell()
+        else:
+            self.start()
 
 
 def _reason(error: CoreError) -> str:
@@ -218,37 +265,43 @@ class _Counted:
         self._progress.step(done, total)
 
 
-class _Before:
-    """Passes on that work goes on, as long as what is counted has not begun."""
-
-    def __init__(self, progress: Progress) -> None:
-        self._progress = progress
-
-    def step(self, _done: int, total: int) -> None:
-        self._progress.step(0, total)
-
-
 def _checked(
-    current: Evaluation, level: str, solve: Solve, progress: Progress, known: Checked | None
+    current: Evaluation, level: str, solver: Solver, progress: Progress, known: Checked | None
 ) -> Checked:
     """Solve a design at the frequencies of the curves and hold it against its brief.
 
-    On the next coarser mesh too, if that is not known already: how far the two differ is told.
+    With its plus and minus, where the next coarser mesh is known already or there is none.
     """
-    layout, brief, counted = current.layout, current.design.brief, _Counted(progress)
-    assert layout is not None
-    frequencies = frequency_grid(brief.frequency)
+    assert current.layout is not None
+    counted = _Counted(progress)
+    frequencies = frequency_grid(current.design.brief.frequency)
+    response = solver.solve(current.layout, frequencies, counted, level)
     coarser = NEXT_COARSER.get(level)
-    other = None
-    if known is not None and known.level == coarser:
-        other = known.evaluation.response
-    elif coarser is not None:
-        # The finer mesh may do where this one does not; then its readings have no plus and minus.
-        with suppress(ModelError):
-            other = solve(layout, frequencies, _Before(progress), coarser)
-    response = solve(layout, frequencies, counted, level)
-    if other is not None and coarser is not None:
-        response = with_spread(response, other, coarser, brief.polarisation)
+    checked = Checked(_judged(current, response), level, counted.count, coarser is None)
+    if known is None or known.level != coarser or known.evaluation.response is None:
+        return checked
+    return _beside(checked, known.evaluation.response)
+
+
+def _compared(checked: Checked, solver: Solver, progress: Progress) -> Checked:
+    """Solve the same on the next coarser mesh, and tell how far the two differ."""
+    layout, frequency = checked.evaluation.layout, checked.evaluation.design.brief.frequency
+    assert layout is not None
+    coarser = NEXT_COARSER[checked.level]
+    return _beside(checked, solver.solve(layout, frequency_grid(frequency), progress, coarser))
+
+
+def _beside(checked: Checked, coarser: Response) -> Checked:
+    """An answer with its plus and minus."""
+    shown = checked.evaluation
+    assert shown.response is not None
+    against, polarisation = NEXT_COARSER[checked.level], shown.design.brief.polarisation
+    response = with_spread(shown.response, coarser, against, polarisation)
+    return replace(checked, evaluation=_judged(shown, response), is_compared=True)
+
+
+def _judged(current: Evaluation, response: Response) -> Evaluation:
+    """What is on the bench with the solver's response, held against the brief."""
+    brief = current.design.brief
     verdicts = judge(response, brief.polarisation, brief.vswr, brief.axial_ratio_db)
-    evaluation = replace(current, response=response, verdicts=verdicts, problem="")
-    return Checked(evaluation, level, counted.count)
+    return replace(current, response=response, verdicts=verdicts, problem="")

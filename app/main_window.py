@@ -12,16 +12,19 @@ from app.actions import make_actions
 from app.curves.panel import CurvesPanel
 from app.dialogs.preferences import PreferencesDialog
 from app.document import Document
-from app.field_check import FieldCheck, Solve
+from app.field_check import FieldCheck, Solver
+from app.jobs.solver_process import SolverProcess
 from app.mat.mat import Mat
 from app.menus import add_file_menus
 from app.pipeline import Pipeline
 from app.presenters.cards_presenter import CardsPresenter
+from app.presenters.current_presenter import CurrentPresenter
 from app.presenters.files import Asker, FilesPresenter
 from app.presenters.mat_presenter import MatPresenter
 from app.presenters.readings_presenter import ReadingsPresenter
-from app.presenters.sizing import SizingPresenter
+from app.presenters.sizing import Settler, SizingPresenter
 from app.recovery import Recovery
+from app.shown_wiring import connect_shown
 from app.tail_check import TailCheck
 from app.views.card_column import CardColumn
 from app.views.header import Header
@@ -29,7 +32,6 @@ from app.views.notice_bar import NoticeBar
 from app.views.readings_view import ReadingsView
 from app.wiring import connect_actions, connect_views, place_words
 from core.design.defaults import default_design
-from core.engines import respond_on_mesh
 
 if TYPE_CHECKING:
     from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent
@@ -57,21 +59,25 @@ class MainWindow(QMainWindow):
         runner: Runner,
         folder: Path,
         asker: WindowAsks | None = None,
-        solve: Solve = respond_on_mesh,
+        solver: Solver | None = None,
+        settler: Settler | None = None,
     ) -> None:
         super().__init__()
         self.settings, self.runner = settings, runner
         self.asker: WindowAsks = asker or _own_asker(self)
         self.document = Document(default_design(), self)
         self.pipeline = Pipeline(self.document)
-        self.field = FieldCheck(self.pipeline, settings, runner, solve)
-        self.tail = TailCheck(self.pipeline, self.field, runner, solve)
+        solver = solver or SolverProcess()
+        self.field = FieldCheck(self.pipeline, settings, runner, solver)
+        self.tail = TailCheck(self.pipeline, self.field, runner, solver)
+        self._settler = settler or SolverProcess()  # of its own: the field check goes on beside it
         self.window_actions = make_actions(self, self.document.stack)
         self._make_views()
         self._make_presenters()
         self._lay_out()
         connect_views(self)
         connect_actions(self)
+        connect_shown(self, self)
         add_file_menus(self.header.menus["&File"], settings, self.files)
         self.setAcceptDrops(True)
         self.show_name()
@@ -122,6 +128,8 @@ class MainWindow(QMainWindow):
         self.settings.set("geometry", geometry)
         self.field.close()
         self.tail.close()
+        self.sizing.discard()
+        self._settler.close()
         self.runner.close()
         self.recovery.close()
         super().closeEvent(event)
@@ -161,11 +169,17 @@ class MainWindow(QMainWindow):
         document, pipeline = self.document, self.pipeline
         self.cards_presenter = CardsPresenter(document, self.cards)
         self.mat_presenter = MatPresenter(document, pipeline, self.mat)
+        self.current_presenter = CurrentPresenter(pipeline, self.field, self.settings, self.mat)
         self.readings_presenter = ReadingsPresenter(
             pipeline, self.field, self.settings, self.readings, self.curves, self.tail
         )
         self.sizing = SizingPresenter(
-            document, self.runner, self.mat_presenter, self.readings_presenter, self.notices
+            document,
+            self.runner,
+            self._settler,
+            self.mat_presenter,
+            self.readings_presenter,
+            self.notices,
         )
         self.files = FilesPresenter(document, self.settings, self.asker, self.notices)
 
@@ -177,6 +191,7 @@ class MainWindow(QMainWindow):
         column.setContentsMargins(0, 0, 0, 0)
         column.setSpacing(em // 2)
         column.addWidget(self.readings)
+        self.curves.setMinimumHeight(em * 13)  # what can scroll in the Readings gives way
         column.addWidget(self.curves, 1)
         self.columns = QSplitter(Qt.Orientation.Horizontal)
         self.columns.setHandleWidth(em // 2)
@@ -200,7 +215,7 @@ class MainWindow(QMainWindow):
 
     def show_place(self, point: object) -> None:
         """Say where the pointer is on the Mat."""
-        self.place.setText(place_words(point))
+        self.place.setText(self.current_presenter.words_at(point) + place_words(point))
 
     def show_name(self) -> None:
         """Say whose design is on the bench, and whether it is saved."""

@@ -26,6 +26,7 @@ NOTICES = {
         "note", "{name} was not saved when Kerfwave last ended.", ("Restore", "Delete")
     ),
     "size-failed": Notice("refusal", "Nothing was sized. {reason}"),
+    "settle-failed": Notice("refusal", "Nothing was settled. {reason}"),
     "crashed": Notice(
         "refusal",
         "Something went wrong in Kerfwave itself. Your design is safe in {copy}; "

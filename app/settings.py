@@ -65,6 +65,21 @@ SETTINGS = (
     Setting(
         "dimensions", True, (True, False), "Dimensions on the Mat", "Draw dimensions on the Mat."
     ),
+    Setting(
+        "animate",
+        True,
+        (True, False),
+        "Current moves",
+        "On the Mat, the solved current is seen going through its period.",
+    ),
+    Setting(
+        "mat_shows",
+        "copper",
+        ("copper", "mesh", "current", "ground"),
+        "Show on the Mat",
+        "Plain copper, or what was solved on it.",
+        shown=False,
+    ),
     Setting("curve", "match", (), "Curve", "The one curve of a small window.", shown=False),
     Setting("open_card", "brief", (), "Open card", "The card left open.", shown=False),
     Setting("export_folder", "", (), "Export folder", "Where exports went last.", shown=False),

@@ -13,7 +13,7 @@ from core.response.change import change_details, change_text
 from core.units import Quantity, format_quantity
 
 if TYPE_CHECKING:
-    from app.field_check import Checked, FieldCheck, Solve
+    from app.field_check import Checked, FieldCheck, Solver
     from app.jobs.runner import Runner
     from app.pipeline import Pipeline
     from core.errors import CoreError
@@ -34,9 +34,11 @@ class TailCheck(QObject):
 
     changed = Signal()
 
-    def __init__(self, pipeline: Pipeline, field: FieldCheck, runner: Runner, solve: Solve) -> None:
+    def __init__(
+        self, pipeline: Pipeline, field: FieldCheck, runner: Runner, solver: Solver
+    ) -> None:
         super().__init__(field)
-        self._field, self._runner, self._solve = field, runner, solve
+        self._field, self._runner, self._solver = field, runner, solver
         self.is_busy = False
         self._words = self._details = ""
         self._asked: Checked | None = None
@@ -47,7 +49,7 @@ class TailCheck(QObject):
     def can_start(self) -> bool:
         """Whether the design is solved with a plate that a cable can hang from."""
         checked = self._field.current
-        if checked is None or self.is_busy or self.words:
+        if checked is None or not checked.mark or self._field.busy or self.is_busy or self.words:
             return False
         response = checked.evaluation.response
         return response is not None and response.front_to_back is not None
@@ -79,7 +81,7 @@ class TailCheck(QObject):
         self._runner.start(
             Request(
                 KIND,
-                lambda progress: self._solve(layout, frequencies, progress, level, tail),
+                lambda progress: self._solver.solve(layout, frequencies, progress, level, tail),
                 lambda response: self._tell(*_words(checked, response, tail)),
                 self._on_failed,
             )
@@ -88,8 +90,10 @@ class TailCheck(QObject):
 
     def stop(self) -> None:
         """Leave it."""
-        self._runner.stop(KIND)
-        self._tell("")
+        if self.is_busy:  # else the solver may be at what the field check has asked
+            self._runner.stop(KIND)
+            self._solver.drop()
+            self._tell("")
 
     def close(self) -> None:
         """End for good, and tell nobody."""
@@ -103,7 +107,8 @@ class TailCheck(QObject):
         self._tell(f"No answer with a cable: {error}")
 
     def _on_changed(self) -> None:
-        if self.is_busy and self._field.current is not self._asked:
+        # The solver answers one question at a time, and the field check goes first.
+        if self.is_busy and (self._field.busy or self._field.current is not self._asked):
             self.stop()
 
 

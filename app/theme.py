@@ -63,6 +63,11 @@ class Theme:
     solder: str
     shade: str  # what things on the mat cast on it
     ghost: str
+    current_least: str  # solved current, in one hue
+    current_middle: str
+    current_most: str
+    tick: str
+    tick_edge: str
     plot: str
     plot_grid: str
     curve: str
@@ -103,6 +108,11 @@ LIGHT = Theme(
     solder="#d9dcdc",
     shade="#1c2f2a",
     ghost="#fff3c4",
+    current_least="#fbf0e3",
+    current_middle="#d48a55",
+    current_most="#5c2106",
+    tick="#241a14",
+    tick_edge="#fffaf2",
     plot="#fdfdfb",
     plot_grid="#dfe3dd",
     curve="#0b6480",
@@ -143,6 +153,11 @@ DARK = Theme(
     solder="#b9bfbf",
     shade="#070d0b",
     ghost="#ffe9a6",
+    current_least="#251811",
+    current_middle="#a8612f",
+    current_most="#ffe3c4",
+    tick="#fff8ee",
+    tick_edge="#150d08",
     plot="#1a1f1d",
     plot_grid="#303836",
     curve="#63c3e0",
@@ -175,6 +190,12 @@ def spacer_colour(material: str, theme: Theme) -> QColor:
         bright = _between(bright, QColor(theme.mat), 0.62)
     bright.setAlpha(alpha)
     return bright
+
+
+def current_stops(theme: Theme) -> list[tuple[float, QColor]]:
+    """Colours of solved current, from least to most."""
+    shades = (theme.current_least, theme.current_middle, theme.current_most)
+    return [(i / 2.0, QColor(name)) for i, name in enumerate(shades)]
 
 
 def _between(one: QColor, other: QColor, part: float) -> QColor:
@@ -309,6 +330,8 @@ QToolButton {{ border: 1px solid transparent; border-radius: 4px; padding: 2px; 
 QToolButton:hover {{ background: {panel}; border-color: {line}; }}
 QToolButton:focus {{ border-color: {focus}; }}
 QToolButton:checked {{ background: {panel}; }}
+#shown QToolButton {{ background: {field}; border-color: {line}; }}
+#shown QToolButton:focus {{ border-color: {focus}; }}
 QPushButton {{
     background: {field}; border: 1px solid {line}; border-radius: 5px; padding: 3px 10px;
 }}
@@ -320,7 +343,7 @@ QPushButton#primary {{
     padding: 4px 14px;
 }}
 QPushButton#primary:focus {{ border: 2px solid {text}; padding: 3px 13px; }}
-QScrollArea, #clear {{ background: transparent; border: none; }}
+QScrollArea, #clear, #shown {{ background: transparent; border: none; }}
 QSlider::groove:vertical {{ background: {line}; width: 4px; border-radius: 2px; }}
 QSlider::add-page:vertical {{ background: {focus}; width: 4px; border-radius: 2px; }}
 QSlider::handle:vertical {{

@@ -32,6 +32,8 @@ _KEYS = """<p><b>On the Mat</b></p>
 about their middle: the side across moves as far the other way.</p>
 <p>Wheel: zoom at the pointer. Middle button, Space or the bare mat: pan. Ctrl+0: the whole
 plate. Ctrl+2: the copper. Ctrl+1: true size.</p>
+<p>F5 shows the copper, F6 the mesh, F7 the solved current, F8 that of the ground plate; F9 lets
+it move or holds it.</p>
 <p><b>In a field</b></p>
 <p>Type a length as you write it: 41.5, 41.5 mm, 4.15 cm, 1 5/8 in, 62 mil. Enter takes it, Esc
 takes it back, the up and down keys step it.</p>"""
@@ -89,19 +91,23 @@ def connect_views(window: Window) -> None:
         view.pull_ended.connect(hand.end_pull)
         view.pull_cancelled.connect(hand.cancel_pull)
         view.nudged.connect(hand.nudge)
-        view.pull_started.connect(window.field.hold)
-        view.pull_ended.connect(window.field.let_go)
-        view.pull_cancelled.connect(window.field.let_go)
+        view.pull_started.connect(lambda _name: window.field.hold(True))
+        view.pull_ended.connect(lambda: window.field.hold(False))
+        view.pull_cancelled.connect(lambda: window.field.hold(False))
     mat.plan.pointed.connect(window.show_place)
     mat.spacing_taken.connect(hand.take_slider)
+    mat.spacing_taken.connect(lambda: window.field.hold(True))
+    mat.spacing_left.connect(lambda: window.field.hold(False))
     mat.spacing_set.connect(hand.set_spacing)
     readings = window.readings
     readings.field_asked.connect(cards.focus_field)
     readings.size_asked.connect(window.sizing.start)
+    readings.settle_asked.connect(window.sizing.settle)
     readings.accepted.connect(window.sizing.accept)
     readings.discarded.connect(window.sizing.discard)
     readings.stopped.connect(window.sizing.discard)
     readings.check_asked.connect(lambda what: _on_check_asked(window, what))
+    window.field.changed.connect(lambda: _on_checked(window))
     window.curves.chosen.connect(lambda name: window.settings.set("curve", name))
     window.curves.match_as_chosen.connect(lambda name: window.settings.set("match_as", name))
     window.notices.closed.connect(
@@ -111,6 +117,7 @@ def connect_views(window: Window) -> None:
     window.settings.changed.connect(lambda key, _: _on_setting(window, key))
     # Bound to the window itself, so that they end with it: the stack outlives it by a moment.
     document = window.document
+    document.started.connect(window.field.forget)
     for signal in (document.stack.cleanChanged, document.design_changed, document.path_changed):
         signal.connect(window.show_name)
 
@@ -126,6 +133,7 @@ def connect_actions(window: Window) -> None:
         "template": window.show_export,
         "quit": window.close,
         "size": window.sizing.start,
+        "settle": window.sizing.settle,
         "preferences": window.show_preferences,
         "zoom-in": lambda: plan.zoom(1.25),
         "zoom-out": lambda: plan.zoom(0.8),
@@ -176,6 +184,12 @@ def _on_notice(window: Window, name: str, button: str) -> None:
         ("recovered", "Delete"): window.recovery.forget,
     }
     deeds[(name, button)]()
+
+
+def _on_checked(window: Window) -> None:
+    """What an edit has stopped is told until the field check has answered to the edit."""
+    if window.field.current is not None:
+        window.sizing.forget_stopped()
 
 
 def _keep_tick(window: Window, action: str, key: str) -> None:

@@ -52,7 +52,7 @@ def respond_on_mesh(
     progress : Progress
         Told after each solved frequency; may cancel.
     level : str
-        One of `LEVELS`.
+        One of `LEVELS`, or quick: three frequencies on a mesh coarser than coarse.
     tail : Tail, optional
         A cable behind the ground plate to solve with it.
 

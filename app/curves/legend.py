@@ -33,7 +33,7 @@ def engine_words(state: ChartState) -> str:
     """Name of the engine, and what is to be known about its curve."""
     words = _NAMES.get(state.engine, state.engine)
     if state.engine == "field" and state.is_stale:
-        return f"{words}, before this edit"
+        return "solved before"
     return f"{words}, estimate" if state.is_estimate else words
 
 

@@ -16,7 +16,7 @@ from app.curves.state import ChartState, PatternState
 if TYPE_CHECKING:
     from app.theme import Theme
 
-_TOP, _BOTTOM, _STEP = 10.0, -20.0, 10.0  # dBi
+_TOP, _BOTTOM, _STEP = 15.0, -20.0, 10.0  # dBi
 
 
 class PatternPlot(Chart):
@@ -35,14 +35,14 @@ class PatternPlot(Chart):
         self.paint_title(painter, shades, "Pattern, dBi")
         painter.setRenderHint(QPainter.RenderHint.Antialiasing)
         painter.setPen(QPen(theme.colour(shades.plot_grid), 1.0))
-        for level in np.arange(_BOTTOM + _STEP, _TOP + 1, _STEP):
+        for level in np.arange(_BOTTOM + _STEP, _TOP, _STEP):
             size = radius * (level - _BOTTOM) / (_TOP - _BOTTOM)
             painter.drawEllipse(centre, size, size)
         for turn in range(0, 360, 30):
             way = QPointF(np.sin(np.radians(turn)), -np.cos(np.radians(turn)))
             painter.drawLine(centre, centre + way * radius)
         painter.setPen(theme.colour(shades.muted))
-        for level in np.arange(_BOTTOM + _STEP, _TOP + 1, _STEP):
+        for level in np.arange(_BOTTOM + _STEP, _TOP, _STEP):
             size = radius * (level - _BOTTOM) / (_TOP - _BOTTOM)
             words = f"{level:g}".replace("-", "−")
             painter.drawText(QPointF(centre.x() + 3, centre.y() - size + 11), words)

@@ -87,7 +87,7 @@ class JobRunner(QObject):
     def __init__(self) -> None:
         super().__init__()
         self._pool = QThreadPool()
-        self._pool.setMaxThreadCount(2)  # a field check keeps nothing else waiting
+        self._pool.setMaxThreadCount(3)  # field check and settling keep nothing else waiting
         self._serial = 0
         self._running: dict[int, tuple[Request, _Listener]] = {}
 

@@ -57,7 +57,7 @@ def paint_copper(
     painter.setBrush(Qt.BrushStyle.NoBrush)
     for path in paths:
         painter.drawPath(path)
-    _paint_solder(painter, layout, camera, shades)
+    paint_solder(painter, layout, camera, shades)
     painter.setOpacity(1.0)
 
 
@@ -95,7 +95,7 @@ def _bevel(path: QPainterPath, shades: Theme) -> QLinearGradient:
     return bevel
 
 
-def _paint_solder(painter: QPainter, layout: Layout, camera: Camera, shades: Theme) -> None:
+def paint_solder(painter: QPainter, layout: Layout, camera: Camera, shades: Theme) -> None:
     """Solder dot where the coax joins, its pin in the middle."""
     pads = [mark for mark in layout.marks if mark.kind is MarkKind.PAD]
     port = layout.ports[0]

@@ -11,9 +11,11 @@ from app.mat.edge import SLIDER_STEP, EdgeState
 from app.mat.edge_view import EdgeView
 from app.mat.plan import PlanState
 from app.mat.plan_view import PlanView
+from app.mat.show_bar import ShowBar
 
 if TYPE_CHECKING:
     from app.mat.camera import Camera
+    from app.mat.current import CurrentState
 
 
 class Mat(QFrame):
@@ -21,6 +23,7 @@ class Mat(QFrame):
 
     spacing_set = Signal(float)
     spacing_taken = Signal()
+    spacing_left = Signal()
 
     def __init__(self) -> None:
         super().__init__()
@@ -51,7 +54,12 @@ class Mat(QFrame):
         layout.setSpacing(3)
         layout.addWidget(self.plan, 3)
         layout.addLayout(low, 1)
+        self.shown = ShowBar(self.plan, self)
         self._connect()
+
+    def show_current(self, state: CurrentState) -> None:
+        self.plan.current.show_state(state)
+        self.shown.show_state(state)
 
     def show_plan(self, state: PlanState) -> None:
         self.plan.show_state(state)
@@ -71,6 +79,7 @@ class Mat(QFrame):
         self.edge.looked.connect(self._on_edge_looked)
         self.edge.zoomed.connect(self._on_edge_zoomed)
         self.slider.sliderPressed.connect(self.spacing_taken)
+        self.slider.sliderReleased.connect(self.spacing_left)
         self.slider.valueChanged.connect(self._on_slider)
 
     def _on_edge_looked(self, camera: Camera) -> None:

@@ -8,6 +8,10 @@ from typing import TYPE_CHECKING
 from app.mat.handles import Handle, Words, no_words
 
 if TYPE_CHECKING:
+    from PySide6.QtCore import QRect
+
+    from app.mat.camera import Camera
+    from app.mat.current import CurrentState
     from core.layout.model import Layout
     from core.shapes.outline import Region
 
@@ -36,3 +40,28 @@ class PlanState:
     is_stale: bool = False
     note: str = ""
     ghost: tuple[Region, ...] = ()
+
+
+@dataclass(frozen=True)
+class Sight:
+    """What is looked at, and from where.
+
+    Attributes
+    ----------
+    state : PlanState
+    camera : Camera
+    area : QRect
+        The view without its rulers.
+    shows_dimensions : bool
+    current : CurrentState
+        What was solved.
+    phase : float
+        Instant that it is seen at, rad.
+    """
+
+    state: PlanState
+    camera: Camera
+    area: QRect
+    shows_dimensions: bool
+    current: CurrentState
+    phase: float

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QPointF, QRect, Qt
@@ -13,6 +12,7 @@ from app.mat.bounds import copper_bounds
 from app.mat.copper_paint import paint_copper, paint_ghost
 from app.mat.ground_paint import paint_mat, paint_plate, paint_ruler, plate_key, ruler_size
 from app.mat.marks_paint import paint_dimension, paint_handles
+from app.mat.solved_paint import SolvedPainting
 from app.mat.stamps import paint_tag
 from app.views.kept import KeptPicture
 from core.findings import Severity
@@ -23,21 +23,11 @@ if TYPE_CHECKING:
 
     from app.mat.camera import Camera
     from app.mat.hand import Hand
-    from app.mat.plan import PlanState
+    from app.mat.plan import PlanState, Sight
     from app.theme import Theme
 
 _TROUBLE = 20.0  # pixels of the ring round it
 _ALWAYS = ("element.width", "element.length", "stock.ground")
-
-
-@dataclass(frozen=True)
-class Sight:
-    """What is looked at, and from where; `area` is the view without its rulers."""
-
-    state: PlanState
-    camera: Camera
-    area: QRect
-    shows_dimensions: bool
 
 
 class PlanPainting:
@@ -47,15 +37,25 @@ class PlanPainting:
         self._widget = widget
         self._bench, self._plate = KeptPicture(), KeptPicture()
         self._plate_seen: object = None
+        self._solved = SolvedPainting(widget)
 
     def paint(self, painter: QPainter, sight: Sight, hand: Hand) -> None:
         """Paint mat, plate, copper, proposal, dimensions, handles and words, in this order."""
         shades = theme.theme_of(self._widget)
         state, area, metrics = sight.state, sight.area, painter.fontMetrics()
-        self._paint_below(painter, sight, shades)
+        is_solved = state.layout is not None and sight.current.currents is not None
+        if is_solved:
+            self._solved.paint_still(
+                painter, sight, shades, lambda onto: self._paint_below(onto, sight, shades)
+            )
+        else:
+            self._paint_below(painter, sight, shades)
         painter.setClipRect(area, Qt.ClipOperation.IntersectClip)
-        if state.layout is not None:
+        if is_solved:
+            self._solved.paint_moving(painter, sight, shades)
+        elif state.layout is not None:
             paint_copper(painter, state.layout, sight.camera, shades, stale=state.is_stale)
+        if state.layout is not None:
             paint_ghost(painter, state.ghost, sight.camera, shades)
             _paint_dimensions(painter, sight, hand, shades)
             _paint_trouble(painter, sight, shades)
@@ -63,6 +63,7 @@ class PlanPainting:
         width = metrics.horizontalAdvance(state.note) + 8
         place = QPointF(area.left() + 8 + width / 2, area.bottom() - metrics.height())
         paint_tag(painter, place, state.note, shades)
+        self._solved.paint_sense(painter, sight, shades)
 
     def changed(self, before: PlanState, sight: Sight) -> QRect:
         """Pixels that differ from an older state: all where more than copper has changed."""

@@ -10,11 +10,12 @@ from PySide6.QtWidgets import QWidget
 
 from app.mat.bounds import Bounds, bounds
 from app.mat.camera import Camera, fitted
+from app.mat.current_layer import CurrentLayer
 from app.mat.gestures import Gestures
 from app.mat.ground_paint import ruler_size
 from app.mat.hand import Hand
-from app.mat.plan import PlanState
-from app.mat.plan_paint import PlanPainting, Sight
+from app.mat.plan import PlanState, Sight
+from app.mat.plan_paint import PlanPainting
 
 if TYPE_CHECKING:
     from PySide6.QtGui import QPaintEvent, QResizeEvent
@@ -47,6 +48,7 @@ class PlanView(QWidget):
         self.camera = Camera(2000.0, 0.0, 0.0)
         self.shows_dimensions = True
         self._follows_fit = True
+        self.current = CurrentLayer(self)
         self._painting = PlanPainting(self)
 
     @property
@@ -56,7 +58,15 @@ class PlanView(QWidget):
 
     @property
     def sight(self) -> Sight:
-        return Sight(self.state, self.camera, self.area, self.shows_dimensions)
+        current = self.current
+        return Sight(
+            self.state,
+            self.camera,
+            self.area,
+            self.shows_dimensions,
+            current.state,
+            current.phase,
+        )
 
     def show_state(self, state: PlanState) -> None:
         before, self.state = self.state, state

@@ -43,7 +43,7 @@ def paint_tag(
 def handle_stamp(is_round: bool, is_active: bool, shades: Theme, ratio: float) -> QPixmap:
     """Handle, 8 pixels across; the one in use is larger."""
     half = _DRAWN / 2 + (1.5 if is_active else 0.0)
-    picture, painter = _blank(2 * half + 4, 2 * half + 4, ratio)
+    picture, painter = blank(2 * half + 4, 2 * half + 4, ratio)
     painter.setPen(QPen(theme.colour(shades.handle_edge), 1.3))
     painter.setBrush(theme.colour(shades.ghost if is_active else shades.handle))
     box = QRectF(2.0, 2.0, 2 * half, 2 * half)
@@ -59,7 +59,7 @@ def handle_stamp(is_round: bool, is_active: bool, shades: Theme, ratio: float) -
 def _tag(words: str, font: QFont, shades: Theme, ratio: float, quarters: int) -> QPixmap:
     metrics = QFontMetrics(font)
     wide, high = metrics.horizontalAdvance(words) + 8, metrics.height() + 1
-    picture, painter = _blank(wide, high, ratio)
+    picture, painter = blank(wide, high, ratio)
     painter.setFont(font)
     painter.setPen(Qt.PenStyle.NoPen)
     painter.setBrush(theme.colour(shades.mat_halo, 225))
@@ -70,7 +70,7 @@ def _tag(words: str, font: QFont, shades: Theme, ratio: float, quarters: int) ->
     return picture.transformed(QTransform().rotate(90.0 * quarters)) if quarters else picture
 
 
-def _blank(wide: float, high: float, ratio: float) -> tuple[QPixmap, QPainter]:
+def blank(wide: float, high: float, ratio: float) -> tuple[QPixmap, QPainter]:
     """Clear picture of so many pixels on the screen, and a painter on it."""
     picture = QPixmap(round(wide * ratio), round(high * ratio))
     picture.setDevicePixelRatio(ratio)

@@ -53,9 +53,13 @@ def check_state(field: FieldCheck, tail: TailCheck) -> CheckState:
     if field.is_stopped:
         return CheckState("Field check stopped until the next edit.", before, CHECK_NOW)
     if current is not None:
-        button = TRY_CABLE if tail.can_start else ""
-        words = f"Sheets will say {current.mark}."
-        return CheckState(words, button=button, cable=tail.words, cable_tip=tail.details)
+        quick = "Solved on a quick mesh; the chosen one follows when the hand rests."
+        return CheckState(
+            f"Sheets will say: field-checked, {current.level} mesh." if current.mark else quick,
+            button=TRY_CABLE if tail.can_start else "",
+            cable=tail.words,
+            cable_tip=tail.details,
+        )
     return CheckState("The field check follows when the hand rests.", before)
 
 

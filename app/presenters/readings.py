@@ -7,6 +7,7 @@ from functools import lru_cache
 from typing import TYPE_CHECKING
 
 from app.presenters.check_words import CheckState
+from app.presenters.offer import OfferState
 from core.design.polarisation import Polarisation
 from core.findings import Severity
 from core.materials.cautions import cautions_for
@@ -67,10 +68,8 @@ class ReadingsState:
         The lines belong to the last layout that could be drawn.
     can_size : bool
         Whether sizing is offered.
-    proposal : str
-        What a sizing proposes, in words; empty without one.
-    busy : str
-        What is being worked on; empty where nothing is.
+    offer : OfferState
+        What sizing is at, or proposes.
     check : CheckState
         What the field check is at.
     """
@@ -82,8 +81,7 @@ class ReadingsState:
     pieces: tuple[Line, ...] = ()
     is_stale: bool = False
     can_size: bool = False
-    proposal: str = ""
-    busy: str = ""
+    offer: OfferState = field(default_factory=OfferState)
     check: CheckState = field(default_factory=CheckState)
 
 

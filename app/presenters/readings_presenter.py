@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING, Protocol
 
 from app.presenters.check_words import check_state
 from app.presenters.curves import CurvesState, curves_state
+from app.presenters.offer import OfferState
 from app.presenters.readings import ReadingsState, readings_state
 
 if TYPE_CHECKING:
@@ -48,7 +49,7 @@ class ReadingsPresenter:
         self._tail = tail
         self._readings, self._curves = readings, curves
         self._answered = pipeline.current
-        self._busy, self._proposal = "", ""
+        self._offer = OfferState()
         self._told: Checked | None = None
         pipeline.evaluated.connect(self._on_evaluated)
         field.changed.connect(self._on_checked)
@@ -62,9 +63,9 @@ class ReadingsPresenter:
         self._show_readings()
         self._curves.show_state(self._curves_state())
 
-    def show_sizing(self, busy: str, proposal: str) -> None:
+    def show_offer(self, offer: OfferState) -> None:
         """Tell what sizing is at, or what it proposes."""
-        self._busy, self._proposal = busy, proposal
+        self._offer = offer
         self._show_readings()
 
     def _show_readings(self) -> None:
@@ -75,8 +76,7 @@ class ReadingsPresenter:
             replace(
                 state,
                 engine=ESTIMATED if is_estimate else state.engine,
-                busy=self._busy,
-                proposal=self._proposal,
+                offer=self._offer,
                 check=check_state(self._field, self._tail),
             )
         )

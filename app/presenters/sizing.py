@@ -1,18 +1,24 @@
-"""Sizing to the brief: worked out beside the window, shown as a proposal, taken in one step."""
+"""Sizing and settling: worked out beside the window, shown as a proposal, taken in one step."""
 
 from __future__ import annotations
 
+from dataclasses import dataclass
+from time import monotonic
 from typing import TYPE_CHECKING, Protocol
 
 from app.jobs.runner import Request
+from app.presenters.offer import OfferState, settled_offer, settling_offer, sizing_offer
 from core.engines import ENGINES, LIVE
 from core.layout.build import build_layout, top_copper
 from core.progress import SILENT
 from core.response.model import Reading, TrustLevel
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from app.document import Document
     from app.jobs.runner import Runner
+    from app.jobs.settling import Best, Settled
     from core.design.model import Design
     from core.errors import CoreError
     from core.progress import Progress
@@ -20,8 +26,8 @@ if TYPE_CHECKING:
     from core.sizing.size import Sizing
 
 KIND = "size"
-_UNTOLD = "The best that the equations find."  # their numbers would be taken for the antenna's
-_DOUBT = "An estimate, not to cut by: equations cannot vouch for it here."
+SIZE, SETTLE = "Size to this brief", "Settle by field check"
+_STOPPED = OfferState("Settling stopped: the design was edited. Nothing of it was kept.", "note")
 
 
 class Stage(Protocol):
@@ -33,7 +39,7 @@ class Stage(Protocol):
 class Offer(Protocol):
     """Where it is told and taken."""
 
-    def show_sizing(self, busy: str, proposal: str) -> None: ...
+    def show_offer(self, offer: OfferState) -> None: ...
 
 
 class Bar(Protocol):
@@ -42,23 +48,43 @@ class Bar(Protocol):
     def tell(self, notice: str, **words: str) -> None: ...
 
 
+class Settler(Protocol):
+    """Settles designs by the field solver."""
+
+    def settle(
+        self, design: Design, progress: Progress, tell: Callable[[Best], None]
+    ) -> Settled: ...
+    def close(self) -> None: ...
+
+
 class SizingPresenter:
-    """Runs the sizing and keeps its proposal until it is taken, left or overtaken."""
+    """Runs sizing and settling; keeps a proposal until it is taken, left or overtaken.
+
+    Attributes
+    ----------
+    proposed : Design or None
+    """
 
     def __init__(
-        self, document: Document, runner: Runner, stage: Stage, offer: Offer, bar: Bar
+        self,
+        document: Document,
+        runner: Runner,
+        settler: Settler,
+        stage: Stage,
+        offer: Offer,
+        bar: Bar,
+        clock: Callable[[], float] = monotonic,
     ) -> None:
-        self._document, self._runner = document, runner
-        self._stage, self._offer, self._bar = stage, offer, bar
-        self.proposed: Sizing | None = None
-        self._is_busy = False
+        self._document, self._runner, self._settler = document, runner, settler
+        self._showing, self._bar, self._clock = _Showing(stage, offer), bar, clock
+        self.proposed: Design | None = None
+        self._deed = SIZE
         document.design_changed.connect(self._on_design_changed)
 
     def start(self) -> None:
-        self._drop()
+        """Size the design on the bench by equations."""
         design = self._document.design
-        self._is_busy = True
-        self._offer.show_sizing("Sizing…", "")
+        self._begin(SIZE, OfferState("Sizing…", is_busy=True))
         self._runner.start(
             Request(
                 KIND,
@@ -69,43 +95,106 @@ class SizingPresenter:
             )
         )
 
+    def settle(self) -> None:
+        """Settle by field check what is proposed, or else the design on the bench."""
+        design = self.proposed or self._document.design
+        watch = _Watch(self._clock())
+        self._begin(SETTLE, settling_offer(0, None, design.brief, 0.0))
+        self._runner.start(
+            Request(
+                KIND,
+                lambda progress: self._settler.settle(design, progress, watch.tell),
+                lambda settled: self._on_settled(settled, watch),
+                self._on_failed,
+                lambda done, _total: self._on_solved(done, watch),
+            )
+        )
+
     def accept(self) -> None:
-        sizing = self.proposed
-        self._drop()
-        if sizing is not None:
-            self._document.change(sizing.design, "Size to this brief")
+        """Put what is proposed on the bench."""
+        design, deed = self.proposed, self._deed
+        self.discard()
+        if design is not None:
+            self._document.change(design, deed)
 
     def discard(self) -> None:
+        """Stop what is being worked out, and leave what is proposed."""
         self._runner.stop(KIND)
-        self._drop()
+        self.proposed = None
+        self._showing.show(OfferState(), ())
+
+    def forget_stopped(self) -> None:
+        """No longer tell that an edit has stopped settling."""
+        if self._showing.state == _STOPPED:
+            self._showing.show(OfferState(), ())
+
+    def _begin(self, deed: str, shown: OfferState) -> None:
+        self.discard()
+        self._deed = deed
+        self._showing.show(shown, ())
 
     def _on_stepped(self, done: int, total: int) -> None:
-        if self._is_busy and total > 1:
-            self._offer.show_sizing(f"Sizing: {done} of {total} starting points", "")
+        if total > 1:
+            words = f"Sizing: {done} of {total} starting points"
+            self._showing.show(OfferState(words, is_busy=True), ())
 
     def _on_sized(self, answer: tuple[Sizing, bool, tuple[Region, ...]]) -> None:
         sizing, is_known, copper = answer
-        self._is_busy = False
-        self.proposed = sizing
-        told = sizing.reason if is_known or not sizing.met else _UNTOLD
-        doubt = "" if is_known else f" {_DOUBT}"
-        self._offer.show_sizing("", f"Dashed on the Mat. {told}{doubt}")
-        self._stage.show_ghost(copper)
+        self.proposed = sizing.design
+        offer = sizing_offer(self._document.design, sizing, is_known)
+        self._showing.show(offer, copper)
+
+    def _on_solved(self, done: int, watch: _Watch) -> None:
+        """Tell what settling is at, and draw the best so far."""
+        best, brief = watch.best, self._document.design.brief
+        offer = settling_offer(done, best, brief, self._clock() - watch.start)
+        self._showing.show(offer, best.copper if best is not None else ())
+
+    def _on_settled(self, settled: Settled, watch: _Watch) -> None:
+        offer = settled_offer(self._document.design, settled, self._clock() - watch.start)
+        self.proposed = settled.design if offer.is_proposal else None
+        self._showing.show(offer, settled.copper if offer.is_proposal else ())
 
     def _on_failed(self, error: CoreError) -> None:
-        self._drop()
-        self._bar.tell("size-failed", reason=str(error))
+        self.discard()
+        notice = "size-failed" if self._deed == SIZE else "settle-failed"
+        self._bar.tell(notice, reason=str(error))
 
     def _on_design_changed(self, _design: Design) -> None:
         """An edit overtakes a proposal for the design before it."""
-        if self.proposed is not None or self._is_busy:
+        was = self._showing.state
+        if was != _STOPPED:
             self.discard()
+        if was.is_busy and self._deed == SETTLE:
+            self._showing.show(_STOPPED, ())
 
-    def _drop(self) -> None:
-        had_ghost, self.proposed, self._is_busy = self.proposed is not None, None, False
-        self._offer.show_sizing("", "")
-        if had_ghost:
-            self._stage.show_ghost(())
+
+class _Showing:
+    """What is told and drawn; each is shown again only where it changes."""
+
+    def __init__(self, stage: Stage, offer: Offer) -> None:
+        self._stage, self._offer = stage, offer
+        self.state = OfferState()
+        self._ghost: tuple[Region, ...] = ()
+
+    def show(self, state: OfferState, ghost: tuple[Region, ...]) -> None:
+        if state != self.state:
+            self.state = state
+            self._offer.show_offer(state)
+        if ghost != self._ghost:
+            self._ghost = ghost
+            self._stage.show_ghost(ghost)
+
+
+@dataclass
+class _Watch:
+    """Best so far, told in the thread that hears of it and read in the window's."""
+
+    start: float
+    best: Best | None = None
+
+    def tell(self, best: Best) -> None:
+        self.best = best
 
 
 def _sized(design: Design, progress: Progress) -> tuple[Sizing, bool, tuple[Region, ...]]:

@@ -170,11 +170,10 @@ def _side(name: str, mode: SideMode) -> Group:
     losses = mode.losses
     trapped = 1.0 / losses.surface_efficiency - 1.0
     resistance = edge_resistance(mode.width, mode.length, mode.frequency)
-    extension = (mode.effective_length - mode.length) / 2
     facts = (
         _fact("frequency_hz", "resonance", mode.frequency, Quantity.FREQUENCY),
         _ratio("eps_eff", "effective permittivity", mode.eps_eff),
-        _length("end_extension_m", "end extension", extension),
+        _length("end_extension_m", "end extension", mode.extension),
         _quality("q", "Q", losses.total),
         _quality("q_space", "Q of the space wave", losses.space),
         _quality(

@@ -8,23 +8,23 @@ from typing import TYPE_CHECKING, Any
 
 from app.verbs.arguments import VerbParser, unknown_word
 from app.verbs.output import table
-from core.engines import ENGINES, LEVELS
+from core.engines import ENGINES, LEVELS, LIVE
 from core.materials.table import folded
 
 if TYPE_CHECKING:
-    from collections.abc import Collection
+    from collections.abc import Collection, Mapping
 
-    from core.response.model import Response, Trust
+    from core.response.model import Reading, Trust
 
 
-def add_engine(parser: VerbParser, names: Collection[str] = tuple(ENGINES)) -> None:
-    """Give a verb the choice of the engine that answers, out of those that it can use."""
+def add_engine(parser: VerbParser, default: str | None = LIVE, left_out: str = "") -> None:
+    """Give a verb the choice of the engine that answers."""
     parser.add_argument(
         "--engine",
         metavar="NAME",
-        type=partial(_known, names=names, what="engine"),
-        default=next(iter(names)),
-        help=f"what works it out: {' or '.join(names)}",
+        type=partial(_known, names=ENGINES, what="engine"),
+        default=default,
+        help=f"what works it out: {' or '.join(ENGINES)}{left_out}",
     )
 
 
@@ -38,7 +38,7 @@ def add_mesh(parser: VerbParser) -> None:
     )
 
 
-def trust_record(response: Response) -> dict[str, dict[str, Any]]:
+def trust_record(told: Mapping[Reading, Trust]) -> dict[str, dict[str, Any]]:
     """How far each reading can be trusted, for programs."""
     return {
         reading.value: {
@@ -46,14 +46,14 @@ def trust_record(response: Response) -> dict[str, dict[str, Any]]:
             "reason": trust.reason,
             "remedy": trust.remedy or None,
         }
-        for reading, trust in response.trust.items()
+        for reading, trust in told.items()
     }
 
 
-def trust_text(response: Response) -> str:
+def trust_text(told: Mapping[Reading, Trust]) -> str:
     """How far each reading can be trusted, those alike in one line."""
     alike: dict[Trust, list[str]] = {}
-    for reading, trust in response.trust.items():
+    for reading, trust in told.items():
         alike.setdefault(trust, []).append(reading.replace("_", " "))
     rows = [
         (trust.level.value, f"{', '.join(names)}: {trust.reason}{_cure(trust)}")

@@ -13,17 +13,21 @@ if TYPE_CHECKING:
 
 
 class _OnStandardError:
-    """Tells each solved frequency; over itself on a terminal, a line each elsewhere."""
+    """Tells each solution; over itself on a terminal, a line each elsewhere."""
 
-    def __init__(self) -> None:
+    def __init__(self, words: str) -> None:
+        self._words = words
         self._end = "\r" if sys.stderr.isatty() else "\n"
 
     def step(self, done: int, total: int) -> None:
         """Tell how far the work is."""
-        sys.stderr.write(f"field check: {done} of about {total} frequencies solved{self._end}")
+        sys.stderr.write(self._words.format(done=done, total=total) + self._end)
         sys.stderr.flush()
 
 
-def told_on_stderr(engine: str) -> Progress:
-    """Listener for an engine: silent for the one that answers at once."""
-    return SILENT if engine == LIVE else _OnStandardError()
+def told_on_stderr(engine: str, words: str) -> Progress:
+    """Listener for an engine: silent for the one that answers at once.
+
+    The words say what is done, with places for {done} and {total}.
+    """
+    return SILENT if engine == LIVE else _OnStandardError(words)

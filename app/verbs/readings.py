@@ -27,6 +27,7 @@ if TYPE_CHECKING:
     from core.response.judge import Verdict
     from core.response.model import Response
 
+_SOLVED: Final = "field check: {done} of about {total} frequencies solved"
 _MARKS: Final = {
     State.MET: "met",
     State.LIKELY: "likely",
@@ -66,7 +67,7 @@ def run(words: Namespace, out: TextIO) -> None:
     brief = design.brief
     frequencies = frequency_grid(brief.frequency, words.start, words.end, words.points)
     layout = build_layout(design)
-    progress = told_on_stderr(words.engine)
+    progress = told_on_stderr(words.engine, _SOLVED)
     wanted = asked(words, layout)
     answer: Solved | None = None
     if words.engine == FIELD:
@@ -103,7 +104,7 @@ def _text(
         f"{design.name}, by the {response.engine} model, {low} to {high}\nBrief: {_asked(brief)}\n",
         table((_MARKS[one.state], _sentence(one)) for one in verdicts),
         more,
-        trust_text(response),
+        trust_text(response.trust),
         findings_text(findings),
     ]
     return "\n".join(part for part in parts if part)

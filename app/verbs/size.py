@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any, Final, TextIO
 
 import numpy as np
@@ -19,6 +20,7 @@ from app.verbs.arguments import (
 from app.verbs.engine import add_engine, trust_record, trust_text
 from app.verbs.findings import findings_record, findings_text
 from app.verbs.output import json_text, table, value_text
+from app.verbs.progress import told_on_stderr
 from core.constants import SPEED_OF_LIGHT
 from core.design import spelled
 from core.design.defaults import FEED_NAMES, default_design
@@ -27,10 +29,11 @@ from core.design.model import Brief
 from core.design.polarisation import Polarisation
 from core.design.record import to_record
 from core.design.stock import DiscGround, Stock
-from core.engines import ENGINES, LIVE
+from core.engines import ENGINES, FIELD, LIVE
 from core.layout.build import build_layout
 from core.materials.table import dielectrics, find, foils, folded, processes
 from core.progress import SILENT
+from core.response.model import Reading, Trust, TrustLevel
 from core.sizing.seed import seed_design
 from core.sizing.size import size
 from core.storage.project import write_project
@@ -38,10 +41,11 @@ from core.units import Quantity
 
 if TYPE_CHECKING:
     from argparse import Namespace
-    from collections.abc import Callable
+    from collections.abc import Callable, Mapping
 
     from core.design.model import Design
     from core.design.stock import SpacerLayer
+    from core.sizing.settle import Settling
     from core.sizing.size import Sizing
 
 _NAME: Final = "Sized antenna"
@@ -50,6 +54,9 @@ _BOARD_PROCESSES: Final = ("toner-etch", "photo-etch", "board-house")
 _ROOM: Final = 2.2  # wavelengths of ground plate that the search has before it is fitted
 _WIDEST: Final = 4.0  # m
 _SHOWN: Final = ("stock.ground.", "element.", "feed.")
+_LEFT_OUT: Final = "; if left out: live where it can tell the match and axial ratio, else field"
+_SETTLING: Final = "settling: {done} designs solved; it gives up near {total}"
+_READINGS: Final = "kerfwave readings --engine field will tell"
 
 
 def add(parser: VerbParser) -> None:
@@ -67,7 +74,7 @@ def add(parser: VerbParser) -> None:
     _option(parser, "element", "SHAPE", taken_by(spelled.element), "found; rect:WxL is kept")
     _option(parser, "process", "NAME", str, "knife, or toner-etch on a board")
     _option(parser, "name", "TEXT", str, _NAME, _NAME)
-    add_engine(parser, (LIVE,))
+    add_engine(parser, None, _LEFT_OUT)
     add_output(parser, "write the project there")
     add_json(parser)
     parser.epilog = (
@@ -87,27 +94,91 @@ def run(words: Namespace, out: TextIO) -> None:
         _feed(words),
         words.element,
     )
-    fits = words.ground is None and _room(words) < _WIDEST
-    sizing = size(seed, keep_element=words.element is not None, fit_ground=fits)
+    sized = _sized(seed, words)
     if words.output:
-        write_project(words.output, sizing.design, replace=words.replace)
-    design = sizing.design
-    layout = build_layout(design)
-    response = ENGINES[words.engine](layout, np.array([design.brief.frequency]), SILENT)
+        write_project(words.output, sized.design, replace=words.replace)
+    findings = build_layout(sized.design).findings
     if words.json:
-        record = _record(sizing)
+        record = sized.record()
         record["file"] = str(words.output) if words.output else None
-        record["trust"] = trust_record(response)
-        record["findings"] = findings_record(layout.findings)
+        record["findings"] = findings_record(findings)
         out.write(json_text(record))
         return
     written = f"written to {words.output}" if words.output else "not written: -o FILE was left out"
-    findings = findings_text(layout.findings)
+    told = findings_text(findings)
     out.write(
-        f"{sizing.reason}\n\n{_sizes(design)}\n{trust_text(response)}"
-        + (f"\n{findings}" if findings else "")
+        f"{sized.reason}\n\n{_sizes(sized.design)}\n{trust_text(sized.trust)}"
+        + (f"\n{told}" if told else "")
         + f"\n{written}\n"
     )
+
+
+@dataclass(frozen=True)
+class _Sized:
+    """What sizing came to, by equations or, from there, by the field solver."""
+
+    sizing: Sizing
+    settling: Settling | None
+    trust: Mapping[Reading, Trust]
+
+    @property
+    def design(self) -> Design:
+        return (self.settling or self.sizing).design
+
+    @property
+    def reason(self) -> str:
+        if self.settling is None:
+            return self.sizing.reason
+        solves, fine = self.settling.solves, self.settling.fine_solves
+        counted = f"{solves} designs solved, {fine} of them on the {self.settling.level.value} mesh"
+        return f"{self.settling.reason}\n{counted}."
+
+    def record(self) -> dict[str, Any]:
+        """The same for programs."""
+        told, settling = self.settling or self.sizing, self.settling
+        return {
+            "engine": LIVE if settling is None else FIELD,
+            "met": told.met,
+            "reason": told.reason,
+            "vswr": told.vswr,
+            "axial_ratio_db": told.axial_ratio_db,
+            "evaluations": self.sizing.evaluations,
+            "solves": 0 if settling is None else settling.solves,
+            "fine_solves": 0 if settling is None else settling.fine_solves,
+            "level": None if settling is None else settling.level.value,
+            "design": to_record(told.design),
+            "trust": trust_record(self.trust),
+        }
+
+
+def _sized(seed: Design, words: Namespace) -> _Sized:
+    """Size by equations; go on by the field solver where asked to, or where they cannot tell."""
+    keeps = words.element is not None
+    fits = words.ground is None and _room(words) < _WIDEST
+    sizing = size(seed, keep_element=keeps, fit_ground=fits)
+    layout = build_layout(sizing.design)
+    trust = ENGINES[LIVE](layout, np.array([layout.frequency]), SILENT).trust
+    if words.engine == LIVE or (words.engine is None and _is_told(trust)):
+        return _Sized(sizing, None, trust)
+    # Its libraries take half a second to load.
+    from core.sizing.settle import settle  # noqa: PLC0415
+
+    settling = settle(sizing.design, keep_element=keeps, progress=told_on_stderr(FIELD, _SETTLING))
+    return _Sized(sizing, settling, _settled_trust(settling))
+
+
+def _is_told(trust: Mapping[Reading, Trust]) -> bool:
+    """Tell whether an engine can tell the match and the axial ratio."""
+    asked = (Reading.MATCH, Reading.AXIAL_RATIO)
+    return all(trust[reading].level is not TrustLevel.UNKNOWN for reading in asked)
+
+
+def _settled_trust(settling: Settling) -> dict[Reading, Trust]:
+    """Trust in what settling solves for; it works out nothing else."""
+    solved = Trust(TrustLevel.GOOD, f"full-wave solution on the {settling.level.value} mesh")
+    rest = Trust(TrustLevel.UNKNOWN, "sizing does not work it out", _READINGS)
+    asked = (Reading.MATCH, Reading.AXIAL_RATIO)
+    return {reading: solved if reading in asked else rest for reading in Reading}
 
 
 def _option(
@@ -166,17 +237,6 @@ def _stock(words: Namespace) -> Stock:
 def _room(words: Namespace) -> float:
     """Diameter of the ground plate to search on, m."""
     return float(min(_ROOM * SPEED_OF_LIGHT / words.frequency, _WIDEST))
-
-
-def _record(sizing: Sizing) -> dict[str, Any]:
-    return {
-        "met": sizing.met,
-        "reason": sizing.reason,
-        "vswr": sizing.vswr,
-        "axial_ratio_db": sizing.axial_ratio_db,
-        "evaluations": sizing.evaluations,
-        "design": to_record(sizing.design),
-    }
 
 
 def _sizes(design: Design) -> str:

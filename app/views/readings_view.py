@@ -10,15 +10,14 @@ from PySide6.QtWidgets import (
     QGraphicsOpacityEffect,
     QHBoxLayout,
     QLabel,
-    QPushButton,
     QToolButton,
     QVBoxLayout,
-    QWidget,
 )
 
 from app.views.check_line import CheckLine
 from app.views.drawer import Drawer
 from app.views.lines import LineList
+from app.views.offer import Changes, Offer
 
 if TYPE_CHECKING:
     from app.presenters.readings import ReadingsState
@@ -31,6 +30,7 @@ class ReadingsView(QFrame):
 
     field_asked = Signal(str)
     size_asked = Signal()
+    settle_asked = Signal()
     accepted = Signal()
     discarded = Signal()
     stopped = Signal()
@@ -61,8 +61,9 @@ class ReadingsView(QFrame):
         self._piece_fold.toggled.connect(self.pieces.setVisible)
         self.cautions.hide()
         self.pieces.hide()
-        self.offer = _Offer()
+        self.offer = Offer()
         self.offer.size_asked.connect(self.size_asked)
+        self.offer.settle_asked.connect(self.settle_asked)
         self.offer.accepted.connect(self.accepted)
         self.offer.discarded.connect(self.discarded)
         self.offer.stopped.connect(self.stopped)
@@ -76,7 +77,8 @@ class ReadingsView(QFrame):
         layout.addLayout(head)
         below = Drawer("Findings and cautions")
         folds = (self._caution_fold, self.cautions, self._piece_fold, self.pieces)
-        for widget in (self.findings, self._more, *folds):
+        self.changes = Changes()
+        for widget in (self.changes, self.findings, self._more, *folds):
             below.add(widget)
         for part in (self.lines, self.check, self.offer, below):
             layout.addWidget(part)
@@ -93,6 +95,8 @@ class ReadingsView(QFrame):
         self._fade(state.is_stale)
         self.check.show_state(state.check)
         self.offer.show_state(state)
+        if before is None or before.offer.changes != state.offer.changes:
+            self.changes.show_changes(state.offer.changes)
         if before is None or before.findings != state.findings:
             self._show_findings()
         if before is None or before.cautions != state.cautions:
@@ -121,60 +125,6 @@ class ReadingsView(QFrame):
             effect = QGraphicsOpacityEffect(self.lines)
             effect.setOpacity(0.4)
         self.lines.setGraphicsEffect(effect)  # type: ignore[arg-type]
-
-
-class _Offer(QWidget):
-    """One button that sizes to the brief; then what it proposes, to take or leave."""
-
-    size_asked = Signal()
-    accepted = Signal()
-    discarded = Signal()
-    stopped = Signal()
-
-    def __init__(self) -> None:
-        super().__init__()
-        self.setAccessibleName("Sizing")
-        self.size_button = QPushButton("Size to this brief")
-        self.size_button.setToolTip("Find lengths that meet the brief; shown first, one undo step")
-        self._words = QLabel()
-        self._words.setWordWrap(True)
-        self._words.setAccessibleName("Proposed sizing")
-        self.accept_button, self.discard_button = QPushButton("Accept"), QPushButton("Discard")
-        self.stop_button = QPushButton("Stop")
-        buttons = QHBoxLayout()
-        buttons.setContentsMargins(0, 0, 0, 0)
-        for button, signal in (
-            (self.size_button, self.size_asked),
-            (self.accept_button, self.accepted),
-            (self.discard_button, self.discarded),
-            (self.stop_button, self.stopped),
-        ):
-            button.setAccessibleName(button.text())
-            button.clicked.connect(signal)
-            buttons.addWidget(button)
-        buttons.addStretch(1)
-        layout = QVBoxLayout(self)
-        layout.setContentsMargins(0, 0, 0, 0)
-        layout.setSpacing(4)
-        layout.addWidget(self._words)
-        layout.addLayout(buttons)
-
-    @property
-    def words(self) -> str:
-        """What is told about a sizing; empty where nothing is."""
-        return self._words.text()
-
-    def show_state(self, state: ReadingsState) -> None:
-        words = state.busy or state.proposal
-        if self._words.text() != words:
-            self._words.setText(words)
-        offers = state.can_size and not words
-        self.setVisible(bool(words) or offers)
-        self._words.setVisible(bool(words))
-        self.size_button.setVisible(offers)
-        self.accept_button.setVisible(bool(state.proposal) and not state.busy)
-        self.discard_button.setVisible(bool(state.proposal) and not state.busy)
-        self.stop_button.setVisible(bool(state.busy))
 
 
 def _fold(name: str) -> QToolButton:

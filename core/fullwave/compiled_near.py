@@ -151,33 +151,64 @@ def _add_exact(
                 moments[term, 7] += point[axis] * arm
 
 
+@njit(inline="always", error_model="numpy", fastmath=_FAST)
+def _point(rule: Floats, i: int, corners: Floats) -> tuple[float, float, float]:
+    """Point of a rule in a triangle."""
+    a, b, c = rule[i, 0], rule[i, 1], rule[i, 2]
+    return (
+        a * corners[0, 0] + b * corners[1, 0] + c * corners[2, 0],
+        a * corners[0, 1] + b * corners[1, 1] + c * corners[2, 1],
+        a * corners[0, 2] + b * corners[1, 2] + c * corners[2, 2],
+    )
+
+
+@njit(inline="always", error_model="numpy", fastmath=_FAST)
+def _add_moments(
+    m: Floats,
+    share: float,
+    x: float,
+    y: float,
+    z: float,
+    total: float,
+    u: float,
+    v: float,
+    w: float,
+) -> None:
+    """Add what one test point sees to the moments of a kernel."""
+    m[0] += share * total
+    m[1] += share * total * x
+    m[2] += share * total * y
+    m[3] += share * total * z
+    m[4] += share * u
+    m[5] += share * v
+    m[6] += share * w
+    m[7] += share * (x * u + y * v + z * w)
+
+
 @njit(error_model="numpy", fastmath=_FAST, cache=True)
 def _add_points(test: Floats, source: Floats, rule: Floats, weight: float, moments: Floats) -> None:
     """Add mean moments of 1/R and R (2, 8) by points over both triangles; nothing at R = 0."""
     n = rule.shape[0]
     for i in range(n):
-        x = rule[i, 0] * test[0, 0] + rule[i, 1] * test[1, 0] + rule[i, 2] * test[2, 0]
-        y = rule[i, 0] * test[0, 1] + rule[i, 1] * test[1, 1] + rule[i, 2] * test[2, 1]
-        z = rule[i, 0] * test[0, 2] + rule[i, 1] * test[1, 2] + rule[i, 2] * test[2, 2]
+        x, y, z = _point(rule, i, test)
+        near = far = near_u = near_v = near_w = far_u = far_v = far_w = 0.0
         for j in range(n):
-            u = rule[j, 0] * source[0, 0] + rule[j, 1] * source[1, 0] + rule[j, 2] * source[2, 0]
-            v = rule[j, 0] * source[0, 1] + rule[j, 1] * source[1, 1] + rule[j, 2] * source[2, 1]
-            w = rule[j, 0] * source[0, 2] + rule[j, 1] * source[1, 2] + rule[j, 2] * source[2, 2]
+            u, v, w = _point(rule, j, source)
             distance = np.sqrt((x - u) ** 2 + (y - v) ** 2 + (z - w) ** 2)
             if distance == 0.0:
                 continue
-            share = weight * rule[i, 3] * rule[j, 3]
-            dot = x * u + y * v + z * w
-            for term in range(2):
-                kernel = share / distance if term == 0 else share * distance
-                moments[term, 0] += kernel
-                moments[term, 1] += kernel * x
-                moments[term, 2] += kernel * y
-                moments[term, 3] += kernel * z
-                moments[term, 4] += kernel * u
-                moments[term, 5] += kernel * v
-                moments[term, 6] += kernel * w
-                moments[term, 7] += kernel * dot
+            one, two = rule[j, 3] / distance, rule[j, 3] * distance
+            near += one
+            near_u += one * u
+            near_v += one * v
+            near_w += one * w
+            far += two
+            far_u += two * u
+            far_v += two * v
+            far_w += two * w
+        share = weight * rule[i, 3]
+        _add_moments(moments[0], share, x, y, z, near, near_u, near_v, near_w)
+        _add_moments(moments[1], share, x, y, z, far, far_u, far_v, far_w)
 
 
 @njit(error_model="numpy", cache=True)
@@ -325,3 +356,99 @@ def near_terms(
                         value -= test[a, axis] * m[4 + axis] + source[b, axis] * m[1 + axis]
                         value += test[a, axis] * source[b, axis] * m[0]
                     currents[p, term, a, b] = value
+
+
+@njit(error_model="numpy", fastmath=_FAST, cache=True)
+def _mean_potential(
+    test: Floats, source: Floats, rule: Floats, normal: Floats, point: Floats
+) -> float:
+    """Mean of 1/R over two triangles: test points by rule, source exact."""
+    twice = _normal(source, normal)
+    total = 0.0
+    for q in range(rule.shape[0]):
+        point[0], point[1], point[2] = _point(rule, q, test)
+        height = 0.0
+        for axis in range(3):
+            height += normal[axis] * (point[axis] - source[0, axis])
+        for axis in range(3):
+            point[axis] -= height * normal[axis]
+        seen = 0.0
+        for i in range(3):
+            seen += _edge_potential(source[i], source[(i + 1) % 3], normal, point, abs(height))
+        total += rule[q, 3] * seen
+    return total * 2.0 / twice
+
+
+@njit(error_model="numpy", fastmath=_FAST, cache=True)
+def _edge_potential(one: Floats, two: Floats, normal: Floats, foot: Floats, height: float) -> float:
+    """What one edge of the source triangle gives of the integral of 1/R."""
+    ax, ay, az = two[0] - one[0], two[1] - one[1], two[2] - one[2]
+    length = np.sqrt(ax * ax + ay * ay + az * az)
+    ax, ay, az = ax / length, ay / length, az / length
+    dx, dy, dz = one[0] - foot[0], one[1] - foot[1], one[2] - foot[2]
+    low = ax * dx + ay * dy + az * dz
+    high = low + length
+    away = (ay * normal[2] - az * normal[1]) * dx
+    away += (az * normal[0] - ax * normal[2]) * dy
+    away += (ax * normal[1] - ay * normal[0]) * dz
+    squared = away * away + height * height
+    if squared <= 1e-24 * length * length:
+        return 0.0
+    r_low, r_high = np.sqrt(squared + low * low), np.sqrt(squared + high * high)
+    total = away * _line_log(low, high, r_low, r_high)
+    if height < 1e-12 * length:
+        return float(total)
+    over, under = squared + height * r_high, squared + height * r_low
+    turned = np.arctan2(away * (high * under - low * over), over * under + away * away * high * low)
+    return float(total - height * turned)
+
+
+@njit(nogil=True, error_model="numpy", cache=True)
+def near_charges(
+    corners: Floats,
+    pairs: Ints,
+    kinds: Ints,
+    image: tuple[float, float],
+    rules: tuple[Floats, Ints],
+    charges: Floats,
+) -> None:
+    """Near terms of the charges of pairs of triangles, the second at its image.
+
+    Parameters
+    ----------
+    corners, pairs, kinds, rules
+        As `near_terms` takes them.
+    image : tuple of (float, float)
+        Turn and shift: heights of an image are turn z + shift, m.
+    charges : (p,) ndarray of float
+        Written: means of 1/R, less their coarse sums, 1/m.
+    """
+    points, starts = rules
+    coarse = points[: starts[1]]
+    source, normal, point = np.empty((3, 3)), np.empty(3), np.empty(3)
+    for p in range(pairs.shape[0]):
+        test = corners[pairs[p, 0]]
+        for i in range(3):
+            source[i, 0] = corners[pairs[p, 1], i, 0]
+            source[i, 1] = corners[pairs[p, 1], i, 1]
+            source[i, 2] = image[0] * corners[pairs[p, 1], i, 2] + image[1]
+        rule = points[starts[kinds[p]] : starts[kinds[p] + 1]]
+        if kinds[p] >= 2:
+            mean = 0.5 * _mean_potential(test, source, rule, normal, point)
+            mean += 0.5 * _mean_potential(source, test, rule, normal, point)
+        else:
+            mean = _mean_inverse(test, source, rule)
+        charges[p] = mean - _mean_inverse(test, source, coarse)
+
+
+@njit(error_model="numpy", fastmath=_FAST, cache=True)
+def _mean_inverse(test: Floats, source: Floats, rule: Floats) -> float:
+    """Mean of 1/R over two triangles by points."""
+    total = 0.0
+    for i in range(rule.shape[0]):
+        x, y, z = _point(rule, i, test)
+        for j in range(rule.shape[0]):
+            u, v, w = _point(rule, j, source)
+            squared = (x - u) ** 2 + (y - v) ** 2 + (z - w) ** 2
+            total += rule[i, 3] * rule[j, 3] / np.sqrt(squared)
+    return float(total)

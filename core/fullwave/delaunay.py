@@ -75,15 +75,12 @@ class _Net:
     """Triangles as a table from each directed edge to the corner on its left."""
 
     def __init__(self, points: Floats, triangles: Ints, fixed: Ints) -> None:
-        self._points = points
+        self._points: list[tuple[float, float]] = [(x, y) for x, y in points.tolist()]
         self._apex: dict[tuple[int, int], int] = {}
         for u, v, w in triangles.tolist():
             self._apex[u, v], self._apex[v, w], self._apex[w, u] = w, u, v
         self._fixed = {frozenset(line) for line in fixed.tolist()}
-        # Every edge there ever was; those swapped away are left out when they are used.
-        known = [edge for edge in self._apex if edge[0] < edge[1]]
-        self._known, self._ever = np.array(known), set(known)
-        self._later: list[tuple[int, int]] = []
+        self._spokes = dict(iter(self._apex))  # a neighbour of each point
 
     def join(self, a: int, b: int) -> bool:
         """Make a-b an edge by swapping the diagonals in its way; tell whether it is one."""
@@ -112,22 +109,44 @@ class _Net:
         return np.array(sorted(found), dtype=np.int64)
 
     def _crossings(self, a: int, b: int) -> list[tuple[int, int]]:
-        """Inner edges that the line a-b crosses."""
-        edges = np.vstack([self._known, *self._later])
-        p = self._points
-        start, end = p[edges[:, 0]], p[edges[:, 1]]
-        one = _cross(p[b] - p[a], start - p[a]) * _cross(p[b] - p[a], end - p[a])
-        two = _cross(end - start, p[a] - start) * _cross(end - start, p[b] - start)
-        free = ~np.isin(edges, (a, b)).any(axis=1)
-        met = edges[(one < 0.0) & (two < 0.0) & free].tolist()
-        return [(u, v) for u, v in met if (u, v) in self._apex and (v, u) in self._apex]
+        """Edges that the line a-b crosses, from a on; none where it runs through a point."""
+        edge = next((one for one in self._facing(a) if self._meet(*one, a, b)), None)
+        met = []
+        while edge is not None:
+            u, v = edge
+            met.append(edge)
+            ahead = self._apex.get((v, u))
+            if ahead == b:
+                return met
+            ways = [] if ahead is None else [(u, ahead), (ahead, v)]
+            edge = next((one for one in ways if self._meet(*one, a, b)), None)
+        return []
+
+    def _facing(self, a: int) -> list[tuple[int, int]]:
+        """Edges opposite a point in the triangles round it, counter-clockwise."""
+        first = v = self._spokes[a]
+        edges = []
+        while (w := self._apex.get((a, v))) is not None:
+            edges.append((v, w))
+            v = w
+            if v == first:
+                return edges
+        v = first  # an edge of the hull stops the way round: the rest lies on its other side
+        while (w := self._apex.get((v, a))) is not None:
+            edges.append((w, v))
+            v = w
+        return edges
 
     def _meet(self, u: int, v: int, a: int, b: int) -> bool:
         """Whether the lines u-v and a-b cross inside both."""
-        p = self._points
-        one = float(_cross(p[b] - p[a], p[u] - p[a]) * _cross(p[b] - p[a], p[v] - p[a]))
-        two = float(_cross(p[v] - p[u], p[a] - p[u]) * _cross(p[v] - p[u], p[b] - p[u]))
-        return one < 0.0 and two < 0.0
+        return self._parts(a, b, u, v) and self._parts(u, v, a, b)
+
+    def _parts(self, a: int, b: int, u: int, v: int) -> bool:
+        """Whether the endless line through a and b runs between u and v."""
+        (ax, ay), (bx, by), (ux, uy), (vx, vy) = (self._points[i] for i in (a, b, u, v))
+        dx, dy = bx - ax, by - ay
+        one, other = dx * (uy - ay) - dy * (ux - ax), dx * (vy - ay) - dy * (vx - ax)
+        return one < 0.0 < other or other < 0.0 < one
 
     def _swap(self, u: int, v: int, w: int, x: int) -> None:
         """Replace the diagonal u-v of the quadrilateral u, x, v, w by x-w."""
@@ -135,7 +154,4 @@ class _Net:
         del apex[u, v], apex[v, u]
         apex[u, x], apex[x, w], apex[w, u] = w, u, x
         apex[x, v], apex[v, w], apex[w, x] = w, x, v
-        new = (min(w, x), max(w, x))
-        if new not in self._ever:
-            self._ever.add(new)
-            self._later.append(new)
+        self._spokes.update({u: x, x: v, v: w, w: u})

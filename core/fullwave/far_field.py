@@ -51,10 +51,52 @@ def far_field(basis: Basis, currents: Complexes, frequency: float, directions: F
     field = np.empty((len(directions), 3), dtype=np.complex128)
     for start in range(0, len(directions), _AT_ONCE):
         towards = directions[start : start + _AT_ONCE]
-        summed = np.exp(1j * k * (towards @ points.T)) @ moments
+        turns = k * (towards @ points.T)
+        # Sine and cosine of numbers take a third of the time of complex exponentials.
+        summed = np.cos(turns) @ moments + 1j * (np.sin(turns) @ moments)
         along = np.sum(summed * towards, axis=1, keepdims=True)
         field[start : start + _AT_ONCE] = summed - along * towards
     return np.asarray(field * (-1j * TWO_PI * frequency * VACUUM_PERMEABILITY / (4.0 * pi)))
+
+
+def boresight_weights(basis: Basis, frequency: float) -> Complexes:
+    """Far field straight up of each function's 1 A/m.
+
+    Parameters
+    ----------
+    basis : Basis
+    frequency : float
+        Hz.
+
+    Returns
+    -------
+    (2, n) ndarray of complex
+        x and y components of r exp(jkr) E, V per A/m.
+    """
+    k = TWO_PI * frequency / SPEED_OF_LIGHT
+    factor = -1j * TWO_PI * frequency * VACUUM_PERMEABILITY / (4.0 * pi)
+    return np.asarray(factor * moment_weights(basis, k))
+
+
+def moment_weights(basis: Basis, wavenumber: float) -> Complexes:
+    """Moments along x and y of each function's 1 A/m, times exp(jkz).
+
+    Parameters
+    ----------
+    basis : Basis
+    wavenumber : float
+        1/m.
+
+    Returns
+    -------
+    (2, n) ndarray of complex
+        m².
+    """
+    points = np.einsum("ic,tcx->tix", COARSE_RULE[:, :3], basis.corners)
+    turned = COARSE_RULE[:, 3] * np.exp(1j * wavenumber * points[..., 2])
+    arms = np.einsum("ti,tix->xt", turned, points[..., :2])[:, None]
+    arms = arms - turned.sum(axis=1) * basis.corners[..., :2].transpose(2, 1, 0)
+    return np.stack([basis.tested(one) for one in arms * basis.lengths / 2.0])
 
 
 def current_moments(basis: Basis, currents: Complexes) -> tuple[Floats, Complexes]:

@@ -5,7 +5,7 @@ Shapes: q points, e edges round the probe, m vertical profiles, d directions, t 
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 from math import ceil, pi
 from typing import TYPE_CHECKING, Final
 
@@ -78,11 +78,20 @@ class BoardCurrents:
         wavenumber = TWO_PI * frequency / SPEED_OF_LIGHT
         return cls(layers, wavenumber, ground_impedance, points[:, :2], moments[:, :2], *probe)
 
-    def mouth_alone(self) -> BoardCurrents:
-        """The same without any current."""
-        return replace(
-            self, points=self.points[:1], moments=0.0 * self.moments[:1], rising=0.0 * self.rising
-        )
+    @classmethod
+    def mouth_alone(
+        cls,
+        layers: tuple[Layer, ...],
+        frequency: float,
+        ground_impedance: complex,
+        mouth: CoaxRing,
+        profiles: int,
+    ) -> BoardCurrents:
+        """Of a mouth without any copper."""
+        nowhere, nothing = np.zeros((1, 2)), np.zeros((1, 2), dtype=np.complex128)
+        still = np.zeros((profiles, 1), dtype=np.complex128)
+        wavenumber = TWO_PI * frequency / SPEED_OF_LIGHT
+        return cls(layers, wavenumber, ground_impedance, nowhere, nothing, nowhere, still, mouth)
 
     def transformed(
         self, wavenumber: Floats | float, phi: Floats
@@ -137,10 +146,28 @@ def space_field(flowing: BoardCurrents, theta: Floats, phi: Floats) -> tuple[Com
     return e_theta, factors.across[0, number] * across
 
 
-def boresight_field(flowing: BoardCurrents) -> Complexes:
-    """Far field r E exp(j k r) straight up, along x and y, V: (2,)."""
-    e_theta, e_phi = space_field(flowing, np.zeros(1), np.zeros(1))
-    return np.array([e_theta[0], e_phi[0]])
+def boresight_of_moments(
+    layers: tuple[Layer, ...], wavenumber: float, ground_impedance: complex
+) -> Complexes:
+    """Far field r E exp(j k r) straight up along x and y over the moments along them.
+
+    Parameters
+    ----------
+    layers : tuple of Layer
+    wavenumber : float
+        Of free space, 1/m.
+    ground_impedance : complex
+        Ohm a square.
+
+    Returns
+    -------
+    (2, 1) ndarray of complex
+        Ohm/m. Neither vertical currents nor a mouth send anything that way.
+    """
+    factors = layered_radiation(
+        layers, np.array([wavenumber]), np.zeros(1), ground_impedance=ground_impedance
+    )
+    return np.array([factors.along[0], factors.across[0]])
 
 
 def power_into_space(flowing: BoardCurrents) -> float:

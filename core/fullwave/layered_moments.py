@@ -27,6 +27,7 @@ from core.fullwave.moments import (
     near_image,
     pair_terms,
     triangle_colours,
+    triangle_rounds,
 )
 from core.fullwave.quadrature import COARSE_RULE
 from core.fullwave.static_images import image_potential
@@ -220,12 +221,12 @@ def _near(
     starts, sources, kinds = find_near(np.ascontiguousarray(basis.corners[:-1]), triangles)
     pairs = np.column_stack([np.repeat(np.arange(len(triangles)), np.diff(starts)), sources])
     terms, means = pair_terms(basis, pairs, kinds, (1.0, 0.0))
-    weights = [kind[0].weight for kind in plan.near]
+    weights, rounds = [kind[0].weight for kind in plan.near], triangle_rounds(basis.corners)
     currents = complex(weights[0]).real * terms[:, 0]
     charges = means[:, :1] * _parts(weights[1])
     for depth in sorted({image.depth for kind in plan.near for image in kind[1:]}):
-        near, kinds = near_image(basis.corners, pairs, (1.0, depth))
-        lifted, lifted_means = pair_terms(basis, pairs[near], kinds, (1.0, depth))
+        near, close = near_image(rounds, pairs, kinds, (1.0, depth))
+        lifted, lifted_means = pair_terms(basis, pairs[near], close, (1.0, depth))
         current, charge = (
             sum(image.weight for image in kind if image.depth == depth) for kind in plan.near
         )

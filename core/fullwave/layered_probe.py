@@ -47,8 +47,8 @@ class ProbeMoments:
         Of the edges round the probe, m.
     lengths : (e,) ndarray of float
         Of those edges, m.
-    coupling : (e t, u) sparse array of float
-        From a table to its mean between an edge and a triangle.
+    coupling : tuple of ((e x, u) sparse array of float, (x,) ndarray of int)
+        From a table to its mean between an edge and each of some triangles, and which these are.
     probe : (e e, u) sparse array of float
         From a table to its mean between two edges.
     logs : (e, e) ndarray of float
@@ -61,7 +61,7 @@ class ProbeMoments:
     port: CoaxRing
     middles: Floats
     lengths: Floats
-    coupling: csr_array
+    coupling: tuple[tuple[csr_array, Ints], ...]
     probe: csr_array
     logs: Floats
     away: Floats
@@ -105,15 +105,14 @@ def build_probe_moments(
     points = np.einsum("ic,tcx->tix", COARSE_RULE[:, :3], corners)
     apart = np.linalg.norm(on_edges[:, None, None] - on_edges[None, :, :, None], axis=-1)
     weights = np.broadcast_to(np.multiply.outer(w, w) / 4.0, apart.shape)
-    edges = len(lengths)
-    number = np.broadcast_to(np.arange(edges**2).reshape(edges, edges, 1, 1), apart.shape)
+    pairs = len(lengths) ** 2
     return ProbeMoments(
         profiles=profiles,
         port=port,
         middles=pin.mean(axis=1),
         lengths=lengths,
         coupling=_coupling(corners, (on_edges, w / 2.0), axis, _CLOSE * 2.0 * port.inner, grid),
-        probe=_reader(number, apart, weights, edges**2, grid),
+        probe=_reader(apart.reshape(pairs, -1), weights.reshape(pairs, -1), grid),
         logs=_mean_logs(pin) - np.log(grid[0]),
         away=np.linalg.norm(points - axis, axis=-1),
     )
@@ -144,7 +143,10 @@ def add_probe(
     """
     edges, first = len(probe.lengths), basis.count - probe.count
     scale = FREE_SPACE_IMPEDANCE / (1j * wavenumber)  # 1/(j omega eps0)
-    to_charges = _read(probe.coupling, tables.coupling[:, 0])
+    to_charges = np.empty((probe.profiles, edges, basis.triangles), dtype=np.complex128)
+    for reader, which in probe.coupling:
+        means = _read(reader, tables.coupling[:, 0])
+        to_charges[..., which] = means.reshape(probe.profiles, edges, len(which))
     rows = np.array(
         [basis.tested(basis.lengths * one) for one in to_charges.reshape(probe.count, -1)]
     )
@@ -197,45 +199,33 @@ def _coupling(
     axis: Floats,
     close: float,
     grid: tuple[float, int],
-) -> csr_array:
-    """Reader of means between edges and triangles, finer where these are close to the probe."""
+) -> tuple[tuple[csr_array, Ints], ...]:
+    """Readers of means between edges and triangles, finer where these are close to the probe."""
     places, along = on_edges
-    edges, triangles = len(places), len(corners)
     gap = np.linalg.norm(corners - axis, axis=-1).min(axis=1)
-    numbers, distances, weights = [], [], []
+    readers = []
     for rule, chosen in ((_FINE_RULE, gap < close), (COARSE_RULE, gap >= close)):
         which = np.flatnonzero(chosen)
         points = np.einsum("ic,tcx->tix", rule[:, :3], corners[which])
         apart = np.linalg.norm(places[:, None, :, None] - points[None, :, None], axis=-1)
-        number = np.arange(edges)[:, None] * triangles + which
-        numbers.append(np.broadcast_to(number[..., None, None], apart.shape).ravel())
-        distances.append(apart.ravel())
-        weights.append(np.broadcast_to(np.multiply.outer(along, rule[:, 3]), apart.shape).ravel())
-    return _reader(
-        np.concatenate(numbers),
-        np.concatenate(distances),
-        np.concatenate(weights),
-        edges * triangles,
-        grid,
-    )
+        shares = np.multiply.outer(along, rule[:, 3]).ravel()
+        apart = apart.reshape(len(places) * len(which), len(shares))
+        weights = np.broadcast_to(shares, apart.shape)
+        readers.append((_reader(apart, weights, grid), which))
+    return tuple(readers)
 
 
-def _reader(
-    number: Ints, distance: Floats, weight: Floats, rows: int, grid: tuple[float, int]
-) -> csr_array:
-    """Matrix (rows, u) from a table's entries to weighted sums of cubic look-ups."""
+def _reader(distance: Floats, weight: Floats, grid: tuple[float, int]) -> csr_array:
+    """Matrix (rows, u) from a table's entries to weighted sums of cubic look-ups (rows, x)."""
     step, entries = grid
-    at = distance.ravel() / step
-    first = np.clip(at.astype(np.int64) - 1, 0, entries - 4)
+    at = distance / step
+    first = np.clip(at.astype(np.int32) - 1, 0, entries - 4)
     a, b, c, d = (at - first - i for i in range(4))
-    shares = np.stack([b * c * d / -6.0, a * c * d / 2.0, a * b * d / -2.0, a * b * c / 6.0])
-    columns = first + np.arange(4)[:, None]
-    lines = np.broadcast_to(number.ravel(), columns.shape)
-    summed = csr_array(
-        ((shares * weight.ravel()).ravel(), (lines.ravel(), columns.ravel())), shape=(rows, entries)
-    )
-    summed.sum_duplicates()
-    return summed
+    shares = np.stack([b * c * d / -6.0, a * c * d / 2.0, a * b * d / -2.0, a * b * c / 6.0], -1)
+    columns = first[..., None] + np.arange(4, dtype=np.int32)
+    starts = 4 * distance.shape[1] * np.arange(len(distance) + 1, dtype=np.int32)
+    values = (shares * weight[..., None]).ravel()
+    return csr_array((values, columns.ravel(), starts), shape=(len(distance), entries))
 
 
 def _read(reader: csr_array, tables: Complexes) -> Complexes:

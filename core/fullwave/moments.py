@@ -35,12 +35,16 @@ if TYPE_CHECKING:
     Complexes = NDArray[np.complex128]
 
 _WORKERS = min(4, os.cpu_count() or 1)
-_BATCH = 1000  # pairs to a task
-# By kind of pair: the fill's own, apart, touching or nearly, sharing an edge, the triangle itself.
-_APART, _TOUCHING = 1, 2
+_BATCH = 4000  # pairs to a task
+_ALONE = 700  # unknowns up to which threads would wait for each other longer than they work
+# By kind of pair: the fill's own, apart, touching or nearly, sharing an edge, the triangle
+# itself; and touching where little depends on it.
+_APART, _TOUCHING, _FAINTLY = 1, 2, 5
+_FAINT = 0.1  # weight of such an image: three points do it to 1e-3 of the reflection coefficient
 _NEAR_IMAGE = 1.5  # distance of middles, in sums of radii, up to which an image is near
 _FLAT = 0.3  # height of an image, in the same, under which its source is integrated exactly
-_RULES: Final = (COARSE_RULE, *(triangle_rule(order) for order in (4, 3, 5, 6)))
+_NOTHING = 1e-2  # weight of an image whose points will do however near it is
+_RULES: Final = (COARSE_RULE, *(triangle_rule(order) for order in (3, 3, 5, 6)), COARSE_RULE)
 
 
 @dataclass(frozen=True, eq=False)
@@ -158,7 +162,10 @@ def impedance_matrix(
 
 
 def fill(matrix: Complexes, colours: tuple[Ints, ...], add: Callable[[Ints], None]) -> None:
-    """Fill a symmetric matrix by threads: half of it by triangles, then its transpose.
+    """Fill a symmetric matrix: half of it by triangles, then its transpose.
+
+    A large one is filled by threads. A small one is not: it is one of many while a hand moves,
+    and the window needs a processor for itself.
 
     Parameters
     ----------
@@ -171,6 +178,11 @@ def fill(matrix: Complexes, colours: tuple[Ints, ...], add: Callable[[Ints], Non
     """
     from core.fullwave.compiled import add_transpose  # noqa: PLC0415 - slow to load
 
+    if len(matrix) <= _ALONE:
+        for colour in colours:
+            add(colour)
+        add_transpose(matrix, 0, 1)
+        return
     with ThreadPoolExecutor(_WORKERS) as pool:
         for colour in colours:
             list(pool.map(add, (colour[first::_WORKERS] for first in range(_WORKERS))))
@@ -206,27 +218,51 @@ def _near(
     pairs = np.column_stack([np.repeat(np.arange(basis.triangles), np.diff(starts)), sources])
     terms, plain = pair_terms(basis, pairs, kinds, (1.0, 0.0))
     here, there = sheets[pairs[:, 0]], sheets[pairs[:, 1]]
-    charges = images.direct[here, there][:, None] * plain
+    charges, rounds = images.direct[here, there][:, None] * plain, triangle_rounds(basis.corners)
     for own, other in np.ndindex(FACES, FACES):
         chosen = np.flatnonzero((here == own) & (there == other))
         for i in range(images.starts[own, other], images.stops[own, other]):
-            if images.weights[i] != 0.0:
+            if abs(images.weights[i]) > _NOTHING:
                 image = images.turns[i], images.shifts[i]
-                near, kinds = near_image(basis.corners, pairs[chosen], image)
-                _, more = pair_terms(basis, pairs[chosen[near]], kinds, image)
-                charges[chosen[near], 0] += images.weights[i] * more[:, 0]
+                near, close = near_image(rounds, pairs[chosen], kinds[chosen], image)
+                if abs(images.weights[i]) < _FAINT:
+                    close = np.where(close == _TOUCHING, _FAINTLY, close)
+                more = _image_charges(basis, pairs[chosen[near]], close, image)
+                charges[chosen[near], 0] += images.weights[i] * more
     return starts, sources, terms, charges
 
 
-def near_image(corners: Floats, pairs: Ints, image: tuple[float, float]) -> tuple[Ints, Ints]:
-    """Pairs whose second triangle has its image near the first one.
+def triangle_rounds(corners: Floats) -> Floats:
+    """Middles of triangles and their radii about them.
 
     Parameters
     ----------
     corners : (t, 3, 3) ndarray of float
         m.
+
+    Returns
+    -------
+    (t, 4) ndarray of float
+        x, y, z and radius, m.
+    """
+    middles = corners.mean(axis=1)
+    radii = np.linalg.norm(corners - middles[:, None], axis=2).max(axis=1)
+    return np.column_stack([middles, radii])
+
+
+def near_image(
+    rounds: Floats, pairs: Ints, kinds: Ints, image: tuple[float, float]
+) -> tuple[Ints, Ints]:
+    """Pairs whose second triangle has its image near the first one.
+
+    Parameters
+    ----------
+    rounds : (t, 4) ndarray of float
+        From `triangle_rounds`.
     pairs : (p, 2) ndarray of int
         Triangles.
+    kinds : (p,) ndarray of int
+        How close they are themselves: an image is never closer.
     image : tuple of (float, float)
         Turn and shift: heights of an image are turn z + shift, m.
 
@@ -234,19 +270,18 @@ def near_image(corners: Floats, pairs: Ints, image: tuple[float, float]) -> tupl
     -------
     near : (q,) ndarray of int
         Which pairs.
-    kinds : (q,) ndarray of int
-        How close, as `pair_terms` takes it.
+    close : (q,) ndarray of int
+        How close their images are, as `pair_terms` takes it.
     """
-    middles = corners.mean(axis=1)
-    radii = np.linalg.norm(corners - middles[:, None], axis=2).max(axis=1)
-    one, two = middles[pairs[:, 0]], middles[pairs[:, 1]] * (1.0, 1.0, image[0])
-    two[:, 2] += image[1]
-    distance = np.linalg.norm(one - two, axis=1)
-    reach = radii[pairs[:, 0]] + radii[pairs[:, 1]]
-    near = np.flatnonzero(distance < _NEAR_IMAGE * reach)
+    gaps, other = rounds[pairs[:, 0]], rounds[pairs[:, 1]]
+    reach = gaps[:, 3] + other[:, 3]
+    gaps[:, :2] -= other[:, :2]
+    gaps[:, 2] -= image[0] * other[:, 2] + image[1]
+    squared = gaps[:, 0] ** 2 + gaps[:, 1] ** 2 + gaps[:, 2] ** 2
+    near = np.flatnonzero(squared < (_NEAR_IMAGE * reach) ** 2)
     # An image is never in the very place of its source: the rule of touching triangles will do.
-    flat = np.abs(one - two)[near, 2] < _FLAT * reach[near]
-    return near, np.where(flat, _TOUCHING, _APART)
+    flat = np.abs(gaps[near, 2]) < _FLAT * reach[near]
+    return near, np.where(flat & (kinds[near] > _APART), _TOUCHING, _APART)
 
 
 def pair_terms(
@@ -272,16 +307,41 @@ def pair_terms(
     from core.fullwave.compiled_near import near_terms  # noqa: PLC0415 - slow to load
 
     turn, lift = image
-    rules = np.concatenate(_RULES), np.cumsum([0, *(len(rule) for rule in _RULES)])
     terms, charges = np.empty((len(pairs), 2, 3, 3)), np.empty((len(pairs), 2))
 
     def work_out(share: slice) -> None:
         out = terms[share], charges[share]
-        near_terms(basis.corners, pairs[share], kinds[share], lift, rules, *out, turn)
+        near_terms(basis.corners, pairs[share], kinds[share], lift, _rules(), *out, turn)
 
-    with ThreadPoolExecutor(_WORKERS) as pool:
-        list(pool.map(work_out, (slice(i, i + _BATCH) for i in range(0, len(pairs), _BATCH))))
+    _by_threads(work_out, len(pairs))
     return terms, charges
+
+
+def _image_charges(basis: Basis, pairs: Ints, kinds: Ints, image: tuple[float, float]) -> Floats:
+    """Near terms (p,) of 1/R alone, for the charges of pairs of triangles."""
+    from core.fullwave.compiled_near import near_charges  # noqa: PLC0415 - slow to load
+
+    charges, place = np.empty(len(pairs)), (float(image[0]), float(image[1]))
+
+    def work_out(share: slice) -> None:
+        near_charges(basis.corners, pairs[share], kinds[share], place, _rules(), charges[share])
+
+    _by_threads(work_out, len(pairs))
+    return charges
+
+
+def _rules() -> tuple[Floats, Ints]:
+    """Rules for pairs as `core.fullwave.compiled_near.near_terms` takes them."""
+    return np.concatenate(_RULES), np.cumsum([0, *(len(rule) for rule in _RULES)])
+
+
+def _by_threads(work_out: Callable[[slice], None], count: int) -> None:
+    shares = [slice(i, i + _BATCH) for i in range(0, count, _BATCH)]
+    if len(shares) == 1:
+        work_out(shares[0])
+        return
+    with ThreadPoolExecutor(_WORKERS) as pool:
+        list(pool.map(work_out, shares))
 
 
 def _runs(sheets: Ints) -> Ints:

@@ -1,40 +1,27 @@
 """The field solver as an engine: from a Layout to the Response of its very shape.
 
-Shapes: k solved frequencies, n wanted ones, m angles.
+Shapes: k solved frequencies, n wanted ones.
 """
 
 from __future__ import annotations
 
-from abc import ABC, abstractmethod
-from dataclasses import dataclass, field
+from dataclasses import replace
 from math import pi
-from typing import TYPE_CHECKING, ClassVar, Final
+from typing import TYPE_CHECKING, Final
 
 import numpy as np
 
 from core.constants import FREE_SPACE_IMPEDANCE
-from core.errors import InputError
-from core.fullwave.far_field import direction_frame, sphere_power
-from core.fullwave.far_sphere import full_sphere, half_sphere
-from core.fullwave.layered_fields import BoardCurrents, power_into_waves, space_field
-from core.fullwave.layered_mesh import build_board_mesh
-from core.fullwave.layered_system import (
-    LayeredSystem,
-    board_currents,
-    build_layered_system,
-    solve_layered,
-)
-from core.fullwave.layered_trust import rim_doubts
-from core.fullwave.mesh import Level, build_mesh
-from core.fullwave.mesh_model import Sheet
+from core.fullwave.equations import project
+from core.fullwave.mesh import Level
 from core.fullwave.mesh_report import coarse_doubts, mesh_report
-from core.fullwave.rational import fit_rational
-from core.fullwave.sweep import Sweep, adaptive_sweep
-from core.fullwave.system import Solution, System, build_system, radiated_field, solve
-from core.lines.stack import series_permittivity
+from core.fullwave.modes import natural_modes
+from core.fullwave.solvers import build_solver, kernels_of
+from core.fullwave.sweep import Sweep, adaptive_sweep, first_points
+from core.progress import SILENT
 from core.response.model import (
     FarSphere,
-    Mode,
+    PatternCut,
     Reading,
     Response,
     Samples,
@@ -46,25 +33,18 @@ from core.response.sphere import pattern_cut
 if TYPE_CHECKING:
     from numpy.typing import ArrayLike, NDArray
 
+    from core.fullwave.solvers import Solver
     from core.layout.model import Layout
     from core.layout.tail import Tail
     from core.progress import Progress
 
     Floats = NDArray[np.float64]
-    Ints = NDArray[np.int64]
     Complexes = NDArray[np.complex128]
 
 _ENGINE: Final = "field"
-MOST_AIR_LIKE: Final = 1.5
-"""Thickness-averaged permittivity up to which the finite plate is meshed in free space."""
-
-_UNBALANCED = 0.02  # share of the power that may go missing in free space
+_QUICK_POINTS: Final = 3  # frequencies solved at the quick level
+_QUICK_STEP: Final = 4.0  # degrees between the directions of its cuts
 _TOLERANCE = 2e-3  # of reflection coefficient and field ratio in a sweep
-_MODE_REACH = 1.3  # ratio to the brief's frequency within which a pole is a mode of the element
-_LOWEST_Q, _HIGHEST_Q = 2.0, 2000.0
-_SEEN = 0.15  # least height of a mode's peak over what is usual in the band
-_APART = 0.5  # least distance of two modes of one direction, in half a width
-_BESIDE = 1e-7  # of a pole, to take its residue at
 
 
 def respond(
@@ -91,6 +71,7 @@ def respond(
     Returns
     -------
     Response
+        Without a far field over the sphere at the quick level, which has two cuts alone.
 
     Raises
     ------
@@ -105,168 +86,48 @@ def respond(
     """
     wanted = np.asarray(frequencies, dtype=np.float64)
     band = (min(wanted[0], layout.frequency), max(wanted[-1], layout.frequency))
-    solver = _solver(layout, level, band[1], tail)
+    solver = build_solver(layout, level, kernels_of(layout, band[1]), tail)
     impedance = layout.ports[0].impedance
-    sweep = adaptive_sweep(
-        solver.quantities,
-        band,
-        layout.frequency,
-        lambda one, other: _apart(one, other, impedance),
-        _TOLERANCE,
-        progress,
-    )
+    sweep = _swept(solver, band, impedance, progress)
     at_spot = _samples(np.array([layout.frequency]), sweep, solver, impedance).at(0)
-    sphere = solver.sphere()
+    at_spot = replace(at_spot, efficiency=np.asarray(1.0 - np.clip(solver.spot.lost, 0.0, 1.0)))
+    gain = abs(complex(at_spot.e_x)) ** 2 + abs(complex(at_spot.e_y)) ** 2
+    sphere, cuts = _pattern(solver)
     report = mesh_report(*solver.meshed, level, (band[1], layout.stack))
     doubts = solver.doubts(), coarse_doubts(report, band[1], layout.frequency)
-    gain = abs(complex(at_spot.e_x)) ** 2 + abs(complex(at_spot.e_y)) ** 2
     return Response(
         engine=_ENGINE,
         reference_impedance=impedance,
         sweep=_samples(wanted, sweep, solver, impedance),
         spot=at_spot,
-        modes=_modes(sweep, layout.frequency),
+        modes=natural_modes(sweep, layout.frequency),
         directivity=gain / float(at_spot.efficiency),
-        cuts=tuple(pattern_cut(sphere, phi) for phi in (0.0, pi / 2)),
-        front_to_back=_front_to_back(sphere),
+        cuts=cuts,
+        front_to_back=_front_to_back(cuts[0]),
         trust=_trust(level, sweep, doubts),
         sphere=sphere,
         mesh=report,
+        currents=solver.currents(),
     )
 
 
-@dataclass(frozen=True, eq=False)
-class _Solver(ABC):
-    """A system and what has been solved of it."""
+def _swept(
+    solver: Solver, band: tuple[float, float], impedance: float, progress: Progress
+) -> Sweep:
+    """Solve over a band: at each frequency of the sweep, or quickly at three for them all."""
+    spot = solver.layout.frequency
+    quantities = solver.quantities
+    tolerance = _TOLERANCE
+    if solver.level is Level.QUICK:
+        points = first_points(band, spot, _QUICK_POINTS)
+        projection, solved = project(solver.posed, points, progress)
+        solver.solved[spot] = solver.finished(*solved[spot])
+        quantities, progress, tolerance = projection.quantities, SILENT, _TOLERANCE / 10.0
 
-    layout: Layout
-    solved: dict[float, Solution] = field(default_factory=dict, init=False)
+    def distance(one: Complexes, other: Complexes) -> Floats:
+        return _apart(one, other, impedance)
 
-    @property
-    def spot(self) -> Solution:
-        """What was solved at the brief's frequency."""
-        return self.solved[self.layout.frequency]
-
-    def quantities(self, frequency: float) -> Complexes:
-        """Admittance and boresight field of 1 V at the port, analytic in the frequency."""
-        solution = self.solve(frequency)
-        self.solved[frequency] = solution
-        volts = np.sqrt(FREE_SPACE_IMPEDANCE * solution.admittance.real / (4.0 * pi))
-        return np.array([solution.admittance, solution.e_x * volts, solution.e_y * volts])
-
-    @property
-    def scale(self) -> float:
-        """Of far fields of the solved spot, V, that makes gains of their squares."""
-        accepted = self.spot.admittance.real
-        return float(np.sqrt(4.0 * pi / (FREE_SPACE_IMPEDANCE * accepted)))
-
-    @property
-    @abstractmethod
-    def meshed(self) -> tuple[Floats, Ints, int]:
-        """Corners of the triangles (t, 3, 3), m, their sheets (t,) and the unknowns."""
-
-    @abstractmethod
-    def solve(self, frequency: float) -> Solution:
-        """Solution at one frequency."""
-
-    @abstractmethod
-    def sphere(self) -> FarSphere:
-        """Far field in all directions."""
-
-    @abstractmethod
-    def doubts(self) -> dict[Reading, Trust]:
-        """What the system leaves out of some readings."""
-
-
-@dataclass(frozen=True, eq=False)
-class _FreeSpace(_Solver):
-    """Copper in free space, its ground plate as large as it is."""
-
-    system: System
-
-    @property
-    def meshed(self) -> tuple[Floats, Ints, int]:
-        basis = self.system.moments.basis
-        return basis.corners, self.system.mesh.sheet, basis.count
-
-    def solve(self, frequency: float) -> Solution:
-        return solve(self.system, frequency)
-
-    def sphere(self) -> FarSphere:
-        def field(theta: Floats, phi: Floats) -> tuple[Complexes, Complexes]:
-            towards, along_theta, along_phi = direction_frame(theta, phi)
-            solved = radiated_field(self.system, self.spot.currents, self.spot.frequency, towards)
-            solved *= self.scale
-            return np.sum(solved * along_theta, axis=1), np.sum(solved * along_phi, axis=1)
-
-        reach = float(np.linalg.norm(self.system.mesh.vertices, axis=1).max())
-        return full_sphere(field, self.spot.frequency, reach)
-
-    def doubts(self) -> dict[Reading, Trust]:
-        frequency = self.spot.frequency
-        sent = sphere_power(
-            lambda towards: radiated_field(self.system, self.spot.currents, frequency, towards),
-            frequency,
-            float(np.ptp(self.system.mesh.vertices, axis=0).max()),
-        )
-        missing = abs(1.0 - self.spot.lost - 2.0 * sent / self.spot.admittance.real)
-        if missing < _UNBALANCED:
-            return {}
-        reason = f"{100.0 * missing:.0f} % of the power that goes in is not found again"
-        doubt = Trust(TrustLevel.ROUGH, reason, "a thinner or lighter spacer is told better")
-        return dict.fromkeys((Reading.GAIN, Reading.EFFICIENCY, Reading.PATTERN), doubt)
-
-
-@dataclass(frozen=True, eq=False)
-class _Board(_Solver):
-    """Copper on a board, the board and its ground plane taken as infinite."""
-
-    system: LayeredSystem
-    angles: ClassVar[Floats] = np.radians(np.arange(0.0, 89.0, 2.0))
-
-    @property
-    def _flowing(self) -> BoardCurrents:
-        return board_currents(self.system, self.spot.currents, self.spot.frequency)
-
-    @property
-    def meshed(self) -> tuple[Floats, Ints, int]:
-        mesh, basis = self.system.mesh, self.system.moments.basis
-        sheets = np.full(len(mesh.triangles), int(Sheet.TOP))
-        return mesh.vertices[mesh.triangles], sheets, basis.count
-
-    def solve(self, frequency: float) -> Solution:
-        return solve_layered(self.system, frequency)
-
-    def sphere(self) -> FarSphere:
-        flowing, scale = self._flowing, self.scale
-
-        def field(theta: Floats, phi: Floats) -> tuple[Complexes, Complexes]:
-            e_theta, e_phi = space_field(flowing, theta, phi)
-            return scale * e_theta, scale * e_phi
-
-        reach = float(np.linalg.norm(self.system.mesh.vertices[:, :2], axis=1).max())
-        return half_sphere(field, self.spot.frequency, reach, self.angles)
-
-    def doubts(self) -> dict[Reading, Trust]:
-        accepted = self.spot.admittance.real / 2.0
-        return rim_doubts(
-            power_into_waves(self._flowing) / accepted, 1.0 - self.spot.lost, self.layout
-        )
-
-
-def _solver(layout: Layout, level: Level, highest: float, tail: Tail | None) -> _Solver:
-    """Solver that suits a layout's stack, up to a frequency (Hz)."""
-    if series_permittivity(layout.stack) > MOST_AIR_LIKE:
-        if tail is not None:
-            raise InputError(
-                "coax tail: a board's ground plane is solved as endless, and nothing behind it "
-                "is felt; accepted: a spacer of air, foam or card",
-                field="tail",
-            )
-        board = build_board_mesh(layout, level)
-        return _Board(layout, build_layered_system(board, layout.stack, layout.foil, highest))
-    mesh = build_mesh(layout, level, tail)
-    return _FreeSpace(layout, build_system(mesh, layout.foil, layout.stack))
+    return adaptive_sweep(quantities, band, spot, distance, tolerance, progress)
 
 
 def _apart(one: Complexes, other: Complexes, impedance: float) -> Floats:
@@ -282,73 +143,50 @@ def _reflection(admittance: Complexes, impedance: float) -> Complexes:
     return np.asarray((1.0 - normalised) / (1.0 + normalised))
 
 
-def _samples(frequencies: Floats, sweep: Sweep, solver: _Solver, impedance: float) -> Samples:
+def _samples(frequencies: Floats, sweep: Sweep, solver: Solver, impedance: float) -> Samples:
     """What the fit says at some frequencies."""
     values = sweep.fit.at(frequencies)
     accepted = np.maximum(values[:, 0].real, 1e-12)
     scale = np.sqrt(4.0 * pi / (FREE_SPACE_IMPEDANCE * accepted))
-    lost = np.array([solver.solved[float(one)].lost for one in sweep.frequencies])
+    solved = sorted(solver.solved)
+    lost = np.array([solver.solved[one].lost for one in solved])
     return Samples(
         frequency=frequencies,
         s11=_reflection(values[:, 0], impedance),
         z_in=1.0 / values[:, 0],
         e_x=values[:, 1] * scale,
         e_y=values[:, 2] * scale,
-        efficiency=1.0 - np.clip(_smooth(sweep.frequencies, lost, frequencies), 0.0, 1.0),
+        efficiency=1.0 - np.clip(_smooth(np.array(solved), lost, frequencies), 0.0, 1.0),
     )
 
 
 def _smooth(solved: Floats, values: Floats, wanted: Floats) -> Floats:
-    """Cubic through what changes slowly: the share of the power that is lost."""
-    middle, half = float(np.mean(solved)), float(np.ptp(solved)) / 2.0
-    cubic = np.polynomial.polynomial.polyfit((solved - middle) / half, values, 3)
+    """Cubic at most through what changes slowly: the share of the power that is lost."""
+    middle, half = float(np.mean(solved)), float(np.ptp(solved)) / 2.0 or 1.0
+    order = min(len(solved) - 1, 3)
+    cubic = np.polynomial.polynomial.polyfit((solved - middle) / half, values, order)
     return np.asarray(np.polynomial.polynomial.polyval((wanted - middle) / half, cubic))
 
 
-def _modes(sweep: Sweep, frequency: float) -> tuple[Mode, ...]:
-    """Natural resonances with the port open: poles of the impedance.
-
-    exp(j omega t) dies away for poles above the real axis; f = f_r (sqrt(1 - 1/4Q²) + j/2Q).
-    """
-    admittance, fields = sweep.values[:, :1], sweep.values[:, 1:]
-    opened = np.concatenate([1.0 / admittance, fields / admittance], axis=1)
-    count, quantities = opened.shape
-    fit = fit_rational(sweep.frequencies, opened, (count * quantities + 1) // (quantities + 1))
-    usual = np.sqrt(np.mean(np.abs(opened) ** 2, axis=0))
-    usual[1:] = np.linalg.norm(usual[1:])
-    found: list[tuple[float, complex, str]] = []
-    for pole in fit.poles():
-        size = abs(pole)
-        if pole.imag <= 0.0 or not 1.0 / _MODE_REACH < size / frequency < _MODE_REACH:
-            continue
-        step = _BESIDE * size
-        peak = np.abs(fit.at(np.array([pole + step]))[0]) * step / pole.imag / usual
-        strength = max(peak[0], float(np.linalg.norm(peak[1:])))
-        # What is hardly excited is there by the mesh's want of symmetry alone.
-        if _LOWEST_Q < size / (2.0 * pole.imag) < _HIGHEST_Q and strength > _SEEN:
-            found.append((strength, pole, "along x" if peak[1] > peak[2] else "along y"))
-    return tuple(_mode(pole, name) for pole, name in _told_apart(found))
+def _pattern(solver: Solver) -> tuple[FarSphere | None, tuple[PatternCut, PatternCut]]:
+    """Far field over the sphere and in the planes of x and y; quickly in these alone."""
+    if solver.level is Level.QUICK:
+        theta = np.radians(np.arange(-solver.farthest, solver.farthest + 1.0, _QUICK_STEP))
+        planes = (np.full(len(theta), phi) for phi in (0.0, pi / 2))
+        along_x, along_y = (
+            PatternCut(phi[0], theta, *solver.far_field(theta, phi)) for phi in planes
+        )
+        return None, (along_x, along_y)
+    sphere = solver.sphere()
+    return sphere, (pattern_cut(sphere, 0.0), pattern_cut(sphere, pi / 2))
 
 
-def _told_apart(found: list[tuple[float, complex, str]]) -> list[tuple[complex, str]]:
-    """Poles and names by rising frequency, the strongest of those that run into one."""
-    kept: list[tuple[complex, str]] = []
-    for _, pole, name in sorted(found, key=lambda one: -one[0]):
-        if all(name != other or abs(pole - at) > _APART * at.imag for at, other in kept):
-            kept.append((pole, name))
-    return sorted(kept, key=lambda one: abs(one[0]))
-
-
-def _mode(pole: complex, name: str) -> Mode:
-    return Mode(name, float(abs(pole)), float(abs(pole) / (2.0 * pole.imag)))
-
-
-def _front_to_back(sphere: FarSphere) -> float | None:
+def _front_to_back(cut: PatternCut) -> float | None:
     """Power at boresight over that straight behind, where there is a behind."""
-    if sphere.theta[-1] < pi:
+    if not np.isclose(cut.theta[-1], pi):
         return None
-    power = np.abs(sphere.e_theta[:, 0]) ** 2 + np.abs(sphere.e_phi[:, 0]) ** 2
-    return float(power[0] / power[-1])
+    power = np.abs(cut.e_theta) ** 2 + np.abs(cut.e_phi) ** 2
+    return float(power[len(power) // 2] / power[-1])
 
 
 def _trust(
@@ -359,7 +197,9 @@ def _trust(
         f"full-wave solution on the {level.value} mesh, {len(sweep.frequencies)} frequencies "
         f"solved, the fit between them true to {sweep.error:.1g}"
     )
-    grade = TrustLevel.ROUGH if level is Level.COARSE else TrustLevel.GOOD
+    if level is Level.QUICK:
+        reason = f"quick mesh, {_QUICK_POINTS} frequencies solved, not checked between them"
+    grade = TrustLevel.ROUGH if level in (Level.QUICK, Level.COARSE) else TrustLevel.GOOD
     trust = dict.fromkeys(Reading, Trust(grade, reason))
     order = list(TrustLevel)
     for some in doubts:

@@ -94,10 +94,7 @@ def adaptive_sweep(
     against the solution: an honest error, not a difference of two fits.
     """
     low, high = band
-    angles = np.pi * (2 * np.arange(FIRST_POINTS) + 1) / (2 * FIRST_POINTS)
-    points = (low + high) / 2 - (high - low) / 2 * np.cos(angles)
-    points[np.argmin(np.abs(points - wanted))] = wanted
-    frequencies = list(np.sort(points))
+    frequencies = list(first_points(band, wanted, FIRST_POINTS))
     values: list[Complexes] = []
     for done, frequency in enumerate(frequencies):
         progress.step(done, FIRST_POINTS + 2)
@@ -125,6 +122,29 @@ def adaptive_sweep(
     order = np.argsort(frequencies)
     solved_at, solved_values = np.array(frequencies)[order], np.array(values)[order]
     return Sweep(solved_at, solved_values, _two_fits(solved_at, solved_values)[0], error)
+
+
+def first_points(band: tuple[float, float], wanted: float, count: int) -> Floats:
+    """Chebyshev points of a band, the nearest of them moved to a wanted frequency.
+
+    Parameters
+    ----------
+    band : tuple of float
+        Lowest and highest frequency, Hz.
+    wanted : float
+        In the band, Hz.
+    count : int
+
+    Returns
+    -------
+    (count,) ndarray of float
+        Hz, rising.
+    """
+    low, high = band
+    angles = np.pi * (2 * np.arange(count) + 1) / (2 * count)
+    points = (low + high) / 2 - (high - low) / 2 * np.cos(angles)
+    points[np.argmin(np.abs(points - wanted))] = wanted
+    return np.asarray(np.sort(points))
 
 
 def _two_fits(frequencies: Floats, values: Complexes) -> tuple[Rational, Rational]:

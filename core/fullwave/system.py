@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cached_property
 from math import pi
 from typing import TYPE_CHECKING
 
@@ -11,11 +12,15 @@ import numpy as np
 from core.constants import FREE_SPACE_IMPEDANCE, TWO_PI, VACUUM_PERMEABILITY
 from core.errors import ModelError
 from core.fullwave.basis import build_basis
+from core.fullwave.equations import Equations
+from core.fullwave.far_field import boresight_weights
 from core.fullwave.moments import Moments, build_moments, currents, impedance_matrix
 from core.fullwave.ports import ring_capacitance, ring_excitation
 from core.fullwave.upright import add_upright_coupling, spacer_field
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from numpy.typing import NDArray
 
     from core.fullwave.mesh_model import Mesh
@@ -24,8 +29,6 @@ if TYPE_CHECKING:
 
     Floats = NDArray[np.float64]
     Complexes = NDArray[np.complex128]
-
-_BORESIGHT = np.array([[0.0, 0.0, 1.0]])
 
 
 @dataclass(frozen=True, eq=False)
@@ -66,18 +69,23 @@ class Solution:
         Current density that leaves through each function's edge, A/m.
     admittance : complex
         At the port, S.
-    lost : float
-        Power turned to heat in the conductors and the spacer, over the power accepted.
     e_x, e_y : complex
         Far field at boresight in the scale of `core.response.model.Samples`.
+    losing : callable
+        Works `lost` out.
     """
 
     frequency: float
     currents: Complexes
     admittance: complex
-    lost: float
     e_x: complex
     e_y: complex
+    losing: Callable[[], float]
+
+    @cached_property
+    def lost(self) -> float:
+        """Power turned to heat in conductors and spacer over that accepted; of use to few."""
+        return self.losing()
 
 
 def build_system(mesh: Mesh, foil: Foil, layers: tuple[Layer, ...] = ()) -> System:
@@ -126,21 +134,60 @@ def solve(system: System, frequency: float) -> Solution:
     -------
     Solution
     """
+    posed = equations(system, frequency)
+    return solution(system, posed, currents(posed.matrix, posed.excitation))
+
+
+def equations(system: System, frequency: float) -> Equations:
+    """Equations at one frequency.
+
+    Parameters
+    ----------
+    system : System
+    frequency : float
+        Hz, > 0.
+
+    Returns
+    -------
+    Equations
+    """
     basis = system.moments.basis
     sheet = np.full(basis.triangles, sheet_impedance(system.foil, frequency))
-    matrix = _matrix(system, frequency, sheet, lossy=True)
-    solved = currents(matrix, system.excitation.astype(np.complex128))
-    admittance = complex(system.excitation @ solved) + 1j * TWO_PI * frequency * system.capacitance
+    return Equations(
+        frequency=frequency,
+        matrix=_matrix(system, frequency, sheet, lossy=True),
+        excitation=system.excitation.astype(np.complex128),
+        shunt=1j * TWO_PI * frequency * system.capacitance,
+        boresight=boresight_weights(basis, frequency),
+    )
+
+
+def solution(system: System, posed: Equations, solved: Complexes) -> Solution:
+    """What currents that were found mean.
+
+    Parameters
+    ----------
+    system : System
+    posed : Equations
+        That they solve; the matrix is not read.
+    solved : (n,) ndarray of complex
+        A/m.
+
+    Returns
+    -------
+    Solution
+    """
+    admittance = posed.admittance(solved)
     accepted = admittance.real / 2.0
-    field = radiated_field(system, solved, frequency, _BORESIGHT)[0]
+    field = posed.boresight @ solved
     field *= np.sqrt(4.0 * pi / (2.0 * FREE_SPACE_IMPEDANCE * accepted))
     return Solution(
-        frequency=frequency,
+        frequency=posed.frequency,
         currents=solved,
         admittance=admittance,
-        lost=_heat(system, solved, frequency, accepted) / accepted,
         e_x=complex(field[0]),
         e_y=complex(field[1]),
+        losing=lambda: _heat(system, solved, posed.frequency, accepted) / accepted,
     )
 
 

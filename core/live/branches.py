@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from core.constants import TWO_PI
+from core.constants import SPEED_OF_LIGHT, TWO_PI
 from core.layout.model import Bend, Segment
 from core.lines.discontinuities import (
     BendCircuit,
@@ -57,7 +57,11 @@ class Branches:
 
 
 def build_branches(
-    feed: FeedNetwork, stack: tuple[Layer, ...], foil: Foil, frequencies: Floats
+    feed: FeedNetwork,
+    stack: tuple[Layer, ...],
+    foil: Foil,
+    frequencies: Floats,
+    extensions: tuple[float, ...],
 ) -> Branches:
     """Two-ports of all strips of a feed.
 
@@ -69,6 +73,8 @@ def build_branches(
     foil : Foil
     frequencies : (n,) ndarray of float
         Hz, > 0.
+    extensions : tuple of float
+        How far the element's field fringes beyond the side that each arm lands on, m.
 
     Returns
     -------
@@ -78,8 +84,10 @@ def build_branches(
     -----
     Strips run along their centre lines; a corner takes half a strip's width off each
     neighbour and puts its bend there; a tee moves the start of its three strips. A change of
-    width at a corner counts by these lengths alone. A probe under the element has its
-    inductance in the element's cavity, one under a strip its own.
+    width at a corner counts by these lengths alone. Where a strip lands the element's field
+    does not fringe as if its side were open: the strip's own charge over that length is taken
+    off, its current is not (a step of our own, see docs/live-errors.md). A probe under the
+    element has its inductance in the element's cavity, one under a strip its own.
     """
     parts = {part for run in (feed.trunk, *feed.arms) for part in run}
     widths = {part.width for part in parts if isinstance(part, Segment)}
@@ -107,9 +115,20 @@ def build_branches(
         _two_ports(arm, start, 0.0, lines, bends)
         for arm, start in zip(feed.arms, starts, strict=False)
     ]
+    covered = [
+        _covered(lines[landing.width], extension, omega)
+        for landing, extension in zip(feed.landings, extensions, strict=True)
+    ]
     return Branches(
-        cascade(series_two_port(pin), *trunk), tuple(cascade(_NOTHING, *arm) for arm in arms)
+        cascade(series_two_port(pin), *trunk),
+        tuple(cascade(*arm, end) for arm, end in zip(arms, covered, strict=True)),
     )
+
+
+def _covered(line: LineProperties, extension: float, omega: Floats) -> TwoPort:
+    """Charge that a strip already holds where the element's open side would fringe, taken off."""
+    per_length = np.sqrt(line.eps_eff) / (SPEED_OF_LIGHT * line.characteristic_impedance)
+    return shunt_two_port(_reactive(-omega * per_length * extension))
 
 
 def _planes(feed: FeedNetwork, lines: dict[float, LineProperties], height: float) -> TeePlanes:

@@ -33,7 +33,7 @@ _A4: Final = 0.00761
 _C2: Final = -0.0914153
 
 
-def effective_permittivity(width_ratio: float, eps_r: float) -> float:
+def _effective_permittivity(width_ratio: float, eps_r: float) -> float:
     """Effective relative permittivity of a wide strip, quasi-static.
 
     Parameters
@@ -64,7 +64,7 @@ def effective_permittivity(width_ratio: float, eps_r: float) -> float:
     return (eps_r + 1.0) / 2.0 + (eps_r - 1.0) / 2.0 * spread
 
 
-def end_extension(width_ratio: float, eps_eff: float) -> float:
+def _end_extension(width_ratio: float, eps_eff: float) -> float:
     """Apparent lengthening at each open edge, in heights of the substrate.
 
     Parameters
@@ -164,9 +164,9 @@ def seed_length(frequency: float, width: float, height: float, eps_r: float) -> 
     ----------
     .. [1] C. A. Balanis, *Antenna Theory*, 4th ed., Wiley, 2016, eq. 14-7.
     """
-    eps_eff = effective_permittivity(width / height, eps_r)
+    eps_eff = _effective_permittivity(width / height, eps_r)
     half_wave = SPEED_OF_LIGHT / (2.0 * frequency * sqrt(eps_eff))
-    return half_wave - 2.0 * height * end_extension(width / height, eps_eff)
+    return half_wave - 2.0 * height * _end_extension(width / height, eps_eff)
 
 
 @dataclass(frozen=True)
@@ -207,6 +207,7 @@ def quality_factors(
     loss_tangent: float = 0.0,
     conductivity: float = np.inf,
     roughness: float = 0.0,
+    side_ratio: float | None = None,
 ) -> QualityFactors:
     """Quality factors of one mode.
 
@@ -226,6 +227,9 @@ def quality_factors(
         Of foil and ground plane, S/m, > 0.
     roughness : float
         Root mean square, m, >= 0.
+    side_ratio : float, optional
+        Length over width in the energy that is stored; that of the physical sides where it is
+        not given.
 
     Returns
     -------
@@ -246,7 +250,8 @@ def quality_factors(
     """
     wavelength = SPEED_OF_LIGHT / frequency
     spread = float(_size_factor(width, length, frequency)) * _substrate_factor(eps_r)
-    space = 3.0 / 16.0 * eps_r / spread * length / width * wavelength / height
+    ratio = length / width if side_ratio is None else side_ratio
+    space = 3.0 / 16.0 * eps_r / spread * ratio * wavelength / height
     electrical_height = TWO_PI * height / wavelength
     trapped = 0.75 * pi * electrical_height / _substrate_factor(eps_r) * (1.0 - 1.0 / eps_r) ** 3
     sheet = _surface_resistance(frequency, conductivity, roughness)

@@ -8,13 +8,8 @@ from typing import TYPE_CHECKING
 
 from core.constants import VACUUM_PERMITTIVITY
 from core.lines.stack import Layer, series_loss_tangent, series_permittivity, total_thickness
-from core.live.element import (
-    QualityFactors,
-    effective_permittivity,
-    end_extension,
-    quality_factors,
-    resonant_frequency,
-)
+from core.live.element import QualityFactors, quality_factors
+from core.live.resonance import Fringing, side_resonance
 
 if TYPE_CHECKING:
     from core.layout.model import Foil
@@ -43,6 +38,11 @@ class SideMode:
     eps_eff: float
     effective_length: float
     losses: QualityFactors
+
+    @property
+    def extension(self) -> float:
+        """Apparent lengthening at each open edge, m."""
+        return (self.effective_length - self.length) / 2.0
 
 
 @dataclass(frozen=True)
@@ -89,33 +89,50 @@ def element_modes(
 
     Notes
     -----
-    Physical sides go into the quality factors, as published; with the effective area in the
-    capacitance the edge resistance by radiation then agrees with that of two slots within
-    12 % up to 0.06 wavelength of height, 20 % at 0.12 (docs/models/element.md).
+    Effective sides go into the stored energy, physical ones into the size of the current that
+    radiates [1]_: so the quality factors come nearest to the field solver's
+    (docs/live-errors.md).
+
+    References
+    ----------
+    .. [1] D. R. Jackson, "Microstrip antennas", in *Antenna Engineering Handbook*, 4th ed.,
+       J. L. Volakis, ed., McGraw-Hill, 2007, ch. 7 (from memory).
     """
     substrate = Layer(
         total_thickness(stack), series_permittivity(stack), series_loss_tangent(stack)
     )
+    along_x = side_resonance(width, length, stack)
+    along_y = side_resonance(length, width, stack)
+    ratio = _extended(width, along_x[1]) / _extended(length, along_y[1])
     return ElementModes(
-        x=_side_mode(width, length, substrate, foil),
-        y=_side_mode(length, width, substrate, foil),
+        x=_side_mode(width, length, *along_x, ratio, substrate, foil),
+        y=_side_mode(length, width, *along_y, 1.0 / ratio, substrate, foil),
         substrate=substrate,
     )
 
 
-def _side_mode(length: float, width: float, substrate: Layer, foil: Foil) -> SideMode:
-    height, eps_r = substrate.thickness, substrate.eps_r
-    eps_eff = effective_permittivity(width / height, eps_r)
-    extension = height * end_extension(width / height, eps_eff)
-    frequency = resonant_frequency(length, eps_eff, extension)
+def _extended(length: float, fringing: Fringing) -> float:
+    return length + 2.0 * fringing.extension
+
+
+def _side_mode(
+    length: float,
+    width: float,
+    frequency: float,
+    fringing: Fringing,
+    ratio: float,
+    substrate: Layer,
+    foil: Foil,
+) -> SideMode:
     losses = quality_factors(
         width,
         length,
-        height,
-        eps_r,
+        substrate.thickness,
+        substrate.eps_r,
         frequency,
         loss_tangent=substrate.loss_tangent,
         conductivity=foil.conductivity,
         roughness=foil.roughness,
+        side_ratio=ratio,
     )
-    return SideMode(length, width, frequency, eps_eff, length + 2.0 * extension, losses)
+    return SideMode(length, width, frequency, fringing.eps_eff, _extended(length, fringing), losses)

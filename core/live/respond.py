@@ -14,7 +14,7 @@ from core.live.branches import build_branches
 from core.live.cavity import X_MODE, Y_MODE, Cavity, build_cavity, contact_of
 from core.live.element import broadside_directivity
 from core.live.modes import element_modes
-from core.live.pattern import slot_cuts
+from core.live.pattern import plate_share, slot_cuts
 from core.live.trust import judge_trust
 from core.response.model import Mode, Response, Samples
 
@@ -24,7 +24,7 @@ if TYPE_CHECKING:
     from core.layout.model import Layout
     from core.lines.stack import Layer
     from core.live.branches import Branches
-    from core.live.modes import SideMode
+    from core.live.modes import ElementModes, SideMode
     from core.progress import Progress
 
     Floats = NDArray[np.float64]
@@ -57,13 +57,13 @@ def respond(layout: Layout, frequencies: ArrayLike, progress: Progress) -> Respo
 
     Notes
     -----
-    Ground plane infinite; strips do not couple to the element or to each other and do not
-    radiate. `trust` says where that fails.
+    Ground plane infinite but for its share of the directivity; strips do not couple to the
+    element or to each other and do not radiate. `trust` says where that fails.
     """
     sweep = np.asarray(frequencies, dtype=np.float64)
-    both = sample(layout, np.append(sweep, layout.frequency))
-    spot = both.at(-1)
     element = element_modes(layout.element_width, layout.element_length, layout.stack, layout.foil)
+    both = _sampled(layout, element, np.append(sweep, layout.frequency))
+    spot = both.at(-1)
     e_x, e_y = complex(spot.e_x), complex(spot.e_y)
     response = Response(
         engine=ENGINE,
@@ -110,9 +110,17 @@ def sample(layout: Layout, frequencies: Floats) -> Samples:
     lost: in strips, foil and substrate and to surface waves.
     """
     element = element_modes(layout.element_width, layout.element_length, layout.stack, layout.foil)
+    return _sampled(layout, element, frequencies)
+
+
+def _sampled(layout: Layout, element: ElementModes, frequencies: Floats) -> Samples:
     contacts = tuple(contact_of(landing, element) for landing in layout.feed.landings)
     cavity = build_cavity(contacts, element)
-    branches = build_branches(layout.feed, layout.stack, layout.foil, frequencies)
+    extensions = tuple(
+        (element.x if landing.side == "x" else element.y).extension
+        for landing in layout.feed.landings
+    )
+    branches = build_branches(layout.feed, layout.stack, layout.foil, frequencies, extensions)
     reference = layout.ports[0].impedance
     omega = TWO_PI * frequencies
     voltage, current, currents = _joined(cavity, branches, omega)
@@ -124,12 +132,13 @@ def sample(layout: Layout, frequencies: Floats) -> Samples:
     accepted = np.maximum(accepted, _LEAST_POWER)
     z_in = 2.0 * accepted / np.abs(current) ** 2 + 1j * np.imag(voltage / current)
     powers = radiated / accepted
+    beams = powers * plate_share(layout.ground_reach, element.substrate, frequencies)
     return Samples(
         frequency=frequencies,
         s11=(z_in - reference) / (z_in + reference),
         z_in=z_in,
-        e_x=_field(element.x, element.substrate, frequencies, voltages[X_MODE], powers[X_MODE]),
-        e_y=_field(element.y, element.substrate, frequencies, voltages[Y_MODE], powers[Y_MODE]),
+        e_x=_field(element.x, element.substrate, frequencies, voltages[X_MODE], beams[X_MODE]),
+        e_y=_field(element.y, element.substrate, frequencies, voltages[Y_MODE], beams[Y_MODE]),
         efficiency=np.sum(powers, axis=0),
     )
 

@@ -197,8 +197,9 @@ def _resonance(response: Response) -> Verdict:
         f"{_frequency(mode.frequency, by)} {mode.name} (Q {mode.quality_factor:.3g})"
         for mode, by in zip(response.modes, moved, strict=True)
     ]
-    listed = " and ".join(modes)
-    sentence = f"The element resonates at {listed}."
+    sentence = f"The element resonates at {' and '.join(modes)}."
+    if not modes:
+        sentence = "No resonance of the element stands out near the brief's frequency."
     trust = response.trust[Reading.RESONANCE]
     if trust.level is TrustLevel.ROUGH:
         sentence += f" {trust.reason[:1].upper()}{trust.reason[1:]}."

@@ -23,6 +23,7 @@ if TYPE_CHECKING:
     Complexes = NDArray[np.complex128]
 
     from core.design.polarisation import Polarisation
+    from core.response.currents import Currents
 
 
 class Reading(StrEnum):
@@ -307,6 +308,8 @@ class Response:
         None for an engine without a mesh.
     spread : Spread or None
         None where nothing was solved on a coarser mesh.
+    currents : Currents or None
+        On the conductors at the brief's frequency; None where the engine solves for none.
     """
 
     engine: str
@@ -321,6 +324,7 @@ class Response:
     sphere: FarSphere | None = None
     mesh: MeshReport | None = None
     spread: Spread | None = None
+    currents: Currents | None = None
 
     @property
     def frequency(self) -> float:

@@ -64,15 +64,16 @@ class Knob:
             return exp(log(self.low) + turn * (log(self.high) - log(self.low)))
         return self.low + turn * (self.high - self.low)
 
+    def turn(self, value: float) -> float:
+        """Turn at a value, beyond 0 or 1 where that is beyond the limits."""
+        if self.even_in_log:
+            return (log(value) - log(self.low)) / (log(self.high) - log(self.low))
+        return (value - self.low) / (self.high - self.low)
+
     @property
     def start_turn(self) -> float:
         """Turn of the start, kept off the limits so that it can move both ways."""
-        span = self.high - self.low
-        if self.even_in_log:
-            turn = (log(self.start) - log(self.low)) / (log(self.high) - log(self.low))
-        else:
-            turn = (self.start - self.low) / span
-        return min(max(turn, 0.02), 0.98)
+        return min(max(self.turn(self.start), 0.02), 0.98)
 
 
 @dataclass(frozen=True)
@@ -98,6 +99,16 @@ class Box:
         """Design at a point of the unit box, its lengths rounded."""
         pairs = zip(self.knobs, turns, strict=True)
         return self.place([knob.value(float(turn)) for knob, turn in pairs], rounding)
+
+    def limits_reached(self, turns: Floats) -> str:
+        """Say which knobs stand at a limit, joined by "and"; nothing where none does."""
+        stops = []
+        for knob, turn in zip(self.knobs, turns, strict=True):
+            if turn < 0.01 and knob.low_reason:
+                stops.append(f"the {knob.label} is at {knob.low_reason}")
+            if turn > 0.99 and knob.high_reason:
+                stops.append(f"the {knob.label} is at {knob.high_reason}")
+        return " and ".join(stops)
 
 
 def probe_boxes(design: Design, side: float, quality: float) -> tuple[Box, ...]:

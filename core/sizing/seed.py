@@ -12,8 +12,9 @@ from core.design.feed import DualEdge, ProbePin
 from core.design.model import Design, Element
 from core.layout.model import Foil
 from core.lines.stack import Layer, series_permittivity
-from core.live.element import seed_length, seed_width
+from core.live.element import seed_width
 from core.live.modes import element_modes
+from core.live.resonance import resonant_length
 from core.sizing.knobs import GRID, on_grid
 
 if TYPE_CHECKING:
@@ -58,12 +59,12 @@ def starting_values(brief: Brief, stock: Stock) -> Start:
     Start
     """
     layers = tuple(Layer(one.thickness, one.eps_r, one.loss_tangent) for one in stock.spacer)
-    frequency, height, eps_r = brief.frequency, stock.height, series_permittivity(layers)
+    frequency, eps_r = brief.frequency, series_permittivity(layers)
     square = SPEED_OF_LIGHT / (2.0 * frequency * eps_r**0.5)
     for _ in range(30):  # a contraction: the extension hardly depends on the width
-        square = max(seed_length(frequency, square, height, eps_r), _SMALLEST_SIDE)
+        square = max(resonant_length(frequency, square, layers), _SMALLEST_SIDE)
     width = seed_width(frequency, eps_r)
-    length = max(seed_length(frequency, width, height, eps_r), _SMALLEST_SIDE)
+    length = max(resonant_length(frequency, width, layers), _SMALLEST_SIDE)
     foil = Foil(stock.foil.thickness, stock.foil.conductivity)
     modes = element_modes(square, square, layers, foil)
     return Start(square, width, length, modes.x.losses.total)

@@ -18,7 +18,7 @@ from core.layout.build import build_layout, electrical_layout
 from core.layout.plates import rim_distance
 from core.live.respond import sample
 from core.progress import SILENT, Progress
-from core.response.polarisation import circular_components
+from core.sizing.goal import cross_field
 from core.sizing.knobs import (
     Box,
     dual_edge_boxes,
@@ -185,7 +185,10 @@ class _Search:
         samples = self._samples(design).at(1)
         cost = float(np.abs(samples.s11)) / _REFLECTION_SCALE
         if self._polarisation is not Polarisation.LINEAR:
-            cross = float(np.abs(_cross_field(samples, self._polarisation))) / _CROSS_SCALE
+            cross = (
+                float(np.abs(cross_field(samples.e_x, samples.e_y, self._polarisation)))
+                / _CROSS_SCALE
+            )
             cost = max(cost, cross)
         refusal = next(
             (
@@ -210,19 +213,9 @@ class _Search:
         samples = self._samples(design)
         parts = [samples.s11 / _REFLECTION_SCALE]
         if self._polarisation is not Polarisation.LINEAR:
-            parts.append(_cross_field(samples, self._polarisation) / _CROSS_SCALE)
+            parts.append(cross_field(samples.e_x, samples.e_y, self._polarisation) / _CROSS_SCALE)
         complex_parts = np.concatenate([self._weights * part for part in parts])
         return np.concatenate([complex_parts.real, complex_parts.imag])
-
-
-def _cross_field(samples: Samples, polarisation: Polarisation) -> NDArray[np.complex128]:
-    """Wrong-hand over right-hand field, for the sense asked for; bounded far from the goal."""
-    right, left = circular_components(samples.e_x, samples.e_y)
-    wanted, wrong = (right, left) if polarisation is Polarisation.RHCP else (left, right)
-    # |wrong/wanted| runs to infinity at the wrong sense; this runs to a finite value there.
-    total = np.sqrt(np.abs(wanted) ** 2 + np.abs(wrong) ** 2) + 1e-30
-    size = np.maximum(np.abs(wanted), 0.05 * total)
-    return np.asarray(wrong * np.exp(-1j * np.angle(wanted)) / size)
 
 
 def _boxes(design: Design, keep_element: bool) -> tuple[Box, ...]:
@@ -306,14 +299,9 @@ def _sizing(design: Design, best: _Found, evaluations: int) -> Sizing:
 
 def _obstacle(found: _Found) -> str:
     """What a search that fell short ran into."""
-    stops = []
-    for knob, turn in zip(found.box.knobs, found.turns, strict=True):
-        if turn < 0.01 and knob.low_reason:
-            stops.append(f"the {knob.label} is at {knob.low_reason}")
-        if turn > 0.99 and knob.high_reason:
-            stops.append(f"the {knob.label} is at {knob.high_reason}")
+    stops = found.box.limits_reached(found.turns)
     if stops:
-        return " and ".join(stops)
+        return stops
     design = found.design
     thickness = design.stock.height * design.brief.frequency / SPEED_OF_LIGHT
     if isinstance(design.feed, ProbeFeed) and thickness > THICKEST:

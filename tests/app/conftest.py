@@ -40,6 +40,28 @@ class FakeAsker:
         self.asked.append(title)
 
 
+class HeldRunner(InlineRunner):
+    """Keeps requests until it is told to run them."""
+
+    def __init__(self):
+        self.waiting = {}
+
+    def start(self, request):
+        self.waiting[request.kind] = request
+
+    def stop(self, kind):
+        self.waiting.pop(kind, None)
+
+    def run(self):
+        for kind in list(self.waiting):
+            super().start(self.waiting.pop(kind))
+
+
+@pytest.fixture
+def runner():
+    return HeldRunner()
+
+
 @pytest.fixture
 def settings(tmp_path):
     path = str(tmp_path / "settings.ini")

@@ -82,9 +82,9 @@ def test_the_mat_speaks_the_chosen_handle(window, qtbot):
     plan = window.mat.plan
     qtbot.waitUntil(plan.hasFocus)
     qtbot.keyClick(plan, Qt.Key.Key_Tab)
-    assert plan.accessibleDescription().startswith("Width 55.2")
+    assert plan.accessibleDescription().startswith("Width 54.1")
     qtbot.keyClick(plan, Qt.Key.Key_Left, Qt.KeyboardModifier.ShiftModifier)
-    assert plan.accessibleDescription().startswith("Width 56.2")
+    assert plan.accessibleDescription().startswith("Width 55.1")
 
 
 def test_tab_reaches_the_template_button(window, qtbot):

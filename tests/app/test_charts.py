@@ -16,11 +16,15 @@ from app.curves.state import ESTIMATE
 from app.evaluation import evaluate
 from app.presenters.curves import curves_state
 from core.design.defaults import default_design
+from core.design.edit import with_texts
 
 
 @pytest.fixture(scope="module")
 def curves():
-    return curves_state(evaluate(default_design()), is_stale=False, match_as="S11")
+    # A probe: with two branches the curves are estimates.
+    changes = [("feed", "probe"), ("brief.polarisation", "linear")]
+    design = with_texts(default_design(), changes)
+    return curves_state(evaluate(design), is_stale=False, match_as="S11")
 
 
 @pytest.fixture

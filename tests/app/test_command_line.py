@@ -167,7 +167,7 @@ def test_the_module_and_the_script_are_the_same_command(project):
 
 def test_verbs_load_no_qt_when_they_work(project):
     runs = [
-        ["size", "--feed", "probe", "-o", "p.kerf"],
+        ["size", "--engine", "live", "--feed", "probe", "-o", "p.kerf"],
         ["set", "a.kerf", "element.width=53mm"],
         ["show", "a.kerf"],
         ["readings", "a.kerf"],

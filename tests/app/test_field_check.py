@@ -8,14 +8,15 @@ from PySide6.QtGui import QAccessible
 from app.curves.legend import engine_words
 from app.dialogs.export import ExportDialog
 from app.field_check import KIND, FieldCheck
-from app.jobs.runner import InlineRunner, JobRunner
+from app.jobs.runner import JobRunner
+from app.jobs.solver_process import SolverProcess
 from app.main_window import MainWindow
 from app.presenters.check_words import CANCEL, CHECK_NOW, TRY_CABLE
 from app.tail_check import KIND as TAIL
 from app.window import dress
 from core.design import edit
 from core.design.defaults import default_design
-from core.engines import ENGINES, LIVE, respond_on_mesh
+from core.engines import ENGINES, LIVE
 from core.errors import ModelError
 from core.progress import SILENT
 from core.response.model import Reading, Trust, TrustLevel
@@ -29,8 +30,14 @@ class FakeSolver:
         self.behind = 20.0
         self.refusal = self.refused = ""
         self.frequencies = 6
+        self.drops = 0
 
-    def __call__(self, layout, frequencies, progress, level, tail=None):
+    def close(self): ...
+
+    def drop(self):
+        self.drops += 1
+
+    def solve(self, layout, frequencies, progress, level, tail=None):
         self.levels.append(level)
         self.tails.append(tail)
         for done in range(self.frequencies):
@@ -45,23 +52,6 @@ class FakeSolver:
         return replace(answer, engine="field", trust=trust, front_to_back=self.behind)
 
 
-class HeldRunner(InlineRunner):
-    """Keeps requests until it is told to run them."""
-
-    def __init__(self):
-        self.waiting = {}
-
-    def start(self, request):
-        self.waiting[request.kind] = request
-
-    def stop(self, kind):
-        self.waiting.pop(kind, None)
-
-    def run(self):
-        for kind in list(self.waiting):
-            super().start(self.waiting.pop(kind))
-
-
 @pytest.fixture
 def solver():
     return FakeSolver()
@@ -72,10 +62,10 @@ def open_window(qtbot, qapp, settings, asker, tmp_path, solver, monkeypatch):
     windows = []
     monkeypatch.setattr("app.field_check.REST", 1)
 
-    def make(runner, solve=solver):
+    def make(runner, solver=solver):
         settings.set("field_check", True)
         dress(qapp, settings)
-        window = MainWindow(settings, runner, tmp_path / "state", asker, solve)
+        window = MainWindow(settings, runner, tmp_path / "state", asker, solver)
         windows.append(window)
         window.resize(1280, 720)
         with qtbot.waitExposed(window):
@@ -87,11 +77,6 @@ def open_window(qtbot, qapp, settings, asker, tmp_path, solver, monkeypatch):
         window.document.stack.setClean()
         window.close()
         window.deleteLater()
-
-
-@pytest.fixture
-def runner():
-    return HeldRunner()
 
 
 @pytest.fixture
@@ -115,11 +100,16 @@ def at_rest(window, runner, qtbot):
     runner.run()
 
 
+def run_all(runner):
+    while runner.waiting:
+        runner.run()
+
+
 def test_readings_switch_to_what_is_solved_and_say_so(window, runner):
     assert engine(window) == "live estimate, by equations"
-    runner.run()
+    run_all(runner)
     assert engine(window) == "field solver, normal mesh, 6 frequencies"
-    assert window.readings.check.words.startswith("Sheets will say Field-checked: normal mesh")
+    assert window.readings.check.words.startswith("Sheets will say: field-checked, normal mesh")
 
 
 def test_an_edit_makes_the_answer_stale_and_readings_live(window, runner):
@@ -158,20 +148,56 @@ def test_an_answer_for_an_older_design_is_not_current(window, runner):
     assert engine(window).startswith("live")
 
 
-def test_the_hand_gets_a_coarse_mesh_and_the_chosen_one_when_it_lets_go(
+def test_the_hand_gets_a_quick_mesh_and_the_chosen_one_when_it_lets_go(
     window, runner, qtbot, hand, solver
 ):
     runner.run()
     window.settings.set("mesh_level", "fine")
     at_rest(window, runner, qtbot)
     mouse = hand(window.mat.plan).press("element.width").move(6, 0)
-    at_rest(window, runner, qtbot)
-    assert "coarse" in engine(window)
+    assert (
+        window.readings.check.words == "The field check follows the hand on a quick, coarse mesh."
+    )
+    mouse.move(6, 0)  # while the first step is being solved
+    assert len(runner.waiting) == 1
+    runner.run()
+    assert window.field.current is None
+    runner.run()
+    assert "quick mesh" in engine(window)
+    assert window.readings.check.words.startswith("Solved on a quick mesh; the chosen one follows")
+    assert window.field.current.mark == ""  # nothing to put on a sheet
     mouse.release()
     at_rest(window, runner, qtbot)
-    # Each on the next coarser mesh as well, to tell how far the two differ.
-    assert solver.levels == ["coarse", "normal", "fine", "coarse", "normal", "fine"]
+    runner.run()
+    # And then on the next coarser mesh, to tell how far the two differ; not while the hand drags.
+    assert solver.levels == ["normal", "fine", "quick", "quick", "fine", "normal"]
+    assert window.field.current.evaluation.response.spread.against == "normal"
     assert "fine mesh" in engine(window)
+
+
+def test_the_hand_is_followed_past_a_shape_that_is_refused(window, runner, hand, solver):
+    runner.run()
+    mouse = hand(window.mat.plan).press("element.width").move(6, 0)
+    solver.refusal = "field solver: an outline crosses itself; accepted: it may not"
+    runner.run()
+    assert window.readings.check.words.startswith("No field check: an outline crosses itself")
+    solver.refusal = ""
+    mouse.move(6, 0)
+    runner.run()
+    assert "quick mesh" in engine(window)
+    mouse.release()
+
+
+def test_while_the_hand_moves_what_was_solved_is_greyed(window, runner, hand):
+    runner.run()
+    mouse = hand(window.mat.plan).press("element.width").move(6, 0)
+    runner.run()
+    mouse.move(6, 0)
+    assert engine(window) == "live estimate, by equations"
+    shown = window.curves.match.state
+    assert (shown.engine, shown.beside.engine, shown.beside.is_stale) == (LIVE, "field", True)
+    assert window.readings.check.before.endswith("(quick mesh).")
+    mouse.release()
 
 
 def test_progress_is_told_and_can_be_cancelled(window, runner):
@@ -214,12 +240,15 @@ def test_it_can_be_switched_off(window, runner, qtbot):
 def test_curves_name_their_engine_in_words(window, runner):
     runner.run()
     state = window.curves.match.state
-    assert [engine_words(one) for one in (state, state.beside)] == ["field solver", "live"]
+    assert [engine_words(one) for one in (state, state.beside)] == [
+        "field solver",
+        "live, estimate",
+    ]
     spoken = window.curves.match.accessibleDescription()
     assert spoken.startswith("field solver: Match")
-    assert "; live: Match" in spoken
+    assert "; live, estimate: Match" in spoken
     widen(window)
-    assert "field solver, before this edit" in window.curves.match.accessibleDescription()
+    assert "solved before: Match" in window.curves.match.accessibleDescription()
 
 
 def test_solved_and_live_curves_differ_without_colour(window, runner, qtbot):
@@ -265,7 +294,7 @@ def test_the_line_is_named_for_screen_readers(window, runner):
 def test_a_tiny_design_is_solved_beside_the_window(open_window, qtbot):
     """One true solution in a thread: the answer comes back, and the window ends cleanly."""
     runner = JobRunner()
-    window = open_window(runner, respond_on_mesh)
+    window = open_window(runner, SolverProcess())
     window.settings.set("mesh_level", "coarse")
     small = edit.with_texts(
         default_design(),
@@ -280,34 +309,74 @@ def test_a_tiny_design_is_solved_beside_the_window(open_window, qtbot):
     assert engine(window).startswith("field solver, coarse mesh")
 
 
-def test_readings_carry_what_changes_from_the_coarser_mesh(window, runner, solver):
+def test_the_chosen_mesh_is_shown_first_and_then_its_plus_and_minus(window, runner, solver):
     runner.run()
-    spread = window.field.current.evaluation.response.spread
-    assert (spread.against, solver.levels) == ("coarse", ["coarse", "normal"])
+    assert solver.levels == ["normal"]
+    first = window.field.current
+    assert first.evaluation.response.spread is None
+    assert first.mark.startswith("Field-checked: normal mesh")
+    check = window.readings.check
+    assert check.words == "Solved on the normal mesh; now on the coarse one, for the ±."
+    assert check.button.text() == CANCEL
+    assert not any("±" in line.words for line in window.readings._state.lines)
+    runner.run()
+    assert solver.levels == ["normal", "coarse"]
+    assert window.field.current.evaluation.response.spread.against == "coarse"
+    assert window.field.current.solved == first.solved
     assert any("±" in line.words for line in window.readings._state.lines)
+    assert not runner.waiting
 
 
-def test_a_coarse_answer_of_the_same_design_is_not_solved_again(
-    window, runner, qtbot, hand, solver
-):
+def test_an_edit_supersedes_the_coarser_solve(window, runner, solver):
     runner.run()
-    mouse = hand(window.mat.plan).press("element.width").move(6, 0)
-    at_rest(window, runner, qtbot)
-    solver.levels.clear()
+    widen(window)
+    assert not runner.waiting
+    assert solver.drops == 1
+    assert window.field.current is None
+
+
+def test_an_answer_stands_where_its_plus_and_minus_is_cancelled(window, runner):
+    runner.run()
+    check = window.readings.check
+    check.button.click()
+    assert not runner.waiting
+    assert check.words.startswith("Sheets will say: field-checked, normal mesh")
+    assert check.button.text() == TRY_CABLE
+
+
+def test_the_hand_puts_the_plus_and_minus_off(window, runner, qtbot, hand):
+    runner.run()
+    mouse = hand(window.mat.plan).press("element.width")
+    assert not runner.waiting
     mouse.release()
     at_rest(window, runner, qtbot)
-    assert solver.levels == ["normal"]
     assert window.field.current.evaluation.response.spread.against == "coarse"
+
+
+def test_a_coarser_answer_of_the_same_design_is_not_solved_again(window, runner, qtbot, solver):
+    window.settings.set("mesh_level", "coarse")
+    at_rest(window, runner, qtbot)
+    assert solver.levels == ["coarse"]
+    assert not runner.waiting  # nothing is coarser, but the quick mesh, which tells too little
+    window.settings.set("mesh_level", "normal")
+    at_rest(window, runner, qtbot)
+    assert solver.levels == ["coarse", "normal"]
+    assert window.field.current.evaluation.response.spread.against == "coarse"
+    assert not runner.waiting
 
 
 def test_where_only_the_finer_mesh_will_do_there_is_no_plus_and_minus(window, runner, solver):
     solver.refused = "coarse"
     runner.run()
+    runner.run()
+    assert solver.levels == ["normal", "coarse"]
     assert window.field.current.evaluation.response.spread is None
+    assert window.readings.check.words.startswith("Sheets will say: field-checked, normal mesh")
+    assert not runner.waiting
 
 
 def test_a_cable_is_solved_when_it_is_asked_for(window, runner, solver):
-    runner.run()
+    run_all(runner)
     check = window.readings.check
     assert check.button.text() == TRY_CABLE
     check.button.click()
@@ -324,13 +393,48 @@ def test_a_cable_is_solved_when_it_is_asked_for(window, runner, solver):
     assert check.cable.startswith("With ")
 
 
-def test_an_edit_stops_the_cable(window, runner):
-    runner.run()
+def test_an_edit_stops_the_cable(window, runner, solver):
+    run_all(runner)
     window.readings.check.button.click()
     assert TAIL in runner.waiting
     widen(window)
     assert TAIL not in runner.waiting
+    assert solver.drops == 1
     assert not window.tail.is_busy
+
+
+def test_the_cable_can_be_cancelled_and_tried_again(window, runner, solver):
+    run_all(runner)
+    check = window.readings.check
+    check.button.click()
+    check.button.click()
+    assert not runner.waiting
+    assert solver.drops == 1
+    assert check.button.text() == TRY_CABLE
+    check.button.click()
+    run_all(runner)
+    assert "of cable: VSWR" in check.cable
+
+
+def test_the_field_check_goes_before_the_cable(window, runner, qtbot, solver):
+    """The solver answers one question at a time: neither drops what the other has asked."""
+    run_all(runner)
+    check = window.readings.check
+    check.button.click()
+    window.settings.set("mesh_level", "fine")
+    assert solver.drops == 0
+    assert TAIL in runner.waiting
+    qtbot.waitUntil(lambda: KIND in runner.waiting)
+    assert TAIL not in runner.waiting
+    assert solver.drops == 1
+    run_all(runner)
+    widen(window)
+    at_rest(window, runner, qtbot)
+    assert KIND in runner.waiting  # the coarser mesh
+    window.tail.start()
+    assert TAIL not in runner.waiting
+    run_all(runner)
+    assert check.button.text() == TRY_CABLE
 
 
 def test_a_board_over_an_endless_ground_offers_no_cable(window, runner, solver):
@@ -340,7 +444,7 @@ def test_a_board_over_an_endless_ground_offers_no_cable(window, runner, solver):
 
 
 def test_a_cable_that_cannot_be_solved_says_why(window, runner, solver):
-    runner.run()
+    run_all(runner)
     window.readings.check.button.click()
     solver.refusal = "coax tail: the cable reaches over the rim"
     runner.run()

@@ -73,7 +73,7 @@ def test_a_refusal_goes_when_the_old_value_is_typed_again(window, qtbot):
     line = line_of(window, "element.width")
     old = line.text()
     type_into(qtbot, line, "fuzz")
-    type_into(qtbot, line, "5.524 cm")
+    type_into(qtbot, line, "5.416 cm")
     assert refusal_of(line) == ""
     assert line.text() == old
 

@@ -47,8 +47,11 @@ HEAD = """# Sizes by the live model
 Written by `tests/bench/sizing_table.py`. Each row is one call of the sizing, ground plate
 fitted half a wavelength beyond the element; VSWR and axial ratio (dB) are the live model's own
 estimate at the frequency, `trust` is what it says of its match: where it reads unknown, nobody
-should cut by it. A full-wave solution has not judged these yet. FR-4 at 5.8 and 10 GHz stands
-here to show the limits, not as advice. Two branches with linear polarisation are refused.
+should cut by it. "Met" means by that estimate alone: of designs that were sized so and then
+solved, docs/live-errors.md tells what became; those in docs/settling.md are solved. With two
+branches and wherever both modes are driven the estimate only seeds the field solver. FR-4 at 5.8
+and 10 GHz stands here to show the limits, not as advice. Two branches with linear polarisation
+are refused.
 
 """
 COLUMNS = (

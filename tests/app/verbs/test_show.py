@@ -130,7 +130,8 @@ def test_closed_form_sides_of_a_textbook_example(show):
     assert derived["seed_length_m"] == pytest.approx(9.06e-3, rel=5e-3)
     along_y = derived["resonances"][1]
     assert along_y["name"] == "along y"
-    assert along_y["frequency_hz"] == pytest.approx(10e9, rel=5e-3)
+    # The closed form is known to be high on so thick a board; see docs/models/element.md.
+    assert 0.93e10 < along_y["frequency_hz"] < 0.96e10
 
 
 def test_losses_add_up_to_the_whole(show):

@@ -9,6 +9,7 @@ import pytest
 from board_shapes import IDEAL, strip
 
 from core.constants import SPEED_OF_LIGHT, TWO_PI
+from core.fullwave.board_kernels import BoardKernels
 from core.fullwave.layered_system import build_layered_system, solve_layered
 from core.lines.dispersion import dispersed_permittivity
 from core.lines.quasi_static import static_line
@@ -23,7 +24,7 @@ HEIGHT, SLOW = 1e-3, 20e6
 def capacitance(width, length, eps_r):
     """Of an open strip, F, by its input admittance where it is 1/800 wavelength long."""
     mesh = strip(width, length, 8, round(1.5 * length / HEIGHT))
-    system = build_layered_system(mesh, (Layer(HEIGHT, eps_r),), IDEAL, SLOW)
+    system = build_layered_system(mesh, BoardKernels((Layer(HEIGHT, eps_r),), IDEAL, SLOW))
     return solve_layered(system, SLOW).admittance.imag / (TWO_PI * SLOW)
 
 
@@ -68,7 +69,7 @@ def test_wavelength_follows_the_dispersion_model(width, height, eps_r, frequency
     line = static_line(width / height, eps_r, 0.0)
     step = SPEED_OF_LIGHT / frequency / line.eps_eff**0.5 / 24
     mesh = strip(width, 60 * step, 10, 60)
-    system = build_layered_system(mesh, (Layer(height, eps_r),), IDEAL, frequency)
+    system = build_layered_system(mesh, BoardKernels((Layer(height, eps_r),), IDEAL, frequency))
     flowing = along(system, mesh, solve_layered(system, frequency), step)[8:-8]
     # A standing wave: the sum of both neighbours is 2 cos(beta step) times what is between.
     sums, middle = flowing[2:] + flowing[:-2], flowing[1:-1]

@@ -9,6 +9,7 @@ from board_shapes import IDEAL, board_dual_edge, board_patch
 from fullwave_shapes import grid, moments_of, probe_patch, stripline_design
 
 from core.constants import SPEED_OF_LIGHT, TWO_PI
+from core.fullwave.board_kernels import BoardKernels
 from core.fullwave.far_field import direction_frame
 from core.fullwave.kernel_table import plan_tables
 from core.fullwave.layered_fields import power_into_space, power_into_waves, space_field
@@ -37,9 +38,8 @@ BOARDS = {  # name: patch, layers if not its own, frequency
 
 
 def built(layout, level, highest, layers=None, foil=IDEAL):
-    return build_layered_system(
-        build_board_mesh(layout, level), layers or layout.stack, foil, highest
-    )
+    kernels = BoardKernels(layers or layout.stack, foil, highest)
+    return build_layered_system(build_board_mesh(layout, level), kernels)
 
 
 def reflection(solution):

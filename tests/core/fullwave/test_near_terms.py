@@ -3,7 +3,7 @@
 import numpy as np
 import pytest
 
-from core.fullwave.compiled_near import find_near, near_terms
+from core.fullwave.compiled_near import find_near, near_charges, near_terms
 from core.fullwave.quadrature import COARSE_RULE, triangle_rule
 
 RIGHT = np.array([[0.0, 0, 0], [1, 0, 0], [0, 1, 0]])
@@ -145,3 +145,16 @@ def test_pairs_are_found_and_told_apart():
     assert found[0, 2] == 2
     assert found[0, 3] == 1
     assert not any(4 in pair for pair in found if pair != (4, 4))
+
+
+@pytest.mark.parametrize("kind", [1, 2])
+@pytest.mark.parametrize("image", [(1.0, 0.0), (0.0, -0.7), (-1.0, 2.0), (1.0, 0.8)])
+def test_charges_alone_are_those_of_the_whole_terms(kind, image):
+    corners = np.array([ACUTE, np.add(RIGHT, (0.9, 0.6, 0.3))])
+    rules = np.concatenate([COARSE_RULE, triangle_rule(4), triangle_rule(6)])
+    starts = np.array([0, 3, 3 + len(triangle_rule(4)), len(rules)])
+    pairs, kinds = np.array([[0, 1], [1, 0]]), np.array([kind, kind])
+    currents, both, alone = np.empty((2, 2, 3, 3)), np.empty((2, 2)), np.empty(2)
+    near_terms(corners, pairs, kinds, image[1], (rules, starts), currents, both, image[0])
+    near_charges(corners, pairs, kinds, image, (rules, starts), alone)
+    np.testing.assert_allclose(alone, both[:, 0], rtol=1e-9, atol=1e-12)

@@ -7,6 +7,7 @@ import numpy as np
 import pytest
 from fullwave_shapes import probe_patch
 
+from core.fullwave.board_kernels import BoardKernels
 from core.fullwave.far_field import sphere_power
 from core.fullwave.layered_mesh import build_board_mesh
 from core.fullwave.layered_system import build_layered_system, solve_layered
@@ -153,7 +154,7 @@ def test_wide_plate_is_the_infinite_ground_of_the_layered_solver(layers, toleran
     guess = 2.42e9 / series_permittivity(layers) ** 0.5
     system = build_system(build_mesh(layout, Level.COARSE), layout.foil, layers)
     board = build_board_mesh(layout, Level.COARSE)
-    layered = build_layered_system(board, layers, layout.foil, 1.1 * guess)
+    layered = build_layered_system(board, BoardKernels(layers, layout.foil, 1.1 * guess))
     finite, quality = pole(lambda f: solve(system, f), guess)
     infinite, other = pole(lambda f: solve_layered(layered, f), guess)
     assert finite == pytest.approx(infinite, rel=tolerance)

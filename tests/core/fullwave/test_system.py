@@ -159,7 +159,7 @@ def resonance(layout, level):
 @pytest.mark.parametrize(("spacer", "side"), [("1.5mm", 0.058), ("6mm", 0.0525)])
 def test_resonance_converges(spacer, side):
     layout = probe_patch(f"air:{spacer}", side, 0.12 * side, 0.1)
-    coarse, normal, fine = (resonance(layout, level) for level in Level)
+    coarse, normal, fine = (resonance(layout, level) for level in list(Level)[1:])
     assert coarse == pytest.approx(fine, rel=3e-3)
     assert normal == pytest.approx(fine, rel=1.5e-3)
 

@@ -1,9 +1,11 @@
 """Triangles over plane shapes: area, edges, rows, sizes."""
 
+from itertools import combinations
+
 import numpy as np
 import pytest
 import shapely
-from scipy.spatial import Delaunay
+from scipy.spatial import ConvexHull, Delaunay
 
 from core.errors import ModelError
 from core.fullwave.delaunay import constrained_delaunay
@@ -130,6 +132,23 @@ def test_many_crossed_lines_are_put_in():
     assert sum({0, 1} <= set(t) for t in triangles) == 2
     assert areas(points, triangles).sum() == pytest.approx(2.0)
     assert (areas(points, triangles) > 0.0).all()
+
+
+@pytest.mark.parametrize("seed", range(4))
+def test_lines_from_any_point_to_any_other_are_put_in(seed):
+    rng = np.random.default_rng(seed)
+    points = rng.uniform(size=(60, 2))
+    # A chain that never crosses itself: by rising x, hull corners among its points.
+    order = np.argsort(points[:, 0])[::3]
+    chain = np.column_stack([order[:-1], order[1:]])
+    triangles, complete = constrained_delaunay(points, chain, np.empty((0, 2), dtype=int))
+    assert complete
+    edges = {frozenset(pair) for t in triangles.tolist() for pair in combinations(t, 2)}
+    assert all(frozenset(line) in edges for line in chain.tolist())
+    a, b, c = (points[triangles[:, i]] for i in range(3))
+    areas = 0.5 * ((b - a)[:, 0] * (c - a)[:, 1] - (b - a)[:, 1] * (c - a)[:, 0])
+    assert areas.min() > 0.0
+    assert areas.sum() == pytest.approx(ConvexHull(points).volume, rel=1e-9)
 
 
 def test_line_that_crosses_a_kept_one_is_left_out():

@@ -26,6 +26,8 @@ def plain_design() -> Design:
             ("element", "rect:54mmx54mm"),
             ("feed.first.landing", "18mm"),
             ("feed.second.landing", "18mm"),
+            ("feed.first.gap", "7mm"),
+            ("feed.second.gap", "7mm"),
             ("feed.first.width", "3mm"),
             ("feed.second.width", "3mm"),
             ("feed.delay_width", "4mm"),

@@ -6,6 +6,7 @@ from pathlib import Path
 import numpy as np
 import pytest
 from scipy.integrate import quad
+from scipy.optimize import brentq
 from scipy.special import j0
 
 from core.constants import FREE_SPACE_IMPEDANCE, SPEED_OF_LIGHT
@@ -14,13 +15,12 @@ from core.lines.stack import Layer
 from core.live.element import (
     broadside_directivity,
     edge_resistance,
-    effective_permittivity,
-    end_extension,
     quality_factors,
     seed_length,
     seed_width,
 )
 from core.live.modes import element_modes
+from core.live.resonance import resonant_length
 from core.live.slots import slot_conductances
 
 COPPER = Foil(35e-6, 5.8e7)
@@ -45,10 +45,6 @@ def test_textbook_synthesis():
     tolerance = row["tolerance"]
     width = seed_width(row["frequency"], row["eps_r"])
     assert width == pytest.approx(row["width"], rel=tolerance)
-    eps_eff = effective_permittivity(width / row["height"], row["eps_r"])
-    assert eps_eff == pytest.approx(row["eps_eff"], rel=tolerance)
-    extension = row["height"] * end_extension(width / row["height"], eps_eff)
-    assert extension == pytest.approx(row["extension"], rel=tolerance)
     length = seed_length(row["frequency"], width, row["height"], row["eps_r"])
     assert length == pytest.approx(row["length"], rel=tolerance)
 
@@ -56,9 +52,10 @@ def test_textbook_synthesis():
 def test_a_seed_resonates_where_it_was_asked_to():
     row = TEXTBOOK["synthesis"]
     width = seed_width(row["frequency"], row["eps_r"])
-    length = seed_length(row["frequency"], width, row["height"], row["eps_r"])
-    element = element_modes(width, length, (Layer(row["height"], row["eps_r"]),), COPPER)
-    assert element.y.frequency == pytest.approx(row["frequency"], rel=1e-12)
+    stack = (Layer(row["height"], row["eps_r"]),)
+    length = resonant_length(row["frequency"], width, stack)
+    element = element_modes(width, length, stack, COPPER)
+    assert element.y.frequency == pytest.approx(row["frequency"], rel=1e-9)
 
 
 def test_textbook_edge_resistance():
@@ -134,20 +131,47 @@ def test_directivity_stays_finite_over_a_quarter_wave():
     assert found == pytest.approx([found[1]] * 3, rel=1e-4)
 
 
+def closed_form(row):
+    """Textbook resonance of a measured element, Hz."""
+
+    def longer(frequency):
+        return seed_length(frequency, row["width"], row["height"], row["eps_r"]) - row["length"]
+
+    return brentq(longer, 0.5 * row["frequency"], 2.0 * row["frequency"])
+
+
 @pytest.mark.parametrize("row", MEASURED["kara"]["rows"], ids=by_id)
-def test_measured_resonances(row):
-    stack = (Layer(row["height"], row["eps_r"]),)
-    element = element_modes(row["width"], row["length"], stack, COPPER)
+def test_the_closed_form_is_within_what_was_published(row):
     tolerance = MEASURED["kara"]["tolerance"]
-    assert element.y.frequency == pytest.approx(row["frequency"], rel=tolerance)
+    assert closed_form(row) == pytest.approx(row["frequency"], rel=tolerance)
 
 
 @pytest.mark.parametrize("row", MEASURED["chang"]["rows"], ids=by_id)
-def test_thick_elements_lie_as_much_below_as_is_known(row):
-    stack = (Layer(row["height"], row["eps_r"]),)
-    element = element_modes(row["width"], row["length"], stack, COPPER)
-    high = element.y.frequency / row["frequency"] - 1.0
+def test_the_closed_form_is_as_high_on_thick_elements_as_is_known(row):
+    high = closed_form(row) / row["frequency"] - 1.0
     assert 0.0 < high < MEASURED["chang"]["highest"]
+
+
+def measured_mode(row):
+    return element_modes(
+        row["width"], row["length"], (Layer(row["height"], row["eps_r"], 0.001),), COPPER
+    ).y
+
+
+@pytest.mark.parametrize("row", MEASURED["kara"]["rows"], ids=by_id)
+def test_modes_lie_at_or_below_measured_resonances(row):
+    # What is published is where a probe-fed element matches best: above the mode, the more the
+    # lower its quality factor. Rows of a quality over 50 within 3.5 %, others down to 7 % below,
+    # half the width of their resonance; the field solver's modes lie within 1 % of these.
+    mode = measured_mode(row)
+    below = 1.0 - mode.frequency / row["frequency"]
+    assert 0.0 < below < (0.035 if mode.losses.total > 50.0 else 0.07)
+
+
+@pytest.mark.parametrize("row", MEASURED["chang"]["rows"], ids=by_id)
+def test_modes_of_thick_elements_are_no_longer_far_above_measured_resonances(row):
+    # The textbook form is 4 to 17 % high on these.
+    assert measured_mode(row).frequency == pytest.approx(row["frequency"], rel=0.05)
 
 
 def test_the_known_tape_build_resonates_where_such_builds_work():
