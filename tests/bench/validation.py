@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import json
 import re
+import sys
 from hashlib import sha256
 from pathlib import Path
 from typing import TYPE_CHECKING
@@ -17,25 +18,28 @@ _KEPT = ROOT / ".validation"
 
 
 def kept_rows(script: str, cases: Mapping[str, Callable[[], dict]]) -> dict[str, dict]:
-    """What each case yields: worked out now, or before by the same solver and script."""
-    stamp = _stamp(Path(script))
+    """What each case yields: worked out now, or before by the same solver and script.
+
+    With `--tables` on the command line the script may have changed since, the solver not.
+    """
+    sources = sorted((ROOT / "core" / "fullwave").glob("*.py"))
+    stamp = {"solver": _digest(sources), "script": _digest([Path(script)])}
+    checked = ("solver",) if "--tables" in sys.argv else ("solver", "script")
     rows = {}
     for name, work in cases.items():
         path = _KEPT / Path(script).stem / f"{name}.json"
         row = json.loads(path.read_text("utf-8")) if path.exists() else {}
-        if row.get("stamp") != stamp:
-            row = {"stamp": stamp, **work()}
+        if any(row.get(key) != stamp[key] for key in checked):
+            row = {**stamp, **work()}
             path.parent.mkdir(parents=True, exist_ok=True)
             path.write_text(json.dumps(row), "utf-8")
         rows[name] = row
-        print(name, {key: value for key, value in row.items() if key != "stamp"}, flush=True)
+        print(name, flush=True)
     return rows
 
 
-def _stamp(script: Path) -> str:
-    """Fingerprint of all that a row depends on."""
-    sources = [*sorted((ROOT / "core" / "fullwave").glob("*.py")), script]
-    return sha256(b"".join(path.read_bytes() for path in sources)).hexdigest()[:16]
+def _digest(paths: Iterable[Path]) -> str:
+    return sha256(b"".join(path.read_bytes() for path in paths)).hexdigest()[:16]
 
 
 def write_table(name: str, head: Iterable[str], lines: Iterable[Iterable[str]]) -> None:
