@@ -54,7 +54,7 @@ def by_library(vertices, triangles, excitation, wavenumber, directions, order=4)
     solved = np.linalg.solve(matrix, excitation)
     density = bempp.GridFunction(space, coefficients=(solved[order_of] * signs).conj())
     sent = bempp.operators.far_field.maxwell.electric_field(space, directions.T, wavenumber)
-    return Solved(matrix, solved, -FREE_SPACE_IMPEDANCE * sent.evaluate(density).T.conj())
+    return Solved(matrix, solved, FREE_SPACE_IMPEDANCE * sent.evaluate(density).T.conj())
 
 
 def _ours(mesh, space, vertices, triangles):

@@ -33,7 +33,7 @@ DIRECTIONS = np.array(
     ]
 )
 PLATES = {"plate, 6 cells": 6, "plate, 8 cells": 8}
-PATCHES = {"patch, 0.90": 0.90, "patch, 0.95": 0.95, "patch, 1.00": 1.00}  # size over wavelength
+PATCHES = {"patch, 0.95": 0.95, "patch, 0.90": 0.90, "patch, 1.00": 1.00}  # size over wavelength
 
 
 def compared(vertices, triangles, excitation, wavenumber: float) -> dict:
