@@ -87,7 +87,9 @@ def patch_over_plate(cell: float = 0.06):
     """
     count = round(0.06 / cell)
     low = grid(np.linspace(-0.3, 0.3, 10 * count + 1), np.linspace(-0.3, 0.3, 10 * count + 1))
-    top = grid(np.linspace(-0.24, 0.24, 8 * count + 1), np.linspace(-0.3, 0.12, 7 * count + 1), 0.06)
+    top = grid(
+        np.linspace(-0.24, 0.24, 8 * count + 1), np.linspace(-0.3, 0.12, 7 * count + 1), 0.06
+    )
     x_z, strip = grid(np.linspace(-0.06, 0.06, 2 * count + 1), np.linspace(0.0, 0.06, count + 1))
     upright = np.column_stack([x_z[:, 0], np.full(len(x_z), -0.3), x_z[:, 1]])
     # The library wants neighbours to turn the same way round: plate, strip, patch as one sheet.

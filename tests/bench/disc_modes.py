@@ -79,7 +79,9 @@ def _matrices(mesh, ends, layer, disc):
     def curls(u, v, w):
         s_r, s_z, r, _ = around(w)
         one, other = (r * curl(f) + s_r * f[1] for f in (u, v))
-        return r / (s_r * s_z) * one * other + r * (s_z / s_r * u[0] * v[0] + s_r / s_z * u[1] * v[1])
+        return r / (s_r * s_z) * one * other + r * (
+            s_z / s_r * u[0] * v[0] + s_r / s_z * u[1] * v[1]
+        )
 
     @BilinearForm(dtype=np.complex128)
     def plane(u, v, w):

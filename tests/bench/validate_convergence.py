@@ -40,6 +40,8 @@ LEVELS = {
 }
 ROWS = {"none": 0.0, "0.2": 0.2, "0.1": 0.1, "0.05": 0.05}
 """Width of the row of edge cells in spacer heights; the solver's own is 0.1."""
+NARROWER = {"0.025": 0.025, "0.0125": 0.0125}
+"""Rows tried on the reference mesh alone."""
 FREQUENCIES = np.linspace(2.3e9, 2.6e9, 61)
 _SHIFTS = np.linspace(-5e-3, 5e-3, 101)  # common shifts of frequency tried
 
@@ -48,7 +50,7 @@ def solved(design: str, level: str, row: str) -> dict:
     """What a mesh says of a design over the band."""
     layout = DESIGNS[design]()
     name, finest = LEVELS[level]
-    with meshes(finest, ROWS[row]):
+    with meshes(finest, (ROWS | NARROWER)[row]):
         air = series_permittivity(layout.stack) <= MOST_AIR_LIKE
         mesh = (build_mesh if air else build_board_mesh)(layout, name)
         response = respond(layout, FREQUENCIES, SILENT, name)
@@ -140,11 +142,31 @@ def order_lines(found: dict[str, dict]):
         yield [design, row, name, *shown, *ratios, *orders, last]
 
 
+def row_lines(found: dict[str, dict]):
+    """Lines of the table of rows, each against the one before, on the reference mesh."""
+    for design in DESIGNS:
+        rows = [row for row in (*ROWS, *NARROWER) if row != "none"]
+        for wide, narrow in pairwise(rows):
+            one, other = (found[f"{design}, reference, {row}"] for row in (wide, narrow))
+            yield [
+                design,
+                f"{wide} to {narrow}",
+                f"{100.0 * (other['mode'] / one['mode'] - 1.0):+.2f} %",
+                f"{100.0 * (other['q'] / one['q'] - 1.0):+.1f} %",
+                f"{apart(other, one, 's11'):.4f}",
+                f"{apart(other, one, 'ratio'):.4f}",
+            ]
+
+
 def main() -> None:
-    """Solve what has not been solved and write both tables."""
+    """Solve what has not been solved and write the tables."""
     cases = {
         f"{design}, {level}, {row}": partial(solved, design, level, row)
         for design, row, level in product(DESIGNS, ROWS, LEVELS)
+    }
+    cases |= {
+        f"{design}, reference, {row}": partial(solved, design, "reference", row)
+        for design, row in product(DESIGNS, NARROWER)
     }
     found = kept_rows(__file__, cases)
     head = ("design", "edge row", "level", "triangles", "mode, MHz", "mode", "Q", "S11", "ratio")
@@ -153,6 +175,7 @@ def main() -> None:
     head += ("first over second", "second over third", "order, first three", "last three")
     head += ("finest two apart",)
     write_table("orders", head, order_lines(found))
+    write_table("rows", ("design", "edge row", "mode", "Q", "S11", "ratio"), row_lines(found))
 
 
 if __name__ == "__main__":

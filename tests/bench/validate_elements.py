@@ -51,9 +51,7 @@ def compared(vertices, triangles, excitation, wavenumber: float) -> dict:
         "currents": off(ours.currents, theirs.currents),
         "field": off(ours.field, theirs.field),
         "seen": [[one.real, one.imag] for one in seen],
-        "sections": [
-            4.0 * pi * float(np.sum(abs(one.field[0]) ** 2)) for one in (ours, theirs)
-        ],
+        "sections": [4.0 * pi * float(np.sum(abs(one.field[0]) ** 2)) for one in (ours, theirs)],
     }
 
 
@@ -85,7 +83,9 @@ def main() -> None:
                 f"{100.0 * row['matrix']:.2f} %",
                 f"{100.0 * row['currents']:.2f} %",
                 f"{100.0 * row['field']:.2f} %",
-                f"{ours:.2f}, {theirs:.2f} ohm" if fed else "{:.3f}, {:.3f}".format(*row["sections"]),
+                f"{ours:.2f}, {theirs:.2f} ohm"
+                if fed
+                else "{:.3f}, {:.3f}".format(*row["sections"]),
                 f"{100.0 * abs(ours / theirs - 1.0):.2f} %" if fed else "",
             ]
         )

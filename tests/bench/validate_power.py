@@ -33,7 +33,9 @@ def balanced(number: int) -> dict:
     sweep = respond(layout, band, SILENT, Level.COARSE).sweep
     return {
         "name": name,
-        "stack": " + ".join(f"{1e3 * one.thickness:.2f} of {one.eps_r:.2f}" for one in layout.stack),
+        "stack": " + ".join(
+            f"{1e3 * one.thickness:.2f} of {one.eps_r:.2f}" for one in layout.stack
+        ),
         "turns": total_thickness(layout.stack) * 2.0 * np.pi * BAND[1] / 299_792_458,
         "lossy": bool(any(one.loss_tangent > 0.0 for one in layout.stack)),
         "lost": solutions[1].lost,

@@ -23,8 +23,9 @@ def table(name):
 DISCS, MODES = table("disc_resonance"), table("disc_modes")
 BY_NAME = {row["id"]: row for row in DISCS["rows"]}
 # The rows with Q over 50 (docs/validation.md).
-THIN = [row for row in table("patch_resonance")["kara"]["rows"][:4]] + [
-    BY_NAME[name] for name in ("D01", "D03", "D05", "D07", "D11", "D13")
+THIN = [
+    *table("patch_resonance")["kara"]["rows"][:4],
+    *(BY_NAME[name] for name in ("D01", "D03", "D05", "D07", "D11", "D13")),
 ]
 
 
@@ -49,9 +50,7 @@ def test_measured_patches_of_high_q(row):
 def test_disc_has_the_mode_that_finite_elements_find(mode):
     # No equation, no mesh, no source in common; a probe near the middle hardly moves the mode.
     row = BY_NAME[mode["id"]]
-    layout = replace(
-        layout_of(row, 0.05), stack=(Layer(row["height"], row["eps_r"]),), foil=IDEAL
-    )
+    layout = replace(layout_of(row, 0.05), stack=(Layer(row["height"], row["eps_r"]),), foil=IDEAL)
     band = mode["frequency"] * np.linspace(0.95, 1.05, 11)
     modes = respond(layout, band, SILENT, Level.FINE).modes
     found = min(modes, key=lambda one: abs(one.frequency - mode["frequency"]))

@@ -137,9 +137,7 @@ def test_board_receives_as_it_sends(layers, theta):
     # By hand: the wave's field on the bare stack acts on the current that 1 V at the port makes.
     layout, frequency, phi = board_dual_edge(), 2.45e9, 0.7
     k = TWO_PI * frequency / SPEED_OF_LIGHT
-    system = build_layered_system(
-        build_board_mesh(layout, Level.COARSE), layers, IDEAL, frequency
-    )
+    system = build_layered_system(build_board_mesh(layout, Level.COARSE), layers, IDEAL, frequency)
     flowing = board_currents(system, solve_layered(system, frequency).currents, frequency)
     _, sent = space_field(flowing, np.array([theta]), np.array([phi]))
     ahead, across = np.array([np.cos(phi), np.sin(phi)]), np.array([-np.sin(phi), np.cos(phi)])
