@@ -15,15 +15,9 @@ import numpy as np
 
 sys.path[:0] = [str(Path(__file__).parents[2]), str(Path(__file__).parents[1])]
 
-from bench.boundary_elements import (
-    by_library,
-    by_us,
-    foot_excitation,
-    patch_over_plate,
-    plate,
-    wave_excitation,
-)
+from bench.boundary_elements import by_library, by_us
 from bench.validation import kept_rows, write_table
+from open_surfaces import foot_excitation, patch_over_plate, plate, wave_excitation
 
 DIRECTIONS = np.array(
     [
