@@ -29,7 +29,7 @@ from core.fullwave.layered_moments import board_basis, build_layered_moments, la
 from core.fullwave.mesh import FINENESS, Level
 from core.fullwave.mesh_model import CoaxRing
 from core.fullwave.moments import currents
-from core.fullwave.rational import fit_rational
+from core.fullwave.rational import Rational, fit_rational
 from core.fullwave.respond import respond
 from core.fullwave.sizes import sizes_near
 from core.fullwave.triangulate import triangulate
@@ -66,9 +66,19 @@ def bare_mode(row: dict, across: float, edge: float) -> tuple[float, float]:
         k = TWO_PI * frequency / SPEED_OF_LIGHT
         matrix = layered_matrix(moments, plan.tables(np.array([k])), k, 0.0)
         driven.append([excitation @ currents(matrix, excitation)])
-    poles = fit_rational(frequencies, np.array(driven), 5).poles()
-    pole = min(poles[poles.imag > 0.0], key=lambda one: abs(one - row["frequency"]))
+    pole = _strongest(fit_rational(frequencies, np.array(driven), 5))
     return float(abs(pole)), float(abs(pole) / (2.0 * pole.imag))
+
+
+def _strongest(fit: Rational) -> complex:
+    """The pole with the highest peak at real frequencies; a fit also has some of no weight."""
+    poles = [pole for pole in fit.poles() if pole.imag > 0.0]
+    steps = [1e-7 * abs(pole) for pole in poles]
+    peaks = [
+        abs(fit.at(np.array([pole + step]))[0, 0]) * step / pole.imag
+        for pole, step in zip(poles, steps, strict=True)
+    ]
+    return complex(poles[int(np.argmax(peaks))])
 
 
 def probed_mode(row: dict, place: float) -> tuple[float, float]:
