@@ -8,19 +8,19 @@ Shapes: t triangles, n functions, p near pairs.
 
 from __future__ import annotations
 
-import os
 from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass
 from math import pi
 from typing import TYPE_CHECKING, Final
 
 import numpy as np
-from scipy.linalg import lu_factor, lu_solve
 
 from core.constants import SPEED_OF_LIGHT, TWO_PI, VACUUM_PERMEABILITY
 from core.fullwave.basis import Basis
 from core.fullwave.quadrature import COARSE_RULE, triangle_rule
 from core.fullwave.spacer_images import FACES, spacer_images
+from core.fullwave.symmetric import solve_symmetric
+from core.fullwave.workers import WORKERS
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -34,7 +34,6 @@ if TYPE_CHECKING:
     Ints = NDArray[np.int64]
     Complexes = NDArray[np.complex128]
 
-_WORKERS = min(4, os.cpu_count() or 1)
 _BATCH = 1000  # pairs to a task
 # By kind of pair: the fill's own, apart, touching or nearly, sharing an edge, the triangle itself.
 _APART, _TOUCHING = 1, 2
@@ -171,14 +170,14 @@ def fill(matrix: Complexes, colours: tuple[Ints, ...], add: Callable[[Ints], Non
     """
     from core.fullwave.compiled import add_transpose  # noqa: PLC0415 - slow to load
 
-    with ThreadPoolExecutor(_WORKERS) as pool:
+    with ThreadPoolExecutor(WORKERS) as pool:
         for colour in colours:
-            list(pool.map(add, (colour[first::_WORKERS] for first in range(_WORKERS))))
-        list(pool.map(lambda first: add_transpose(matrix, first, _WORKERS), range(_WORKERS)))
+            list(pool.map(add, (colour[first::WORKERS] for first in range(WORKERS))))
+        list(pool.map(lambda first: add_transpose(matrix, first, WORKERS), range(WORKERS)))
 
 
 def currents(matrix: Complexes, excitations: Complexes) -> Complexes:
-    """Solve for the currents; the matrix is overwritten.
+    """Solve for the currents; the matrix may be overwritten.
 
     Parameters
     ----------
@@ -191,9 +190,8 @@ def currents(matrix: Complexes, excitations: Complexes) -> Complexes:
     (n, ...) ndarray of complex
         Current density leaving through each function's edge, A/m.
     """
-    # The transpose of a symmetric matrix is the column order that LAPACK wants, for nothing.
-    factors = lu_factor(matrix.T, overwrite_a=True, check_finite=False)
-    return np.asarray(lu_solve(factors, excitations, check_finite=False))
+    sides = excitations.reshape(len(matrix), -1)
+    return solve_symmetric(matrix, sides).reshape(excitations.shape)
 
 
 def _near(
@@ -279,7 +277,7 @@ def pair_terms(
         out = terms[share], charges[share]
         near_terms(basis.corners, pairs[share], kinds[share], lift, rules, *out, turn)
 
-    with ThreadPoolExecutor(_WORKERS) as pool:
+    with ThreadPoolExecutor(WORKERS) as pool:
         list(pool.map(work_out, (slice(i, i + _BATCH) for i in range(0, len(pairs), _BATCH))))
     return terms, charges
 
