@@ -152,42 +152,94 @@ def _add_exact(
 
 
 @njit(error_model="numpy", fastmath=_FAST, cache=True)
-def _add_points(test: Floats, source: Floats, rule: Floats, weight: float, moments: Floats) -> None:
+def _spread(corners: Floats, rule: Floats, out: Floats) -> None:
+    """Write the rule's points in a triangle, axis by axis."""
+    for axis in range(3):
+        a, b, c = corners[0, axis], corners[1, axis], corners[2, axis]
+        for q in range(rule.shape[0]):
+            out[axis, q] = rule[q, 0] * a + rule[q, 1] * b + rule[q, 2] * c
+
+
+@njit(error_model="numpy", fastmath=_FAST, cache=True)
+def _kernels(
+    x: float, y: float, z: float, points: Floats, rule: Floats, over: Floats, far: Floats
+) -> None:
+    """Write 1/R and R from a place to points times their weights; nothing at R = 0."""
+    px, py, pz = points[0], points[1], points[2]
+    for j in range(rule.shape[0]):
+        dx, dy, dz = px[j] - x, py[j] - y, pz[j] - z
+        distance = np.sqrt(dx * dx + dy * dy + dz * dz)
+        over[j] = 1.0 / distance if distance > 0.0 else 0.0
+        far[j] = distance
+    for j in range(rule.shape[0]):
+        over[j] *= rule[j, 3]
+        far[j] *= rule[j, 3]
+
+
+@njit(error_model="numpy", fastmath=_FAST, cache=True)
+def _add_point(
+    place: tuple[float, float, float],
+    share: float,
+    points: Floats,
+    kernel: Floats,
+    count: int,
+    moments: Floats,
+) -> None:
+    """Add mean moments (8) of a kernel (q) at one test point."""
+    px, py, pz = points[0], points[1], points[2]
+    total = u = v = w = 0.0
+    for j in range(count):
+        total += kernel[j]
+        u += kernel[j] * px[j]
+        v += kernel[j] * py[j]
+        w += kernel[j] * pz[j]
+    x, y, z = place
+    moments[0] += share * total
+    moments[1] += share * total * x
+    moments[2] += share * total * y
+    moments[3] += share * total * z
+    moments[4] += share * u
+    moments[5] += share * v
+    moments[6] += share * w
+    moments[7] += share * (x * u + y * v + z * w)
+
+
+@njit(error_model="numpy", fastmath=_FAST, cache=True)
+def _add_points(
+    test: Floats,
+    source: Floats,
+    rule: Floats,
+    weight: float,
+    work: tuple[Floats, Floats, Floats],
+    moments: Floats,
+) -> None:
     """Add mean moments of 1/R and R (2, 8) by points over both triangles; nothing at R = 0."""
+    here, there, kernels = work
+    over, far = kernels[0], kernels[1]
     n = rule.shape[0]
+    _spread(test, rule, here)
+    _spread(source, rule, there)
     for i in range(n):
-        x = rule[i, 0] * test[0, 0] + rule[i, 1] * test[1, 0] + rule[i, 2] * test[2, 0]
-        y = rule[i, 0] * test[0, 1] + rule[i, 1] * test[1, 1] + rule[i, 2] * test[2, 1]
-        z = rule[i, 0] * test[0, 2] + rule[i, 1] * test[1, 2] + rule[i, 2] * test[2, 2]
-        for j in range(n):
-            u = rule[j, 0] * source[0, 0] + rule[j, 1] * source[1, 0] + rule[j, 2] * source[2, 0]
-            v = rule[j, 0] * source[0, 1] + rule[j, 1] * source[1, 1] + rule[j, 2] * source[2, 1]
-            w = rule[j, 0] * source[0, 2] + rule[j, 1] * source[1, 2] + rule[j, 2] * source[2, 2]
-            distance = np.sqrt((x - u) ** 2 + (y - v) ** 2 + (z - w) ** 2)
-            if distance == 0.0:
-                continue
-            share = weight * rule[i, 3] * rule[j, 3]
-            dot = x * u + y * v + z * w
-            for term in range(2):
-                kernel = share / distance if term == 0 else share * distance
-                moments[term, 0] += kernel
-                moments[term, 1] += kernel * x
-                moments[term, 2] += kernel * y
-                moments[term, 3] += kernel * z
-                moments[term, 4] += kernel * u
-                moments[term, 5] += kernel * v
-                moments[term, 6] += kernel * w
-                moments[term, 7] += kernel * dot
+        place, share = (here[0, i], here[1, i], here[2, i]), weight * rule[i, 3]
+        _kernels(place[0], place[1], place[2], there, rule, over, far)
+        _add_point(place, share, there, over, n, moments[0])
+        _add_point(place, share, there, far, n, moments[1])
 
 
 @njit(error_model="numpy", cache=True)
 def _pair_moments(
-    test: Floats, source: Floats, rule: Floats, coarse: Floats, exact: bool, moments: Floats
+    test: Floats,
+    source: Floats,
+    rule: Floats,
+    coarse: Floats,
+    exact: bool,
+    points: tuple[Floats, Floats, Floats],
+    moments: Floats,
 ) -> None:
     """Mean moments of 1/R and R less their coarse sums."""
     moments[:] = 0.0
-    work, turned = np.empty(17), np.zeros((2, 8))
     if exact:
+        work, turned = np.empty(17), np.zeros((2, 8))
         _add_exact(test, source, rule, 0.5, work, moments)
         _add_exact(source, test, rule, 0.5, work, turned)
         for term in range(2):
@@ -197,8 +249,8 @@ def _pair_moments(
                 moments[term, 1 + axis] += turned[term, 4 + axis]
                 moments[term, 4 + axis] += turned[term, 1 + axis]
     else:
-        _add_points(test, source, rule, 1.0, moments)
-    _add_points(test, source, coarse, -1.0, moments)
+        _add_points(test, source, rule, 1.0, points, moments)
+    _add_points(test, source, coarse, -1.0, points, moments)
 
 
 @njit(error_model="numpy", cache=True)
@@ -303,7 +355,8 @@ def near_terms(
     """
     points, starts = rules
     test, source, middle = np.empty((3, 3)), np.empty((3, 3)), np.empty(3)
-    moments = np.empty((2, 8))
+    moments, most = np.empty((2, 8)), points.shape[0]
+    work = np.empty((3, most)), np.empty((3, most)), np.empty((2, most))
     for p in range(pairs.shape[0]):
         own = corners[pairs[p, 0]]
         for axis in range(3):
@@ -314,7 +367,8 @@ def near_terms(
         for i in range(3):
             source[i, 2] = turn * corners[pairs[p, 1], i, 2] + lift - middle[2]
         rule = points[starts[kinds[p]] : starts[kinds[p] + 1]]
-        _pair_moments(test, source, rule, points[: starts[1]], kinds[p] >= 2, moments)
+        coarse = points[: starts[1]]
+        _pair_moments(test, source, rule, coarse, kinds[p] >= 2, work, moments)
         for term in range(2):
             m = moments[term]
             charges[p, term] = m[0]
