@@ -48,22 +48,37 @@ def _line_log(low: float, high: float, r_low: float, r_high: float) -> float:
 
 
 @njit(error_model="numpy", fastmath=_FAST, cache=True)
+def _lay_edges(corners: Floats, normal: Floats, out: Floats) -> None:
+    """Write for each edge of a triangle (3, 7): its way, the way out across it, its length."""
+    for i in range(3):
+        one, two, edge = corners[i], corners[(i + 1) % 3], out[i]
+        ax, ay, az = two[0] - one[0], two[1] - one[1], two[2] - one[2]
+        length = np.sqrt(ax * ax + ay * ay + az * az)
+        ax, ay, az = ax / length, ay / length, az / length
+        edge[0], edge[1], edge[2] = ax, ay, az
+        edge[3] = ay * normal[2] - az * normal[1]
+        edge[4] = az * normal[0] - ax * normal[2]
+        edge[5] = ax * normal[1] - ay * normal[0]
+        edge[6] = length
+
+
+@njit(error_model="numpy", fastmath=_FAST, cache=True)
 def _add_edge(
-    one: Floats, two: Floats, normal: Floats, foot: Floats, height: float, out: Floats
+    one: Floats,
+    edge: Floats,
+    radii: tuple[float, float],
+    foot: Floats,
+    height: float,
+    out: Floats,
 ) -> float:
     """Add what one edge of the source triangle gives; return its part of the solid angle."""
-    ax, ay, az = two[0] - one[0], two[1] - one[1], two[2] - one[2]
-    length = np.sqrt(ax * ax + ay * ay + az * az)
-    ax, ay, az = ax / length, ay / length, az / length
-    mx = ay * normal[2] - az * normal[1]
-    my = az * normal[0] - ax * normal[2]
-    mz = ax * normal[1] - ay * normal[0]
+    length, (r_low, r_high) = edge[6], radii
+    mx, my, mz = edge[3], edge[4], edge[5]
     dx, dy, dz = one[0] - foot[0], one[1] - foot[1], one[2] - foot[2]
-    low = ax * dx + ay * dy + az * dz
+    low = edge[0] * dx + edge[1] * dy + edge[2] * dz
     high = low + length
     away = mx * dx + my * dy + mz * dz
     squared = away * away + height * height
-    r_low, r_high = np.sqrt(squared + low * low), np.sqrt(squared + high * high)
     line_1 = _line_log(low, high, r_low, r_high) if squared > 1e-24 * length * length else 0.0
     line1 = 0.5 * (high * r_high - low * r_low + squared * line_1)
     line3 = 0.25 * (high * r_high**3 - low * r_low**3 + 3.0 * squared * line1)
@@ -86,7 +101,9 @@ def _add_edge(
 
 
 @njit(error_model="numpy", fastmath=_FAST, cache=True)
-def _source_integrals(point: Floats, corners: Floats, normal: Floats, out: Floats) -> None:
+def _source_integrals(
+    point: Floats, corners: Floats, normal: Floats, edges: Floats, out: Floats
+) -> None:
     """Integrals over a triangle, seen from a point.
 
     out[0:3], out[3]: (r' - f)/R and 1/R; out[4:7], out[7]: (r' - f) R and R; out[8:11]: f,
@@ -98,11 +115,20 @@ def _source_integrals(point: Floats, corners: Floats, normal: Floats, out: Float
         height += normal[axis] * (point[axis] - corners[0, axis])
     for axis in range(3):
         out[8 + axis] = point[axis] - height * normal[axis]
-    angle = 0.0
-    for i in range(3):
-        angle += _add_edge(corners[i], corners[(i + 1) % 3], normal, out[8:11], height, out)
+    first = _distance(point, corners[0])
+    second, third = _distance(point, corners[1]), _distance(point, corners[2])
+    foot = out[8:11]
+    angle = _add_edge(corners[0], edges[0], (first, second), foot, height, out)
+    angle += _add_edge(corners[1], edges[1], (second, third), foot, height, out)
+    angle += _add_edge(corners[2], edges[2], (third, first), foot, height, out)
     out[3] -= abs(height) * angle
     out[7] += height * height * out[3] / 3.0
+
+
+@njit(error_model="numpy", fastmath=_FAST, cache=True)
+def _distance(one: Floats, two: Floats) -> float:
+    dx, dy, dz = one[0] - two[0], one[1] - two[1], one[2] - two[2]
+    return float(np.sqrt(dx * dx + dy * dy + dz * dz))
 
 
 @njit(error_model="numpy", cache=True)
@@ -133,13 +159,15 @@ def _add_exact(
 ) -> None:
     """Add mean moments of 1/R and R (2, 8): test points by rule, source exact."""
     point, seen, normal = work[0:3], work[3:14], work[14:17]
+    edges = work[17:38].reshape(3, 7)
     twice = _normal(source, normal)
+    _lay_edges(source, normal, edges)
     for q in range(rule.shape[0]):
         for axis in range(3):
             point[axis] = (
                 rule[q, 0] * test[0, axis] + rule[q, 1] * test[1, axis] + rule[q, 2] * test[2, axis]
             )
-        _source_integrals(point, source, normal, seen)
+        _source_integrals(point, source, normal, edges, seen)
         scale = weight * rule[q, 3] * 2.0 / twice
         for term in range(2):
             total = scale * seen[4 * term + 3]
@@ -239,7 +267,7 @@ def _pair_moments(
     """Mean moments of 1/R and R less their coarse sums."""
     moments[:] = 0.0
     if exact:
-        work, turned = np.empty(17), np.zeros((2, 8))
+        work, turned = np.empty(38), np.zeros((2, 8))
         _add_exact(test, source, rule, 0.5, work, moments)
         _add_exact(source, test, rule, 0.5, work, turned)
         for term in range(2):
