@@ -34,8 +34,18 @@ _TILE = 32  # rows and columns of a tile: two fit the fastest cache
 
 
 @njit(inline="always", fastmath=_FAST)
-def _sine_cosine(angle: float) -> tuple[float, float]:
-    """Sine and cosine to 1e-11 without a branch: power series of half the reduced angle."""
+def sine_cosine(angle: float) -> tuple[float, float]:
+    """Sine and cosine to 1e-11 without a branch: power series of half the reduced angle.
+
+    Parameters
+    ----------
+    angle : float
+        rad.
+
+    Returns
+    -------
+    tuple of (float, float)
+    """
     half = (angle - 2.0 * pi * np.floor(angle * (0.5 / pi) + 0.5)) * 0.5
     x = half * half
     s = -1.0 / 1307674368000.0
@@ -70,7 +80,7 @@ def _free_space_row(t: int, k: float, points: Floats, real: Floats, imag: Floats
                 dx, dy, dz = px[s] - x, py[s] - y, pz[s] - z
                 r = np.sqrt(dx * dx + dy * dy + dz * dz)
                 inverse = 1.0 / max(r, 1e-30)
-                sine, cosine = _sine_cosine(k * r)
+                sine, cosine = sine_cosine(k * r)
                 re[s] = cosine * inverse
                 im[s] = -sine * inverse
         real[4 * i, t] = 0.0
@@ -102,7 +112,7 @@ def _add_image(
         dx, dy, dz = px[s] - x, py[s] - y, turn * pz[s] + shift - z
         r = np.sqrt(dx * dx + dy * dy + dz * dz)
         inverse = 1.0 / max(r, 1e-30)
-        sine, cosine = _sine_cosine(k * r)
+        sine, cosine = sine_cosine(k * r)
         real[s] += (weight.real * cosine + weight.imag * sine) * inverse
         imag[s] += (weight.imag * cosine - weight.real * sine) * inverse
 
