@@ -113,12 +113,14 @@ class _Net:
 
     def _crossings(self, a: int, b: int) -> list[tuple[int, int]]:
         """Inner edges that the line a-b crosses."""
-        edges = np.vstack([self._known, *self._later])
-        p = self._points
+        if self._later:
+            self._known = np.concatenate([self._known, np.array(self._later)])
+            self._later.clear()
+        edges, p = self._known, self._points
         start, end = p[edges[:, 0]], p[edges[:, 1]]
         one = _cross(p[b] - p[a], start - p[a]) * _cross(p[b] - p[a], end - p[a])
         two = _cross(end - start, p[a] - start) * _cross(end - start, p[b] - start)
-        free = ~np.isin(edges, (a, b)).any(axis=1)
+        free = ((edges != a) & (edges != b)).all(axis=1)
         met = edges[(one < 0.0) & (two < 0.0) & free].tolist()
         return [(u, v) for u, v in met if (u, v) in self._apex and (v, u) in self._apex]
 
