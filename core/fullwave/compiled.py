@@ -26,6 +26,7 @@ if TYPE_CHECKING:
     Floats = NDArray[np.float64]
     Ints = NDArray[np.int64]
     Complexes = NDArray[np.complex128]
+    Functions = tuple[Ints, Ints, Floats, Ints, Ints, Ints]
     Near = tuple[Ints, Ints, Floats, Complexes]
     Spacer = tuple[Ints, Complexes, Ints, Ints, Complexes, Floats, Floats]
 
@@ -196,7 +197,7 @@ def add_rows(
     real: Floats,
     imag: Floats,
     factor: complex,
-    functions: tuple[Ints, Ints, Floats, Ints, Ints],
+    functions: Functions,
     matrix: Complexes,
 ) -> None:
     """Add the halves of triangle t to the rows of the functions that they belong to.
@@ -213,7 +214,7 @@ def add_rows(
     matrix : (n, n) ndarray of complex
         Written to.
     """
-    starts, rows, signs, plus, minus = functions
+    starts, rows, signs, plus, minus, firsts = functions
     triangles = real.shape[2]
     for a in range(3):
         re, im = real[a].reshape(-1), imag[a].reshape(-1)
@@ -221,7 +222,7 @@ def add_rows(
         for place in range(starts[half], starts[half + 1]):
             row = matrix[rows[place]]
             scale = factor * signs[place]
-            for m in range(plus.shape[0]):
+            for m in range(firsts[t], plus.shape[0]):
                 one, two = plus[m], minus[m]
                 row[m] += scale * complex(re[one] - re[two], im[one] - im[two])
 
@@ -256,7 +257,7 @@ def add_free_space(
     near: Near,
     spacer: Spacer,
     foil: tuple[Complexes, Floats],
-    functions: tuple[Ints, Ints, Floats, Ints, Ints],
+    functions: Functions,
     matrix: Complexes,
 ) -> None:
     """Add the part of some triangles to the half-filled moment matrix in free space.
@@ -287,7 +288,8 @@ def add_free_space(
         (t, 3, 3), m².
     functions : tuple
         Where the functions of each half start (3 t + 1), those functions, their signs; the
-        positive and the negative half of each function (n,).
+        positive and the negative half of each function (n,); the first function that is on
+        each triangle or a later one (t,).
     matrix : (n, n) ndarray of complex
         Written to, in the rows of the functions on `triangles` alone.
     """

@@ -88,7 +88,7 @@ def add_layered(
     geometry: tuple[Floats, Floats, Floats],
     near: tuple[Ints, Ints, Floats, Floats, Floats, Floats],
     foil: tuple[Complexes, Floats],
-    functions: tuple[Ints, Ints, Floats, Ints, Ints],
+    functions: tuple[Ints, Ints, Floats, Ints, Ints, Ints],
     matrix: Complexes,
 ) -> None:
     """Add the part of some triangles to the half-filled moment matrix on a layered stack.

@@ -64,7 +64,7 @@ class Moments:
     runs: Ints
     images: SpacerImages
     overlaps: Floats
-    functions: tuple[Ints, Ints, Floats, Ints, Ints]
+    functions: tuple[Ints, Ints, Floats, Ints, Ints, Ints]
     colours: tuple[Ints, ...]
 
 
@@ -306,7 +306,7 @@ def half_overlaps(basis: Basis) -> Floats:
     return np.asarray(means * half[:, :, None] * half[:, None, :] / basis.areas[:, None, None])
 
 
-def half_functions(basis: Basis) -> tuple[Ints, Ints, Floats, Ints, Ints]:
+def half_functions(basis: Basis) -> tuple[Ints, Ints, Floats, Ints, Ints, Ints]:
     """Functions by half, with signs.
 
     Parameters
@@ -323,7 +323,11 @@ def half_functions(basis: Basis) -> tuple[Ints, Ints, Floats, Ints, Ints]:
     signs = np.repeat([1.0, -1.0], basis.count)
     order = np.argsort(halves, kind="stable")
     starts = np.searchsorted(halves[order], np.arange(3 * basis.triangles + 1))
-    return starts, numbers[order], signs[order], basis.plus, basis.minus
+    last = np.maximum(basis.plus % basis.triangles, basis.minus % basis.triangles)
+    firsts = np.full(basis.triangles, basis.count)
+    np.minimum.at(firsts, last, np.arange(basis.count))
+    firsts = np.minimum.accumulate(firsts[::-1])[::-1].copy()
+    return starts, numbers[order], signs[order], basis.plus, basis.minus, firsts
 
 
 def triangle_colours(basis: Basis) -> tuple[Ints, ...]:
