@@ -28,7 +28,6 @@ if TYPE_CHECKING:
     from core.response.judge import Verdict
     from core.response.model import Response
 
-_SOLVED: Final = "field check: {done} of about {total} frequencies solved"
 _MARKS: Final = {
     State.MET: "met",
     State.LIKELY: "likely",
@@ -66,7 +65,7 @@ def run(words: Namespace, out: TextIO) -> None:
     brief = design.brief
     frequencies = frequency_grid(brief.frequency, words.start, words.end, words.points)
     layout = build_layout(design)
-    response = ENGINES[words.engine](layout, frequencies, told_on_stderr(words.engine, _SOLVED))
+    response = ENGINES[words.engine](layout, frequencies, told_on_stderr(words.engine))
     verdicts = judge(response, brief.polarisation, brief.vswr, brief.axial_ratio_db)
     if words.json:
         record = _record(response, brief)
@@ -107,7 +106,7 @@ def _record(response: Response, brief: Brief) -> dict[str, Any]:
         "directivity_dbi": 10.0 * np.log10(response.directivity),
         "beamwidth_deg": np.degrees(response.beamwidth),
         "front_to_back_db": None if behind is None else 10.0 * np.log10(behind),
-        "trust": trust_record(response.trust),
+        "trust": trust_record(response),
     }
 
 
@@ -126,7 +125,7 @@ def _text(
     parts = [
         f"{design.name}, by the {response.engine} model, {low} to {high}\nBrief: {_asked(brief)}\n",
         table((_MARKS[one.state], _sentence(one)) for one in verdicts),
-        trust_text(response.trust),
+        trust_text(response),
         findings_text(findings),
     ]
     return "\n".join(part for part in parts if part)
