@@ -12,7 +12,7 @@ from app.verbs.findings import findings_record, findings_text
 from app.verbs.output import json_text, table
 from app.verbs.progress import told_on_stderr
 from core.design.polarisation import Polarisation
-from core.engines import ENGINES
+from core.engines import ENGINES, FIELD, LIVE
 from core.layout.build import build_layout
 from core.response.bands import DEFAULT_POINTS, frequency_grid
 from core.response.judge import SENSE_WORDS, State, judge
@@ -28,6 +28,7 @@ if TYPE_CHECKING:
     from core.response.judge import Verdict
     from core.response.model import Response
 
+_WHO: Final = {LIVE: "live model", FIELD: "field solver"}
 _MARKS: Final = {
     State.MET: "met",
     State.LIKELY: "likely",
@@ -123,7 +124,7 @@ def _text(
     brief, sweep = design.brief, response.sweep
     low, high = (format_quantity(float(f), Quantity.FREQUENCY) for f in sweep.frequency[[0, -1]])
     parts = [
-        f"{design.name}, by the {response.engine} model, {low} to {high}\nBrief: {_asked(brief)}\n",
+        f"{design.name}, by the {_WHO[response.engine]}, {low} to {high}\nBrief: {_asked(brief)}\n",
         table((_MARKS[one.state], _sentence(one)) for one in verdicts),
         trust_text(response),
         findings_text(findings),
