@@ -71,7 +71,7 @@ def _take_product(one: Floats, two: Floats, out: Floats) -> None:
 
 
 @njit(nogil=True, error_model="numpy", cache=True)
-def invert_tile(tile: Floats) -> None:
+def _invert_tile(tile: Floats) -> None:
     """Replace a tile by its inverse: Gauss and Jordan's elimination, rows swapped.
 
     Parameters
@@ -121,30 +121,54 @@ def _take_row(factor: complex, re: Floats, im: Floats, real: Floats, imag: Float
 
 
 @njit(nogil=True, cache=True)
-def eliminate(tiles: Floats, k: int, columns: Ints) -> None:
-    """Take row k of tiles, whose diagonal tile is inverted, off some later columns.
+def invert_panel(tiles: Floats, first: int, last: int) -> None:
+    """Invert the diagonal tiles of some columns that earlier ones are taken off already.
+
+    Parameters
+    ----------
+    tiles : (m, m, 2, b, b) ndarray of float
+        Written to.
+    first, last : int
+        First and past last column, each taken off the next.
+    """
+    for k in range(first, last):
+        _invert_tile(tiles[k, k])
+        for j in range(k + 1, last):
+            _take_rows(tiles, k, k + 1, j)
+
+
+@njit(nogil=True, cache=True)
+def eliminate(tiles: Floats, first: int, last: int, columns: Ints) -> None:
+    """Take some rows of tiles, their panel inverted, off some later columns.
 
     Parameters
     ----------
     tiles : (m, m, 2, b, b) ndarray of float
         Written to; above the diagonal with less the inverse times what is below, transposed.
-    k : int
+    first, last : int
+        First and past last row.
     columns : (...,) ndarray of int
-        Of tiles, > k. If column k + 1 is among them its diagonal tile is inverted as well.
+        Of tiles, >= last.
     """
+    for j in columns:
+        _take_rows(tiles, first, last, j)
+
+
+@njit(nogil=True, cache=True)
+def _take_rows(tiles: Floats, first: int, last: int, column: int) -> None:
+    """Take several rows off a column at once: each of its tiles is fetched but once."""
     side = tiles.shape[3]
     turned = np.empty((2, side, side))
-    for j in columns:
+    for k in range(first, last):
         for part in range(2):
             for a in range(side):
                 for b in range(side):
-                    turned[part, b, a] = -tiles[j, k, part, a, b]
-        tiles[k, j] = 0.0
-        _take_product(tiles[k, k], turned, tiles[k, j])
-        for i in range(j, tiles.shape[0]):
-            _take_product(tiles[i, k], tiles[k, j], tiles[i, j])
-            if i == k + 1:
-                invert_tile(tiles[i, i])
+                    turned[part, b, a] = -tiles[column, k, part, a, b]
+        tiles[k, column] = 0.0
+        _take_product(tiles[k, k], turned, tiles[k, column])
+    for i in range(column, tiles.shape[0]):
+        for k in range(first, last):
+            _take_product(tiles[i, k], tiles[k, column], tiles[i, column])
 
 
 @njit(nogil=True, fastmath=_FAST, cache=True)

@@ -10,6 +10,7 @@ Shapes: n unknowns, m tiles to a side, b rows of a tile, r right-hand sides.
 from __future__ import annotations
 
 from concurrent.futures import ThreadPoolExecutor
+from functools import partial
 from typing import TYPE_CHECKING, Final
 
 import numpy as np
@@ -25,6 +26,7 @@ if TYPE_CHECKING:
     Complexes = NDArray[np.complex128]
 
 _SIDE: Final = 48  # of a tile: three fit the second fastest cache, two of its rows the fastest
+_PANEL: Final = 2  # rows of tiles taken off at a time
 _INVERSION: Final = 3  # work of inverting a tile, in products of two tiles
 _EXACT: Final = 1e-11  # residual over right-hand side that will do
 _REFINED: Final = 2  # times that a solution is improved by its residual
@@ -65,28 +67,40 @@ def _eliminated(matrix: Complexes) -> Floats:
     from core.fullwave.compiled_solve import (  # noqa: PLC0415 - slow to load
         cut_tiles,
         eliminate,
-        invert_tile,
+        invert_panel,
     )
 
     count = -(-len(matrix) // _SIDE)
     tiles = np.empty((count, count, 2, _SIDE, _SIDE))
+
+    def take(first: int, last: int, share: tuple[int, Ints]) -> None:
+        worker, columns = share
+        eliminate(tiles, first, last, columns)
+        if worker == 0:  # has all columns of the next panel, and less of the others
+            invert_panel(tiles, last, min(last + _PANEL, count))
+
     with ThreadPoolExecutor(WORKERS) as pool:
         list(pool.map(lambda first: cut_tiles(matrix, tiles, first, WORKERS), range(WORKERS)))
-        invert_tile(tiles[0, 0])
-        for k in range(count - 1):
-            list(pool.map(lambda own, k=k: eliminate(tiles, k, own), _shares(k, count)))
+        invert_panel(tiles, 0, min(_PANEL, count))
+        for first in range(0, count - _PANEL, _PANEL):
+            last = first + _PANEL
+            list(pool.map(partial(take, first, last), enumerate(_shares(last, count))))
     return tiles
 
 
-def _shares(k: int, count: int) -> list[Ints]:
-    """Columns past the k-th, shared out so that all threads have about the same work."""
+def _shares(start: int, count: int) -> list[Ints]:
+    """Columns from `start` on, shared out so that all threads have about the same work."""
+    panel = range(start, min(start + _PANEL, count))
     shares: list[list[int]] = [[] for _ in range(WORKERS)]
+    shares[0] += panel
     work = [0] * WORKERS
-    for column in range(k + 1, count):
+    for place, column in enumerate(panel):
+        work[0] += (_PANEL + place) * (count - column + 1) + _INVERSION
+    for column in range(start + _PANEL, count):
         least = work.index(min(work))
         shares[least].append(column)
-        work[least] += count - column + 1 + (_INVERSION if column == k + 1 else 0)
-    return [np.array(one, dtype=np.int64) for one in shares if one]
+        work[least] += _PANEL * (count - column + 1)
+    return [np.array(one, dtype=np.int64) for one in shares]
 
 
 def _put_in(tiles: Floats, sides: Complexes) -> Complexes:
