@@ -16,6 +16,7 @@ sys.path[:0] = [str(TESTS.parent), str(TESTS), str(TESTS / "core" / "fullwave")]
 from bench.validation import kept_rows, percent, write_table
 from test_spacer import patch, pole
 
+from core.fullwave.board_kernels import BoardKernels
 from core.fullwave.layered_mesh import build_board_mesh
 from core.fullwave.layered_system import build_layered_system, solve_layered
 from core.fullwave.mesh import Level, build_mesh
@@ -45,7 +46,7 @@ def compared(height: float, name: str) -> dict:
     guess = 2.42e9 * (1.0 - 12.0 * (height - 6e-3)) / series_permittivity(layers) ** 0.5
     system = build_system(build_mesh(layout, Level.NORMAL), layout.foil, layers)
     board = build_board_mesh(layout, Level.NORMAL)
-    layered = build_layered_system(board, layers, layout.foil, 1.1 * guess)
+    layered = build_layered_system(board, BoardKernels(layers, layout.foil, 1.1 * guess))
     return {
         "finite": pole(lambda f: solve(system, f), guess),
         "endless": pole(lambda f: solve_layered(layered, f), guess),

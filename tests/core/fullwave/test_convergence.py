@@ -5,6 +5,7 @@ from board_shapes import board_dual_edge
 from fullwave_shapes import thick_air, thin_air
 from mesh_variants import REFERENCE, meshes
 
+from core.fullwave.board_kernels import BoardKernels
 from core.fullwave.layered_mesh import build_board_mesh
 from core.fullwave.layered_system import build_layered_system, solve_layered
 from core.fullwave.mesh import Level, build_mesh
@@ -29,7 +30,7 @@ def match_and_ratio(layout, finest=None, row=None):
             solution = solve(build_system(mesh, layout.foil, layout.stack), FREQUENCY)
         else:
             mesh = build_board_mesh(layout, Level.FINE)
-            system = build_layered_system(mesh, layout.stack, layout.foil, FREQUENCY)
+            system = build_layered_system(mesh, BoardKernels(layout.stack, layout.foil, FREQUENCY))
             solution = solve_layered(system, FREQUENCY)
     normalised = 50.0 * solution.admittance
     ratio = (solution.e_x - 1j * solution.e_y) / (solution.e_x + 1j * solution.e_y)

@@ -10,6 +10,7 @@ from fullwave_shapes import thick_air, thin_air
 from lots import LOTS, drawn
 
 from core.constants import FREE_SPACE_IMPEDANCE, SPEED_OF_LIGHT, TWO_PI
+from core.fullwave.board_kernels import BoardKernels
 from core.fullwave.far_field import direction_frame, sphere_power
 from core.fullwave.layered_fields import power_into_space, power_into_waves, space_field
 from core.fullwave.layered_mesh import build_board_mesh
@@ -46,7 +47,7 @@ def free_space_balance(layout):
 def board_balance(layout):
     """Power into space and surface waves, over power accepted; the same."""
     mesh = build_board_mesh(layout, Level.COARSE)
-    system = build_layered_system(mesh, layout.stack, layout.foil, BAND[-1])
+    system = build_layered_system(mesh, BoardKernels(layout.stack, layout.foil, BAND[-1]))
     solutions = [solve_layered(system, frequency) for frequency in BAND]
     flowing = board_currents(system, solutions[1].currents, BAND[1])
     sent = power_into_space(flowing) + power_into_waves(flowing)
@@ -137,7 +138,9 @@ def test_board_receives_as_it_sends(layers, theta):
     # By hand: the wave's field on the bare stack acts on the current that 1 V at the port makes.
     layout, frequency, phi = board_dual_edge(), 2.45e9, 0.7
     k = TWO_PI * frequency / SPEED_OF_LIGHT
-    system = build_layered_system(build_board_mesh(layout, Level.COARSE), layers, IDEAL, frequency)
+    system = build_layered_system(
+        build_board_mesh(layout, Level.COARSE), BoardKernels(layers, IDEAL, frequency)
+    )
     flowing = board_currents(system, solve_layered(system, frequency).currents, frequency)
     _, sent = space_field(flowing, np.array([theta]), np.array([phi]))
     ahead, across = np.array([np.cos(phi), np.sin(phi)]), np.array([-np.sin(phi), np.cos(phi)])
@@ -150,7 +153,7 @@ def test_board_matrix_is_symmetric_probe_and_all():
     # So any two ports on it see each other alike.
     layout, frequency = board_dual_edge(), 2.45e9
     system = build_layered_system(
-        build_board_mesh(layout, Level.COARSE), layout.stack, IDEAL, frequency
+        build_board_mesh(layout, Level.COARSE), BoardKernels(layout.stack, IDEAL, frequency)
     )
     k = TWO_PI * frequency / SPEED_OF_LIGHT
     tables = system.plan(k).tables(np.array([k]), 0.0)
