@@ -40,8 +40,20 @@ _FAST = {"contract", "nnan", "ninf", "nsz", "arcp"}  # sums keep their order
 
 
 @njit(error_model="numpy", cache=True)
-def _line_log(low: float, high: float, r_low: float, r_high: float) -> float:
-    """Integral of 1/R along a segment: log((R+ + s+) / (R- + s-)), without cancellation."""
+def line_log(low: float, high: float, r_low: float, r_high: float) -> float:
+    """Integral of 1/R along a segment: log((R+ + s+) / (R- + s-)), without cancellation.
+
+    Parameters
+    ----------
+    low, high : float
+        Where it starts and ends, along itself, from the foot of the point, m.
+    r_low, r_high : float
+        Distances of its ends from the point, m.
+
+    Returns
+    -------
+    float
+    """
     if low + high >= 0.0:
         return float(np.log((r_high + high) / max(r_low + low, _TINY)))
     return float(np.log((r_low - low) / max(r_high - high, _TINY)))
@@ -79,7 +91,7 @@ def _add_edge(
     high = low + length
     away = mx * dx + my * dy + mz * dz
     squared = away * away + height * height
-    line_1 = _line_log(low, high, r_low, r_high) if squared > 1e-24 * length * length else 0.0
+    line_1 = line_log(low, high, r_low, r_high) if squared > 1e-24 * length * length else 0.0
     line1 = 0.5 * (high * r_high - low * r_low + squared * line_1)
     line3 = 0.25 * (high * r_high**3 - low * r_low**3 + 3.0 * squared * line1)
     out[0] += mx * line1
@@ -132,8 +144,21 @@ def _distance(one: Floats, two: Floats) -> float:
 
 
 @njit(error_model="numpy", cache=True)
-def _normal(corners: Floats, out: Floats) -> float:
-    """Write the unit normal; return twice the area."""
+def normal_of(corners: Floats, out: Floats) -> float:
+    """Write a triangle's unit normal.
+
+    Parameters
+    ----------
+    corners : (3, 3) ndarray of float
+        m.
+    out : (3,) ndarray of float
+        Written.
+
+    Returns
+    -------
+    float
+        Twice the area, m².
+    """
     x1, y1, z1 = (
         corners[1, 0] - corners[0, 0],
         corners[1, 1] - corners[0, 1],
@@ -160,7 +185,7 @@ def _add_exact(
     """Add mean moments of 1/R and R (2, 8): test points by rule, source exact."""
     point, seen, normal = work[0:3], work[3:14], work[14:17]
     edges = work[17:38].reshape(3, 7)
-    twice = _normal(source, normal)
+    twice = normal_of(source, normal)
     _lay_edges(source, normal, edges)
     for q in range(rule.shape[0]):
         for axis in range(3):
@@ -177,17 +202,6 @@ def _add_exact(
                 moments[term, 1 + axis] += point[axis] * total
                 moments[term, 4 + axis] += arm
                 moments[term, 7] += point[axis] * arm
-
-
-@njit(inline="always", error_model="numpy", fastmath=_FAST)
-def _point(rule: Floats, i: int, corners: Floats) -> tuple[float, float, float]:
-    """Point of a rule in a triangle."""
-    a, b, c = rule[i, 0], rule[i, 1], rule[i, 2]
-    return (
-        a * corners[0, 0] + b * corners[1, 0] + c * corners[2, 0],
-        a * corners[0, 1] + b * corners[1, 1] + c * corners[2, 1],
-        a * corners[0, 2] + b * corners[1, 2] + c * corners[2, 2],
-    )
 
 
 @njit(error_model="numpy", fastmath=_FAST, cache=True)
@@ -418,99 +432,3 @@ def near_terms(
                         value -= test[a, axis] * m[4 + axis] + source[b, axis] * m[1 + axis]
                         value += test[a, axis] * source[b, axis] * m[0]
                     currents[p, term, a, b] = value
-
-
-@njit(error_model="numpy", fastmath=_FAST, cache=True)
-def _mean_potential(
-    test: Floats, source: Floats, rule: Floats, normal: Floats, point: Floats
-) -> float:
-    """Mean of 1/R over two triangles: test points by rule, source exact."""
-    twice = _normal(source, normal)
-    total = 0.0
-    for q in range(rule.shape[0]):
-        point[0], point[1], point[2] = _point(rule, q, test)
-        height = 0.0
-        for axis in range(3):
-            height += normal[axis] * (point[axis] - source[0, axis])
-        for axis in range(3):
-            point[axis] -= height * normal[axis]
-        seen = 0.0
-        for i in range(3):
-            seen += _edge_potential(source[i], source[(i + 1) % 3], normal, point, abs(height))
-        total += rule[q, 3] * seen
-    return total * 2.0 / twice
-
-
-@njit(error_model="numpy", fastmath=_FAST, cache=True)
-def _edge_potential(one: Floats, two: Floats, normal: Floats, foot: Floats, height: float) -> float:
-    """What one edge of the source triangle gives of the integral of 1/R."""
-    ax, ay, az = two[0] - one[0], two[1] - one[1], two[2] - one[2]
-    length = np.sqrt(ax * ax + ay * ay + az * az)
-    ax, ay, az = ax / length, ay / length, az / length
-    dx, dy, dz = one[0] - foot[0], one[1] - foot[1], one[2] - foot[2]
-    low = ax * dx + ay * dy + az * dz
-    high = low + length
-    away = (ay * normal[2] - az * normal[1]) * dx
-    away += (az * normal[0] - ax * normal[2]) * dy
-    away += (ax * normal[1] - ay * normal[0]) * dz
-    squared = away * away + height * height
-    if squared <= 1e-24 * length * length:
-        return 0.0
-    r_low, r_high = np.sqrt(squared + low * low), np.sqrt(squared + high * high)
-    total = away * _line_log(low, high, r_low, r_high)
-    if height < 1e-12 * length:
-        return float(total)
-    over, under = squared + height * r_high, squared + height * r_low
-    turned = np.arctan2(away * (high * under - low * over), over * under + away * away * high * low)
-    return float(total - height * turned)
-
-
-@njit(nogil=True, error_model="numpy", cache=True)
-def near_charges(
-    corners: Floats,
-    pairs: Ints,
-    kinds: Ints,
-    image: tuple[float, float],
-    rules: tuple[Floats, Ints],
-    charges: Floats,
-) -> None:
-    """Near terms of the charges of pairs of triangles, the second at its image.
-
-    Parameters
-    ----------
-    corners, pairs, kinds, rules
-        As `near_terms` takes them.
-    image : tuple of (float, float)
-        Turn and shift: heights of an image are turn z + shift, m.
-    charges : (p,) ndarray of float
-        Written: means of 1/R, less their coarse sums, 1/m.
-    """
-    points, starts = rules
-    coarse = points[: starts[1]]
-    source, normal, point = np.empty((3, 3)), np.empty(3), np.empty(3)
-    for p in range(pairs.shape[0]):
-        test = corners[pairs[p, 0]]
-        for i in range(3):
-            source[i, 0] = corners[pairs[p, 1], i, 0]
-            source[i, 1] = corners[pairs[p, 1], i, 1]
-            source[i, 2] = image[0] * corners[pairs[p, 1], i, 2] + image[1]
-        rule = points[starts[kinds[p]] : starts[kinds[p] + 1]]
-        if kinds[p] >= 2:
-            mean = 0.5 * _mean_potential(test, source, rule, normal, point)
-            mean += 0.5 * _mean_potential(source, test, rule, normal, point)
-        else:
-            mean = _mean_inverse(test, source, rule)
-        charges[p] = mean - _mean_inverse(test, source, coarse)
-
-
-@njit(error_model="numpy", fastmath=_FAST, cache=True)
-def _mean_inverse(test: Floats, source: Floats, rule: Floats) -> float:
-    """Mean of 1/R over two triangles by points."""
-    total = 0.0
-    for i in range(rule.shape[0]):
-        x, y, z = _point(rule, i, test)
-        for j in range(rule.shape[0]):
-            u, v, w = _point(rule, j, source)
-            squared = (x - u) ** 2 + (y - v) ** 2 + (z - w) ** 2
-            total += rule[i, 3] * rule[j, 3] / np.sqrt(squared)
-    return float(total)

@@ -317,7 +317,7 @@ def pair_terms(
 
 def _image_charges(basis: Basis, pairs: Ints, kinds: Ints, image: tuple[float, float]) -> Floats:
     """Near terms (p,) of 1/R alone, for the charges of pairs of triangles."""
-    from core.fullwave.compiled_near import near_charges  # noqa: PLC0415 - slow to load
+    from core.fullwave.compiled_charges import near_charges  # noqa: PLC0415 - slow to load
 
     charges, place = np.empty(len(pairs)), (float(image[0]), float(image[1]))
 
