@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
+from functools import partial
 from importlib.metadata import version
 from typing import TYPE_CHECKING, Final, Protocol
 
@@ -124,11 +125,6 @@ class FieldCheck(QObject):
         return bool(self._settings.value("field_check"))
 
     @property
-    def level(self) -> str:
-        """Level of mesh to solve on at rest."""
-        return str(self._settings.value("mesh_level"))
-
-    @property
     def current(self) -> Checked | None:
         """Answer for the very design on the bench."""
         last = self.last
@@ -140,17 +136,39 @@ class FieldCheck(QObject):
         current, checked = self._pipeline.current, self.current
         if not self.is_on or current.layout is None or self._is_done():
             return
-        if checked is not None and checked.level == self.level:
-            self._compare(checked)
-        else:
-            self._solve(current)
+        level = QUICK if self._is_held else _level(self._settings)
+        if checked is not None and checked.level == level:
+            coarser = NEXT_COARSER[level]
+            self._tell(busy=_COMPARING.format(level=level, coarser=coarser))
+            self._runner.start(
+                Request(
+                    KIND,
+                    partial(_compared, checked, self._solver),
+                    self._on_checked,
+                    # The finer mesh may do where this one does not: its readings stand.
+                    lambda _error: self._on_checked(replace(checked, is_compared=True)),
+                )
+            )
+            return
+        busy = _FOLLOWS if self._is_held else "Field check: first frequency"
+        self._tell(busy=busy if self._is_ready else _PREPARING)
+        self._runner.start(
+            Request(
+                KIND,
+                partial(_checked, current, level, checked, self._solver),
+                self._on_checked,
+                lambda error: self._tell(problem=_reason(error)),
+                self._on_stepped,
+            )
+        )
 
     def stop(self) -> None:
         """Stop solving until the next edit; an answer that only lacks its plus and minus stands."""
         checked = self.current
         self._leave()
         self._rest.stop()
-        self._tell(is_stopped=checked is None or checked.level != self.level)
+        is_answered = checked is not None and checked.level == _level(self._settings)
+        self._tell(is_stopped=not is_answered)
 
     def close(self) -> None:
         """End for good: nothing is solved and nobody is told."""
@@ -176,35 +194,7 @@ class FieldCheck(QObject):
         checked = self.current
         if checked is None or self._is_held:
             return checked is not None
-        return checked.level == self.level and checked.is_compared
-
-    def _solve(self, current: Evaluation) -> None:
-        level = QUICK if self._is_held else self.level
-        known = self.current
-        busy = _FOLLOWS if self._is_held else "Field check: first frequency"
-        self._tell(busy=busy if self._is_ready else _PREPARING)
-        self._runner.start(
-            Request(
-                KIND,
-                lambda progress: _checked(current, level, self._solver, progress, known),
-                self._on_checked,
-                lambda error: self._tell(problem=_reason(error)),
-                self._on_stepped,
-            )
-        )
-
-    def _compare(self, checked: Checked) -> None:
-        coarser = NEXT_COARSER[checked.level]
-        self._tell(busy=_COMPARING.format(level=checked.level, coarser=coarser))
-        self._runner.start(
-            Request(
-                KIND,
-                lambda progress: _compared(checked, self._solver, progress),
-                self._on_checked,
-                # The finer mesh may do where this one does not: its readings stand as they are.
-                lambda _error: self._on_checked(replace(checked, is_compared=True)),
-            )
-        )
+        return checked.level == _level(self._settings) and checked.is_compared
 
     def _leave(self) -> None:
         """Leave what is being solved."""
@@ -249,6 +239,11 @@ class FieldCheck(QObject):
             self.start()
 
 
+def _level(settings: Settings) -> str:
+    """Level of mesh to solve on at rest."""
+    return str(settings.value("mesh_level"))
+
+
 def _reason(error: CoreError) -> str:
     return str(error).removeprefix("field solver: ")
 
@@ -266,7 +261,7 @@ class _Counted:
 
 
 def _checked(
-    current: Evaluation, level: str, solver: Solver, progress: Progress, known: Checked | None
+    current: Evaluation, level: str, known: Checked | None, solver: Solver, progress: Progress
 ) -> Checked:
     """Solve a design at the frequencies of the curves and hold it against its brief.
 

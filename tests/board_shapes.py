@@ -14,7 +14,8 @@ from core.design.stock import DiscGround, Stock
 from core.fullwave.layered_mesh import BoardMesh
 from core.fullwave.mesh_model import CoaxRing
 from core.layout.build import build_layout
-from core.layout.model import Foil
+from core.layout.model import Foil, Role
+from core.shapes.outline import Region, circle
 
 IDEAL = Foil(50e-6, 1e18)
 
@@ -33,6 +34,16 @@ def board_patch(width, length, height, eps_r, frequency, feed=0.15, tan=0.001):
     return build_layout(
         replace(design, brief=brief, stock=stock, element=Element(width, length), feed=probe)
     )
+
+
+def board_disc(radius, height, eps_r, frequency, feed=0.12, tan=0.001):
+    """Layout of a probe-fed disc on one layer; the probe `feed` diameters from its middle."""
+    layout = board_patch(2.0 * radius, 2.0 * radius, height, eps_r, frequency, feed, tan)
+    disc = Region(circle(2.0 * radius))
+    pieces = tuple(
+        replace(one, region=disc) if one.role is Role.TOP_COPPER else one for one in layout.pieces
+    )
+    return replace(layout, pieces=pieces)
 
 
 def board_dual_edge():

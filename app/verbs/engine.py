@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import argparse
 from functools import partial
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING, Any, Protocol
 
 from app.verbs.arguments import VerbParser, unknown_word
 from app.verbs.output import table
@@ -15,6 +15,13 @@ if TYPE_CHECKING:
     from collections.abc import Collection, Mapping
 
     from core.response.model import Reading, Trust
+
+
+class Told(Protocol):
+    """Anything that knows how far it can be trusted, such as a response."""
+
+    @property
+    def trust(self) -> Mapping[Reading, Trust]: ...
 
 
 def add_engine(parser: VerbParser, default: str | None = LIVE, left_out: str = "") -> None:
@@ -38,7 +45,7 @@ def add_mesh(parser: VerbParser) -> None:
     )
 
 
-def trust_record(told: Mapping[Reading, Trust]) -> dict[str, dict[str, Any]]:
+def trust_record(told: Told) -> dict[str, dict[str, Any]]:
     """How far each reading can be trusted, for programs."""
     return {
         reading.value: {
@@ -46,14 +53,14 @@ def trust_record(told: Mapping[Reading, Trust]) -> dict[str, dict[str, Any]]:
             "reason": trust.reason,
             "remedy": trust.remedy or None,
         }
-        for reading, trust in told.items()
+        for reading, trust in told.trust.items()
     }
 
 
-def trust_text(told: Mapping[Reading, Trust]) -> str:
+def trust_text(told: Told) -> str:
     """How far each reading can be trusted, those alike in one line."""
     alike: dict[Trust, list[str]] = {}
-    for reading, trust in told.items():
+    for reading, trust in told.trust.items():
         alike.setdefault(trust, []).append(reading.replace("_", " "))
     rows = [
         (trust.level.value, f"{', '.join(names)}: {trust.reason}{_cure(trust)}")

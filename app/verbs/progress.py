@@ -3,13 +3,16 @@
 from __future__ import annotations
 
 import sys
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Final
 
 from core.engines import LIVE
 from core.progress import SILENT
 
 if TYPE_CHECKING:
     from core.progress import Progress
+
+
+_SOLVED: Final = "field check: {done} of about {total} frequencies solved"
 
 
 class _OnStandardError:
@@ -25,7 +28,7 @@ class _OnStandardError:
         sys.stderr.flush()
 
 
-def told_on_stderr(engine: str, words: str) -> Progress:
+def told_on_stderr(engine: str, words: str = _SOLVED) -> Progress:
     """Listener for an engine: silent for the one that answers at once.
 
     The words say what is done, with places for {done} and {total}.

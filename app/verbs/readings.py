@@ -12,7 +12,7 @@ from app.verbs.progress import told_on_stderr
 from app.verbs.response_record import response_record
 from app.verbs.solved import add_solved, asked, solve, solved_record, solved_text
 from core.design.polarisation import Polarisation
-from core.engines import ENGINES, FIELD
+from core.engines import ENGINES, FIELD, LIVE
 from core.layout.build import build_layout
 from core.response.bands import DEFAULT_POINTS, frequency_grid
 from core.response.judge import SENSE_WORDS, State, judge
@@ -27,7 +27,7 @@ if TYPE_CHECKING:
     from core.response.judge import Verdict
     from core.response.model import Response
 
-_SOLVED: Final = "field check: {done} of about {total} frequencies solved"
+_WHO: Final = {LIVE: "live model", FIELD: "field solver"}
 _MARKS: Final = {
     State.MET: "met",
     State.LIKELY: "likely",
@@ -67,7 +67,7 @@ def run(words: Namespace, out: TextIO) -> None:
     brief = design.brief
     frequencies = frequency_grid(brief.frequency, words.start, words.end, words.points)
     layout = build_layout(design)
-    progress = told_on_stderr(words.engine, _SOLVED)
+    progress = told_on_stderr(words.engine)
     wanted = asked(words, layout)
     answer: Solved | None = None
     if words.engine == FIELD:
@@ -101,10 +101,10 @@ def _text(
     brief, sweep = design.brief, response.sweep
     low, high = (format_quantity(float(f), Quantity.FREQUENCY) for f in sweep.frequency[[0, -1]])
     parts = [
-        f"{design.name}, by the {response.engine} model, {low} to {high}\nBrief: {_asked(brief)}\n",
+        f"{design.name}, by the {_WHO[response.engine]}, {low} to {high}\nBrief: {_asked(brief)}\n",
         table((_MARKS[one.state], _sentence(one)) for one in verdicts),
         more,
-        trust_text(response.trust),
+        trust_text(response),
         findings_text(findings),
     ]
     return "\n".join(part for part in parts if part)

@@ -55,7 +55,7 @@ def response_record(response: Response, brief: Brief) -> dict[str, Any]:
         **_by_direction(response.sphere, brief.polarisation),
         "plus_minus": None if response.spread is None else _plus_minus(response.spread),
         "mesh": None if response.mesh is None else _mesh(response.mesh),
-        "trust": trust_record(response.trust),
+        "trust": trust_record(response),
     }
 
 

@@ -107,7 +107,7 @@ def run(words: Namespace, out: TextIO) -> None:
     written = f"written to {words.output}" if words.output else "not written: -o FILE was left out"
     told = findings_text(findings)
     out.write(
-        f"{sized.reason}\n\n{_sizes(sized.design)}\n{trust_text(sized.trust)}"
+        f"{sized.reason}\n\n{_sizes(sized.design)}\n{trust_text(sized)}"
         + (f"\n{told}" if told else "")
         + f"\n{written}\n"
     )
@@ -147,7 +147,7 @@ class _Sized:
             "fine_solves": 0 if settling is None else settling.fine_solves,
             "level": None if settling is None else settling.level.value,
             "design": to_record(told.design),
-            "trust": trust_record(self.trust),
+            "trust": trust_record(self),
         }
 
 

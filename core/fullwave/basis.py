@@ -101,6 +101,9 @@ def build_basis(vertices: Floats, triangles: Ints, rank: Ints) -> Basis:
     fresh[1:] = (ends[halves[1:]] != ends[halves[:-1]]).any(axis=1)
     first = np.maximum.accumulate(np.where(fresh, np.arange(len(halves)), 0))
     plus, minus = halves[first][~fresh], halves[~fresh]
+    # By the last triangle, so that the matrix fill can leave out those that it is past.
+    order = np.argsort(np.maximum(plus % len(rank), minus % len(rank)), kind="stable")
+    plus, minus = plus[order], minus[order]
     return Basis(
         corners=corners,
         areas=np.linalg.norm(normals, axis=1) / 2.0,

@@ -18,12 +18,15 @@ from typing import TYPE_CHECKING
 import numpy as np
 from numba import njit
 
+from core.fullwave.compiled_moments import half_moments
+
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
     Floats = NDArray[np.float64]
     Ints = NDArray[np.int64]
     Complexes = NDArray[np.complex128]
+    Functions = tuple[Ints, Ints, Floats, Ints, Ints, Ints]
     Near = tuple[Ints, Ints, Floats, Complexes]
     Spacer = tuple[Ints, Complexes, Ints, Ints, Complexes, Floats, Floats]
 
@@ -32,8 +35,18 @@ _TILE = 32  # rows and columns of a tile: two fit the fastest cache
 
 
 @njit(inline="always", fastmath=_FAST)
-def _sine_cosine(angle: float) -> tuple[float, float]:
-    """Sine and cosine to 1e-11 without a branch: power series of half the reduced angle."""
+def sine_cosine(angle: float) -> tuple[float, float]:
+    """Sine and cosine to 1e-11 without a branch: power series of half the reduced angle.
+
+    Parameters
+    ----------
+    angle : float
+        rad.
+
+    Returns
+    -------
+    tuple of (float, float)
+    """
     half = (angle - 2.0 * pi * np.floor(angle * (0.5 / pi) + 0.5)) * 0.5
     x = half * half
     s = -1.0 / 1307674368000.0
@@ -68,7 +81,7 @@ def _free_space_row(t: int, k: float, points: Floats, real: Floats, imag: Floats
                 dx, dy, dz = px[s] - x, py[s] - y, pz[s] - z
                 r = np.sqrt(dx * dx + dy * dy + dz * dz)
                 inverse = 1.0 / max(r, 1e-30)
-                sine, cosine = _sine_cosine(k * r)
+                sine, cosine = sine_cosine(k * r)
                 re[s] = cosine * inverse
                 im[s] = -sine * inverse
         real[4 * i, t] = 0.0
@@ -100,7 +113,7 @@ def _add_image(
         dx, dy, dz = px[s] - x, py[s] - y, turn * pz[s] + shift - z
         r = np.sqrt(dx * dx + dy * dy + dz * dz)
         inverse = 1.0 / max(r, 1e-30)
-        sine, cosine = _sine_cosine(k * r)
+        sine, cosine = sine_cosine(k * r)
         real[s] += (weight.real * cosine + weight.imag * sine) * inverse
         imag[s] += (weight.imag * cosine - weight.real * sine) * inverse
 
@@ -139,117 +152,6 @@ def _scalar_row(
                 )
                 for n in range(starts[own, other], stops[own, other]):
                     _add_image(k, place, weights[n], turns[n], shifts[n], there, (re, im))
-
-
-@njit(fastmath=_FAST, cache=True)
-def _add(t: int, weight: float, one: Floats, out: Floats) -> None:
-    x, y = one[t:], out[t:]
-    for s in range(y.shape[0]):
-        y[s] += weight * x[s]
-
-
-@njit(fastmath=_FAST, cache=True)
-def _sum_up(t: int, kernel: Floats, out: Floats) -> None:
-    """Sum a kernel (3, t) over source points."""
-    g0, g1, g2, total = kernel[0][t:], kernel[1][t:], kernel[2][t:], out[t:]
-    for s in range(total.shape[0]):
-        total[s] = g0[s] + g1[s] + g2[s]
-
-
-@njit(fastmath=_FAST, cache=True)
-def _weigh(t: int, kernel: Floats, places: Floats, origin: float, out: Floats) -> None:
-    """Sum a kernel (3, t) over source points, each times one coordinate (3, t) less the origin."""
-    g0, g1, g2, total = kernel[0][t:], kernel[1][t:], kernel[2][t:], out[t:]
-    x0, x1, x2 = places[0][t:], places[1][t:], places[2][t:]
-    for s in range(total.shape[0]):
-        total[s] = g0[s] * (x0[s] - origin) + g1[s] * (x1[s] - origin) + g2[s] * (x2[s] - origin)
-
-
-@njit(fastmath=_FAST, cache=True)
-def _project(
-    t: int,
-    weight: float,
-    both: Floats,
-    test: Floats,
-    places: Floats,
-    origin: Floats,
-    lengths: Floats,
-    out: Floats,
-) -> None:
-    """Moment with the source halves that leave from `places`: x, y, z (t,) each."""
-    x, y, z = places[0][t:], places[1][t:], places[2][t:]
-    tx, ty, tz = test[0][t:], test[1][t:], test[2][t:]
-    all_in, length, moment = both[t:], lengths[t:], out[t:]
-    ox, oy, oz = origin[0], origin[1], origin[2]
-    for s in range(moment.shape[0]):
-        current = all_in[s] - (x[s] - ox) * tx[s] - (y[s] - oy) * ty[s] - (z[s] - oz) * tz[s]
-        moment[s] = weight * length[s] * current
-
-
-@njit(fastmath=_FAST, cache=True)
-def half_moments(
-    t: int,
-    vector: Floats,
-    scalar: Floats,
-    charge: float,
-    geometry: tuple[Floats, Floats, Floats],
-    work: Floats,
-    out: Floats,
-) -> None:
-    """Moments of a kernel with the halves of triangle t and those from t on.
-
-    Parameters
-    ----------
-    t : int
-        Test triangle.
-    vector, scalar : (9, t) ndarray of float
-        Kernel of currents and of charges at the pairs of points.
-    charge : float
-        What the charges are multiplied by, m².
-    geometry : tuple
-        As `add_free_space` takes it.
-    work : (14, t) ndarray of float
-        Written to.
-    out : (3, 3, t) ndarray of float
-        Written.
-
-    Notes
-    -----
-    `vector` weighs currents; `scalar` weighs charges, times `charge`. The sum over points of
-    (r - p).(r' - p') splits into the kernel's moments 1, r, r' and r.r', taken about the
-    middle of triangle t to lose no digits. Each loop has few arrays, or the compiler makes
-    no vector loop of it.
-    """
-    points, corners, half_lengths = geometry
-    source, test, from_corner = work[0:3], work[3:6], work[6:9]
-    both, none, inner, mine, charges = work[9], work[10], work[11], work[12], work[13]
-    work[:11, t:] = 0.0
-    middle = np.empty(3)
-    for axis in range(3):
-        middle[axis] = (corners[axis, 0, t] + corners[axis, 1, t] + corners[axis, 2, t]) / 3.0
-    for i in range(3):
-        kernel = vector[3 * i : 3 * i + 3]
-        _sum_up(t, kernel, inner)
-        _add(t, 1.0, inner, none)
-        _sum_up(t, scalar[3 * i : 3 * i + 3], charges)
-        _add(t, 4.0 * charge, charges, both)
-        for axis in range(3):
-            place = points[axis, i, t] - middle[axis]
-            _add(t, place, inner, test[axis])
-            _weigh(t, kernel, points[axis], middle[axis], mine)
-            _add(t, 1.0, mine, source[axis])
-            _add(t, place, mine, both)
-    for a in range(3):
-        mine[t:] = both[t:]
-        for axis in range(3):
-            place = corners[axis, a, t] - middle[axis]
-            _add(t, -place, source[axis], mine)
-            from_corner[axis, t:] = test[axis, t:]
-            _add(t, -place, none, from_corner[axis])
-        weight = half_lengths[a, t] / 9.0
-        for b in range(3):
-            leaving = corners[:, b]
-            _project(t, weight, mine, from_corner, leaving, middle, half_lengths[b], out[a, b])
 
 
 @njit(fastmath=_FAST, cache=True)
@@ -295,7 +197,7 @@ def add_rows(
     real: Floats,
     imag: Floats,
     factor: complex,
-    functions: tuple[Ints, Ints, Floats, Ints, Ints],
+    functions: Functions,
     matrix: Complexes,
 ) -> None:
     """Add the halves of triangle t to the rows of the functions that they belong to.
@@ -312,7 +214,7 @@ def add_rows(
     matrix : (n, n) ndarray of complex
         Written to.
     """
-    starts, rows, signs, plus, minus = functions
+    starts, rows, signs, plus, minus, firsts = functions
     triangles = real.shape[2]
     for a in range(3):
         re, im = real[a].reshape(-1), imag[a].reshape(-1)
@@ -320,7 +222,7 @@ def add_rows(
         for place in range(starts[half], starts[half + 1]):
             row = matrix[rows[place]]
             scale = factor * signs[place]
-            for m in range(plus.shape[0]):
+            for m in range(firsts[t], plus.shape[0]):
                 one, two = plus[m], minus[m]
                 row[m] += scale * complex(re[one] - re[two], im[one] - im[two])
 
@@ -355,7 +257,7 @@ def add_free_space(
     near: Near,
     spacer: Spacer,
     foil: tuple[Complexes, Floats],
-    functions: tuple[Ints, Ints, Floats, Ints, Ints],
+    functions: Functions,
     matrix: Complexes,
 ) -> None:
     """Add the part of some triangles to the half-filled moment matrix in free space.
@@ -386,7 +288,8 @@ def add_free_space(
         (t, 3, 3), m².
     functions : tuple
         Where the functions of each half start (3 t + 1), those functions, their signs; the
-        positive and the negative half of each function (n,).
+        positive and the negative half of each function (n,); the first function that is on
+        each triangle or a later one (t,).
     matrix : (n, n) ndarray of complex
         Written to, in the rows of the functions on `triangles` alone.
     """
@@ -394,7 +297,7 @@ def add_free_space(
     sheets, overlaps = foil
     n = points.shape[2]
     charge = -1.0 / (k * k)
-    real, imag, work = np.empty((9, n)), np.empty((9, n)), np.empty((14, n))
+    real, imag = np.empty((9, n)), np.empty((9, n))
     real_out, imag_out = np.empty((3, 3, n)), np.empty((3, 3, n))
     scalar_real, scalar_imag = real, imag
     in_air = spacer[4].shape[0] == 0
@@ -406,8 +309,8 @@ def add_free_space(
         _free_space_row(t, k, points, real, imag)
         if not in_air:
             _scalar_row(t, k, points, spacer, (real, imag), (scalar_real, scalar_imag))
-        half_moments(t, real, scalar_real, charge, geometry, work, real_out)
-        half_moments(t, imag, scalar_imag, charge, geometry, work, imag_out)
+        vector, scalar = (real, imag), (scalar_real, scalar_imag)
+        half_moments(t, vector, scalar, charge, geometry, (real_out, imag_out))
         _add_near(t, k * k, near, half_lengths, real_out, imag_out)
         settle_own(t, sheets[t], overlaps, real_out, imag_out)
         add_rows(t, real_out, imag_out, factor, functions, matrix)

@@ -13,7 +13,8 @@ from typing import TYPE_CHECKING
 import numpy as np
 from numba import njit
 
-from core.fullwave.compiled import add_rows, half_moments, settle_own
+from core.fullwave.compiled import add_rows, settle_own
+from core.fullwave.compiled_moments import half_moments
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
@@ -87,7 +88,7 @@ def add_layered(
     geometry: tuple[Floats, Floats, Floats],
     near: tuple[Ints, Ints, Floats, Floats, Floats, Floats],
     foil: tuple[Complexes, Floats],
-    functions: tuple[Ints, Ints, Floats, Ints, Ints],
+    functions: tuple[Ints, Ints, Floats, Ints, Ints, Ints],
     matrix: Complexes,
 ) -> None:
     """Add the part of some triangles to the half-filled moment matrix on a layered stack.
@@ -122,14 +123,14 @@ def add_layered(
     sheets, overlaps = foil
     n = points.shape[2]
     charge = -1.0 / (k * k)
-    kernel, work = np.empty((4, 9, n)), np.empty((14, n))
+    kernel = np.empty((4, 9, n))
     real, imag = np.empty((3, 3, n)), np.empty((3, 3, n))
     for t in triangles:
         real[:, :, :t] = 0.0
         imag[:, :, :t] = 0.0
         _kernel_row(t, table, per_step, source, points, kernel)
-        half_moments(t, kernel[0], kernel[2], charge, geometry, work, real)
-        half_moments(t, kernel[1], kernel[3], charge, geometry, work, imag)
+        vector, scalar = (kernel[0], kernel[1]), (kernel[2], kernel[3])
+        half_moments(t, vector, scalar, charge, geometry, (real, imag))
         slopes = (vector_kink.real, scalar_kink.real)
         _add_near(t, charge, slopes, near, 0, half_lengths, real)
         slopes = (vector_kink.imag, scalar_kink.imag)

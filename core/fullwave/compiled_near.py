@@ -40,31 +40,58 @@ _FAST = {"contract", "nnan", "ninf", "nsz", "arcp"}  # sums keep their order
 
 
 @njit(error_model="numpy", cache=True)
-def _line_log(low: float, high: float, r_low: float, r_high: float) -> float:
-    """Integral of 1/R along a segment: log((R+ + s+) / (R- + s-)), without cancellation."""
+def line_log(low: float, high: float, r_low: float, r_high: float) -> float:
+    """Integral of 1/R along a segment: log((R+ + s+) / (R- + s-)), without cancellation.
+
+    Parameters
+    ----------
+    low, high : float
+        Where it starts and ends, along itself, from the foot of the point, m.
+    r_low, r_high : float
+        Distances of its ends from the point, m.
+
+    Returns
+    -------
+    float
+    """
     if low + high >= 0.0:
         return float(np.log((r_high + high) / max(r_low + low, _TINY)))
     return float(np.log((r_low - low) / max(r_high - high, _TINY)))
 
 
 @njit(error_model="numpy", fastmath=_FAST, cache=True)
+def _lay_edges(corners: Floats, normal: Floats, out: Floats) -> None:
+    """Write for each edge of a triangle (3, 7): its way, the way out across it, its length."""
+    for i in range(3):
+        one, two, edge = corners[i], corners[(i + 1) % 3], out[i]
+        ax, ay, az = two[0] - one[0], two[1] - one[1], two[2] - one[2]
+        length = np.sqrt(ax * ax + ay * ay + az * az)
+        ax, ay, az = ax / length, ay / length, az / length
+        edge[0], edge[1], edge[2] = ax, ay, az
+        edge[3] = ay * normal[2] - az * normal[1]
+        edge[4] = az * normal[0] - ax * normal[2]
+        edge[5] = ax * normal[1] - ay * normal[0]
+        edge[6] = length
+
+
+@njit(error_model="numpy", fastmath=_FAST, cache=True)
 def _add_edge(
-    one: Floats, two: Floats, normal: Floats, foot: Floats, height: float, out: Floats
+    one: Floats,
+    edge: Floats,
+    radii: tuple[float, float],
+    foot: Floats,
+    height: float,
+    out: Floats,
 ) -> float:
     """Add what one edge of the source triangle gives; return its part of the solid angle."""
-    ax, ay, az = two[0] - one[0], two[1] - one[1], two[2] - one[2]
-    length = np.sqrt(ax * ax + ay * ay + az * az)
-    ax, ay, az = ax / length, ay / length, az / length
-    mx = ay * normal[2] - az * normal[1]
-    my = az * normal[0] - ax * normal[2]
-    mz = ax * normal[1] - ay * normal[0]
+    length, (r_low, r_high) = edge[6], radii
+    mx, my, mz = edge[3], edge[4], edge[5]
     dx, dy, dz = one[0] - foot[0], one[1] - foot[1], one[2] - foot[2]
-    low = ax * dx + ay * dy + az * dz
+    low = edge[0] * dx + edge[1] * dy + edge[2] * dz
     high = low + length
     away = mx * dx + my * dy + mz * dz
     squared = away * away + height * height
-    r_low, r_high = np.sqrt(squared + low * low), np.sqrt(squared + high * high)
-    line_1 = _line_log(low, high, r_low, r_high) if squared > 1e-24 * length * length else 0.0
+    line_1 = line_log(low, high, r_low, r_high) if squared > 1e-24 * length * length else 0.0
     line1 = 0.5 * (high * r_high - low * r_low + squared * line_1)
     line3 = 0.25 * (high * r_high**3 - low * r_low**3 + 3.0 * squared * line1)
     out[0] += mx * line1
@@ -86,7 +113,9 @@ def _add_edge(
 
 
 @njit(error_model="numpy", fastmath=_FAST, cache=True)
-def _source_integrals(point: Floats, corners: Floats, normal: Floats, out: Floats) -> None:
+def _source_integrals(
+    point: Floats, corners: Floats, normal: Floats, edges: Floats, out: Floats
+) -> None:
     """Integrals over a triangle, seen from a point.
 
     out[0:3], out[3]: (r' - f)/R and 1/R; out[4:7], out[7]: (r' - f) R and R; out[8:11]: f,
@@ -98,16 +127,38 @@ def _source_integrals(point: Floats, corners: Floats, normal: Floats, out: Float
         height += normal[axis] * (point[axis] - corners[0, axis])
     for axis in range(3):
         out[8 + axis] = point[axis] - height * normal[axis]
-    angle = 0.0
-    for i in range(3):
-        angle += _add_edge(corners[i], corners[(i + 1) % 3], normal, out[8:11], height, out)
+    first = _distance(point, corners[0])
+    second, third = _distance(point, corners[1]), _distance(point, corners[2])
+    foot = out[8:11]
+    angle = _add_edge(corners[0], edges[0], (first, second), foot, height, out)
+    angle += _add_edge(corners[1], edges[1], (second, third), foot, height, out)
+    angle += _add_edge(corners[2], edges[2], (third, first), foot, height, out)
     out[3] -= abs(height) * angle
     out[7] += height * height * out[3] / 3.0
 
 
+@njit(error_model="numpy", fastmath=_FAST, cache=True)
+def _distance(one: Floats, two: Floats) -> float:
+    dx, dy, dz = one[0] - two[0], one[1] - two[1], one[2] - two[2]
+    return float(np.sqrt(dx * dx + dy * dy + dz * dz))
+
+
 @njit(error_model="numpy", cache=True)
-def _normal(corners: Floats, out: Floats) -> float:
-    """Write the unit normal; return twice the area."""
+def normal_of(corners: Floats, out: Floats) -> float:
+    """Write a triangle's unit normal.
+
+    Parameters
+    ----------
+    corners : (3, 3) ndarray of float
+        m.
+    out : (3,) ndarray of float
+        Written.
+
+    Returns
+    -------
+    float
+        Twice the area, m².
+    """
     x1, y1, z1 = (
         corners[1, 0] - corners[0, 0],
         corners[1, 1] - corners[0, 1],
@@ -133,13 +184,15 @@ def _add_exact(
 ) -> None:
     """Add mean moments of 1/R and R (2, 8): test points by rule, source exact."""
     point, seen, normal = work[0:3], work[3:14], work[14:17]
-    twice = _normal(source, normal)
+    edges = work[17:38].reshape(3, 7)
+    twice = normal_of(source, normal)
+    _lay_edges(source, normal, edges)
     for q in range(rule.shape[0]):
         for axis in range(3):
             point[axis] = (
                 rule[q, 0] * test[0, axis] + rule[q, 1] * test[1, axis] + rule[q, 2] * test[2, axis]
             )
-        _source_integrals(point, source, normal, seen)
+        _source_integrals(point, source, normal, edges, seen)
         scale = weight * rule[q, 3] * 2.0 / twice
         for term in range(2):
             total = scale * seen[4 * term + 3]
@@ -151,74 +204,95 @@ def _add_exact(
                 moments[term, 7] += point[axis] * arm
 
 
-@njit(inline="always", error_model="numpy", fastmath=_FAST)
-def _point(rule: Floats, i: int, corners: Floats) -> tuple[float, float, float]:
-    """Point of a rule in a triangle."""
-    a, b, c = rule[i, 0], rule[i, 1], rule[i, 2]
-    return (
-        a * corners[0, 0] + b * corners[1, 0] + c * corners[2, 0],
-        a * corners[0, 1] + b * corners[1, 1] + c * corners[2, 1],
-        a * corners[0, 2] + b * corners[1, 2] + c * corners[2, 2],
-    )
-
-
-@njit(inline="always", error_model="numpy", fastmath=_FAST)
-def _add_moments(
-    m: Floats,
-    share: float,
-    x: float,
-    y: float,
-    z: float,
-    total: float,
-    u: float,
-    v: float,
-    w: float,
-) -> None:
-    """Add what one test point sees to the moments of a kernel."""
-    m[0] += share * total
-    m[1] += share * total * x
-    m[2] += share * total * y
-    m[3] += share * total * z
-    m[4] += share * u
-    m[5] += share * v
-    m[6] += share * w
-    m[7] += share * (x * u + y * v + z * w)
+@njit(error_model="numpy", fastmath=_FAST, cache=True)
+def _spread(corners: Floats, rule: Floats, out: Floats) -> None:
+    """Write the rule's points in a triangle, axis by axis."""
+    for axis in range(3):
+        a, b, c = corners[0, axis], corners[1, axis], corners[2, axis]
+        for q in range(rule.shape[0]):
+            out[axis, q] = rule[q, 0] * a + rule[q, 1] * b + rule[q, 2] * c
 
 
 @njit(error_model="numpy", fastmath=_FAST, cache=True)
-def _add_points(test: Floats, source: Floats, rule: Floats, weight: float, moments: Floats) -> None:
+def _kernels(
+    x: float, y: float, z: float, points: Floats, rule: Floats, over: Floats, far: Floats
+) -> None:
+    """Write 1/R and R from a place to points times their weights; nothing at R = 0."""
+    px, py, pz = points[0], points[1], points[2]
+    for j in range(rule.shape[0]):
+        dx, dy, dz = px[j] - x, py[j] - y, pz[j] - z
+        distance = np.sqrt(dx * dx + dy * dy + dz * dz)
+        over[j] = 1.0 / distance if distance > 0.0 else 0.0
+        far[j] = distance
+    for j in range(rule.shape[0]):
+        over[j] *= rule[j, 3]
+        far[j] *= rule[j, 3]
+
+
+@njit(error_model="numpy", fastmath=_FAST, cache=True)
+def _add_point(
+    place: tuple[float, float, float],
+    share: float,
+    points: Floats,
+    kernel: Floats,
+    count: int,
+    moments: Floats,
+) -> None:
+    """Add mean moments (8) of a kernel (q) at one test point."""
+    px, py, pz = points[0], points[1], points[2]
+    total = u = v = w = 0.0
+    for j in range(count):
+        total += kernel[j]
+        u += kernel[j] * px[j]
+        v += kernel[j] * py[j]
+        w += kernel[j] * pz[j]
+    x, y, z = place
+    moments[0] += share * total
+    moments[1] += share * total * x
+    moments[2] += share * total * y
+    moments[3] += share * total * z
+    moments[4] += share * u
+    moments[5] += share * v
+    moments[6] += share * w
+    moments[7] += share * (x * u + y * v + z * w)
+
+
+@njit(error_model="numpy", fastmath=_FAST, cache=True)
+def _add_points(
+    test: Floats,
+    source: Floats,
+    rule: Floats,
+    weight: float,
+    work: tuple[Floats, Floats, Floats],
+    moments: Floats,
+) -> None:
     """Add mean moments of 1/R and R (2, 8) by points over both triangles; nothing at R = 0."""
+    here, there, kernels = work
+    over, far = kernels[0], kernels[1]
     n = rule.shape[0]
+    _spread(test, rule, here)
+    _spread(source, rule, there)
     for i in range(n):
-        x, y, z = _point(rule, i, test)
-        near = far = near_u = near_v = near_w = far_u = far_v = far_w = 0.0
-        for j in range(n):
-            u, v, w = _point(rule, j, source)
-            distance = np.sqrt((x - u) ** 2 + (y - v) ** 2 + (z - w) ** 2)
-            if distance == 0.0:
-                continue
-            one, two = rule[j, 3] / distance, rule[j, 3] * distance
-            near += one
-            near_u += one * u
-            near_v += one * v
-            near_w += one * w
-            far += two
-            far_u += two * u
-            far_v += two * v
-            far_w += two * w
-        share = weight * rule[i, 3]
-        _add_moments(moments[0], share, x, y, z, near, near_u, near_v, near_w)
-        _add_moments(moments[1], share, x, y, z, far, far_u, far_v, far_w)
+        place, share = (here[0, i], here[1, i], here[2, i]), weight * rule[i, 3]
+        _kernels(place[0], place[1], place[2], there, rule, over, far)
+        _add_point(place, share, there, over, n, moments[0])
+        _add_point(place, share, there, far, n, moments[1])
 
 
 @njit(error_model="numpy", cache=True)
 def _pair_moments(
-    test: Floats, source: Floats, rule: Floats, coarse: Floats, exact: bool, moments: Floats
+    test: Floats,
+    source: Floats,
+    rule: Floats,
+    coarse: Floats,
+    exact: bool,
+    points: tuple[Floats, Floats, Floats],
+    moments: Floats,
 ) -> None:
     """Mean moments of 1/R and R less their coarse sums."""
     moments[:] = 0.0
-    work, turned = np.empty(17), np.zeros((2, 8))
     if exact:
+        work, turned = np.empty(38), np.zeros((2, 8))
         _add_exact(test, source, rule, 0.5, work, moments)
         _add_exact(source, test, rule, 0.5, work, turned)
         for term in range(2):
@@ -228,8 +302,8 @@ def _pair_moments(
                 moments[term, 1 + axis] += turned[term, 4 + axis]
                 moments[term, 4 + axis] += turned[term, 1 + axis]
     else:
-        _add_points(test, source, rule, 1.0, moments)
-    _add_points(test, source, coarse, -1.0, moments)
+        _add_points(test, source, rule, 1.0, points, moments)
+    _add_points(test, source, coarse, -1.0, points, moments)
 
 
 @njit(error_model="numpy", cache=True)
@@ -334,7 +408,8 @@ def near_terms(
     """
     points, starts = rules
     test, source, middle = np.empty((3, 3)), np.empty((3, 3)), np.empty(3)
-    moments = np.empty((2, 8))
+    moments, most = np.empty((2, 8)), points.shape[0]
+    work = np.empty((3, most)), np.empty((3, most)), np.empty((2, most))
     for p in range(pairs.shape[0]):
         own = corners[pairs[p, 0]]
         for axis in range(3):
@@ -345,7 +420,8 @@ def near_terms(
         for i in range(3):
             source[i, 2] = turn * corners[pairs[p, 1], i, 2] + lift - middle[2]
         rule = points[starts[kinds[p]] : starts[kinds[p] + 1]]
-        _pair_moments(test, source, rule, points[: starts[1]], kinds[p] >= 2, moments)
+        coarse = points[: starts[1]]
+        _pair_moments(test, source, rule, coarse, kinds[p] >= 2, work, moments)
         for term in range(2):
             m = moments[term]
             charges[p, term] = m[0]
@@ -356,99 +432,3 @@ def near_terms(
                         value -= test[a, axis] * m[4 + axis] + source[b, axis] * m[1 + axis]
                         value += test[a, axis] * source[b, axis] * m[0]
                     currents[p, term, a, b] = value
-
-
-@njit(error_model="numpy", fastmath=_FAST, cache=True)
-def _mean_potential(
-    test: Floats, source: Floats, rule: Floats, normal: Floats, point: Floats
-) -> float:
-    """Mean of 1/R over two triangles: test points by rule, source exact."""
-    twice = _normal(source, normal)
-    total = 0.0
-    for q in range(rule.shape[0]):
-        point[0], point[1], point[2] = _point(rule, q, test)
-        height = 0.0
-        for axis in range(3):
-            height += normal[axis] * (point[axis] - source[0, axis])
-        for axis in range(3):
-            point[axis] -= height * normal[axis]
-        seen = 0.0
-        for i in range(3):
-            seen += _edge_potential(source[i], source[(i + 1) % 3], normal, point, abs(height))
-        total += rule[q, 3] * seen
-    return total * 2.0 / twice
-
-
-@njit(error_model="numpy", fastmath=_FAST, cache=True)
-def _edge_potential(one: Floats, two: Floats, normal: Floats, foot: Floats, height: float) -> float:
-    """What one edge of the source triangle gives of the integral of 1/R."""
-    ax, ay, az = two[0] - one[0], two[1] - one[1], two[2] - one[2]
-    length = np.sqrt(ax * ax + ay * ay + az * az)
-    ax, ay, az = ax / length, ay / length, az / length
-    dx, dy, dz = one[0] - foot[0], one[1] - foot[1], one[2] - foot[2]
-    low = ax * dx + ay * dy + az * dz
-    high = low + length
-    away = (ay * normal[2] - az * normal[1]) * dx
-    away += (az * normal[0] - ax * normal[2]) * dy
-    away += (ax * normal[1] - ay * normal[0]) * dz
-    squared = away * away + height * height
-    if squared <= 1e-24 * length * length:
-        return 0.0
-    r_low, r_high = np.sqrt(squared + low * low), np.sqrt(squared + high * high)
-    total = away * _line_log(low, high, r_low, r_high)
-    if height < 1e-12 * length:
-        return float(total)
-    over, under = squared + height * r_high, squared + height * r_low
-    turned = np.arctan2(away * (high * under - low * over), over * under + away * away * high * low)
-    return float(total - height * turned)
-
-
-@njit(nogil=True, error_model="numpy", cache=True)
-def near_charges(
-    corners: Floats,
-    pairs: Ints,
-    kinds: Ints,
-    image: tuple[float, float],
-    rules: tuple[Floats, Ints],
-    charges: Floats,
-) -> None:
-    """Near terms of the charges of pairs of triangles, the second at its image.
-
-    Parameters
-    ----------
-    corners, pairs, kinds, rules
-        As `near_terms` takes them.
-    image : tuple of (float, float)
-        Turn and shift: heights of an image are turn z + shift, m.
-    charges : (p,) ndarray of float
-        Written: means of 1/R, less their coarse sums, 1/m.
-    """
-    points, starts = rules
-    coarse = points[: starts[1]]
-    source, normal, point = np.empty((3, 3)), np.empty(3), np.empty(3)
-    for p in range(pairs.shape[0]):
-        test = corners[pairs[p, 0]]
-        for i in range(3):
-            source[i, 0] = corners[pairs[p, 1], i, 0]
-            source[i, 1] = corners[pairs[p, 1], i, 1]
-            source[i, 2] = image[0] * corners[pairs[p, 1], i, 2] + image[1]
-        rule = points[starts[kinds[p]] : starts[kinds[p] + 1]]
-        if kinds[p] >= 2:
-            mean = 0.5 * _mean_potential(test, source, rule, normal, point)
-            mean += 0.5 * _mean_potential(source, test, rule, normal, point)
-        else:
-            mean = _mean_inverse(test, source, rule)
-        charges[p] = mean - _mean_inverse(test, source, coarse)
-
-
-@njit(error_model="numpy", fastmath=_FAST, cache=True)
-def _mean_inverse(test: Floats, source: Floats, rule: Floats) -> float:
-    """Mean of 1/R over two triangles by points."""
-    total = 0.0
-    for i in range(rule.shape[0]):
-        x, y, z = _point(rule, i, test)
-        for j in range(rule.shape[0]):
-            u, v, w = _point(rule, j, source)
-            squared = (x - u) ** 2 + (y - v) ** 2 + (z - w) ** 2
-            total += rule[i, 3] * rule[j, 3] / np.sqrt(squared)
-    return float(total)

@@ -131,9 +131,7 @@ def project(
         progress.step(done, len(frequencies))
         posed = pose(frequency)
         columns = np.column_stack([posed.excitation, posed.boresight.T])
-        # Half the digits take half the time; what they miss enters squared.
-        answers = currents(posed.matrix.astype(np.complex64), columns.astype(np.complex64))
-        answers = answers.astype(np.complex128)
+        answers = currents(posed.matrix.copy(), columns)
         solved[frequency] = posed, answers[:, 0]
         found.append(answers)
     vectors = _spanning(np.hstack(found))

@@ -25,8 +25,6 @@ if TYPE_CHECKING:
     Floats = NDArray[np.float64]
     Complexes = NDArray[np.complex128]
 
-_AT_ONCE = 512  # directions
-
 
 def far_field(basis: Basis, currents: Complexes, frequency: float, directions: Floats) -> Complexes:
     """Far field of currents in some directions.
@@ -48,15 +46,38 @@ def far_field(basis: Basis, currents: Complexes, frequency: float, directions: F
     """
     points, moments = current_moments(basis, currents)
     k = TWO_PI * frequency / SPEED_OF_LIGHT
-    field = np.empty((len(directions), 3), dtype=np.complex128)
-    for start in range(0, len(directions), _AT_ONCE):
-        towards = directions[start : start + _AT_ONCE]
-        turns = k * (towards @ points.T)
-        # Sine and cosine of numbers take a third of the time of complex exponentials.
-        summed = np.cos(turns) @ moments + 1j * (np.sin(turns) @ moments)
-        along = np.sum(summed * towards, axis=1, keepdims=True)
-        field[start : start + _AT_ONCE] = summed - along * towards
-    return np.asarray(field * (-1j * TWO_PI * frequency * VACUUM_PERMEABILITY / (4.0 * pi)))
+    summed = summed_waves(k * directions, points, moments)
+    across = summed - np.sum(summed * directions, axis=1, keepdims=True) * directions
+    return np.asarray(across * (-1j * TWO_PI * frequency * VACUUM_PERMEABILITY / (4.0 * pi)))
+
+
+def summed_waves(ways: Floats, points: Floats, moments: Complexes) -> Complexes:
+    """Sum moments times exp(j k . r).
+
+    Parameters
+    ----------
+    ways : (d, a) ndarray of float
+        Wave vectors, 1/m.
+    points : (q, a) ndarray of float
+        m.
+    moments : (q, c) ndarray of complex
+        By component.
+
+    Returns
+    -------
+    (d, c) ndarray of complex
+    """
+    from core.fullwave.compiled_waves import sum_waves  # noqa: PLC0415 - slow to load
+
+    out = np.empty((len(ways), moments.shape[1]), dtype=np.complex128)
+    sum_waves(
+        np.ascontiguousarray(ways, dtype=np.float64),
+        np.ascontiguousarray(points.T),
+        np.ascontiguousarray(moments.T.real),
+        np.ascontiguousarray(moments.T.imag),
+        out,
+    )
+    return out
 
 
 def boresight_weights(basis: Basis, frequency: float) -> Complexes:

@@ -13,7 +13,7 @@ import numpy as np
 
 from core.constants import FREE_SPACE_IMPEDANCE, SPEED_OF_LIGHT, TWO_PI
 from core.fullwave.coax_mouth import mouth_field
-from core.fullwave.far_field import current_moments
+from core.fullwave.far_field import current_moments, summed_waves
 from core.fullwave.layered_radiation import layered_radiation
 from core.fullwave.surface_waves import launched_power, surface_waves
 
@@ -103,9 +103,7 @@ class BoardCurrents:
         """
         direction = np.column_stack([np.cos(phi), np.sin(phi)])
         k = np.broadcast_to(wavenumber, phi.shape)[:, None] * direction
-        turns = k[:, :1] * self.points[:, 0] + k[:, 1:] * self.points[:, 1]
-        # Not by a matrix product: on a busy machine its threads cost more than the work.
-        summed = np.einsum("dq,qx->dx", np.exp(1j * turns), self.moments)
+        summed = summed_waves(k, self.points, self.moments)
         across = direction[:, 0] * summed[:, 1] - direction[:, 1] * summed[:, 0]
         rising = self.rising @ np.exp(1j * (k @ self.feet.T)).T
         # A mouth's field turns round with its direction, so the sign of k is in its size.

@@ -62,7 +62,7 @@ class LayeredMoments:
     geometry: tuple[Floats, Floats, Floats]
     near: tuple[Ints, Ints, Floats, Floats, Floats, Floats]
     overlaps: Floats
-    functions: tuple[Ints, Ints, Floats, Ints, Ints]
+    functions: tuple[Ints, Ints, Floats, Ints, Ints, Ints]
     colours: tuple[Ints, ...]
 
 

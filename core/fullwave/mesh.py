@@ -48,6 +48,10 @@ FINENESS: Final = {
 }
 EDGE_ROW: Final = 0.1
 """Width of the row of edge cells, in spacer heights."""
+_ROUND = 0.5
+"""Longest facet of the top copper's arcs, in cells of the element.
+
+A disc of eight facets on permittivity 4.55 resonates 2.3 % low, on 10.2 6 %."""
 _TOP_FREQUENCY = 1.1  # the band solved for reaches this far above the brief's frequency
 _SIMPLER = 0.01  # outline points closer to a straight line than this, in spacer heights, are left
 _GRID = 1e-9  # m
@@ -121,7 +125,10 @@ def top_plates(
         If the probe does not meet the copper, or an outline cannot be meshed.
     """
     fine, port = FINENESS[level], layout.ports[0]
-    chord = SPEED_OF_LIGHT / (layout.frequency * _TOP_FREQUENCY * fine.per_wavelength)
+    chord = min(
+        SPEED_OF_LIGHT / (layout.frequency * _TOP_FREQUENCY * fine.per_wavelength),
+        _ROUND * min(layout.element_width, layout.element_length) / fine.across,
+    )
     pin = _prism(port, fine.probe_sides, port.diameter)
     pieces = _sheets(layout, Role.TOP_COPPER, pin, chord)
     row = EDGE_ROW * layout.height

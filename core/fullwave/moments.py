@@ -8,19 +8,19 @@ Shapes: t triangles, n functions, p near pairs.
 
 from __future__ import annotations
 
-import os
 from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass
 from math import pi
 from typing import TYPE_CHECKING, Final
 
 import numpy as np
-from scipy.linalg import lu_factor, lu_solve
 
 from core.constants import SPEED_OF_LIGHT, TWO_PI, VACUUM_PERMEABILITY
 from core.fullwave.basis import Basis
 from core.fullwave.quadrature import COARSE_RULE, triangle_rule
 from core.fullwave.spacer_images import FACES, spacer_images
+from core.fullwave.symmetric import solve_symmetric
+from core.fullwave.workers import WORKERS
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -34,7 +34,6 @@ if TYPE_CHECKING:
     Ints = NDArray[np.int64]
     Complexes = NDArray[np.complex128]
 
-_WORKERS = min(4, os.cpu_count() or 1)
 _BATCH = 4000  # pairs to a task
 _ALONE = 700  # unknowns up to which threads would wait for each other longer than they work
 # By kind of pair: the fill's own, apart, touching or nearly, sharing an edge, the triangle
@@ -69,7 +68,7 @@ class Moments:
     runs: Ints
     images: SpacerImages
     overlaps: Floats
-    functions: tuple[Ints, Ints, Floats, Ints, Ints]
+    functions: tuple[Ints, Ints, Floats, Ints, Ints, Ints]
     colours: tuple[Ints, ...]
 
 
@@ -183,14 +182,14 @@ def fill(matrix: Complexes, colours: tuple[Ints, ...], add: Callable[[Ints], Non
             add(colour)
         add_transpose(matrix, 0, 1)
         return
-    with ThreadPoolExecutor(_WORKERS) as pool:
+    with ThreadPoolExecutor(WORKERS) as pool:
         for colour in colours:
-            list(pool.map(add, (colour[first::_WORKERS] for first in range(_WORKERS))))
-        list(pool.map(lambda first: add_transpose(matrix, first, _WORKERS), range(_WORKERS)))
+            list(pool.map(add, (colour[first::WORKERS] for first in range(WORKERS))))
+        list(pool.map(lambda first: add_transpose(matrix, first, WORKERS), range(WORKERS)))
 
 
 def currents(matrix: Complexes, excitations: Complexes) -> Complexes:
-    """Solve for the currents; the matrix is overwritten.
+    """Solve for the currents; the matrix may be overwritten.
 
     Parameters
     ----------
@@ -203,9 +202,8 @@ def currents(matrix: Complexes, excitations: Complexes) -> Complexes:
     (n, ...) ndarray of complex
         Current density leaving through each function's edge, A/m.
     """
-    # The transpose of a symmetric matrix is the column order that LAPACK wants, for nothing.
-    factors = lu_factor(matrix.T, overwrite_a=True, check_finite=False)
-    return np.asarray(lu_solve(factors, excitations, check_finite=False))
+    sides = excitations.reshape(len(matrix), -1)
+    return solve_symmetric(matrix, sides).reshape(excitations.shape)
 
 
 def _near(
@@ -319,7 +317,7 @@ def pair_terms(
 
 def _image_charges(basis: Basis, pairs: Ints, kinds: Ints, image: tuple[float, float]) -> Floats:
     """Near terms (p,) of 1/R alone, for the charges of pairs of triangles."""
-    from core.fullwave.compiled_near import near_charges  # noqa: PLC0415 - slow to load
+    from core.fullwave.compiled_charges import near_charges  # noqa: PLC0415 - slow to load
 
     charges, place = np.empty(len(pairs)), (float(image[0]), float(image[1]))
 
@@ -340,7 +338,7 @@ def _by_threads(work_out: Callable[[slice], None], count: int) -> None:
     if len(shares) == 1:
         work_out(shares[0])
         return
-    with ThreadPoolExecutor(_WORKERS) as pool:
+    with ThreadPoolExecutor(WORKERS) as pool:
         list(pool.map(work_out, shares))
 
 
@@ -368,7 +366,7 @@ def half_overlaps(basis: Basis) -> Floats:
     return np.asarray(means * half[:, :, None] * half[:, None, :] / basis.areas[:, None, None])
 
 
-def half_functions(basis: Basis) -> tuple[Ints, Ints, Floats, Ints, Ints]:
+def half_functions(basis: Basis) -> tuple[Ints, Ints, Floats, Ints, Ints, Ints]:
     """Functions by half, with signs.
 
     Parameters
@@ -385,7 +383,11 @@ def half_functions(basis: Basis) -> tuple[Ints, Ints, Floats, Ints, Ints]:
     signs = np.repeat([1.0, -1.0], basis.count)
     order = np.argsort(halves, kind="stable")
     starts = np.searchsorted(halves[order], np.arange(3 * basis.triangles + 1))
-    return starts, numbers[order], signs[order], basis.plus, basis.minus
+    last = np.maximum(basis.plus % basis.triangles, basis.minus % basis.triangles)
+    firsts = np.full(basis.triangles, basis.count)
+    np.minimum.at(firsts, last, np.arange(basis.count))
+    firsts = np.minimum.accumulate(firsts[::-1])[::-1].copy()
+    return starts, numbers[order], signs[order], basis.plus, basis.minus, firsts
 
 
 def triangle_colours(basis: Basis) -> tuple[Ints, ...]:

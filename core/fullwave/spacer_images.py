@@ -47,6 +47,7 @@ _DEEPEST: Final = 6.0  # heights of the stack
 _RATIO: Final = 2.0  # of the depths of neighbouring images
 _FAINT: Final = 3e-4  # weight of an image that can be left out
 _APART: Final = 0.3  # mean distance of two places in an upright current, in heights
+_AIR: Final = 1e-3  # permittivity over 1 up to which a layer is air, like what is all around it
 _RCOND: Final = 1e-7  # singular values of a fit of exponentials that still count
 
 _Image = tuple[complex, float, float, float]
@@ -86,6 +87,11 @@ class SpacerImages:
     squares: Floats
 
 
+def _is_air(layers: tuple[Layer, ...]) -> bool:
+    """Whether a spacer is dry air (1.0006) or less, which is all around the copper as well."""
+    return all(abs(layer.eps_r - 1.0) < _AIR and layer.loss_tangent == 0.0 for layer in layers)
+
+
 def upright_arm(layers: tuple[Layer, ...]) -> float:
     """Length of the upright dipole that a charge on a face polarises, over that charge.
 
@@ -104,7 +110,7 @@ def upright_arm(layers: tuple[Layer, ...]) -> float:
     Seen from far away half of a charge's flux goes through the spacer, whose layers in series
     answer it with the share 1 - 1/eps_r.
     """
-    if not layers:
+    if _is_air(layers):
         return 0.0
     return (1.0 - 1.0 / series_permittivity(layers)) * total_thickness(layers) / 2.0
 
@@ -121,7 +127,7 @@ def spacer_images(layers: tuple[Layer, ...]) -> SpacerImages:
     -------
     SpacerImages
     """
-    if all(layer.eps_r == 1.0 for layer in layers):
+    if _is_air(layers):
         return _packed(np.ones((FACES, FACES), dtype=np.complex128), {})
     eps = np.array([layer.eps_r * (1.0 - 1j * layer.loss_tangent) for layer in layers])
     thickness = np.array([layer.thickness for layer in layers])

@@ -15,7 +15,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from core.constants import SPEED_OF_LIGHT, TWO_PI, VACUUM_PERMEABILITY
-from core.fullwave.far_field import far_field
+from core.fullwave.far_field import far_field, summed_waves
 from core.fullwave.mesh_model import Sheet
 from core.fullwave.spacer_images import upright_arm
 from core.lines.stack import total_thickness
@@ -104,10 +104,10 @@ def spacer_field(
         return field
     k = TWO_PI * frequency / SPEED_OF_LIGHT
     moments = arms * np.sum(basis.on_halves(currents) * basis.lengths, axis=0)
-    summed = np.exp(1j * k * (directions @ _places(basis, sheets, layers).T)) @ moments
+    summed = summed_waves(k * directions, _places(basis, sheets, layers), moments[:, None])
     across = np.array([0.0, 0.0, 1.0]) - directions[:, 2:] * directions
     factor = -1j * TWO_PI * frequency * VACUUM_PERMEABILITY / (4.0 * pi)
-    return np.asarray(field + factor * summed[:, None] * across)
+    return np.asarray(field + factor * summed * across)
 
 
 def _arms(sheets: Ints, layers: tuple[Layer, ...]) -> Floats:

@@ -69,10 +69,12 @@ than the equations have.
 What is behind the differences, where one experiment told:
 
 - Without its strips the element is met best. A strip that lands on a side takes part of the
-  side's fringing away and lifts the resonance by 0.3 to 0.5 %; the live model takes the strip's
-  charge there off, which is most of it.
-- A probe's hole in the ground plane lifts the resonance by up to 0.7 % on thin boards. The live
-  model leaves it out; most of the common shift of probes on boards is that.
+  side's fringing away: one strip in the middle of a side lifted the solved resonance by 0.3 to
+  0.5 %. Since the live model takes the strip's charge off there, its median error of S11 over 56
+  of these designs fell from 0.44 to 0.15 (air-like) and 0.45 to 0.32 (boards) above a height of
+  0.015 wavelength, less below.
+- A probe's hole in the ground plane shifts the resonance, by up to 0.7 % on a thin board; the live
+  model leaves it out.
 - Coupling between strips and element, and between strips, is left out.
 - Small plates raise the Q of an element by up to a third where they end with it, and take up to
   1.4 dB of its directivity; the second is in the live model.

@@ -11,9 +11,7 @@ from core.constants import SPEED_OF_LIGHT
 from core.fullwave.layered_trust import rim_doubts
 from core.fullwave.mesh import Level
 from core.fullwave.respond import respond
-from core.layout.model import Role
 from core.response.model import Reading, TrustLevel
-from core.shapes.outline import Region, circle
 
 FREQUENCIES = np.linspace(2.3e9, 2.6e9, 61)
 
@@ -103,24 +101,3 @@ def test_dual_edge_board_has_both_components():
     assert response.directivity == pytest.approx(gain / float(response.spot.efficiency))
     assert min(abs(response.spot.e_x), abs(response.spot.e_y)) > 0.2 * np.sqrt(gain)
     assert np.all(np.abs(response.sweep.s11) < 1.0)
-
-
-@pytest.mark.parametrize(
-    "radius, height, eps_r, feed",
-    [(68e-3, 3.18e-3, 2.32, 0.12), (39.75e-3, 2.35e-3, 4.55, 0.12)],
-)
-def test_disc_resonates_as_its_fringing_field_says(radius, height, eps_r, feed):
-    # W. C. Chew, J. A. Kong 1980, to second order of the height; from memory.
-    fringe = np.log(radius / (2 * height)) + 1.41 * eps_r + 1.77
-    fringe += height / radius * (0.268 * eps_r + 1.65)
-    grown = radius * np.sqrt(1.0 + 2.0 * height / (pi * radius * eps_r) * fringe)
-    closed = 1.8412 * SPEED_OF_LIGHT / (2.0 * pi * grown * np.sqrt(eps_r))
-    layout = board_patch(2 * radius, 2 * radius, height, eps_r, closed, feed)
-    disc = tuple(
-        replace(one, region=Region(circle(2 * radius))) if one.role is Role.TOP_COPPER else one
-        for one in layout.pieces
-    )
-    band = closed * np.linspace(0.95, 1.05, 11)
-    response = respond(replace(layout, pieces=disc), band, Counted(), Level.NORMAL)
-    (mode,) = (mode for mode in response.modes if mode.name == "along y")
-    assert mode.frequency == pytest.approx(closed, rel=0.01)

@@ -3,7 +3,8 @@
 import numpy as np
 import pytest
 
-from core.fullwave.compiled_near import find_near, near_charges, near_terms
+from core.fullwave.compiled_charges import near_charges
+from core.fullwave.compiled_near import find_near, near_terms
 from core.fullwave.quadrature import COARSE_RULE, triangle_rule
 
 RIGHT = np.array([[0.0, 0, 0], [1, 0, 0], [0, 1, 0]])

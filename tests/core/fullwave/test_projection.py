@@ -7,6 +7,7 @@ from fullwave_shapes import thin_air
 
 from core.design.defaults import default_design
 from core.errors import Cancelled
+from core.fullwave.board_kernels import BoardKernels
 from core.fullwave.equations import Equations, project
 from core.fullwave.far_field import boresight_weights
 from core.fullwave.layered_fields import space_field
@@ -38,7 +39,7 @@ def air():
 def board():
     layout = board_dual_edge()
     mesh = build_board_mesh(layout, Level.QUICK)
-    system = build_layered_system(mesh, layout.stack, layout.foil, 1.11 * FREQUENCY)
+    system = build_layered_system(mesh, BoardKernels(layout.stack, layout.foil, 1.11 * FREQUENCY))
     return system, lambda frequency: layered_equations(system, frequency)
 
 
