@@ -129,6 +129,12 @@ def test_a_missing_band_is_said():
     assert "nowhere" in verdict(response_with(vswr=3.0), Reading.BANDS).sentence
 
 
+def test_where_no_mode_was_found_no_frequency_is_named():
+    found = verdict(dataclasses.replace(response_with(), modes=()), Reading.RESONANCE)
+    said = "No resonance of the element stands out near the brief's frequency."
+    assert (found.state, found.sentence) == (State.NOTED, said)
+
+
 def test_front_to_back_is_told_where_it_is_known():
     response = dataclasses.replace(response_with(), front_to_back=100.0)
     assert "20.0 dB less behind" in verdict(response, Reading.PATTERN).sentence
