@@ -204,6 +204,8 @@ def _trust(
     order = list(TrustLevel)
     for some in doubts:
         for reading, doubt in some.items():
-            if order.index(doubt.level) >= order.index(trust[reading].level):
+            worse = order.index(doubt.level) - order.index(trust[reading].level)
+            # What is doubted as much is the better reason, but none is as good as a quick mesh.
+            if worse > 0 or (worse == 0 and level is not Level.QUICK):
                 trust[reading] = doubt
     return trust
