@@ -47,7 +47,11 @@ def natural_modes(sweep: Sweep, frequency: float) -> tuple[Mode, ...]:
     found: list[tuple[float, complex, str]] = []
     for pole in fit.poles():
         size = abs(pole)
-        if pole.imag <= 0.0 or not 1.0 / _MODE_REACH < size / frequency < _MODE_REACH:
+        # Each pole has its mirror image at negative frequency.
+        if (
+            min(pole.real, pole.imag) <= 0.0
+            or not 1.0 / _MODE_REACH < size / frequency < _MODE_REACH
+        ):
             continue
         step = _BESIDE * size
         peak = np.abs(fit.at(np.array([pole + step]))[0]) * step / pole.imag / usual

@@ -48,7 +48,7 @@ def answers():
         evaluation = evaluate(design)
         span = design.brief.frequency * np.array([0.99, 1.01])
         response = respond(evaluation.layout, span, SILENT, Level.COARSE)
-        found[name] = Checked(replace(evaluation, response=response), "coarse", 6)
+        found[name] = Checked(replace(evaluation, response=response), "coarse", 6, True)
     return found
 
 
@@ -321,7 +321,7 @@ def test_a_board_has_no_ground_current_to_show(bench, answers):
     whole = answers["right"].evaluation
     currents = replace(whole.response.currents, ground=None)
     board = replace(whole, response=replace(whole.response, currents=currents))
-    give(bench, Checked(board, "coarse", 6))
+    give(bench, Checked(board, "coarse", 6, True))
     bench.settings.set("mat_shows", "ground")
     assert bench.mat.plan.current.state.currents is None
     assert "endless" in bench.mat.shown.legend.words

@@ -42,7 +42,7 @@ def solved(design, level):
     evaluation = evaluate(design)
     frequency = design.brief.frequency
     response = respond(evaluation.layout, frequency * np.array([0.99, 1.01]), SILENT, level)
-    return Checked(replace(evaluation, response=response), level.value, 6)
+    return Checked(replace(evaluation, response=response), level.value, 6, True)
 
 
 def timed(act, count):
