@@ -41,13 +41,11 @@ class Level(Enum):
 
 
 FINENESS: Final = {
-    Level.QUICK: Fineness(4.0, 4.0, 4.7, 2.0, 1.2, 4, 1 / 10, False),
-    Level.COARSE: Fineness(4.0, 3.0, 5.5, 2.0, 1.0, 4, 1 / 10, False),
-    Level.NORMAL: Fineness(5.5, 2.0, 7.5, 1.3, 0.8, 6, 1 / 20, True),
-    Level.FINE: Fineness(8.5, 1.5, 11.0, 0.9, 0.6, 6, 1 / 40, True),
+    Level.QUICK: Fineness(4.0, 4.0, 4.7, 2.0, 1.2, 4, 1 / 10, False, 0.1),
+    Level.COARSE: Fineness(4.0, 3.0, 5.5, 2.0, 1.0, 4, 1 / 10, False, 0.1),
+    Level.NORMAL: Fineness(5.5, 2.0, 7.5, 1.3, 0.8, 6, 1 / 20, True, 0.1),
+    Level.FINE: Fineness(8.5, 1.5, 11.0, 0.9, 0.6, 6, 1 / 40, True, 0.05),
 }
-EDGE_ROW: Final = 0.1
-"""Width of the row of edge cells, in spacer heights."""
 _ROUND = 0.5
 """Longest facet of the top copper's arcs, in cells of the element.
 
@@ -90,7 +88,7 @@ def build_mesh(layout: Layout, level: Level, tail: Tail | None = None) -> Mesh:
             tail_mouth(piece, pin, foot) if pin_holes(piece, pin) else piece for piece in ground
         )
     sizes, traces = ground_plan(layout, top, foot, fine, cell)
-    rim = EDGE_ROW * max(height, cell / 2.0) if fine.ground_row else 0.0
+    rim = fine.edge_row * max(height, cell / 2.0) if fine.ground_row else 0.0
     parts += [_plate(piece, sizes, rim, foot, 0.0, traces) for piece in ground]
     parts.append(_tube(pin, height, max(1, ceil(height / (fine.probe_cell * wavelength)))))
     sheets = [Sheet.TOP] * len(top) + [Sheet.GROUND] * len(ground) + [Sheet.PROBE]
@@ -131,7 +129,7 @@ def top_plates(
     )
     pin = _prism(port, fine.probe_sides, port.diameter)
     pieces = _sheets(layout, Role.TOP_COPPER, pin, chord)
-    row = EDGE_ROW * layout.height
+    row = fine.edge_row * layout.height
     parts = [
         _plate(piece, top_sizes(layout, piece, pin, fine), row, pin, layout.height)
         for piece in pieces

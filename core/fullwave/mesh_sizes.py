@@ -44,6 +44,8 @@ class Fineness:
         Longest cell along the probe, in free-space wavelengths.
     ground_row : bool
         Whether the rim of the ground plate has a row of edge cells.
+    edge_row : float
+        Width of the row of edge cells, in spacer heights; 0 for none.
     """
 
     across: float
@@ -54,6 +56,7 @@ class Fineness:
     probe_sides: int
     probe_cell: float
     ground_row: bool
+    edge_row: float
 
 
 def _pin_wish(pin: Floats) -> tuple[Floats, float]:

@@ -26,6 +26,7 @@ if TYPE_CHECKING:
 FIRST_POINTS = 5
 MOST_POINTS = 15
 _PROBES = 129  # frequencies at which two fits are compared
+_UNSEEN = 1.0  # half widths of a resonance within which a solved frequency has seen it
 
 
 @dataclass(frozen=True, eq=False)
@@ -91,7 +92,8 @@ def adaptive_sweep(
     -----
     Chebyshev points first; then, each time, the frequency at which the fit and one with a
     support point less differ most. What the fit says there before it is solved is tested
-    against the solution: an honest error, not a difference of two fits.
+    against the solution: an honest error, not a difference of two fits. A narrow resonance
+    may hide between: where the fit has one that no solved frequency is near, it is tested too.
     """
     low, high = band
     frequencies = list(first_points(band, wanted, FIRST_POINTS))
@@ -103,16 +105,21 @@ def adaptive_sweep(
     error = np.inf
     while len(frequencies) < MOST_POINTS:
         fit, coarse = _two_fits(np.array(frequencies), np.array(values))
-        place = probes[_worst(distance(fit.at(probes), coarse.at(probes)), probes, frequencies)]
+        if error < tolerance:
+            hidden = _hidden(fit, band, frequencies)
+            if hidden is None:
+                break
+            place = hidden
+        else:
+            apart = distance(fit.at(probes), coarse.at(probes))
+            place = float(probes[_worst(apart, probes, frequencies)])
         progress.step(len(frequencies), len(frequencies) + 2)
         solved = solve(place)
         told = fit.at(np.array([place]))
         error = float(distance(told, solved[None, :])[0])
         frequencies.append(place)
         values.append(solved)
-        if error < tolerance:
-            break
-    else:
+    if error >= tolerance:
         raise ConvergenceError(
             f"field solver: the sweep has not settled after {MOST_POINTS} frequencies, "
             f"{error:.2g} off; accepted: a narrower band",
@@ -145,6 +152,15 @@ def first_points(band: tuple[float, float], wanted: float, count: int) -> Floats
     points = (low + high) / 2 - (high - low) / 2 * np.cos(angles)
     points[np.argmin(np.abs(points - wanted))] = wanted
     return np.asarray(np.sort(points))
+
+
+def _hidden(fit: Rational, band: tuple[float, float], frequencies: list[float]) -> float | None:
+    """Narrowest resonance of a fit in its band that no solved frequency is near, Hz."""
+    poles = fit.poles()
+    gaps = np.abs(poles.real[:, None] - np.array(frequencies)).min(axis=1, initial=np.inf)
+    inside = (band[0] < poles.real) & (poles.real < band[1])
+    unseen = poles[inside & (gaps > _UNSEEN * np.abs(poles.imag))]
+    return float(unseen[np.argmin(np.abs(unseen.imag))].real) if len(unseen) else None
 
 
 def _two_fits(frequencies: Floats, values: Complexes) -> tuple[Rational, Rational]:

@@ -114,7 +114,7 @@ def _match_trust(layout: Layout) -> Trust:
     if _has_branches(layout):
         reason = (
             "equations leave the strips uncoupled, and with two branches the field solver's S11 "
-            "typically differs by 0.4"
+            "typically differs by 0.4, as much as a match is worth"
         )
         return Trust(TrustLevel.UNKNOWN, reason, _REMEDY)
     if height > THICKEST:
@@ -129,7 +129,9 @@ def _match_trust(layout: Layout) -> Trust:
             "narrower than equations tell the resonance"
         )
         return Trust(TrustLevel.UNKNOWN, reason, _REMEDY)
-    reason = "the field solver's S11 typically differs by 0.15 with a probe"
+    reason = (
+        "with a probe the field solver's S11 typically differs by 0.12, nine of ten by under 0.22"
+    )
     return Trust(TrustLevel.ROUGH, reason, _REMEDY)
 
 
@@ -137,7 +139,7 @@ def _axial_ratio_trust(layout: Layout) -> Trust:
     if _has_branches(layout) or not _is_on_axis(layout):
         reason = (
             "it hangs on a fraction of a per cent of the resonances, and the field solver's "
-            "typically differs by 2 to 3 dB"
+            "typically differs by 2.4 dB"
         )
         return Trust(TrustLevel.UNKNOWN, reason, _REMEDY)
     return Trust(TrustLevel.ROUGH, "a probe on an axis of the element drives one mode", _REMEDY)

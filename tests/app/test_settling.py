@@ -26,9 +26,12 @@ from core.progress import SILENT
 from core.response.model import Reading, Trust, TrustLevel
 from core.shapes.outline import polygon
 from core.sizing.settle import settling_goal
+from core.sizing.size import size
 
 MISSED = edit.with_text(default_design(), "brief.frequency", "2.45 GHz")
 COPPER = top_copper(build_layout(default_design()))
+PROBED = {"feed": "probe", "brief.polarisation": "linear"}
+KNOWN = size(edit.with_texts(default_design(), PROBED.items())).design  # what equations tell
 
 
 def answer(design, /, **changes):
@@ -132,7 +135,7 @@ def settle(window, runner):
 
 def test_a_missed_brief_offers_to_settle_and_a_met_one_does_not(window):
     assert offer(window).settle_button.isVisible()
-    window.document.start(default_design(), None)
+    window.document.start(KNOWN, None)
     assert not offer(window).settle_button.isVisible()
 
 
@@ -306,6 +309,7 @@ def test_where_equations_cannot_vouch_sizing_offers_to_go_on(window, runner, set
 
 
 def test_where_equations_can_vouch_it_is_not_pressed_on_anyone(window, runner):
+    window.document.start(edit.with_text(KNOWN, "element.length", "50 mm"), None)
     window.window_actions["size"].trigger()
     runner.run()
     assert not offer(window).settle_button.isVisible()

@@ -1,22 +1,24 @@
 """Against a general boundary-element library; `pytest tests/bench`, with the extra `validation`."""
 
+import warnings
+
 import pytest
 
-pytest.importorskip("bempp_cl")
-pytestmark = pytest.mark.filterwarnings("default")
+with warnings.catch_warnings():
+    warnings.simplefilter("ignore")  # the library imports what scipy calls outdated
+    pytest.importorskip("bempp_cl.api")
 
 from bench.validate_elements import PATCHES, PLATES, patch_case, plate_case
 
-
-@pytest.mark.parametrize("case", [next(iter(PLATES))])
-def test_plate(case):
-    found = plate_case(PLATES[case])
-    assert found["field"] < 0.01
+pytestmark = pytest.mark.filterwarnings("default")
 
 
-@pytest.mark.parametrize("case", [next(iter(PATCHES))])
-def test_patch_over_a_plate(case):
-    found = patch_case(PATCHES[case])
+def test_plate():
+    assert plate_case(next(iter(PLATES.values())))["field"] < 0.01
+
+
+def test_patch_over_a_plate():
+    found = patch_case(next(iter(PATCHES.values())))
     ours, theirs = (complex(*one) for one in found["seen"])
     assert found["field"] < 0.01
     assert abs(ours / theirs - 1.0) < 0.03

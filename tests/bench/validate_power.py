@@ -56,7 +56,7 @@ def main() -> None:
             f"{row['turns']:.2f}",
             f"{row['lost']:.3f}",
             f"{row['balance']:.4f}",
-            f"{1e6 * row['conductance']:.2g} µS",
+            f"{1e3 * row['conductance']:.2f} mS",
         ]
         for row in found.values()
     )

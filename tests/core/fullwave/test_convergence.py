@@ -43,9 +43,8 @@ def apart(one, other):
 
 @pytest.mark.parametrize("name", DESIGNS)
 def test_finest_level_is_near_a_finer_mesh_with_half_the_edge_row(name):
-    # Levels share the row's width: agreement among them says nothing of it.
     layout = DESIGNS[name]()
-    true = match_and_ratio(layout, REFERENCE, 0.05)
+    true = match_and_ratio(layout, REFERENCE, 0.025)
     with_row, without = match_and_ratio(layout), match_and_ratio(layout, row=0.0)
     assert apart(with_row, true) < 0.02
     assert apart(without, true) > 2.0 * apart(with_row, true)

@@ -1,5 +1,8 @@
 """Sweeps against two resonators in closed form."""
 
+import itertools
+from collections.abc import Callable
+
 import numpy as np
 import pytest
 
@@ -36,6 +39,36 @@ def test_sweep_is_as_true_as_it_says(width: float) -> None:
     assert np.max(reflection_distance(sweep.fit.at(grid), quantities(grid))) < 3e-4
     assert len(sweep.frequencies) <= 9
     assert 2.32e9 in sweep.frequencies
+
+
+def weak(at: float, quality: float, strength: float) -> Callable[[float], np.ndarray]:
+    """Quantities of one resonance, hardly coupled, beside one far above the band."""
+
+    def quantities(frequency: float) -> np.ndarray:
+        f = np.asarray(frequency, dtype=complex)
+        near = 1j * f / (at**2 - f**2 + 1j * f * at / quality)
+        far = 1j * f / (3.6e9**2 - f**2 + 1j * f * 3.6e9 / 30.0)
+        resonant = 50.0 * strength * at * near + 12j * f / 2.4e9
+        field = near / resonant * np.exp(1j * f / 2.8e9) * 1e9
+        admittance = 1.0 / (resonant + 50.0 * 0.02 * 3.6e9 * far)
+        return np.stack([admittance, field, 0.2j * field * (1.0 + f / 3e9)], axis=-1)
+
+    return quantities
+
+
+def test_narrow_resonances_between_solved_frequencies_are_found() -> None:
+    # A test of the fit at the place of greatest doubt alone misses 56 of these 192.
+    band = (0.8 * 2.35e9, 1.2 * 2.35e9)
+    missed = 0
+    for quality, strength in itertools.product((20, 50, 100, 200), (0.004, 0.015, 0.03)):
+        for at in np.linspace(2.0e9, 2.75e9, 16):
+            antenna = weak(float(at), quality, strength * min(1.0, quality / 100.0))
+            sweep = adaptive_sweep(antenna, band, 2.35e9, reflection_distance, 2e-3, SILENT)
+            grid = np.linspace(0.95 * at, 1.05 * at, 400)
+            grid = grid[(grid > band[0]) & (grid < band[1])]
+            apart = reflection_distance(sweep.fit.at(grid), antenna(grid))
+            missed += bool(np.max(apart) > 5e-3)
+    assert missed <= 8
 
 
 def test_poles_are_the_natural_frequencies() -> None:

@@ -6,6 +6,7 @@ from math import pi
 import numpy as np
 import pytest
 from fullwave_shapes import probe_patch, small_ground, thick_air, thin_air
+from mesh_variants import meshes
 
 from core.constants import VACUUM_PERMITTIVITY
 from core.design.defaults import default_design
@@ -132,7 +133,7 @@ def test_static_limit_is_a_disc_capacitor(height_mm):
     assert capacitance == pytest.approx(love_capacitance(0.02, height_mm * 1e-3), rel=0.015)
 
 
-@pytest.mark.parametrize(("name", "tolerance"), [("thin", 0.03), ("thick", 0.02), ("small", 0.02)])
+@pytest.mark.parametrize(("name", "tolerance"), [("thin", 0.03), ("thick", 0.02), ("small", 0.025)])
 def test_match_and_field_ratio_converge(name, tolerance):
     # Against the finest level: a coarse mesh within `tolerance`, a normal one within 60 % of it.
     fine = solved(LAYOUTS[name], Level.FINE, 2.45e9)[1]
@@ -161,15 +162,15 @@ def test_resonance_converges(spacer, side):
     layout = probe_patch(f"air:{spacer}", side, 0.12 * side, 0.1)
     coarse, normal, fine = (resonance(layout, level) for level in list(Level)[1:])
     assert coarse == pytest.approx(fine, rel=3e-3)
-    assert normal == pytest.approx(fine, rel=1.5e-3)
+    assert normal == pytest.approx(fine, rel=2e-3)
 
 
-def test_edge_row_is_what_makes_a_coarse_mesh_true(monkeypatch):
+def test_edge_row_is_what_makes_a_coarse_mesh_true():
     layout = probe_patch("air:6mm", 0.0525, 0.0063, 0.1)
     fine = resonance(layout, Level.FINE)
     with_row = resonance(layout, Level.COARSE)
-    monkeypatch.setattr("core.fullwave.mesh.EDGE_ROW", 0.0)
-    without = resonance(layout, Level.COARSE)
+    with meshes(row=0.0):
+        without = resonance(layout, Level.COARSE)
     assert without > 1.004 * fine
     assert abs(with_row - fine) < 0.3 * abs(without - fine)
 

@@ -34,7 +34,7 @@ def test_two_branches_are_left_to_the_field_check_with_a_number(dual_edge):
 def test_the_match_of_a_probe_is_rough_but_told(probe_fed):
     trust = trust_of(probe_fed(stack=(Layer(1.6e-3, 2.2),)))
     assert trust[Reading.MATCH].level is TrustLevel.ROUGH
-    assert "0.15" in trust[Reading.MATCH].reason
+    assert "0.12" in trust[Reading.MATCH].reason
 
 
 def test_the_axial_ratio_is_told_only_where_one_mode_is_driven(probe_fed):
