@@ -3,14 +3,17 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
+from functools import partial
 from importlib.metadata import version
 from typing import TYPE_CHECKING, Final, Protocol
 
 from PySide6.QtCore import QObject, QTimer, Signal
 
 from app.jobs.runner import Request
+from core.engines import NEXT_COARSER
 from core.response.bands import frequency_grid
 from core.response.judge import judge
+from core.response.spread import with_spread
 
 if TYPE_CHECKING:
     from numpy.typing import ArrayLike
@@ -21,6 +24,7 @@ if TYPE_CHECKING:
     from app.settings import Settings
     from core.errors import CoreError
     from core.layout.model import Layout
+    from core.layout.tail import Tail
     from core.progress import Progress
     from core.response.model import Response
 
@@ -29,13 +33,19 @@ REST: Final = 400  # ms that an edit must rest before it is solved
 QUICK: Final = "quick"
 _PREPARING: Final = "Preparing the field check…"
 _FOLLOWS: Final = "The field check follows the hand on a quick, coarse mesh."
+_COMPARING: Final = "Solved on the {level} mesh; now on the {coarser} one, for the ±."
 
 
 class Solver(Protocol):
-    """A field solver: takes a layout, frequencies (Hz), a listener and a level of mesh."""
+    """A field solver: takes a layout, frequencies (Hz), a listener, a level of mesh, a cable."""
 
     def solve(
-        self, layout: Layout, frequencies: ArrayLike, progress: Progress, level: str
+        self,
+        layout: Layout,
+        frequencies: ArrayLike,
+        progress: Progress,
+        level: str,
+        tail: Tail | None = None,
     ) -> Response: ...
     def drop(self) -> None: ...
     def close(self) -> None: ...
@@ -53,11 +63,14 @@ class Checked:
         Fineness of the mesh: quick, coarse, normal or fine.
     solved : int
         Frequencies that were solved.
+    is_compared : bool
+        The plus and minus from the next coarser mesh is known, or cannot be.
     """
 
     evaluation: Evaluation
     level: str
     solved: int
+    is_compared: bool
 
     @property
     def words(self) -> str:
@@ -75,7 +88,8 @@ class FieldCheck(QObject):
     """Keeps the last answer of the field solver, and asks for the next one.
 
     An edit stops what is being solved; when edits rest, the design is solved beside the
-    window. As long as the hand holds on, quick answers follow it one after the other.
+    window, and then on the next coarser mesh for the plus and minus. As long as the hand holds
+    on, quick answers follow it one after the other.
 
     Attributes
     ----------
@@ -119,16 +133,29 @@ class FieldCheck(QObject):
 
     def start(self) -> None:
         """Solve the design on the bench now."""
-        current = self._pipeline.current
+        current, checked = self._pipeline.current, self.current
         if not self.is_on or current.layout is None or self._is_done():
             return
-        level = QUICK if self._is_held else str(self._settings.value("mesh_level"))
+        level = QUICK if self._is_held else _level(self._settings)
+        if checked is not None and checked.level == level:
+            coarser = NEXT_COARSER[level]
+            self._tell(busy=_COMPARING.format(level=level, coarser=coarser))
+            self._runner.start(
+                Request(
+                    KIND,
+                    partial(_compared, checked, self._solver),
+                    self._on_checked,
+                    # The finer mesh may do where this one does not: its readings stand.
+                    lambda _error: self._on_checked(replace(checked, is_compared=True)),
+                )
+            )
+            return
         busy = _FOLLOWS if self._is_held else "Field check: first frequency"
         self._tell(busy=busy if self._is_ready else _PREPARING)
         self._runner.start(
             Request(
                 KIND,
-                lambda progress: _checked(current, level, self._solver, progress),
+                partial(_checked, current, level, checked, self._solver),
                 self._on_checked,
                 lambda error: self._tell(problem=_reason(error)),
                 self._on_stepped,
@@ -136,10 +163,12 @@ class FieldCheck(QObject):
         )
 
     def stop(self) -> None:
-        """Stop solving until the next edit."""
+        """Stop solving until the next edit; an answer that only lacks its plus and minus stands."""
+        checked = self.current
         self._leave()
         self._rest.stop()
-        self._tell(is_stopped=True)
+        is_answered = checked is not None and checked.level == _level(self._settings)
+        self._tell(is_stopped=not is_answered)
 
     def close(self) -> None:
         """End for good: nothing is solved and nobody is told."""
@@ -150,9 +179,8 @@ class FieldCheck(QObject):
     def hold(self, is_held: bool) -> None:
         """The hand has taken hold of something, or let go of it."""
         self._is_held = is_held
-        if self.busy:
-            self._leave()
-            self.busy = ""
+        self._leave()
+        self.busy = ""
         if not is_held and not self._is_done() and not self.is_stopped:
             self._rest.start()
         self.changed.emit()
@@ -163,13 +191,16 @@ class FieldCheck(QObject):
 
     def _is_done(self) -> bool:
         """Whether the design on the bench is solved as finely as it is to be."""
-        current, level = self.current, self._settings.value("mesh_level")
-        return current is not None and (self._is_held or current.level == level)
+        checked = self.current
+        if checked is None or self._is_held:
+            return checked is not None
+        return checked.level == _level(self._settings) and checked.is_compared
 
     def _leave(self) -> None:
         """Leave what is being solved."""
-        self._runner.stop(KIND)
-        self._solver.drop()
+        if self.busy:  # else the solver may be at what others have asked
+            self._runner.stop(KIND)
+            self._solver.drop()
 
     def _tell(self, *, busy: str = "", problem: str = "", is_stopped: bool = False) -> None:
         self.busy, self.problem, self.is_stopped = busy, problem, is_stopped
@@ -180,8 +211,7 @@ class FieldCheck(QObject):
             if not self.busy:
                 self.start()
             return
-        if self.busy:
-            self._leave()
+        self._leave()
         self.busy, self.problem, self.is_stopped = "", "", False
         self._rest.start()
 
@@ -203,10 +233,15 @@ class FieldCheck(QObject):
 
     def _on_checked(self, checked: Checked) -> None:
         self.last, self._is_ready = checked, True
-        if self._is_held and self.current is None:
-            self.start()
-        else:
+        if self._is_done():
             self._tell()
+        else:
+            self.start()
+
+
+def _level(settings: Settings) -> str:
+    """Level of mesh to solve on at rest."""
+    return str(settings.value("mesh_level"))
 
 
 def _reason(error: CoreError) -> str:
@@ -225,11 +260,43 @@ class _Counted:
         self._progress.step(done, total)
 
 
-def _checked(current: Evaluation, level: str, solver: Solver, progress: Progress) -> Checked:
-    """Solve a design at the frequencies of the curves and hold it against its brief."""
+def _checked(
+    current: Evaluation, level: str, known: Checked | None, solver: Solver, progress: Progress
+) -> Checked:
+    """Solve a design at the frequencies of the curves and hold it against its brief.
+
+    With its plus and minus, where the next coarser mesh is known already or there is none.
+    """
     assert current.layout is not None
-    brief, counted = current.design.brief, _Counted(progress)
-    response = solver.solve(current.layout, frequency_grid(brief.frequency), counted, level)
+    counted = _Counted(progress)
+    frequencies = frequency_grid(current.design.brief.frequency)
+    response = solver.solve(current.layout, frequencies, counted, level)
+    coarser = NEXT_COARSER.get(level)
+    checked = Checked(_judged(current, response), level, counted.count, coarser is None)
+    if known is None or known.level != coarser or known.evaluation.response is None:
+        return checked
+    return _beside(checked, known.evaluation.response)
+
+
+def _compared(checked: Checked, solver: Solver, progress: Progress) -> Checked:
+    """Solve the same on the next coarser mesh, and tell how far the two differ."""
+    layout, frequency = checked.evaluation.layout, checked.evaluation.design.brief.frequency
+    assert layout is not None
+    coarser = NEXT_COARSER[checked.level]
+    return _beside(checked, solver.solve(layout, frequency_grid(frequency), progress, coarser))
+
+
+def _beside(checked: Checked, coarser: Response) -> Checked:
+    """An answer with its plus and minus."""
+    shown = checked.evaluation
+    assert shown.response is not None
+    against, polarisation = NEXT_COARSER[checked.level], shown.design.brief.polarisation
+    response = with_spread(shown.response, coarser, against, polarisation)
+    return replace(checked, evaluation=_judged(shown, response), is_compared=True)
+
+
+def _judged(current: Evaluation, response: Response) -> Evaluation:
+    """What is on the bench with the solver's response, held against the brief."""
+    brief = current.design.brief
     verdicts = judge(response, brief.polarisation, brief.vswr, brief.axial_ratio_db)
-    evaluation = replace(current, response=response, verdicts=verdicts, problem="")
-    return Checked(evaluation, level, counted.count)
+    return replace(current, response=response, verdicts=verdicts, problem="")

@@ -25,6 +25,7 @@ from app.presenters.readings_presenter import ReadingsPresenter
 from app.presenters.sizing import Settler, SizingPresenter
 from app.recovery import Recovery
 from app.shown_wiring import connect_shown
+from app.tail_check import TailCheck
 from app.views.card_column import CardColumn
 from app.views.header import Header
 from app.views.notice_bar import NoticeBar
@@ -66,7 +67,9 @@ class MainWindow(QMainWindow):
         self.asker: WindowAsks = asker or _own_asker(self)
         self.document = Document(default_design(), self)
         self.pipeline = Pipeline(self.document)
-        self.field = FieldCheck(self.pipeline, settings, runner, solver or SolverProcess())
+        solver = solver or SolverProcess()
+        self.field = FieldCheck(self.pipeline, settings, runner, solver)
+        self.tail = TailCheck(self.pipeline, self.field, runner, solver)
         self._settler = settler or SolverProcess()  # of its own: the field check goes on beside it
         self.window_actions = make_actions(self, self.document.stack)
         self._make_views()
@@ -124,6 +127,7 @@ class MainWindow(QMainWindow):
         geometry = bytes(self.saveGeometry().toBase64().data()).decode()
         self.settings.set("geometry", geometry)
         self.field.close()
+        self.tail.close()
         self.sizing.discard()
         self._settler.close()
         self.runner.close()
@@ -167,7 +171,7 @@ class MainWindow(QMainWindow):
         self.mat_presenter = MatPresenter(document, pipeline, self.mat)
         self.current_presenter = CurrentPresenter(pipeline, self.field, self.settings, self.mat)
         self.readings_presenter = ReadingsPresenter(
-            pipeline, self.field, self.settings, self.readings, self.curves
+            pipeline, self.field, self.settings, self.readings, self.curves, self.tail
         )
         self.sizing = SizingPresenter(
             document,

@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Protocol
 
 from app.mat.bounds import copper_bounds
-from app.presenters.check_words import CANCEL
+from app.presenters.check_words import CANCEL, TRY_CABLE
 
 if TYPE_CHECKING:
     from PySide6.QtGui import QAction, QScreen
@@ -21,6 +21,7 @@ if TYPE_CHECKING:
     from app.presenters.sizing import SizingPresenter
     from app.recovery import Recovery
     from app.settings import Settings
+    from app.tail_check import TailCheck
     from app.views.card_column import CardColumn
     from app.views.notice_bar import NoticeBar
     from app.views.readings_view import ReadingsView
@@ -52,6 +53,7 @@ class Window(Protocol):
     settings: Settings
     document: Document
     field: FieldCheck
+    tail: TailCheck
     window_actions: dict[str, QAction]
     cards: CardColumn
     mat: Mat
@@ -104,9 +106,7 @@ def connect_views(window: Window) -> None:
     readings.accepted.connect(window.sizing.accept)
     readings.discarded.connect(window.sizing.discard)
     readings.stopped.connect(window.sizing.discard)
-    readings.check_asked.connect(
-        lambda what: window.field.stop() if what == CANCEL else window.field.start()
-    )
+    readings.check_asked.connect(lambda what: _on_check_asked(window, what))
     window.field.changed.connect(lambda: _on_checked(window))
     window.curves.chosen.connect(lambda name: window.settings.set("curve", name))
     window.curves.match_as_chosen.connect(lambda name: window.settings.set("match_as", name))
@@ -162,6 +162,18 @@ def place_words(point: object) -> str:
     metric = ", ".join(f"{value * 1e3:.2f}".replace("-", "−") for value in (x, y))
     inches = ", ".join(f"{value / 0.0254:.3f}".replace("-", "−") for value in (x, y))
     return f"{metric} mm     {inches} in"
+
+
+def _on_check_asked(window: Window, what: str) -> None:
+    """The one button beside the line about the field check."""
+    if what == TRY_CABLE:
+        window.tail.start()
+    elif what == CANCEL and window.tail.is_busy:
+        window.tail.stop()
+    elif what == CANCEL:
+        window.field.stop()
+    else:
+        window.field.start()
 
 
 def _on_notice(window: Window, name: str, button: str) -> None:

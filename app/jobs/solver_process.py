@@ -15,6 +15,7 @@ from threading import Lock
 from typing import TYPE_CHECKING, Any, Final
 
 from app.jobs.settling import settled
+from core.engines import respond_on_mesh
 from core.errors import Cancelled, CoreError, ModelError
 
 if TYPE_CHECKING:
@@ -27,6 +28,7 @@ if TYPE_CHECKING:
     from app.jobs.settling import Best, Settled
     from core.design.model import Design
     from core.layout.model import Layout
+    from core.layout.tail import Tail
     from core.progress import Progress
     from core.response.model import Response
 
@@ -49,9 +51,16 @@ class SolverProcess:
         self._is_closed = False
 
     def solve(
-        self, layout: Layout, frequencies: ArrayLike, progress: Progress, level: str
+        self,
+        layout: Layout,
+        frequencies: ArrayLike,
+        progress: Progress,
+        level: str,
+        tail: Tail | None = None,
     ) -> Response:
         """Solve a layout at some frequencies (Hz, rising) on a mesh of some level.
+
+        With a cable behind its plate, if one is given.
 
         Raises
         ------
@@ -60,7 +69,7 @@ class SolverProcess:
         Cancelled
             If the progress asks for it, or the window closes.
         """
-        response: Response = self._asked(("solve", layout, frequencies, level), progress)
+        response: Response = self._asked(("solve", layout, frequencies, level, tail), progress)
         return response
 
     def settle(self, design: Design, progress: Progress, tell: Callable[[Best], None]) -> Settled:
@@ -222,12 +231,10 @@ def _serve(pipe: Connection) -> None:
                 pipe.send(_answer(question, _Telling(pipe)))
 
 
-def _solved(layout: Layout, frequencies: ArrayLike, level: str, progress: Progress) -> Response:
-    # Loaded here: only this process needs it, and it takes half a second.
-    from core.fullwave.mesh import Level  # noqa: PLC0415
-    from core.fullwave.respond import respond  # noqa: PLC0415
-
-    return respond(layout, frequencies, progress, Level(level))
+def _solved(
+    layout: Layout, frequencies: ArrayLike, level: str, tail: Tail | None, progress: Progress
+) -> Response:
+    return respond_on_mesh(layout, frequencies, progress, level, tail)
 
 
 def _settled(design: Design, telling: _Telling) -> Settled:

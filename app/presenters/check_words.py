@@ -9,8 +9,9 @@ from core.design.polarisation import Polarisation
 
 if TYPE_CHECKING:
     from app.field_check import Checked, FieldCheck
+    from app.tail_check import TailCheck
 
-CANCEL, CHECK_NOW = "Cancel", "Check now"
+CANCEL, CHECK_NOW, TRY_CABLE = "Cancel", "Check now", "Try a cable"
 
 
 @dataclass(frozen=True)
@@ -25,21 +26,28 @@ class CheckState:
         What was solved before the last edit; empty where nothing was.
     button : str
         What can be done about it; empty for nothing.
+    cable : str
+        What a cable behind the plate changes; empty where it was not asked.
+    cable_tip : str
+        What else it changes.
     """
 
     words: str = ""
     before: str = ""
     button: str = ""
+    cable: str = ""
+    cable_tip: str = ""
 
 
-def check_state(field: FieldCheck) -> CheckState:
+def check_state(field: FieldCheck, tail: TailCheck) -> CheckState:
     """Line about the field check as it stands."""
     if not field.is_on:
         return CheckState()
     current, last = field.current, field.last
     before = _before(last) if current is None and last is not None else ""
-    if field.busy:
-        return CheckState(field.busy, before, CANCEL)
+    busy = field.busy or ("Solving with a cable behind the plate…" if tail.is_busy else "")
+    if busy:
+        return CheckState(busy, before, CANCEL)
     if field.problem:
         return CheckState(f"No field check: {field.problem}", before)
     if field.is_stopped:
@@ -47,7 +55,10 @@ def check_state(field: FieldCheck) -> CheckState:
     if current is not None:
         quick = "Solved on a quick mesh; the chosen one follows when the hand rests."
         return CheckState(
-            quick if not current.mark else f"Sheets will say: field-checked, {current.level} mesh."
+            f"Sheets will say: field-checked, {current.level} mesh." if current.mark else quick,
+            button=TRY_CABLE if tail.can_start else "",
+            cable=tail.words,
+            cable_tip=tail.details,
         )
     return CheckState("The field check follows when the hand rests.", before)
 

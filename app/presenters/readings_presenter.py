@@ -15,6 +15,7 @@ if TYPE_CHECKING:
     from app.field_check import Checked, FieldCheck
     from app.pipeline import Pipeline
     from app.settings import Settings
+    from app.tail_check import TailCheck
 
 
 ESTIMATED = "live estimate, by equations"
@@ -42,14 +43,17 @@ class ReadingsPresenter:
         settings: Settings,
         readings: Panel,
         curves: Curves,
+        tail: TailCheck,
     ) -> None:
         self._pipeline, self._field, self._settings = pipeline, field, settings
+        self._tail = tail
         self._readings, self._curves = readings, curves
         self._answered = pipeline.current
         self._offer = OfferState()
         self._told: Checked | None = None
         pipeline.evaluated.connect(self._on_evaluated)
         field.changed.connect(self._on_checked)
+        tail.changed.connect(self._show_readings)
         self.show()
 
     def show(self) -> None:
@@ -73,7 +77,7 @@ class ReadingsPresenter:
                 state,
                 engine=ESTIMATED if is_estimate else state.engine,
                 offer=self._offer,
-                check=check_state(self._field),
+                check=check_state(self._field, self._tail),
             )
         )
 

@@ -3,15 +3,16 @@
 from __future__ import annotations
 
 import argparse
+from functools import partial
 from typing import TYPE_CHECKING, Any, Protocol
 
 from app.verbs.arguments import VerbParser, unknown_word
 from app.verbs.output import table
-from core.engines import ENGINES, LIVE
+from core.engines import ENGINES, LEVELS, LIVE
 from core.materials.table import folded
 
 if TYPE_CHECKING:
-    from collections.abc import Mapping
+    from collections.abc import Collection, Mapping
 
     from core.response.model import Reading, Trust
 
@@ -28,9 +29,19 @@ def add_engine(parser: VerbParser, default: str | None = LIVE, left_out: str = "
     parser.add_argument(
         "--engine",
         metavar="NAME",
-        type=_engine,
+        type=partial(_known, names=ENGINES, what="engine"),
         default=default,
         help=f"what works it out: {' or '.join(ENGINES)}{left_out}",
+    )
+
+
+def add_mesh(parser: VerbParser) -> None:
+    """Give a verb the choice of how fine the field solver's mesh is."""
+    parser.add_argument(
+        "--mesh",
+        metavar="LEVEL",
+        type=partial(_known, names=LEVELS, what="mesh"),
+        help=f"mesh of the field solver: {', '.join(LEVELS)}; normal if left out",
     )
 
 
@@ -62,9 +73,9 @@ def _cure(trust: Trust) -> str:
     return f"; {trust.remedy}" if trust.remedy else ""
 
 
-def _engine(text: str) -> str:
-    """Name of an engine, however it is spelled."""
-    for name in ENGINES:
+def _known(text: str, names: Collection[str], what: str) -> str:
+    """One of a few names, however it is spelled."""
+    for name in names:
         if folded(name) == folded(text):
             return name
-    raise argparse.ArgumentTypeError(unknown_word(text, ENGINES, "engine"))
+    raise argparse.ArgumentTypeError(unknown_word(text, names, what))

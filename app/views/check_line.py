@@ -12,7 +12,10 @@ if TYPE_CHECKING:
 
 
 class CheckLine(QWidget):
-    """Words about the field check, what it said before the last edit, and one button."""
+    """Words about the field check, what it said before the last edit, and one button.
+
+    Under them what a cable would change, where that was asked.
+    """
 
     pressed = Signal(str)
 
@@ -20,6 +23,7 @@ class CheckLine(QWidget):
         super().__init__()
         self.setAccessibleName("Field check")
         self._words, self._before = _label("Field check at work"), _label("Solved before")
+        self._cable = _label("With a cable")
         self.button = QPushButton()
         self.button.setAccessibleName("Field check")
         self.button.clicked.connect(lambda: self.pressed.emit(self.button.text()))
@@ -28,6 +32,7 @@ class CheckLine(QWidget):
         layout.setVerticalSpacing(2)
         layout.addWidget(self._words, 0, 0)
         layout.addWidget(self._before, 1, 0, 1, 2)
+        layout.addWidget(self._cable, 2, 0, 1, 2)
         layout.addWidget(self.button, 0, 1, Qt.AlignmentFlag.AlignTop)
         layout.setColumnStretch(0, 1)
 
@@ -39,9 +44,16 @@ class CheckLine(QWidget):
     def before(self) -> str:
         return self._before.text()
 
+    @property
+    def cable(self) -> str:
+        return self._cable.text()
+
     def show_state(self, state: CheckState) -> None:
         _say(self._words, state.words)
         _say(self._before, state.before)
+        _say(self._cable, state.cable)
+        self._cable.setToolTip(state.cable_tip)
+        self._cable.setAccessibleDescription(state.cable_tip)
         if self.button.text() != state.button:
             self.button.setText(state.button)
             self.button.setAccessibleName(f"{state.button}: field check".removeprefix(": "))

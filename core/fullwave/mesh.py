@@ -14,6 +14,7 @@ from core.constants import SPEED_OF_LIGHT
 from core.errors import ModelError
 from core.fullwave.mesh_model import CoaxRing, Mesh, Sheet
 from core.fullwave.mesh_sizes import Fineness, ground_plan, pin_holes, top_sizes
+from core.fullwave.tail_mesh import tail_mouth, tail_tube, washer
 from core.fullwave.triangulate import triangulate
 from core.layout.model import Role
 from core.shapes.outline import polygon
@@ -23,6 +24,7 @@ if TYPE_CHECKING:
 
     from core.fullwave.sizes import Sizes
     from core.layout.model import Layout, Port
+    from core.layout.tail import Tail
     from core.shapes.outline import Region
 
     Floats = NDArray[np.float64]
@@ -55,13 +57,15 @@ _SIMPLEST = 0.1  # and than this, in radii of the probe
 _COLLAR = 1.3  # least copper round the probe, in radii of its prism
 
 
-def build_mesh(layout: Layout, level: Level) -> Mesh:
+def build_mesh(layout: Layout, level: Level, tail: Tail | None = None) -> Mesh:
     """Mesh of a layout's copper over its finite ground plate.
 
     Parameters
     ----------
     layout : Layout
     level : Level
+    tail : Tail, optional
+        A cable behind the plate.
 
     Returns
     -------
@@ -78,11 +82,19 @@ def build_mesh(layout: Layout, level: Level) -> Mesh:
     cell = wavelength / fine.per_wavelength
     pin, top, parts = top_plates(layout, level)
     ground = _sheets(layout, Role.GROUND_COPPER, pin, cell)
-    sizes, traces = ground_plan(layout, top, pin, fine, cell)
+    foot = pin if tail is None else _prism(layout.ports[0], fine.probe_sides, tail.diameter)
+    if tail is not None:
+        ground = tuple(
+            tail_mouth(piece, pin, foot) if pin_holes(piece, pin) else piece for piece in ground
+        )
+    sizes, traces = ground_plan(layout, top, foot, fine, cell)
     rim = fine.edge_row * max(height, cell / 2.0) if fine.ground_row else 0.0
-    parts += [_plate(piece, sizes, rim, pin, 0.0, traces) for piece in ground]
+    parts += [_plate(piece, sizes, rim, foot, 0.0, traces) for piece in ground]
     parts.append(_tube(pin, height, max(1, ceil(height / (fine.probe_cell * wavelength)))))
     sheets = [Sheet.TOP] * len(top) + [Sheet.GROUND] * len(ground) + [Sheet.PROBE]
+    if tail is not None:
+        parts += [washer(pin, foot), tail_tube(tail, foot, fine.probe_cell * wavelength)]
+        sheets += [Sheet.GROUND, Sheet.TAIL]
     return joined(parts, sheets, mouth(layout))
 
 
@@ -115,7 +127,7 @@ def top_plates(
         SPEED_OF_LIGHT / (layout.frequency * _TOP_FREQUENCY * fine.per_wavelength),
         _ROUND * min(layout.element_width, layout.element_length) / fine.across,
     )
-    pin = _prism(port, fine.probe_sides)
+    pin = _prism(port, fine.probe_sides, port.diameter)
     pieces = _sheets(layout, Role.TOP_COPPER, pin, chord)
     row = fine.edge_row * layout.height
     parts = [
@@ -143,8 +155,8 @@ def mouth(layout: Layout) -> CoaxRing:
     return CoaxRing(port.x, port.y, port.diameter / 2.0, clearance / 2.0)
 
 
-def _prism(port: Port, sides: int) -> Floats:
-    """Corners (sides, 2) of a prism that carries a current like the round pin's.
+def _prism(port: Port, sides: int, diameter: float) -> Floats:
+    """Corners (sides, 2) of a prism that carries a current like a round pin's.
 
     Its cross-section has the logarithmic capacity of the circle: side times
     Γ(1/n) / (2^(1+2/n) √π Γ(1/2+1/n)) is the radius [Pólya and Szegő, Isoperimetric
@@ -152,7 +164,7 @@ def _prism(port: Port, sides: int) -> Floats:
     """
     n = sides
     share = gamma(1 / n) / (2.0 ** (1 + 2 / n) * pi**0.5 * gamma(0.5 + 1 / n))
-    radius = port.diameter / 2.0 / share / (2.0 * sin(pi / n))
+    radius = diameter / 2.0 / share / (2.0 * sin(pi / n))
     turns = [2.0 * pi * (i + 0.5) / n for i in range(n)]
     return np.array([(port.x + radius * cos(a), port.y + radius * sin(a)) for a in turns])
 

@@ -57,11 +57,14 @@ def ring_excitation(mesh: Mesh, basis: Basis, ring: CoaxRing) -> Floats:
     points = np.einsum("qc,tcx->tqx", rule[:, :3], basis.corners)
     potential = np.empty(points.shape[:2])
     plate, pin = mesh.sheet == Sheet.GROUND, mesh.sheet == Sheet.PROBE
+    tail = mesh.sheet == Sheet.TAIL
     away = np.hypot(points[..., 0] - ring.x, points[..., 1] - ring.y)
     # The plate is under the layer of dipoles, the foot of the pin just above it.
     potential[plate] = -_drop(away[plate], ring) / 2.0
     away[pin] = ring.inner
-    potential[~plate] = _above_ring(away[~plate], points[~plate][..., 2], ring)
+    # Below the layer the potential is the same with its sign turned round.
+    side, height = np.where(tail, -1.0, 1.0)[~plate, None], np.abs(points[~plate][..., 2])
+    potential[~plate] = side * _above_ring(away[~plate], height, ring)
     mean = potential @ rule[:, 3]
     halves = basis.lengths * mean
     # From plate to pin the potential jumps by the voltage; no field stands behind that step.

@@ -6,7 +6,9 @@ without end [1]_, and sent out with the free-space phase [2]_. Currents on the c
 images, because nothing is magnetic; but the spacer's own polarisation current, upright under the
 copper, is as long as the spacer is high and as strong as the charge next to it wants it, and
 acts on itself (here) and on the probe (`core.fullwave.upright`). Between charges on the faces
-every layer counts; to and from the probe, and for upright currents, the stack is one layer.
+every layer counts; to and from the probe, and for upright currents, the stack is one layer. A
+coax tail below the plate is as if the ground plate's face reached down: every spectrum seen
+there fades further by e^(-k distance), so each image stands above it, as deep as before.
 
 Depths are counted in e^(-k depth), the spectrum of a charge at that distance.
 
@@ -37,10 +39,10 @@ if TYPE_CHECKING:
     Ints = NDArray[np.int64]
     Complexes = NDArray[np.complex128]
 
-FACES: Final = 3
-"""Ground plate, probe, top copper: in the order of `core.fullwave.mesh_model.Sheet`."""
+FACES: Final = 4
+"""Ground plate, probe, top copper, tail: in the order of `core.fullwave.mesh_model.Sheet`."""
 
-_GROUND, _PROBE, _TOP = range(FACES)
+_GROUND, _PROBE, _TOP, _TAIL = range(FACES)
 _DEEPEST: Final = 6.0  # heights of the stack
 _RATIO: Final = 2.0  # of the depths of neighbouring images
 _FAINT: Final = 3e-4  # weight of an image that can be left out
@@ -61,11 +63,11 @@ class SpacerImages:
 
     Attributes
     ----------
-    direct : (3, 3) ndarray of complex
+    direct : (4, 4) ndarray of complex
         Weight of the charge itself, by sheet of the observer and of the charge.
-    starts : (3, 3) ndarray of int
+    starts : (4, 4) ndarray of int
         Where the images for each pair of sheets start in the arrays below.
-    stops : (3, 3) ndarray of int
+    stops : (4, 4) ndarray of int
         Where they end.
     weights : (i,) ndarray of complex
     turns : (i,) ndarray of float
@@ -154,7 +156,42 @@ def spacer_images(layers: tuple[Layer, ...]) -> SpacerImages:
         *((weight, 0.0, depth, 0.0) for weight, depth in up[1][1:]),
         (0.0, 0.0, apart, -square),
     ]
+    _add_tail(direct, lists, height)
     return _packed(direct, lists)
+
+
+def _add_tail(direct: Complexes, lists: _Lists, height: float) -> None:
+    """Add what a coax tail sees, and is seen with, to what the ground plate's face sees."""
+    direct[_TAIL, :_TAIL] = direct[:_TAIL, _TAIL] = direct[_GROUND, :_TAIL]
+    direct[_TAIL, _TAIL] = 1.0
+    seen = {
+        sheet: [_raised(one, height) for one in lists[_GROUND, sheet]] for sheet in range(_TAIL)
+    }
+    for sheet, images in seen.items():
+        lists[_TAIL, sheet] = images
+        lists[sheet, _TAIL] = [_seen_back(one, height, sheet) for one in images]
+    own = direct[_GROUND, _GROUND] - 1.0
+    lists[_TAIL, _TAIL] = [(own, -1.0, 0.0, 0.0), *lists[_GROUND, _TAIL]]
+
+
+def _raised(image: _Image, height: float) -> _Image:
+    """The same seen from below the plate: above it, as far as it was from the plate's face."""
+    weight, turn, shift, square = image
+    side = 1.0 if turn * height / 2.0 + shift >= 0.0 else -1.0
+    return weight, side * turn, side * shift, square
+
+
+def _seen_back(image: _Image, height: float, sheet: int) -> _Image:
+    """The way back of an image that a tail sees: of the tail's charge, seen from a sheet.
+
+    Both ways are as long: depth -z below the plate plus turn z' + shift above it.
+    """
+    weight, turn, shift, square = image
+    if sheet == _GROUND:
+        return weight, -1.0, shift, square
+    if sheet == _TOP:
+        return weight, 1.0, height - shift, square
+    return weight, turn, -shift if turn > 0.0 else shift, square
 
 
 def _packed(direct: Complexes, lists: _Lists) -> SpacerImages:

@@ -34,7 +34,7 @@ if TYPE_CHECKING:
 def add_upright_coupling(
     matrix: Complexes, basis: Basis, sheets: Ints, layers: tuple[Layer, ...], frequency: float
 ) -> None:
-    """Add the coupling between the probe and upright currents to a moment matrix.
+    """Add the coupling of probe and coax tail to upright currents to a moment matrix.
 
     Parameters
     ----------
@@ -49,7 +49,7 @@ def add_upright_coupling(
         Hz.
     """
     arms = _arms(sheets, layers)
-    on_probe = np.flatnonzero(sheets == Sheet.PROBE)
+    on_probe = np.flatnonzero(_stands(sheets))
     if not arms.any() or not len(on_probe):
         return
     places = _places(basis, sheets, layers)
@@ -119,5 +119,10 @@ def _arms(sheets: Ints, layers: tuple[Layer, ...]) -> Floats:
 def _places(basis: Basis, sheets: Ints, layers: tuple[Layer, ...]) -> Floats:
     """Middles of the triangles, on the plates half way up the spacer, m."""
     middles = basis.corners.mean(axis=1)
-    middles[sheets != Sheet.PROBE, 2] = total_thickness(layers) / 2.0
+    middles[~_stands(sheets), 2] = total_thickness(layers) / 2.0
     return np.asarray(middles)
+
+
+def _stands(sheets: Ints) -> NDArray[np.bool_]:
+    """Whether a triangle belongs to a conductor out of the plates."""
+    return np.asarray((sheets == Sheet.PROBE) | (sheets == Sheet.TAIL))

@@ -15,11 +15,20 @@ import numpy as np
 from core.design.polarisation import Polarisation
 from core.response.model import Reading, TrustLevel
 from core.response.polarisation import LINEAR_FROM_DB, sense
-from core.units import Quantity, format_quantity
+from core.response.sphere import CONE, beam, worst_axial_ratio_db
+from core.units import Quantity, format_quantity, parse_quantity
 
 if TYPE_CHECKING:
     from core.response.bands import Band
-    from core.response.model import Response
+    from core.response.model import FarSphere, Response
+
+# Where a beam leans, seen from the front, by eighths of a turn from x.
+_WAYS = (
+    *("right", "up and right", "up", "up and left"),
+    *("left", "down and left", "down", "down and right"),
+)
+_STRAIGHT = np.radians(1.0)  # tilt of a beam that is still straight ahead
+_SLACK = 1e-9  # of a step, so that rounding up does not start from a rounding error
 
 SENSE_WORDS = {
     Polarisation.RHCP: "right-hand circular",
@@ -32,7 +41,7 @@ class State(StrEnum):
     """How a reading stands against the brief."""
 
     MET = "met"
-    LIKELY = "likely"  # met by an estimate that is good to a few per cent
+    LIKELY = "likely"  # met by an estimate, or by less than its plus and minus
     MISSED = "missed"
     UNKNOWN = "unknown"
     NOTED = "noted"  # the brief asks nothing of it
@@ -79,7 +88,7 @@ def judge(
     tuple of Verdict
         In the order match, polarisation, gain, efficiency, bands, resonance, pattern. The
         state is never "met" or "missed" where the engine calls the reading unknown, and never
-        "met" where it calls it rough.
+        "met" where it calls it rough or where the response's spread reaches over the target.
     """
     verdicts = (
         _match(response, vswr_target),
@@ -88,7 +97,7 @@ def judge(
         _efficiency(response),
         _bands(response, polarisation, vswr_target, axial_ratio_target_db),
         _resonance(response),
-        _pattern(response),
+        _pattern(response, polarisation),
     )
     return tuple(_as_trusted(response, verdict) for verdict in verdicts)
 
@@ -111,16 +120,15 @@ def _as_trusted(response: Response, verdict: Verdict) -> Verdict:
 
 def _match(response: Response, target: float) -> Verdict:
     vswr = float(response.spot.vswr)
-    met = vswr <= target
-    relation = "within" if met else "over"
+    spread = None if response.spread is None else response.spread.vswr
+    state, relation = _stands(vswr, target, f"{target:g}", spread)
     loss = float(response.spot.return_loss_db)
     loss_text = "no reflection" if np.isinf(loss) else f"return loss {loss:.1f} dB"
     where = format_quantity(response.frequency, Quantity.FREQUENCY)
     sentence = (
-        f"VSWR {_beside(vswr, target)} at {where}, {relation} the {target:g} asked for "
-        f"({loss_text})."
+        f"VSWR {_beside(vswr, target)}{_plus_minus(spread)} at {where}, {relation} ({loss_text})."
     )
-    return Verdict(Reading.MATCH, _state(met), sentence)
+    return Verdict(Reading.MATCH, state, sentence)
 
 
 def _polarisation(response: Response, polarisation: Polarisation, target: float) -> Verdict:
@@ -138,13 +146,13 @@ def _polarisation(response: Response, polarisation: Polarisation, target: float)
             f"{asked} was asked for."
         )
         return Verdict(Reading.AXIAL_RATIO, State.MISSED, sentence)
-    met = ratio <= target
-    relation = "within" if met else "over"
+    spread = None if response.spread is None else response.spread.axial_ratio_db
+    state, relation = _stands(ratio, target, f"{target:g} dB", spread)
     sentence = (
-        f"{asked.capitalize()}, axial ratio {_beside(ratio, target)} dB, "
-        f"{relation} the {target:g} dB asked for."
+        f"{asked.capitalize()}, axial ratio {_beside(ratio, target)}{_plus_minus(spread)} dB, "
+        f"{relation}."
     )
-    return Verdict(Reading.AXIAL_RATIO, _state(met), sentence)
+    return Verdict(Reading.AXIAL_RATIO, state, sentence)
 
 
 def _linearity(response: Response) -> Verdict:
@@ -152,15 +160,16 @@ def _linearity(response: Response) -> Verdict:
     met = ratio >= LINEAR_FROM_DB
     relation = "as asked" if met else f"short of the {LINEAR_FROM_DB:g} dB of a linear antenna"
     sentence = f"The field along its axis is {_level(ratio)} over the field across it, {relation}."
-    return Verdict(Reading.AXIAL_RATIO, _state(met), sentence)
+    return Verdict(Reading.AXIAL_RATIO, State.MET if met else State.MISSED, sentence)
 
 
 def _gain(response: Response, polarisation: Polarisation) -> Verdict:
     gain = float(response.spot.gain_dbi(polarisation))
     realised = float(response.spot.realised_gain_dbi(polarisation))
+    spread = None if response.spread is None else response.spread.gain_db
     sentence = (
-        f"Gain {gain:.1f} dBi to {SENSE_WORDS[polarisation]} waves straight ahead, "
-        f"{realised:.1f} dBi with the mismatch."
+        f"Gain {gain:.1f}{_plus_minus(spread, 1)} dBi to {SENSE_WORDS[polarisation]} waves "
+        f"straight ahead, {realised:.1f} dBi with the mismatch."
     )
     return Verdict(Reading.GAIN, State.NOTED, sentence)
 
@@ -182,30 +191,83 @@ def _bands(response: Response, polarisation: Polarisation, vswr: float, ratio: f
 
 
 def _resonance(response: Response) -> Verdict:
+    spread = response.spread
+    moved = spread.modes if spread is not None else (None,) * len(response.modes)
     modes = [
-        f"{format_quantity(mode.frequency, Quantity.FREQUENCY, digits=4)} {mode.name} "
-        f"(Q {mode.quality_factor:.3g})"
-        for mode in response.modes
+        f"{_frequency(mode.frequency, by)} {mode.name} (Q {mode.quality_factor:.3g})"
+        for mode, by in zip(response.modes, moved, strict=True)
     ]
-    listed = " and ".join(modes)
-    sentence = f"The element resonates at {listed}."
+    sentence = f"The element resonates at {' and '.join(modes)}."
+    if not modes:
+        sentence = "No resonance of the element stands out near the brief's frequency."
     trust = response.trust[Reading.RESONANCE]
     if trust.level is TrustLevel.ROUGH:
         sentence += f" {trust.reason[:1].upper()}{trust.reason[1:]}."
     return Verdict(Reading.RESONANCE, State.NOTED, sentence)
 
 
-def _pattern(response: Response) -> Verdict:
+def _pattern(response: Response, polarisation: Polarisation) -> Verdict:
     directivity = 10.0 * np.log10(response.directivity)
-    beam = format_quantity(response.beamwidth, Quantity.ANGLE, digits=2)
-    sentence = f"Directivity {directivity:.1f} dBi, half-power beam {beam} wide"
+    wide = format_quantity(response.beamwidth, Quantity.ANGLE, digits=2)
+    sentence = f"Directivity {directivity:.1f} dBi, half-power beam {wide} wide"
     if response.front_to_back is not None:
         sentence += f", {10.0 * np.log10(response.front_to_back):.1f} dB less behind"
-    return Verdict(Reading.PATTERN, State.NOTED, f"{sentence}.")
+    sentence += "."
+    if response.sphere is not None:
+        sentence += f" {_by_direction(response.sphere, polarisation)}"
+    return Verdict(Reading.PATTERN, State.NOTED, sentence)
 
 
-def _state(met: bool) -> State:
-    return State.MET if met else State.MISSED
+def _by_direction(sphere: FarSphere, polarisation: Polarisation) -> str:
+    """Where the beam points, and how its polarisation holds away from boresight."""
+    found = beam(sphere, polarisation)
+    parts = ["Strongest straight ahead"]
+    if found.tilt > np.pi / 2.0:
+        parts = ["Strongest behind the plate"]
+    elif found.tilt > _STRAIGHT:
+        tilt, azimuth = (
+            format_quantity(angle, Quantity.ANGLE, digits=digits)
+            for angle, digits in ((found.tilt, 2), (found.azimuth, 3))
+        )
+        way = _WAYS[round(found.azimuth / (np.pi / 4.0)) % len(_WAYS)]
+        parts = [f"Strongest {tilt} {way} of straight ahead ({azimuth} from x)"]
+    if polarisation is not Polarisation.LINEAR:
+        worst = worst_axial_ratio_db(sphere, polarisation)
+        cone = format_quantity(CONE, Quantity.ANGLE)
+        if np.isinf(worst):
+            parts.append(f"of the other sense somewhere within {cone}")
+        else:
+            parts.append(f"axial ratio up to {_level(worst)} within {cone}")
+    return f"{'; '.join(parts)}."
+
+
+def _stands(value: float, target: float, asked: str, spread: float | None) -> tuple[State, str]:
+    """State against a limit, and the words for it."""
+    if value > target:
+        return State.MISSED, f"over the {asked} asked for"
+    # Not a number: one of the meshes told something else altogether.
+    if spread is not None and not value + spread <= target:
+        return State.LIKELY, f"within the {asked} asked for, but by less than the ±"
+    return State.MET, f"within the {asked} asked for"
+
+
+def _plus_minus(spread: float | None, digits: int = 2) -> str:
+    """A spread as it stands behind a number with so many decimals, rounded up."""
+    if spread is None or not np.isfinite(spread):
+        return ""
+    step = 10.0**-digits
+    return f" ± {np.ceil(spread / step - _SLACK) * step:.{digits}f}"
+
+
+def _frequency(value: float, spread: float | None) -> str:
+    """A frequency to four digits, such as "2.447 ± 0.003 GHz"."""
+    text = format_quantity(value, Quantity.FREQUENCY, digits=4)
+    if spread is None:
+        return text
+    unit = text.rsplit(" ", 1)[1]
+    scale = parse_quantity(f"1 {unit}", Quantity.FREQUENCY)
+    digits = max(3 - int(np.floor(np.log10(value / scale))), 0)
+    return f"{value / scale:.{digits}f}{_plus_minus(spread / scale, digits)} {unit}"
 
 
 def _band_text(what: str, band: Band | None) -> str:

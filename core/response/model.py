@@ -187,6 +187,97 @@ class PatternCut:
 
 
 @dataclass(frozen=True, eq=False)
+class FarSphere:
+    """The far field on a grid of directions, dense enough to tell it in between.
+
+    Attributes
+    ----------
+    theta : (a,) ndarray of float
+        Even steps from boresight (0) to straight behind (pi), or as far as there is a field, rad.
+    phi : (b,) ndarray of float
+        Even steps from 0 all the way round, from x towards y, rad; b even.
+    e_theta, e_phi : (a, b) ndarray of complex
+        Components along theta and phi, in the scale of `Samples.e_x`.
+    """
+
+    theta: Floats
+    phi: Floats
+    e_theta: Complexes
+    e_phi: Complexes
+
+    def __post_init__(self) -> None:
+        for name in ("theta", "phi", "e_theta", "e_phi"):
+            values = np.array(getattr(self, name))
+            values.flags.writeable = False
+            object.__setattr__(self, name, values)
+
+
+@dataclass(frozen=True)
+class SheetMesh:
+    """Mesh of one conductor.
+
+    Attributes
+    ----------
+    name : str
+        Such as "top copper".
+    triangles : int
+    smallest_angle : float
+        rad; the rows of cells along copper edges are narrow on purpose.
+    longest_edge : float
+        m.
+    longest_in_wavelengths : float
+        The same in wavelengths at the top of the band, in what the field runs through.
+    """
+
+    name: str
+    triangles: int
+    smallest_angle: float
+    longest_edge: float
+    longest_in_wavelengths: float
+
+
+@dataclass(frozen=True)
+class MeshReport:
+    """What a solution stands on.
+
+    Attributes
+    ----------
+    level : str
+        Fineness: coarse, normal or fine.
+    unknowns : int
+    sheets : tuple of SheetMesh
+    """
+
+    level: str
+    unknowns: int
+    sheets: tuple[SheetMesh, ...]
+
+
+@dataclass(frozen=True)
+class Spread:
+    """How far readings at the brief's frequency may be off: their plus and minus.
+
+    How far they move from a coarser mesh to this one and with a little shift in frequency, as
+    `core.response.spread.with_spread` adds them up.
+
+    Attributes
+    ----------
+    against : str
+        Level of the coarser mesh.
+    modes : tuple of (float or None)
+        Hz, one for each of the response's modes; None where the coarser mesh has no such mode.
+    vswr, axial_ratio_db, gain_db : float
+        Not a number where a reading is infinite on one of the meshes.
+    """
+
+    against: str
+    modes: tuple[float | None, ...]
+    vswr: float
+    axial_ratio_db: float
+    gain_db: float
+
+
+@dataclass(frozen=True, eq=False)
 class Response:
     """Everything that the readings and the curves show.
 
@@ -211,6 +302,12 @@ class Response:
         is taken as infinite.
     trust : mapping of Reading to Trust
         For every reading.
+    sphere : FarSphere or None
+        Far field in all directions at the brief's frequency; None where the engine can't tell.
+    mesh : MeshReport or None
+        None for an engine without a mesh.
+    spread : Spread or None
+        None where nothing was solved on a coarser mesh.
     currents : Currents or None
         On the conductors at the brief's frequency; None where the engine solves for none.
     """
@@ -224,6 +321,9 @@ class Response:
     cuts: tuple[PatternCut, ...]
     front_to_back: float | None
     trust: Mapping[Reading, Trust]
+    sphere: FarSphere | None = None
+    mesh: MeshReport | None = None
+    spread: Spread | None = None
     currents: Currents | None = None
 
     @property

@@ -24,6 +24,8 @@ if TYPE_CHECKING:
 
     Floats = NDArray[np.float64]
 
+_NOT_THERE = 1.0  # m, margin of copper that is not there, never in the way
+
 
 def margins(design: Design) -> Floats:
     """Margins that must not be negative if a design is to be made.
@@ -73,8 +75,8 @@ def margins(design: Design) -> Floats:
 
 def _lead_margins(design: Design, feed: DualEdge, lead: tuple[Point, ...]) -> Iterable[float]:
     """Margins of a lead-in to the rim, to the element and to its own bends."""
-    if feed.lead_in.length <= 0.0:
-        return ()
+    if feed.lead_in.length <= 0.0:  # as many as of one that is there, for a search that ends here
+        return (_NOT_THERE,) * (3 + len(feed.lead_in.bends))
     half, gap = feed.lead_in.width / 2, design.making.narrowest_gap
     clear = feed.delay_width / 2 + gap
     turns = [0.0, *(bend.distance for bend in feed.lead_in.bends), feed.lead_in.length]

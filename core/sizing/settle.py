@@ -186,7 +186,10 @@ class _Start:
         base = live if knows else None
         solve = partial(solver.missing, level=Level.COARSE)
         self.search = Search(free, solve, base, _LIVE_TRUST, looks=True)
-        self.is_solved = room_left(free, turns) >= 0.0 and self.search.begin(turns)
+        has_room = room_left(free, turns) >= 0.0
+        if not has_room:  # looked at all the same, so that what is in the way can be told
+            solver.buildable(free.box.design(turns, on_grid))
+        self.is_solved = has_room and self.search.begin(turns)
 
     @property
     def design(self) -> Design:

@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 from core.errors import LayoutError, ModelError
 from core.findings import Severity
 from core.fullwave.mesh import Level
-from core.fullwave.respond import Solving
+from core.fullwave.solving import Solving
 from core.layout.build import build_layout
 
 if TYPE_CHECKING:
@@ -58,7 +58,7 @@ class SolvedDesigns:
     counts : dict of Level to int
         Solutions on each mesh.
     refusal : str
-        Why the last design that could not be solved could not.
+        Why the last design that could not be made or solved could not.
     """
 
     def __init__(self, goal: Goal, spot: Spot, progress: Progress, most: int) -> None:
@@ -85,7 +85,7 @@ class SolvedDesigns:
     ) -> tuple[complex, complex, complex] | None:
         """Admittance and field of a design; None where it can't be made or meshed."""
         self.step(0, 0)
-        layout = self._buildable(design)
+        layout = self.buildable(design)
         if layout is None:
             return None
         try:
@@ -96,7 +96,8 @@ class SolvedDesigns:
         self.counts[level] += 1
         return solved
 
-    def _buildable(self, design: Design) -> Layout | None:
+    def buildable(self, design: Design) -> Layout | None:
+        """Layout of a design; None, and the refusal kept, where it can't be made."""
         try:
             layout = build_layout(design)
         except LayoutError as error:

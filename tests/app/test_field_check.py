@@ -11,7 +11,8 @@ from app.field_check import KIND, FieldCheck
 from app.jobs.runner import JobRunner
 from app.jobs.solver_process import SolverProcess
 from app.main_window import MainWindow
-from app.presenters.check_words import CANCEL, CHECK_NOW
+from app.presenters.check_words import CANCEL, CHECK_NOW, TRY_CABLE
+from app.tail_check import KIND as TAIL
 from app.window import dress
 from core.design import edit
 from core.design.defaults import default_design
@@ -25,23 +26,30 @@ class FakeSolver:
     """Answers like a field solver, from the live model; may refuse, or say what it is asked."""
 
     def __init__(self):
-        self.levels = []
-        self.refusal = ""
+        self.levels, self.tails = [], []
+        self.behind = 20.0
+        self.refusal = self.refused = ""
         self.frequencies = 6
+        self.drops = 0
 
     def close(self): ...
 
-    def drop(self): ...
+    def drop(self):
+        self.drops += 1
 
-    def solve(self, layout, frequencies, progress, level):
+    def solve(self, layout, frequencies, progress, level, tail=None):
         self.levels.append(level)
+        self.tails.append(tail)
         for done in range(self.frequencies):
             progress.step(done, 7)
+        if level == self.refused:
+            raise ModelError("this mesh is too coarse")
         if self.refusal:
             raise ModelError(self.refusal)
         known = Trust(TrustLevel.GOOD, "solved")
         trust = dict.fromkeys(Reading, known)
-        return replace(ENGINES[LIVE](layout, frequencies, SILENT), engine="field", trust=trust)
+        answer = ENGINES[LIVE](layout, frequencies, SILENT)
+        return replace(answer, engine="field", trust=trust, front_to_back=self.behind)
 
 
 @pytest.fixture
@@ -92,9 +100,14 @@ def at_rest(window, runner, qtbot):
     runner.run()
 
 
+def run_all(runner):
+    while runner.waiting:
+        runner.run()
+
+
 def test_readings_switch_to_what_is_solved_and_say_so(window, runner):
     assert engine(window) == "live estimate, by equations"
-    runner.run()
+    run_all(runner)
     assert engine(window) == "field solver, normal mesh, 6 frequencies"
     assert window.readings.check.words.startswith("Sheets will say: field-checked, normal mesh")
 
@@ -155,7 +168,10 @@ def test_the_hand_gets_a_quick_mesh_and_the_chosen_one_when_it_lets_go(
     assert window.field.current.mark == ""  # nothing to put on a sheet
     mouse.release()
     at_rest(window, runner, qtbot)
-    assert solver.levels == ["normal", "fine", "quick", "quick", "fine"]
+    runner.run()
+    # And then on the next coarser mesh, to tell how far the two differ; not while the hand drags.
+    assert solver.levels == ["normal", "fine", "quick", "quick", "fine", "normal"]
+    assert window.field.current.evaluation.response.spread.against == "normal"
     assert "fine mesh" in engine(window)
 
 
@@ -291,6 +307,150 @@ def test_a_tiny_design_is_solved_beside_the_window(open_window, qtbot):
     # A lossless antenna radiates all it takes but what the foil turns to heat.
     assert 0.5 < float(response.spot.efficiency) <= 1.0
     assert engine(window).startswith("field solver, coarse mesh")
+
+
+def test_the_chosen_mesh_is_shown_first_and_then_its_plus_and_minus(window, runner, solver):
+    runner.run()
+    assert solver.levels == ["normal"]
+    first = window.field.current
+    assert first.evaluation.response.spread is None
+    assert first.mark.startswith("Field-checked: normal mesh")
+    check = window.readings.check
+    assert check.words == "Solved on the normal mesh; now on the coarse one, for the ±."
+    assert check.button.text() == CANCEL
+    assert not any("±" in line.words for line in window.readings._state.lines)
+    runner.run()
+    assert solver.levels == ["normal", "coarse"]
+    assert window.field.current.evaluation.response.spread.against == "coarse"
+    assert window.field.current.solved == first.solved
+    assert any("±" in line.words for line in window.readings._state.lines)
+    assert not runner.waiting
+
+
+def test_an_edit_supersedes_the_coarser_solve(window, runner, solver):
+    runner.run()
+    widen(window)
+    assert not runner.waiting
+    assert solver.drops == 1
+    assert window.field.current is None
+
+
+def test_an_answer_stands_where_its_plus_and_minus_is_cancelled(window, runner):
+    runner.run()
+    check = window.readings.check
+    check.button.click()
+    assert not runner.waiting
+    assert check.words.startswith("Sheets will say: field-checked, normal mesh")
+    assert check.button.text() == TRY_CABLE
+
+
+def test_the_hand_puts_the_plus_and_minus_off(window, runner, qtbot, hand):
+    runner.run()
+    mouse = hand(window.mat.plan).press("element.width")
+    assert not runner.waiting
+    mouse.release()
+    at_rest(window, runner, qtbot)
+    assert window.field.current.evaluation.response.spread.against == "coarse"
+
+
+def test_a_coarser_answer_of_the_same_design_is_not_solved_again(window, runner, qtbot, solver):
+    window.settings.set("mesh_level", "coarse")
+    at_rest(window, runner, qtbot)
+    assert solver.levels == ["coarse"]
+    assert not runner.waiting  # nothing is coarser, but the quick mesh, which tells too little
+    window.settings.set("mesh_level", "normal")
+    at_rest(window, runner, qtbot)
+    assert solver.levels == ["coarse", "normal"]
+    assert window.field.current.evaluation.response.spread.against == "coarse"
+    assert not runner.waiting
+
+
+def test_where_only_the_finer_mesh_will_do_there_is_no_plus_and_minus(window, runner, solver):
+    solver.refused = "coarse"
+    runner.run()
+    runner.run()
+    assert solver.levels == ["normal", "coarse"]
+    assert window.field.current.evaluation.response.spread is None
+    assert window.readings.check.words.startswith("Sheets will say: field-checked, normal mesh")
+    assert not runner.waiting
+
+
+def test_a_cable_is_solved_when_it_is_asked_for(window, runner, solver):
+    run_all(runner)
+    check = window.readings.check
+    assert check.button.text() == TRY_CABLE
+    check.button.click()
+    assert check.button.text() == CANCEL
+    runner.run()
+    tail = solver.tails[-1]
+    assert tail.length == pytest.approx(0.5 * 299792458 / window.document.design.brief.frequency)
+    assert check.cable.startswith("With ")
+    assert "of cable: VSWR" in check.cable
+    assert not check.button.isVisible()
+    widen(window)
+    assert check.cable == ""
+    window.window_actions["undo"].trigger()
+    assert check.cable.startswith("With ")
+
+
+def test_an_edit_stops_the_cable(window, runner, solver):
+    run_all(runner)
+    window.readings.check.button.click()
+    assert TAIL in runner.waiting
+    widen(window)
+    assert TAIL not in runner.waiting
+    assert solver.drops == 1
+    assert not window.tail.is_busy
+
+
+def test_the_cable_can_be_cancelled_and_tried_again(window, runner, solver):
+    run_all(runner)
+    check = window.readings.check
+    check.button.click()
+    check.button.click()
+    assert not runner.waiting
+    assert solver.drops == 1
+    assert check.button.text() == TRY_CABLE
+    check.button.click()
+    run_all(runner)
+    assert "of cable: VSWR" in check.cable
+
+
+def test_the_field_check_goes_before_the_cable(window, runner, qtbot, solver):
+    """The solver answers one question at a time: neither drops what the other has asked."""
+    run_all(runner)
+    check = window.readings.check
+    check.button.click()
+    window.settings.set("mesh_level", "fine")
+    assert solver.drops == 0
+    assert TAIL in runner.waiting
+    qtbot.waitUntil(lambda: KIND in runner.waiting)
+    assert TAIL not in runner.waiting
+    assert solver.drops == 1
+    run_all(runner)
+    widen(window)
+    at_rest(window, runner, qtbot)
+    assert KIND in runner.waiting  # the coarser mesh
+    window.tail.start()
+    assert TAIL not in runner.waiting
+    run_all(runner)
+    assert check.button.text() == TRY_CABLE
+
+
+def test_a_board_over_an_endless_ground_offers_no_cable(window, runner, solver):
+    solver.behind = None
+    runner.run()
+    assert window.readings.check.button.text() != TRY_CABLE
+
+
+def test_a_cable_that_cannot_be_solved_says_why(window, runner, solver):
+    run_all(runner)
+    window.readings.check.button.click()
+    solver.refusal = "coax tail: the cable reaches over the rim"
+    runner.run()
+    assert window.readings.check.cable == (
+        "No answer with a cable: coax tail: the cable reaches over the rim"
+    )
 
 
 def test_a_check_is_for_one_design_only(window, runner):

@@ -25,10 +25,11 @@ from board_shapes import board_dual_edge
 from fullwave_shapes import small_ground, thick_air, thin_air
 
 from core.design.defaults import default_design
-from core.fullwave import respond as field
 from core.fullwave.equations import project
 from core.fullwave.mesh import Level
 from core.fullwave.moments import currents
+from core.fullwave.respond import respond
+from core.fullwave.solvers import build_solver, kernels_of
 from core.fullwave.sweep import first_points
 from core.layout.build import build_layout
 from core.progress import SILENT
@@ -71,10 +72,15 @@ def shifted(one, other):
     return errors[best], SHIFTS[best]
 
 
+def reflection(admittance, impedance):
+    """Reflection coefficient of an admittance."""
+    return (1.0 - admittance * impedance) / (1.0 + admittance * impedance)
+
+
 def projected(layout):
     """Largest errors of the projection alone: of S11 and of the field."""
     f0, impedance = layout.frequency, layout.ports[0].impedance
-    solver = field._solver(layout, Level.QUICK, 1.1 * f0)
+    solver = build_solver(layout, Level.QUICK, kernels_of(layout, 1.1 * f0))
     projection, _ = project(solver.posed, first_points((0.9 * f0, 1.1 * f0), f0, 3), SILENT)
     told, true = [], []
     for frequency in np.linspace(0.9, 1.1, 11) * f0:
@@ -83,7 +89,7 @@ def projected(layout):
         true.append([posed.admittance(found), *(posed.boresight @ found)])
         told.append(projection.quantities(float(frequency)))
     one, other = np.array(told), np.array(true)
-    match = field._reflection(one[:, 0], impedance) - field._reflection(other[:, 0], impedance)
+    match = reflection(one[:, 0], impedance) - reflection(other[:, 0], impedance)
     missed = np.linalg.norm(one[:, 1:] - other[:, 1:], axis=1)
     return np.abs(match).max(), (missed / np.linalg.norm(other[:, 1:], axis=1)).max()
 
@@ -97,10 +103,10 @@ def main():
         frequencies, spent = frequency_grid(layout.frequency), []
         for _ in range(BEST_OF):
             begin = time.process_time()
-            quick = field.respond(layout, frequencies, SILENT, Level.QUICK)
+            quick = respond(layout, frequencies, SILENT, Level.QUICK)
             spent.append(time.process_time() - begin)
-        fine = field.respond(layout, frequencies, SILENT, Level.FINE)
-        solver = field._solver(layout, Level.QUICK, 1.1 * layout.frequency)
+        fine = respond(layout, frequencies, SILENT, Level.FINE)
+        solver = build_solver(layout, Level.QUICK, kernels_of(layout, 1.1 * layout.frequency))
         count = solver.system.moments.basis.count
         apart = np.abs(quick.sweep.s11 - fine.sweep.s11).max()
         least, shift = shifted(quick.sweep, fine.sweep)

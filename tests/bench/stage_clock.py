@@ -14,12 +14,12 @@ STAGES = ("mesh", "near terms", "tables", "fill", "solve", "sweep", "far field")
 REST = "rest"
 _PARTS = {
     "mesh": (
-        "core.fullwave.respond.build_mesh",
-        "core.fullwave.respond.build_board_mesh",
+        "core.fullwave.solvers.build_mesh",
+        "core.fullwave.solvers.build_board_mesh",
     ),
     "near terms": (
-        "core.fullwave.respond.build_system",
-        "core.fullwave.respond.build_layered_system",
+        "core.fullwave.solvers.build_system",
+        "core.fullwave.solvers.build_layered_system",
     ),
     "tables": (
         "core.fullwave.layered_system.plan_tables",
@@ -34,12 +34,15 @@ _PARTS = {
         "core.fullwave.layered_system.layered_matrix",
     ),
     "solve": ("core.fullwave.system.currents", "core.fullwave.layered_system.currents"),
-    "sweep": ("core.fullwave.respond.adaptive_sweep", "core.fullwave.respond._modes"),
+    "sweep": ("core.fullwave.respond.adaptive_sweep", "core.fullwave.respond.natural_modes"),
     "far field": (
-        "core.fullwave.respond.radiated_field",
-        "core.fullwave.respond.space_field",
-        "core.fullwave.respond.power_into_waves",
-        "core.fullwave.respond.sphere_power",
+        "core.fullwave.solvers.radiated_field",
+        "core.fullwave.solvers.space_field",
+        "core.fullwave.solvers.power_into_waves",
+        "core.fullwave.solvers.sphere_power",
+        "core.fullwave.solvers.full_sphere",
+        "core.fullwave.solvers.half_sphere",
+        "core.fullwave.respond.pattern_cut",
         "core.fullwave.system.radiated_field",
         "core.fullwave.layered_system.boresight_field",
         "core.fullwave.layered_system.power_into_space",

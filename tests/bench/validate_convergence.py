@@ -22,7 +22,8 @@ from mesh_variants import REFERENCE, meshes
 
 from core.fullwave.layered_mesh import build_board_mesh
 from core.fullwave.mesh import Level, build_mesh
-from core.fullwave.respond import MOST_AIR_LIKE, respond
+from core.fullwave.respond import respond
+from core.fullwave.solvers import MOST_AIR_LIKE
 from core.layout.build import build_layout
 from core.lines.stack import series_permittivity
 from core.progress import SILENT

@@ -19,7 +19,8 @@ from lots import LOTS, drawn
 from test_power_by_lot import BAND, board_balance, free_space_balance
 
 from core.fullwave.mesh import Level
-from core.fullwave.respond import MOST_AIR_LIKE, respond
+from core.fullwave.respond import respond
+from core.fullwave.solvers import MOST_AIR_LIKE
 from core.lines.stack import series_permittivity, total_thickness
 from core.progress import SILENT
 

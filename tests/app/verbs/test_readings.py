@@ -9,6 +9,8 @@ from sample_designs import tape_design
 
 from app.command import main
 from core.design.edit import with_texts
+from core.engines import respond_on_mesh
+from core.errors import ModelError
 from core.storage.project import write_project
 
 ARRAYS = (
@@ -198,3 +200,157 @@ def test_a_strip_that_no_formula_covers_is_bad_input(readings, capsys):
     write_project(Path("b.kerf"), with_texts(tape_design(), changes), replace=True)
     assert main(["readings", "b.kerf"]) == 2
     assert "the formulas hold for 0.01 to 1000" in capsys.readouterr().err
+
+
+SMALL = ("stock.spacer=air:6mm", "stock.ground=disc:80mm", *PROBE)
+"""A probe-fed element over a plate little larger than it, quickly solved."""
+
+
+@pytest.fixture
+def solved(readings, capsys, tmp_path):
+    """Readings of the small design by the field solver, on the coarse mesh, as JSON or text."""
+
+    def call(*options, text=False):
+        pairs = [change.split("=", 1) for change in SMALL]
+        write_project(Path("a.kerf"), with_texts(tape_design(), pairs), replace=True)
+        form = [] if text else ["--json"]
+        words = ["readings", "a.kerf", "--engine", "field", "--points", "21", *options, *form]
+        assert main(words) == 0
+        out, _ = capsys.readouterr()
+        return out if text else json.loads(out)
+
+    return call
+
+
+BY_DIRECTION = ("beam_tilt_deg", "beam_azimuth_deg", "beam_gain_dbi")
+
+
+def test_live_readings_tell_nothing_by_direction(readings):
+    told = readings()
+    for key in (*BY_DIRECTION, "worst_axial_ratio_30deg_db", "sense_reach_deg"):
+        assert told[key] is None
+    assert (told["plus_minus"], told["mesh"]) == (None, None)
+    assert "Strongest" not in readings(text=True)
+
+
+def test_solved_readings_by_direction_agree_with_each_other(solved):
+    told = solved("--mesh", "coarse", "--cut", "0", "--cut", "37", "--sphere")
+    at_brief = told["gain_dbi"][10]
+    assert told["beam_gain_dbi"] >= at_brief
+    assert 0.0 < told["beam_tilt_deg"] < 45.0
+    assert told["worst_axial_ratio_30deg_db"] is None  # a linear antenna
+    first, second = told["cuts"]
+    assert (first["phi_deg"], second["phi_deg"]) == pytest.approx((0.0, 37.0))
+    for cut in (first, second):
+        middle = cut["theta_deg"].index(pytest.approx(0.0, abs=1e-9))
+        assert cut["gain_dbi"][middle] == pytest.approx(at_brief, abs=1e-6)
+    sphere = told["sphere"]
+    total = np.array(sphere["total_gain_dbi"])
+    assert total.shape == (len(sphere["theta_deg"]), len(sphere["phi_deg"]))
+    assert total.max() == pytest.approx(told["beam_gain_dbi"], abs=0.1)
+    # All the power that is not lost goes through the sphere: the mean gain is the efficiency.
+    rings = (10.0 ** (total / 10.0)).mean(axis=1)
+    theta = np.radians(sphere["theta_deg"])
+    mean = np.trapezoid(rings * np.sin(theta), theta) / 2.0
+    assert mean == pytest.approx(told["efficiency"][10], abs=0.01)
+    behind = 10.0 ** ((total[0, 0] - total[-1, 0]) / 10.0)
+    assert told["front_to_back_db"] == pytest.approx(10.0 * np.log10(behind), abs=1e-6)
+
+
+def test_the_mesh_is_reported(solved):
+    mesh = solved("--mesh", "coarse")["mesh"]
+    assert mesh["level"] == "coarse"
+    assert mesh["triangles"] == sum(sheet["triangles"] for sheet in mesh["sheets"])
+    assert {sheet["name"] for sheet in mesh["sheets"]} == {"top copper", "probe", "ground plate"}
+    text = solved("--mesh", "coarse", "--mesh-report", text=True)
+    assert f"The coarse mesh: {mesh['triangles']} triangles, {mesh['unknowns']} unknowns" in text
+    assert "The coarse mesh" not in solved("--mesh", "coarse", text=True)
+
+
+def test_plus_and_minus_come_from_the_next_coarser_mesh(solved):
+    coarse, normal = solved("--mesh", "coarse"), solved()
+    assert coarse["plus_minus"] is None
+    told = normal["plus_minus"]
+    assert told["against_mesh"] == "coarse"
+    apart = abs(normal["gain_dbi"][10] - coarse["gain_dbi"][10])
+    assert apart <= told["gain_db"] < apart + 0.2
+    assert all(by is None or by > 0.0 for by in told["modes_hz"])
+    assert solved("--single")["plus_minus"] is None
+
+
+def test_without_a_coarser_solution_the_readings_stand_and_say_so(solved, monkeypatch):
+    def only_normal(layout, frequencies, progress, level, tail=None):
+        if level != "normal":
+            raise ModelError("too coarse")
+        return respond_on_mesh(layout, frequencies, progress, "coarse", tail)
+
+    monkeypatch.setattr("app.verbs.solved.respond_on_mesh", only_normal)
+    told = solved(text=True)
+    assert "± unknown: there is no solution on the coarse mesh." in told
+    assert told.count("±") == 1
+
+
+def test_a_coax_tail_is_solved_beside(solved):
+    told = solved("--mesh", "coarse", "--tail-length", "40mm", "--tail-drop", "15mm")
+    tail = told["tail"]
+    assert (tail["length_m"], tail["diameter_m"], tail["drop_m"]) == (0.04, 0.003, 0.015)
+    first, second = (complex(*one["s11"][10]) for one in (told, tail["response"]))
+    assert tail["change"]["s11"] == pytest.approx(abs(second - first), abs=1e-3)
+    assert tail["response"]["mesh"]["unknowns"] > told["mesh"]["unknowns"]
+    text = solved("--mesh", "coarse", "--tail", text=True)
+    assert "With a coax tail 64.6 mm long and 3 mm thick, straight back:\n  VSWR " in text
+
+
+@pytest.mark.parametrize(
+    ("words", "said"),
+    [
+        (["--tail"], "--tail: the live model cannot tell; accepted: with --engine field"),
+        (["--cut", "0"], "--cut: the live model cannot tell; accepted: with --engine field"),
+        (["--mesh", "fine"], "--mesh: the live model cannot tell; accepted: with --engine field"),
+        (["--engine", "field", "--mesh", "finer"], "'finer' is no mesh (did you mean fine?); acc"),
+        (["--engine", "field", "--sphere"], "--sphere: too much to read; accepted: with --json"),
+        (
+            ["--engine", "field", "--tail-azimuth", "90"],
+            "--tail-azimuth: the cable has no bend; accepted: with --tail-drop",
+        ),
+        (
+            ["--engine", "field", "--tail-length", "9m"],
+            "coax tail: its length of 9 m is out of range; accepted: 3 mm to 517 mm",
+        ),
+    ],
+)
+def test_what_cannot_be_asked_is_told_in_one_line(readings, capsys, words, said):
+    readings()
+    assert main(["readings", "a.kerf", *words]) == 2
+    out, err = capsys.readouterr()
+    assert (out, err.count("\n")) == ("", 1)
+    assert said in err
+
+
+def test_a_tail_over_a_board_is_refused_in_one_line(readings, capsys):
+    readings()
+    pairs = [("stock.spacer", "FR-4:1.6mm"), *(one.split("=") for one in PROBE)]
+    write_project(Path("b.kerf"), with_texts(tape_design(), pairs), replace=True)
+    assert main(["readings", "b.kerf", "--engine", "field", "--tail"]) == 2
+    out, err = capsys.readouterr()
+    assert (out, err.count("\n")) == ("", 1)
+    assert "coax tail: a board's ground plane is solved as endless" in err
+
+
+def test_a_sweep_that_does_not_settle_is_told_and_nothing_is_made_up(readings, capsys):
+    readings()
+    words = ["--engine", "field", "--mesh", "coarse", "--from", "300MHz", "--to", "12GHz"]
+    pairs = [change.split("=", 1) for change in SMALL]
+    write_project(Path("b.kerf"), with_texts(tape_design(), pairs), replace=True)
+    assert main(["readings", "b.kerf", *words]) == 1
+    out, err = capsys.readouterr()
+    assert out == ""
+    last = err.splitlines()[-1]
+    assert "the sweep has not settled after 15 frequencies" in last
+    assert "accepted: a narrower band" in last
+
+
+def test_a_mesh_too_coarse_for_the_band_lowers_the_trust(solved):
+    told = solved("--mesh", "coarse", "--to", "3.6GHz", "--from", "2GHz")
+    assert told["trust"]["bands"]["level"] == "rough"
+    assert "is the most that can be trusted" in told["trust"]["bands"]["reason"]

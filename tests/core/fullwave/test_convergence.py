@@ -9,7 +9,7 @@ from core.fullwave.board_kernels import BoardKernels
 from core.fullwave.layered_mesh import build_board_mesh
 from core.fullwave.layered_system import build_layered_system, solve_layered
 from core.fullwave.mesh import Level, build_mesh
-from core.fullwave.respond import MOST_AIR_LIKE
+from core.fullwave.solvers import MOST_AIR_LIKE
 from core.fullwave.system import build_system, solve
 from core.layout.build import build_layout
 from core.lines.stack import series_permittivity

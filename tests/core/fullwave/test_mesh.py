@@ -11,12 +11,16 @@ from scipy.sparse.csgraph import connected_components
 
 from core.design.defaults import default_design
 from core.design.polarisation import Polarisation
+from core.engines import LEVELS
 from core.errors import ModelError
 from core.fullwave.basis import build_basis
 from core.fullwave.mesh import Level, build_mesh
-from core.fullwave.mesh_model import Sheet, mesh_quality
+from core.fullwave.mesh_model import Sheet
+from core.fullwave.mesh_report import coarse_doubts, mesh_report
 from core.layout.build import build_layout
 from core.layout.model import Role
+from core.lines.stack import Layer
+from core.response.model import Reading, TrustLevel
 from core.shapes.outline import polygon
 
 DESIGNS = {
@@ -63,13 +67,18 @@ def test_sheets_have_the_area_of_the_copper(name, level):
     assert areas(mesh)[mesh.sheet == Sheet.GROUND].sum() == pytest.approx(plate.area, abs=pin)
 
 
+def unknowns(mesh):
+    return build_basis(mesh.vertices, mesh.triangles, mesh.sheet).count
+
+
+def test_the_levels_are_those_that_the_program_offers():
+    assert tuple(level.value for level in Level) == LEVELS
+
+
 def test_levels_have_the_sizes_they_promise():
     counts = {
         level: np.mean(
-            [
-                mesh_quality(build_mesh(LAYOUTS[name], level)).unknowns
-                for name in ("thin", "thick", "small")
-            ]
+            [unknowns(build_mesh(LAYOUTS[name], level)) for name in ("thin", "thick", "small")]
         )
         for level in Level
     }
@@ -113,14 +122,53 @@ def test_port_is_the_clearance_in_the_ground():
     assert mesh.port.inner == pytest.approx(0.635e-3)
 
 
-def test_quality_counts_what_is_there():
+def report(mesh, frequency=2.45e9):
+    layers = LAYOUTS["default"].stack
+    corners = mesh.vertices[mesh.triangles]
+    return mesh_report(corners, mesh.sheet, 1, Level.COARSE, (frequency, layers))
+
+
+def test_the_report_counts_what_is_there_sheet_by_sheet():
     mesh = build_mesh(LAYOUTS["default"], Level.COARSE)
-    quality = mesh_quality(mesh)
-    assert quality.triangles == len(mesh.triangles)
-    assert quality.unknowns == build_basis(mesh.vertices, mesh.triangles, mesh.sheet).count
-    assert 0.0 < quality.shortest < 1.0e-3
-    assert 10e-3 < quality.longest < 40e-3
-    assert 0.0 < quality.smallest_angle < np.pi / 3
+    sheets = {sheet.name: sheet for sheet in report(mesh).sheets}
+    assert sheets.keys() == {"top copper", "probe", "ground plate"}
+    assert sum(sheet.triangles for sheet in sheets.values()) == len(mesh.triangles)
+    assert sheets["probe"].triangles == np.sum(mesh.sheet == Sheet.PROBE)
+    assert all(0.0 < sheet.smallest_angle < np.pi / 3 for sheet in sheets.values())
+
+
+def test_the_report_measures_a_triangle_that_is_known():
+    """Sides 3, 4 and 5 cm; the smallest angle is atan(3/4)."""
+    corners = np.array([[[0.0, 0, 0], [0.04, 0, 0], [0.04, 0.03, 0]]])
+    layers = (Layer(5e-3, 1.44, 0.0),)
+    found = mesh_report(corners, np.array([int(Sheet.TOP)]), 1, Level.COARSE, (1e9, layers))
+    (sheet,) = found.sheets
+    assert sheet.smallest_angle == pytest.approx(np.arctan(0.75))
+    assert sheet.longest_edge == pytest.approx(0.05)
+    assert sheet.longest_in_wavelengths == pytest.approx(0.05 / (0.299792458 / 1.2))
+
+
+@pytest.mark.parametrize(
+    ("band_top", "bands", "match"),
+    [
+        (2.7e9, None, None),
+        (4.0e9, TrustLevel.ROUGH, None),
+        (8.0e9, TrustLevel.UNKNOWN, None),
+    ],
+)
+def test_a_mesh_too_coarse_for_the_band_is_said(band_top, bands, match):
+    mesh = build_mesh(LAYOUTS["thin"], Level.COARSE)
+    doubts = coarse_doubts(report(mesh, band_top), band_top, 2.45e9)
+    levels = {reading: doubt.level for reading, doubt in doubts.items()}
+    assert levels.get(Reading.BANDS) == bands
+    assert levels.get(Reading.MATCH) == match
+
+
+def test_a_mesh_too_coarse_for_the_frequency_spoils_every_reading():
+    mesh = build_mesh(LAYOUTS["thin"], Level.COARSE)
+    doubts = coarse_doubts(report(mesh, 8e9), 8e9, 7e9)
+    assert {doubts[reading].level for reading in Reading} == {TrustLevel.UNKNOWN}
+    assert "coarse mesh has edges of" in doubts[Reading.MATCH].reason
 
 
 def test_edge_row_is_a_tenth_of_the_spacer():

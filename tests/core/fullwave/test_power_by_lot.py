@@ -20,7 +20,8 @@ from core.fullwave.layered_system import board_currents, build_layered_system, s
 from core.fullwave.mesh import Level, build_mesh
 from core.fullwave.moments import currents, impedance_matrix
 from core.fullwave.quadrature import triangle_rule
-from core.fullwave.respond import MOST_AIR_LIKE, respond
+from core.fullwave.respond import respond
+from core.fullwave.solvers import MOST_AIR_LIKE
 from core.fullwave.system import build_system, radiated_field, sheet_impedance, solve
 from core.layout.build import build_layout
 from core.lines.stack import Layer, series_permittivity, total_thickness

@@ -90,7 +90,7 @@ def test_air_has_no_images():
     for layers in ((), (Layer(6e-3, 1.0),)):
         images = spacer_images(layers)
         assert len(images.weights) == 0
-        np.testing.assert_array_equal(images.direct, np.ones((3, 3)))
+        np.testing.assert_array_equal(images.direct, np.ones((4, 4)))
         assert upright_arm(layers) == 0.0
 
 

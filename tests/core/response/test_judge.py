@@ -1,9 +1,11 @@
 """Verdicts against a brief."""
 
 import dataclasses
+import pickle
 
 import numpy as np
 import pytest
+from far_fields import crossed_dipoles, sphere_of, turned
 
 from core.design.polarisation import Polarisation
 from core.response.judge import State, judge
@@ -127,6 +129,45 @@ def test_a_missing_band_is_said():
     assert "nowhere" in verdict(response_with(vswr=3.0), Reading.BANDS).sentence
 
 
+def test_where_no_mode_was_found_no_frequency_is_named():
+    found = verdict(dataclasses.replace(response_with(), modes=()), Reading.RESONANCE)
+    said = "No resonance of the element stands out near the brief's frequency."
+    assert (found.state, found.sentence) == (State.NOTED, said)
+
+
 def test_front_to_back_is_told_where_it_is_known():
     response = dataclasses.replace(response_with(), front_to_back=100.0)
     assert "20.0 dB less behind" in verdict(response, Reading.PATTERN).sentence
+
+
+def test_without_a_sphere_nothing_is_said_by_direction():
+    assert "Strongest" not in verdict(response_with(), Reading.PATTERN).sentence
+
+
+@pytest.mark.parametrize(
+    ("tilt", "azimuth", "said"),
+    [
+        (0.0, 0.0, "Strongest straight ahead; axial ratio up to 1.2 dB within 30°."),
+        (12.0, 216.0, "Strongest 12° down and left of straight ahead (216° from x); axial "),
+        (12.0, 350.0, "Strongest 12° right of straight ahead (350° from x); axial ratio up to "),
+        (75.0, 90.0, "Strongest 75° up of straight ahead (90° from x); of the other sense "),
+        (150.0, 90.0, "Strongest behind the plate; of the other sense somewhere within 30°."),
+    ],
+)
+def test_the_beam_is_told_as_it_is_seen_from_the_front(tilt, azimuth, said):
+    sphere = sphere_of(crossed_dipoles(turned(*np.radians([tilt, azimuth]))))
+    found = dataclasses.replace(response_with(), sphere=sphere)
+    assert said in verdict(found, Reading.PATTERN).sentence
+
+
+def test_a_linear_antenna_is_told_where_its_beam_is_and_no_axial_ratio():
+    found = dataclasses.replace(response_with(), sphere=sphere_of(crossed_dipoles()))
+    told = verdict(found, Reading.PATTERN, polarisation=Polarisation.LINEAR).sentence
+    assert told.endswith("Strongest straight ahead.")
+
+
+def test_a_response_goes_to_another_process_and_back_whole():
+    one = dataclasses.replace(response_with(), sphere=sphere_of(crossed_dipoles()))
+    other = pickle.loads(pickle.dumps(one))
+    np.testing.assert_array_equal(other.sphere.e_phi, one.sphere.e_phi)
+    assert judge(other, Polarisation.RHCP, 2.0, 3.0) == judge(one, Polarisation.RHCP, 2.0, 3.0)

@@ -12,7 +12,8 @@ from core.design.polarisation import Polarisation
 from core.design.stock import DiscGround, Stock
 from core.errors import Cancelled, ModelError
 from core.fullwave.mesh import Level
-from core.fullwave.respond import Solving, respond
+from core.fullwave.respond import respond
+from core.fullwave.solving import Solving
 from core.layout.build import build_layout
 from core.live.respond import sample
 from core.progress import SILENT
@@ -96,6 +97,21 @@ def test_where_nothing_can_be_solved_that_is_told_and_nothing_changes():
     assert (settling.met, settling.solves, settling.design) == (False, 0, design)
     assert settling.reason.endswith("field solver: not this stack.")
     assert np.isinf(settling.vswr)
+
+
+@pytest.mark.parametrize(
+    ("feed", "plate"), [("probe", 0.03), ("dual-edge", 0.03), ("dual-edge", 0.05)]
+)
+def test_what_keeps_every_design_from_being_made_is_told(feed, plate):
+    """An element for 2.4 GHz is about 50 mm wide, and the ground plate no wider."""
+    design = seed(feed=feed)
+    design = replace(design, stock=replace(design.stock, ground=DiscGround(plate)))
+    settling = settle(design, spot=live_spot())
+    assert (settling.met, settling.solves) == (False, 0)
+    start, reason = settling.reason.split(". ", 1)
+    assert start == "No design was found that can be made"
+    assert "ground" in reason
+    assert reason.endswith(".")
 
 
 def test_a_shape_that_cannot_be_meshed_is_passed_over():
