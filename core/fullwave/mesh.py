@@ -43,7 +43,7 @@ class Level(Enum):
 FINENESS: Final = {
     Level.QUICK: Fineness(4.0, 4.0, 4.7, 2.0, 1.2, 4, 1 / 10, False, 0.1),
     Level.COARSE: Fineness(4.0, 3.0, 5.5, 2.0, 1.0, 4, 1 / 10, False, 0.1),
-    Level.NORMAL: Fineness(5.5, 2.0, 7.5, 1.3, 0.8, 6, 1 / 20, True, 0.1),
+    Level.NORMAL: Fineness(5.5, 2.0, 7.5, 1.3, 0.8, 6, 1 / 20, True, 0.07),
     Level.FINE: Fineness(8.5, 1.5, 11.0, 0.9, 0.6, 6, 1 / 40, True, 0.05),
 }
 _ROUND = 0.5
