@@ -201,7 +201,8 @@ def _resonance(response: Response) -> Verdict:
     if not modes:
         sentence = "No resonance of the element stands out near the brief's frequency."
     trust = response.trust[Reading.RESONANCE]
-    if trust.level is TrustLevel.ROUGH:
+    # How far equations go by is worth a sentence; a solution's mesh stands beside all readings.
+    if trust.level is TrustLevel.ROUGH and response.mesh is None:
         sentence += f" {trust.reason[:1].upper()}{trust.reason[1:]}."
     return Verdict(Reading.RESONANCE, State.NOTED, sentence)
 

@@ -10,12 +10,14 @@ from dataclasses import replace
 from pathlib import Path
 
 import pytest
+from board_shapes import board_dual_edge
 
 from app.jobs.solver_process import SolverProcess
 from core.design import edit
 from core.design.defaults import default_design
 from core.errors import Cancelled, ModelError
 from core.layout.build import build_layout
+from core.layout.tail import coax_tail
 from core.response.bands import frequency_grid
 
 SMALL = edit.with_texts(
@@ -88,6 +90,20 @@ def test_a_dropped_question_is_left_and_the_next_one_answered(solver):
     with pytest.raises(Cancelled):
         solver.solve(LAYOUT, FREQUENCIES, listener, "normal")
     assert len(listener.steps) == 1
+    assert answered(solver)
+
+
+def test_a_cable_goes_through_the_pipe_and_can_be_dropped(solver):
+    tail = coax_tail(LAYOUT)
+    with pytest.raises(Cancelled):
+        solver.solve(LAYOUT, FREQUENCIES, Listener(cancel), "coarse", tail)
+    bare, hung = (
+        solver.solve(LAYOUT, FREQUENCIES, Listener(), "quick", one) for one in (None, tail)
+    )
+    sheets = [[sheet.name for sheet in one.mesh.sheets] for one in (bare, hung)]
+    assert sheets[1] == [*sheets[0], "coax tail"]
+    with pytest.raises(ModelError, match="a board's ground plane is solved as endless"):
+        solver.solve(board_dual_edge(), FREQUENCIES, Listener(), "quick", tail)
     assert answered(solver)
 
 

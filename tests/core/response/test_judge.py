@@ -9,7 +9,16 @@ from far_fields import crossed_dipoles, sphere_of, turned
 
 from core.design.polarisation import Polarisation
 from core.response.judge import State, judge
-from core.response.model import Mode, PatternCut, Reading, Response, Samples, Trust, TrustLevel
+from core.response.model import (
+    MeshReport,
+    Mode,
+    PatternCut,
+    Reading,
+    Response,
+    Samples,
+    Trust,
+    TrustLevel,
+)
 
 FREQUENCIES = np.linspace(2.2e9, 2.7e9, 101)
 
@@ -127,6 +136,13 @@ def test_other_readings_are_noted_with_their_numbers(reading, text):
 
 def test_a_missing_band_is_said():
     assert "nowhere" in verdict(response_with(vswr=3.0), Reading.BANDS).sentence
+
+
+def test_how_rough_a_resonance_is_is_told_of_equations_alone():
+    rough = response_with(level=TrustLevel.ROUGH)
+    solved = dataclasses.replace(rough, mesh=MeshReport("coarse", 300, ()))
+    by_equations, by_solver = (verdict(one, Reading.RESONANCE).sentence for one in (rough, solved))
+    assert by_equations == f"{by_solver} The plate is small."
 
 
 def test_where_no_mode_was_found_no_frequency_is_named():
