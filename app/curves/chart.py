@@ -107,7 +107,7 @@ class Chart(QWidget):
             pen = QPen(theme.colour(colour), width)
             if state.is_estimate:
                 pen.setDashPattern(DASH)
-        pen.setJoinStyle(Qt.PenJoinStyle.RoundJoin)
+        pen.setJoinStyle(Qt.PenJoinStyle.BevelJoin)  # of points so close that none is seen
         return pen
 
     def _paint_doubt(self, painter: QPainter, shades: Theme, state: ChartState) -> None:

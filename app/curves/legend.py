@@ -16,7 +16,7 @@ if TYPE_CHECKING:
     from app.theme import Theme
 
 _NAMES = {"live": "live", "field": "field solver"}
-THIN, WHOLE = 1.3, 2.2  # widths of what equations say and of what is solved, pixels
+THIN, WHOLE = 1.0, 2.2  # widths of what equations say and of what is solved, pixels
 DASH = [5.0, 3.0]
 
 

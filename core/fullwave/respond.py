@@ -71,7 +71,7 @@ def respond(
     Returns
     -------
     Response
-        Without a far field over the sphere at the quick level, which has two cuts alone.
+        Without currents and far field over the sphere at the quick level: two cuts alone.
 
     Raises
     ------
@@ -107,7 +107,7 @@ def respond(
         trust=_trust(level, sweep, doubts),
         sphere=sphere,
         mesh=report,
-        currents=solver.currents(),
+        currents=None if level is Level.QUICK else solver.currents(),
     )
 
 
