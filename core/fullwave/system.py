@@ -177,17 +177,18 @@ def solution(system: System, posed: Equations, solved: Complexes) -> Solution:
     -------
     Solution
     """
+    frequency = posed.frequency  # alone: what is kept of this must not keep the matrix
     admittance = posed.admittance(solved)
     accepted = admittance.real / 2.0
     field = posed.boresight @ solved
     field *= np.sqrt(4.0 * pi / (2.0 * FREE_SPACE_IMPEDANCE * accepted))
     return Solution(
-        frequency=posed.frequency,
+        frequency=frequency,
         currents=solved,
         admittance=admittance,
         e_x=complex(field[0]),
         e_y=complex(field[1]),
-        losing=lambda: _heat(system, solved, posed.frequency, accepted) / accepted,
+        losing=lambda: _heat(system, solved, frequency, accepted) / accepted,
     )
 
 
