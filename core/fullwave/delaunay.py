@@ -124,7 +124,7 @@ class _Net:
 
     def _facing(self, a: int) -> list[tuple[int, int]]:
         """Edges opposite a point in the triangles round it, counter-clockwise."""
-        first = v = self._spokes[a]
+        first = v = self._spokes.get(a, -1)  # none for a point that falls onto another
         edges = []
         while (w := self._apex.get((a, v))) is not None:
             edges.append((v, w))

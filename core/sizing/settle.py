@@ -38,6 +38,8 @@ if TYPE_CHECKING:
 _AIM = 0.3  # of the goals: where the coarse search is done
 _AIM_AT_LAST = 0.5  # and the search at the finest level
 _WORTH = 0.95  # of the goals: coarse results that are worth a finer look
+_COMFORTABLE = 0.85  # of the goals: a design nearer to them than this is not looked past
+_PATIENT = 120  # solutions up to which a better start than one that barely meets is looked for
 _NEAR = 2.0  # in units of the goals: a design given as near as this is not sized first
 _FAR = 4.0  # in units of the goals: a start as far off as this is brought into tune first
 _MOST_COARSE, _MOST_FINE = 50, 6  # solutions from one start
@@ -259,7 +261,8 @@ def _best_found(starts: _Starts, level: Level) -> _Found | None:
         found = start.searched(level)
         if best is None or _rank(found, solver, level) < _rank(best, solver, level):
             best = found
-        if _is_met(best, solver, level) or solver.solves >= _MOST:
+        margin = _COMFORTABLE if solver.solves < _PATIENT else 1.0
+        if _is_met(best, solver, level, margin) or solver.solves >= _MOST:
             break
     if best is not None and best.level is not level:
         missing = solver.missing(best.design, level)
@@ -276,8 +279,8 @@ def _rank(found: _Found, solver: SolvedDesigns, level: Level) -> tuple[bool, flo
     return found.level is not level, solver.goal.worst(found.missing)
 
 
-def _is_met(found: _Found, solver: SolvedDesigns, level: Level) -> bool:
-    return found.level is level and solver.goal.worst(found.missing) <= 1.0
+def _is_met(found: _Found, solver: SolvedDesigns, level: Level, margin: float = 1.0) -> bool:
+    return found.level is level and solver.goal.worst(found.missing) <= margin
 
 
 def _live_missing(free: Freedoms, turns: Floats, goal: Goal) -> Floats:

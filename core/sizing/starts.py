@@ -24,7 +24,7 @@ class _Shape:
     lead: float = 0.0
 
 
-_SHAPES = (
+_SHAPES: tuple[_Shape, ...] = (
     _Shape(0.48, 0.48, 0.4, 0.4),
     _Shape(0.25, 0.48, 0.5),
     _Shape(0.48, 0.25, 0.02, 0.25),
@@ -39,7 +39,8 @@ def family_starts(design: Design, *, keep_element: bool = False) -> tuple[Design
     Parameters
     ----------
     design : Design
-        Its brief, stock, process, probe and corners are kept.
+        Its brief, stock, process, probe and corners are kept; if it has a lead-in, shapes
+        with one come first.
     keep_element : bool
         Whether its sides are kept too; otherwise they are those of a resonant square.
 
@@ -54,7 +55,10 @@ def family_starts(design: Design, *, keep_element: bool = False) -> tuple[Design
     if not keep_element:
         square = on_grid(starting_values(design.brief, design.stock).square)
         design = replace(design, element=Element(square, square))
-    return tuple(_shaped(design, feed, shape) for shape in _SHAPES)
+    shapes = _SHAPES
+    if feed.lead_in.length > 0.0:
+        shapes = tuple(sorted(_SHAPES, key=lambda shape: shape.lead == 0.0))
+    return tuple(_shaped(design, feed, shape) for shape in shapes)
 
 
 def _shaped(design: Design, feed: DualEdge, shape: _Shape) -> Design:

@@ -178,3 +178,16 @@ def test_rays_stop_at_the_nearest_side():
     way = np.array([[1.0, 0.0], [0.0, -1.0], [0.6, 0.8]])
     np.testing.assert_allclose(first_hits(start, way, sides), [1.0, 1.0, 0.625])
     assert first_hits(start[:1], -way[:1], sides)[0] == np.inf
+
+
+def test_a_point_that_falls_onto_another_is_passed_over() -> None:
+    corners = np.array([[0.0, 0.0], [4.0, 0.0], [4.0, 3.0], [0.0, 3.0], [1.0, 1.0], [3.0, 2.0]])
+    points = np.vstack([corners, corners[4] + 1e-17])
+    must = np.array([[0, 1], [1, 2], [2, 3], [3, 0]])
+    for should in ([[4, 5], [6, 5]], [[6, 5], [4, 5]]):
+        triangles, complete = constrained_delaunay(points, must, np.array(should))
+        assert complete
+        u, v, w = (points[triangles[:, i]] for i in range(3))
+        sides, others = v - u, w - u
+        doubled = sides[:, 0] * others[:, 1] - sides[:, 1] * others[:, 0]
+        assert doubled.sum() == pytest.approx(24.0)
