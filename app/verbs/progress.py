@@ -19,13 +19,16 @@ class _OnStandardError:
     """Tells each solution; over itself on a terminal, a line each elsewhere."""
 
     def __init__(self, words: str) -> None:
-        self._words = words
+        self._words, self._told = words, ""
         self._end = "\r" if sys.stderr.isatty() else "\n"
 
     def step(self, done: int, total: int) -> None:
-        """Tell how far the work is."""
-        sys.stderr.write(self._words.format(done=done, total=total) + self._end)
-        sys.stderr.flush()
+        """Tell how far the work is, once."""
+        words = self._words.format(done=done, total=total)
+        if words != self._told:
+            sys.stderr.write(words + self._end)
+            sys.stderr.flush()
+        self._told = words
 
 
 def told_on_stderr(engine: str, words: str = _SOLVED) -> Progress:

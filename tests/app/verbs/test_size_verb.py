@@ -136,6 +136,7 @@ def settled(monkeypatch):
     def settle(design, *, keep_element, progress):
         asked.append((design, keep_element))
         progress.step(7, 200)
+        progress.step(7, 200)  # told once
         return Settling(design, True, "Solved.", 1.2, 0.4, 9, 2, Level.FINE)
 
     monkeypatch.setattr("core.sizing.settle.settle", settle)
