@@ -22,7 +22,7 @@ _PARTS = {
         "core.fullwave.solvers.build_layered_system",
     ),
     "tables": (
-        "core.fullwave.layered_system.plan_tables",
+        "core.fullwave.board_kernels.plan_tables",
         "core.fullwave.layered_system.build_probe_moments",
         "core.fullwave.layered_system.add_probe",
         "core.fullwave.layered_system.port_voltages",
@@ -33,7 +33,11 @@ _PARTS = {
         "core.fullwave.system.add_upright_coupling",
         "core.fullwave.layered_system.layered_matrix",
     ),
-    "solve": ("core.fullwave.system.currents", "core.fullwave.layered_system.currents"),
+    "solve": (
+        "core.fullwave.system.currents",
+        "core.fullwave.layered_system.currents",
+        "core.fullwave.equations.currents",
+    ),
     "sweep": ("core.fullwave.respond.adaptive_sweep", "core.fullwave.respond.natural_modes"),
     "far field": (
         "core.fullwave.solvers.radiated_field",
@@ -44,9 +48,10 @@ _PARTS = {
         "core.fullwave.solvers.half_sphere",
         "core.fullwave.respond.pattern_cut",
         "core.fullwave.system.radiated_field",
-        "core.fullwave.layered_system.boresight_field",
+        "core.fullwave.layered_system.boresight_of_moments",
         "core.fullwave.layered_system.power_into_space",
-        "core.fullwave.layered_system.power_into_waves",
+        "core.fullwave.board_kernels.power_into_space",
+        "core.fullwave.board_kernels.power_into_waves",
     ),
 }
 
