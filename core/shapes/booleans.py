@@ -4,8 +4,9 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from math import atan2, copysign, hypot, pi, tan
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
+import numpy as np
 import shapely
 from shapely.geometry.polygon import orient
 
@@ -16,9 +17,12 @@ from core.units import Quantity, format_quantity
 if TYPE_CHECKING:
     from collections.abc import Sequence
 
+    from numpy.typing import NDArray
+
 _COLLINEAR = 1e-6  # rad
 _FINE = SAGITTA / 50.0  # facets for the union alone: ends of arcs come out this true
 _NEAR = 4.0  # times the growth: a corner that fills up lies nearer than this to an open gap
+_GRID_DECIMALS = 10  # of a metre
 _ON_CIRCLE = 4.0 * _FINE  # equal-area points lie within one sagitta of their circle
 
 
@@ -28,9 +32,10 @@ class _Circle:
     y: float
     radius: float
 
-    def carries(self, point: tuple[float, float]) -> bool:
-        """Tell whether a point lies on the circle, to the accuracy of the facets."""
-        return abs(hypot(point[0] - self.x, point[1] - self.y) - self.radius) < _ON_CIRCLE
+    def carries(self, points: NDArray[np.float64]) -> NDArray[np.bool_]:
+        """Tell which points, shape (n, 2), lie on the circle, to the accuracy of the facets."""
+        away = np.hypot(points[:, 0] - self.x, points[:, 1] - self.y)
+        return np.asarray(np.abs(away - self.radius) < _ON_CIRCLE)
 
 
 def union(regions: Sequence[Region]) -> tuple[Region, ...]:
@@ -50,16 +55,25 @@ def union(regions: Sequence[Region]) -> tuple[Region, ...]:
     LayoutError
         If no valid area is left.
     """
-    try:
-        merged = shapely.union_all([polygon(region, _FINE) for region in regions], grid_size=1e-10)
-    except shapely.GEOSException as error:  # an outline that crosses itself
-        raise LayoutError("the pieces do not add up to a valid outline") from error
+    pieces = _on_grid(np.array([polygon(region, _FINE) for region in regions]))
+    refusal = "the pieces do not add up to a valid outline"
+    if not np.all(shapely.is_valid(pieces)):  # an outline that crosses itself
+        raise LayoutError(refusal)
+    merged = shapely.remove_repeated_points(_on_grid(shapely.union_all(pieces)))
     parts = [part for part in shapely.get_parts(merged) if isinstance(part, shapely.Polygon)]
     if not parts or not merged.is_valid:
-        raise LayoutError("the pieces do not add up to a valid outline")
+        raise LayoutError(refusal)
     circles = tuple({circle for region in regions for circle in _circles(region)})
     parts.sort(key=lambda part: -part.area)
     return tuple(_with_arcs(part, circles) for part in parts)
+
+
+def _on_grid(shapes: Any) -> Any:  # noqa: ANN401
+    """Shapes with their corners on a grid of 0.1 nm, so that those that are meant to meet do.
+
+    A union that looks for crossings on the grid gives the same in eight times the time.
+    """
+    return shapely.transform(shapes, lambda points: np.round(points, _GRID_DECIMALS))
 
 
 def grown(regions: Sequence[Region], by: float) -> tuple[Region, ...]:
@@ -130,15 +144,18 @@ def _with_arcs(part: shapely.Polygon, circles: tuple[_Circle, ...]) -> Region:
     """Region of a faceted polygon, runs of facets on known circles turned into arcs."""
     part = orient(part)
     return Region(
-        _outline_with_arcs(list(part.exterior.coords)[:-1], circles),
-        tuple(_outline_with_arcs(list(ring.coords)[:-1][::-1], circles) for ring in part.interiors),
+        _outline_with_arcs(shapely.get_coordinates(part.exterior)[:-1], circles),
+        tuple(
+            _outline_with_arcs(shapely.get_coordinates(ring)[:-1][::-1], circles)
+            for ring in part.interiors
+        ),
     )
 
 
-def _outline_with_arcs(points: list[tuple[float, ...]], circles: tuple[_Circle, ...]) -> Outline:
-    ring = [(point[0], point[1]) for point in points]
-    owners = [_owner(a, b, circles) for a, b in zip(ring, ring[1:] + ring[:1], strict=True)]
-    if owners[0] is not None and all(owner == owners[0] for owner in owners):
+def _outline_with_arcs(points: NDArray[np.float64], circles: tuple[_Circle, ...]) -> Outline:
+    """Outline through points, shape (n, 2), in their order."""
+    ring, owners = [(x, y) for x, y in points.tolist()], _owners(points, circles)
+    if owners[0] is not None and all(owner is owners[0] for owner in owners):
         circle = owners[0]
         return Outline(
             (
@@ -147,13 +164,13 @@ def _outline_with_arcs(points: list[tuple[float, ...]], circles: tuple[_Circle, 
             )
         )
     # Start where a run starts, so that no arc is cut at the seam.
-    first = next(i for i in range(len(ring)) if owners[i] is None or owners[i] != owners[i - 1])
+    first = next(i for i in range(len(ring)) if owners[i] is None or owners[i] is not owners[i - 1])
     ring, owners = ring[first:] + ring[:first], owners[first:] + owners[:first]
     vertices: list[Vertex] = []
     i = 0
     while i < len(ring):
         owner, j = owners[i], i + 1
-        while owner is not None and j < len(ring) and owners[j] == owner:
+        while owner is not None and j < len(ring) and owners[j] is owner:
             j += 1
         end = ring[j % len(ring)]
         bulge = 0.0 if owner is None else _bulge(ring[i], ring[i + 1], end, owner)
@@ -175,16 +192,16 @@ def _without_straight_corners(ring: list[Vertex]) -> tuple[Vertex, ...]:
     return tuple(kept)
 
 
-def _owner(
-    a: tuple[float, float], b: tuple[float, float], circles: tuple[_Circle, ...]
-) -> _Circle | None:
-    """Circle that the facet from a to b stands for, if any."""
-    for circle in circles:
-        if circle.carries(a) and circle.carries(b):
-            middle = ((a[0] + b[0]) / 2.0, (a[1] + b[1]) / 2.0)
-            if circle.carries(middle):
-                return circle
-    return None
+def _owners(points: NDArray[np.float64], circles: tuple[_Circle, ...]) -> list[_Circle | None]:
+    """Circle that the facet from each point to the next stands for, if any."""
+    after = np.roll(points, -1, axis=0)
+    owners: list[_Circle | None] = [None] * len(points)
+    for circle in reversed(circles):  # so that the first of several stands
+        on = circle.carries(points)
+        on &= np.roll(on, -1) & circle.carries((points + after) / 2.0)
+        for i in np.flatnonzero(on):
+            owners[i] = circle
+    return owners
 
 
 def _bulge(

@@ -8,13 +8,16 @@ counter-clockwise arc, 0 for a straight edge. Lengths are in metres.
 from __future__ import annotations
 
 from dataclasses import dataclass
-from math import acos, atan, ceil, cos, hypot, pi, sin, sqrt, tan
+from math import acos, atan, ceil, hypot, pi, sin, sqrt, tan
 from typing import TYPE_CHECKING
 
+import numpy as np
 import shapely
 
 if TYPE_CHECKING:
     from collections.abc import Iterable
+
+    from numpy.typing import NDArray
 
 SAGITTA = 5e-6
 """Largest distance between an arc and the facets that stand for it, m."""
@@ -179,13 +182,7 @@ def facets(outline: Outline, sagitta: float = SAGITTA) -> list[tuple[float, floa
     list of (float, float)
         m, not closed (the first point is not repeated).
     """
-    points: list[tuple[float, float]] = []
-    ring = outline.vertices
-    for start, end in zip(ring, (*ring[1:], ring[0]), strict=True):
-        points.append((start.x, start.y))
-        if start.bulge != 0.0:
-            points.extend(_arc_points(start, end, sagitta))
-    return points
+    return [(x, y) for x, y in _facets(outline, sagitta).tolist()]
 
 
 def polygon(region: Region, sagitta: float = SAGITTA) -> shapely.Polygon:
@@ -203,29 +200,37 @@ def polygon(region: Region, sagitta: float = SAGITTA) -> shapely.Polygon:
         Coordinates in m.
     """
     return shapely.Polygon(
-        facets(region.exterior, sagitta), [facets(hole, sagitta) for hole in region.holes]
+        _facets(region.exterior, sagitta), [_facets(hole, sagitta) for hole in region.holes]
     )
 
 
-def _arc_points(start: Vertex, end: Vertex, sagitta: float) -> list[tuple[float, float]]:
-    """Points between the ends of an arc, on the radius that keeps the sector's area."""
+def _facets(outline: Outline, sagitta: float) -> NDArray[np.float64]:
+    """Points of `facets` as an array, shape (n, 2)."""
+    ring = outline.vertices
+    parts: list[NDArray[np.float64]] = []
+    for start, end in zip(ring, (*ring[1:], ring[0]), strict=True):
+        parts.append(np.array([[start.x, start.y]]))
+        if start.bulge != 0.0:
+            parts.append(_arc_points(start, end, sagitta))
+    return np.concatenate(parts)
+
+
+def _arc_points(start: Vertex, end: Vertex, sagitta: float) -> NDArray[np.float64]:
+    """Points between the ends of an arc, on the radius that keeps the sector's area; (n, 2)."""
     x, y, radius = arc_centre(start, end)
     angle = 4.0 * atan(start.bulge)
     step = 2.0 * acos(max(0.0, 1.0 - min(sagitta, radius) / radius))
     count = max(2, ceil(abs(angle) / step))
     between = _equal_area_radius(radius, abs(angle), count)
     first = _direction(start.x - x, start.y - y)
-    result = []
-    for i in range(1, count):
-        turn = angle * i / count
-        c, s = cos(turn), sin(turn)
-        result.append(
-            (
-                x + between * (first[0] * c - first[1] * s),
-                y + between * (first[0] * s + first[1] * c),
-            )
+    turn = angle * np.arange(1, count) / count
+    c, s = np.cos(turn), np.sin(turn)
+    return np.column_stack(
+        (
+            x + between * (first[0] * c - first[1] * s),
+            y + between * (first[0] * s + first[1] * c),
         )
-    return result
+    )
 
 
 def _equal_area_radius(radius: float, angle: float, count: int) -> float:
