@@ -36,7 +36,6 @@ class PlanPainting:
     def __init__(self, widget: QWidget) -> None:
         self._widget = widget
         self._bench, self._plate = KeptPicture(), KeptPicture()
-        self._plate_seen: object = None
         self._solved = SolvedPainting(widget)
 
     def paint(self, painter: QPainter, sight: Sight, hand: Hand) -> None:
@@ -98,14 +97,7 @@ class PlanPainting:
             if layout is not None:
                 paint_plate(onto, layout, sight.camera, shades)
 
-        # A plate that changes at every paint, as in a drag, is not worth a picture.
-        if self._plate_seen == key:
-            painter.drawPixmap(0, 0, self._plate.shown(widget, key, paint))
-        else:
-            self._plate_seen = key
-            painter.save()
-            paint(painter)
-            painter.restore()
+        self._plate.paint(painter, widget, key, paint)
 
 
 def _paint_bench(painter: QPainter, widget: QWidget, camera: Camera, shades: Theme) -> None:
