@@ -182,7 +182,34 @@ def facets(outline: Outline, sagitta: float = SAGITTA) -> list[tuple[float, floa
     list of (float, float)
         m, not closed (the first point is not repeated).
     """
-    return [(x, y) for x, y in _facets(outline, sagitta).tolist()]
+    return [(x, y) for x, y in facet_points(outline, sagitta).tolist()]
+
+
+def facet_points(outline: Outline, sagitta: float = SAGITTA) -> NDArray[np.float64]:
+    """The points of `facets` as an array.
+
+    Parameters
+    ----------
+    outline : Outline
+    sagitta : float
+        Largest distance between arc and facets, m, > 0.
+
+    Returns
+    -------
+    (n, 2) ndarray of float
+        m, not closed.
+    """
+    ring = outline.vertices
+    corners = np.array([(corner.x, corner.y) for corner in ring])
+    parts, done = [], 0
+    for i, corner in enumerate(ring):
+        if corner.bulge != 0.0:
+            parts += [
+                corners[done : i + 1],
+                _arc_points(corner, ring[(i + 1) % len(ring)], sagitta),
+            ]
+            done = i + 1
+    return np.concatenate([*parts, corners[done:]]) if parts else corners
 
 
 def polygon(region: Region, sagitta: float = SAGITTA) -> shapely.Polygon:
@@ -200,19 +227,9 @@ def polygon(region: Region, sagitta: float = SAGITTA) -> shapely.Polygon:
         Coordinates in m.
     """
     return shapely.Polygon(
-        _facets(region.exterior, sagitta), [_facets(hole, sagitta) for hole in region.holes]
+        facet_points(region.exterior, sagitta),
+        [facet_points(hole, sagitta) for hole in region.holes],
     )
-
-
-def _facets(outline: Outline, sagitta: float) -> NDArray[np.float64]:
-    """Points of `facets` as an array, shape (n, 2)."""
-    ring = outline.vertices
-    parts: list[NDArray[np.float64]] = []
-    for start, end in zip(ring, (*ring[1:], ring[0]), strict=True):
-        parts.append(np.array([[start.x, start.y]]))
-        if start.bulge != 0.0:
-            parts.append(_arc_points(start, end, sagitta))
-    return np.concatenate(parts)
 
 
 def _arc_points(start: Vertex, end: Vertex, sagitta: float) -> NDArray[np.float64]:
@@ -225,12 +242,10 @@ def _arc_points(start: Vertex, end: Vertex, sagitta: float) -> NDArray[np.float6
     first = _direction(start.x - x, start.y - y)
     turn = angle * np.arange(1, count) / count
     c, s = np.cos(turn), np.sin(turn)
-    return np.column_stack(
-        (
-            x + between * (first[0] * c - first[1] * s),
-            y + between * (first[0] * s + first[1] * c),
-        )
-    )
+    points = np.empty((count - 1, 2))
+    points[:, 0] = x + between * (first[0] * c - first[1] * s)
+    points[:, 1] = y + between * (first[0] * s + first[1] * c)
+    return points
 
 
 def _equal_area_radius(radius: float, angle: float, count: int) -> float:
