@@ -168,28 +168,25 @@ def _with_arcs(part: shapely.Polygon, circles: tuple[_Circle, ...]) -> Region:
 
 def _outline_with_arcs(points: NDArray[np.float64], circles: tuple[_Circle, ...]) -> Outline:
     """Outline through points, shape (n, 2), in their order."""
-    ring, owners = [(x, y) for x, y in points.tolist()], _owners(points, circles)
-    if owners[0] is not None and all(owner is owners[0] for owner in owners):
-        circle = owners[0]
+    owners = _owners(points, circles)
+    if owners[0] >= 0 and np.all(owners == owners[0]):
+        circle = circles[owners[0]]
         return Outline(
             (
                 Vertex(circle.x - circle.radius, circle.y, 1.0),
                 Vertex(circle.x + circle.radius, circle.y, 1.0),
             )
         )
-    # Start where a run starts, so that no arc is cut at the seam.
-    first = next(i for i in range(len(ring)) if owners[i] is None or owners[i] is not owners[i - 1])
-    ring, owners = ring[first:] + ring[:first], owners[first:] + owners[:first]
-    vertices: list[Vertex] = []
-    i = 0
-    while i < len(ring):
-        owner, j = owners[i], i + 1
-        while owner is not None and j < len(ring) and owners[j] is owner:
-            j += 1
-        end = ring[j % len(ring)]
-        bulge = 0.0 if owner is None else _bulge(ring[i], ring[i + 1], end, owner)
-        vertices.append(Vertex(*ring[i], bulge))
-        i = j
+    # A run that goes on over the seam starts before it, so that no arc is cut there.
+    starts = np.flatnonzero((owners < 0) | (owners != np.roll(owners, 1)))
+    seconds = points[(starts + 1) % len(points)].tolist()
+    runs, corners = owners[starts].tolist(), points[starts].tolist()
+    vertices = []
+    for owner, here, second, end in zip(
+        runs, corners, seconds, corners[1:] + corners[:1], strict=True
+    ):
+        bulge = 0.0 if owner < 0 else _bulge(here, second, end, circles[owner])
+        vertices.append(Vertex(here[0], here[1], bulge))
     return Outline(_without_straight_corners(vertices))
 
 
@@ -206,20 +203,19 @@ def _without_straight_corners(ring: list[Vertex]) -> tuple[Vertex, ...]:
     return tuple(kept)
 
 
-def _owners(points: NDArray[np.float64], circles: tuple[_Circle, ...]) -> list[_Circle | None]:
-    """Circle that the facet from each point to the next stands for, if any."""
-    after = np.roll(points, -1, axis=0)
-    owners: list[_Circle | None] = [None] * len(points)
-    for circle in reversed(circles):  # so that the first of several stands
-        on = circle.carries(points)
-        on &= np.roll(on, -1) & circle.carries((points + after) / 2.0)
-        for i in np.flatnonzero(on):
-            owners[i] = circle
+def _owners(points: NDArray[np.float64], circles: tuple[_Circle, ...]) -> NDArray[np.intp]:
+    """Number of the circle that the facet from each point to the next stands for; -1 for none."""
+    ring = np.concatenate([points, points[:1]])
+    middles = (ring[:-1] + ring[1:]) / 2.0
+    owners = np.full(len(points), -1)
+    for number in reversed(range(len(circles))):  # so that the first of several stands
+        on = circles[number].carries(ring)
+        owners[on[:-1] & on[1:] & circles[number].carries(middles)] = number
     return owners
 
 
 def _bulge(
-    start: tuple[float, float], second: tuple[float, float], end: tuple[float, float], on: _Circle
+    start: Sequence[float], second: Sequence[float], end: Sequence[float], on: _Circle
 ) -> float:
     """Bulge of the arc from start to end that sets out towards `second`."""
     begin = atan2(start[1] - on.y, start[0] - on.x)
