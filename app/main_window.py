@@ -164,6 +164,7 @@ class MainWindow(QMainWindow):
         self.curves = CurvesPanel(settings.value("curve"), settings.value("match_as"))
         self.place = QLabel()
         self.place.setAccessibleName("Place of the pointer")
+        self.place.setAlignment(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter)
 
     def _make_presenters(self) -> None:
         document, pipeline = self.document, self.pipeline
@@ -215,13 +216,19 @@ class MainWindow(QMainWindow):
 
     def show_place(self, point: object) -> None:
         """Say where the pointer is on the Mat."""
-        self.place.setText(self.current_presenter.words_at(point) + place_words(point))
+        words = self.current_presenter.words_at(point) + place_words(point)
+        self.place.setText(words)
+        # A label of a fixed size does not lay out the whole window at every move of the pointer.
+        size, needed = self.place.size(), self.place.sizeHint()
+        if not words or needed.width() > size.width() or needed.height() != size.height():
+            self.place.setFixedSize(needed)
 
     def show_name(self) -> None:
         """Say whose design is on the bench, and whether it is saved."""
         name = self.files.name
         self.setWindowTitle(f"{name}[*] — Kerfwave")
-        self.setWindowModified(self.document.is_modified)
+        if self.isWindowModified() != self.document.is_modified:
+            self.setWindowModified(self.document.is_modified)
         unsaved = " · not saved" if self.document.is_modified else ""
         self.header.show_name(f"{self.document.design.name}{unsaved}")
 

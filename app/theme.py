@@ -27,7 +27,7 @@ class Appearance(Enum):
     DARK = "dark"
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)  # there are two; told apart by what they are, at no cost
 class Theme:
     """One set of colours, by what they are for."""
 

@@ -14,6 +14,7 @@ from dataclasses import dataclass
 from decimal import Decimal
 from enum import Enum
 from fractions import Fraction
+from functools import lru_cache
 from typing import Final
 
 from core.errors import OutOfRangeError, UnitError
@@ -93,6 +94,16 @@ _UNITS: Final[dict[Quantity, tuple[_Unit, ...]]] = {
         _Unit("S/m", Fraction(1), ("s/m",), shown_from=0.0),
         _Unit("MS/m", Fraction(10**6), (), shown_from=1e6),  # case tells mega from milli
     ),
+}
+
+# Units that values are shown in, the largest first.
+_SHOWN: Final = {
+    kind: sorted(
+        (unit for unit in units if unit.shown_from is not None),
+        key=lambda unit: unit.size,
+        reverse=True,
+    )
+    for kind, units in _UNITS.items()
 }
 
 _KINDS: Final[dict[Quantity, _Kind]] = {
@@ -250,13 +261,16 @@ def format_quantity(
     UnitError
         If `unit` does not measure this kind.
     """
-    if not math.isfinite(value):
-        return "unknown"
+    return _written(float(value), kind, digits, unit) if math.isfinite(value) else "unknown"
+
+
+@lru_cache(1024)  # most numbers on the screen stay as they are from one look to the next
+def _written(value: float, kind: Quantity, digits: int | None, unit: str | None) -> str:
     significant = digits or _KINDS[kind].digits
     rounded = 0.0 if abs(value) < _KINDS[kind].smallest / 2 else float(f"{value:.{significant}g}")
     chosen = _fitting_unit(rounded, kind) if unit is None else _named_unit(unit, kind)
     # Rounded once, in the unit shown; the rounding above only chooses the unit.
-    shown = float(Fraction(float(value)) / chosen.size) if rounded else 0.0
+    shown = float(Fraction(value) / chosen.size) if rounded else 0.0
     return _joined(_plain(Decimal(f"{shown:.{significant}g}")), chosen)
 
 
@@ -431,9 +445,9 @@ def _number_text(value: float, kind: Quantity) -> str:
 
 def _fitting_unit(value: float, kind: Quantity) -> _Unit:
     """The unit in which a value of this size is shown; the first one for zero."""
-    shown = [unit for unit in _UNITS[kind] if unit.shown_from is not None]
-    fitting = [unit for unit in shown if abs(value) >= (unit.shown_from or 0.0)]
-    return max(fitting, key=lambda unit: unit.size) if value else _UNITS[kind][0]
+    if not value:
+        return _UNITS[kind][0]
+    return next(unit for unit in _SHOWN[kind] if abs(value) >= (unit.shown_from or 0.0))
 
 
 def _plain(number: Decimal) -> str:

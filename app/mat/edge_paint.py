@@ -21,10 +21,17 @@ if TYPE_CHECKING:
 _FOIL = 3.0  # pixels that foil is drawn thick at least
 
 
-def paint_edge(
+def layers_key(state: EdgeState) -> object:
+    """What of a state decides how `paint_layers` paints it."""
+    layout = state.layout
+    extent = None if layout is None else _extent(layout.pieces[0].region)
+    return state.is_stale, state.layers, extent
+
+
+def paint_layers(
     painter: QPainter, area: QRect, state: EdgeState, across: Camera, side: Camera, shades: Theme
 ) -> None:
-    """Mat from the side: grid of heights, ground plate, layers, top copper and pin."""
+    """The still part of the Mat from the side: grid of heights, layers and ground plate."""
     painter.setRenderHint(QPainter.RenderHint.Antialiasing, False)
     _paint_heights(painter, area, side, shades)
     layout = state.layout
@@ -33,8 +40,7 @@ def paint_edge(
     if state.is_stale:
         painter.setOpacity(0.4)
     painter.setRenderHint(QPainter.RenderHint.Antialiasing)
-    left, right = _extent(layout.pieces[0].region)
-    from_x, to_x = across.to_screen(left, 0.0)[0], across.to_screen(right, 0.0)[0]
+    from_x, to_x = (across.to_screen(x, 0.0)[0] for x in _extent(layout.pieces[0].region))
     for material, _, z, thickness in state.layers:
         top = side.to_screen(0.0, z + thickness)[1]
         box = QRectF(from_x, top, to_x - from_x, side.to_screen(0.0, z)[1] - top)
@@ -43,6 +49,21 @@ def paint_edge(
         painter.drawRect(box)
     floor = side.to_screen(0.0, 0.0)[1]
     _paint_foil(painter, QRectF(from_x, floor, to_x - from_x, _FOIL), shades.plate, shades)
+    painter.setOpacity(1.0)
+
+
+def paint_edge(
+    painter: QPainter, area: QRect, state: EdgeState, across: Camera, side: Camera, shades: Theme
+) -> None:
+    """What stands on the layers: pin, top copper and words."""
+    layout = state.layout
+    if layout is None:
+        return
+    if state.is_stale:
+        painter.setOpacity(0.4)
+    painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+    floor = side.to_screen(0.0, 0.0)[1]
+    to_x = across.to_screen(_extent(layout.pieces[0].region)[1], 0.0)[0]
     height = sum(thickness for _, _, _, thickness in state.layers)
     roof = side.to_screen(0.0, height)[1]
     for port in layout.ports:

@@ -11,11 +11,12 @@ from PySide6.QtWidgets import QWidget
 from app import theme
 from app.mat.camera import Camera
 from app.mat.edge import EdgeState
-from app.mat.edge_paint import paint_edge
+from app.mat.edge_paint import layers_key, paint_edge, paint_layers
 from app.mat.gestures import Gestures
 from app.mat.ground_paint import paint_ruler, ruler_size
 from app.mat.hand import Hand
 from app.mat.marks_paint import paint_handles
+from app.views.kept import KeptPicture
 
 if TYPE_CHECKING:
     from PySide6.QtGui import QPaintEvent, QResizeEvent
@@ -63,6 +64,7 @@ class EdgeView(QWidget):
         self.state = EdgeState(None, ())
         self.camera = Camera(2000.0, 0.0, 0.0)
         self.stretch = 1
+        self._still = KeptPicture()
 
     @property
     def floor(self) -> float:
@@ -118,16 +120,22 @@ class EdgeView(QWidget):
 
     def paintEvent(self, _event: QPaintEvent) -> None:
         painter = QPainter(self)
-        shades = theme.theme_of(self)
-        painter.fillRect(self.rect(), theme.colour(shades.mat))
+        shades, across, side = theme.theme_of(self), self.camera, self.side_camera()
         thick = ruler_size(self)
         area = self.rect().adjusted(thick, 0, 0, 0)
+
+        def paint_still(onto: QPainter) -> None:
+            onto.fillRect(self.rect(), theme.colour(shades.mat))
+            strip = QRect(0, 0, thick, self.height())
+            paint_ruler(onto, strip, side, shades, upright=True)
+            onto.setClipRect(area)
+            paint_layers(onto, area, self.state, across, side, shades)
+
+        look = (self.size(), across, side, shades.name, self.devicePixelRatioF(), self.font())
+        self._still.paint(painter, self, (look, layers_key(self.state)), paint_still)
         painter.setClipRect(area)
-        paint_edge(painter, area, self.state, self.camera, self.side_camera(), shades)
+        paint_edge(painter, area, self.state, across, side, shades)
         paint_handles(painter, self.hand, shades)
-        painter.setClipRect(self.rect())
-        side = QRect(0, 0, thick, self.height())
-        paint_ruler(painter, side, self.side_camera(), shades, upright=True)
 
     def _choose_stretch(self) -> None:
         """The largest stretch with which the stack leaves room to be pulled up."""

@@ -61,13 +61,13 @@ def paint_dimension(
 def paint_handles(painter: QPainter, hand: Hand, shades: Theme) -> None:
     """Handles that are not crowded out, and the words of the one in use."""
     view, shown = hand.view, hand.shown_handle
+    ratio = painter.device().devicePixelRatioF()
     for handle in hand.visible_handles():
         is_shown = shown is not None and handle.name == shown.name
         is_round = bool(handle.rail) or len(handle.pulls) > 1
         centre = QPointF(*view.pixels(handle))
         if is_shown and hand.has_key_focus:
             _paint_focus(painter, centre, shades)
-        ratio = painter.device().devicePixelRatioF()
         paint_stamp(painter, centre, handle_stamp(is_round, is_shown, shades, ratio))
     if shown is not None:
         across, down = view.pixels(shown)

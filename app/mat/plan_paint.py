@@ -36,7 +36,7 @@ class PlanPainting:
     def __init__(self, widget: QWidget) -> None:
         self._widget = widget
         self._bench, self._plate = KeptPicture(), KeptPicture()
-        self._plate_seen: object = None
+        self._spanned = copper_bounds(None)  # by the copper of the last state
         self._solved = SolvedPainting(widget)
 
     def paint(self, painter: QPainter, sight: Sight, hand: Hand) -> None:
@@ -69,14 +69,14 @@ class PlanPainting:
         """Pixels that differ from an older state: all where more than copper has changed."""
         now, whole = sight.state, self._widget.rect()
         old, new = before.layout, now.layout
+        spanned, self._spanned = self._spanned, copper_bounds(new)
         if old is None or new is None or plate_key(old) != plate_key(new):
             return whole
         if (before.is_stale, before.ghost) != (now.is_stale, now.ghost):
             return whole
         look = sight.camera.to_screen
         points = [look(one.x, one.y) for one in set(before.handles) ^ set(now.handles)]
-        for layout in (old, new):
-            low_x, low_y, high_x, high_y = copper_bounds(layout)
+        for low_x, low_y, high_x, high_y in (spanned, self._spanned):
             points += [look(low_x, low_y), look(high_x, high_y)]
         box = QPolygonF([QPointF(*point) for point in points]).boundingRect().toAlignedRect()
         spare = self._widget.fontMetrics().height() * 8  # for dimensions and words at a handle
@@ -98,14 +98,7 @@ class PlanPainting:
             if layout is not None:
                 paint_plate(onto, layout, sight.camera, shades)
 
-        # A plate that changes at every paint, as in a drag, is not worth a picture.
-        if self._plate_seen == key:
-            painter.drawPixmap(0, 0, self._plate.shown(widget, key, paint))
-        else:
-            self._plate_seen = key
-            painter.save()
-            paint(painter)
-            painter.restore()
+        self._plate.paint(painter, widget, key, paint)
 
 
 def _paint_bench(painter: QPainter, widget: QWidget, camera: Camera, shades: Theme) -> None:

@@ -63,8 +63,9 @@ class Header(QFrame):
         self._colour()
 
     def show_name(self, name: str) -> None:
-        self._whole_name = name
-        self._fit_name()
+        if name != self._whole_name:
+            self._whole_name = name
+            self._fit_name()
 
     def resizeEvent(self, event: QResizeEvent) -> None:
         super().resizeEvent(event)

@@ -17,6 +17,7 @@ class KeptPicture:
 
     def __init__(self) -> None:
         self._key: object = None
+        self._asked: object = None
         self._picture = QPixmap()
 
     def has(self, key: object) -> bool:
@@ -34,3 +35,18 @@ class KeptPicture:
             painter.end()
             self._key = key
         return self._picture
+
+    def paint(
+        self, painter: QPainter, widget: QWidget, key: object, paint: Callable[[QPainter], None]
+    ) -> None:
+        """Paint what a key stands for; it is kept as a picture from the second time on.
+
+        What changes at every paint, as in a drag, is not worth a picture.
+        """
+        if self._asked == key:
+            painter.drawPixmap(0, 0, self.shown(widget, key, paint))
+        else:
+            self._asked = key
+            painter.save()
+            paint(painter)
+            painter.restore()

@@ -47,15 +47,11 @@ class IconLine(QAbstractButton):
         if line == self._line:
             return
         width = self.width()
-        before = self.heightForWidth(width)
+        before, old = self.heightForWidth(width), self._line
         self._line = line
         self.setAccessibleName(f"{line.icon}: {line.words}")
-        self.setAccessibleDescription(line.tip)
-        self.setToolTip(line.tip)
-        leads = bool(line.field)
-        self.setFocusPolicy(Qt.FocusPolicy.StrongFocus if leads else Qt.FocusPolicy.NoFocus)
-        shape = Qt.CursorShape.PointingHandCursor if leads else Qt.CursorShape.ArrowCursor
-        self.setCursor(shape)
+        if old is None or (old.tip, old.field) != (line.tip, line.field):
+            self._follow(line)
         if self.heightForWidth(width) != before:
             self._claim_height()
         self.update()
@@ -63,6 +59,15 @@ class IconLine(QAbstractButton):
     def resizeEvent(self, event: QResizeEvent) -> None:
         super().resizeEvent(event)
         self._claim_height()
+
+    def _follow(self, line: Line) -> None:
+        """Take on what a line tells when it is pointed at, and whether it can be pressed."""
+        self.setAccessibleDescription(line.tip)
+        self.setToolTip(line.tip)
+        leads = bool(line.field)
+        self.setFocusPolicy(Qt.FocusPolicy.StrongFocus if leads else Qt.FocusPolicy.NoFocus)
+        shape = Qt.CursorShape.PointingHandCursor if leads else Qt.CursorShape.ArrowCursor
+        self.setCursor(shape)
 
     def _claim_height(self) -> None:
         """Ask for all the height that the words need, so that none of them is cut off."""

@@ -79,10 +79,7 @@ def value_at(design: Design, key: str) -> float | str | Enum:
     InputError
         If there is no such parameter.
     """
-    for parameter in parameters(design):
-        if parameter.key == key:
-            return parameter.value
-    raise _unknown(design, key)
+    return _parameter(design, key).value
 
 
 def with_number(design: Design, key: str, value: float) -> Design:
@@ -193,9 +190,7 @@ def _walk(part: Any, prefix: str) -> Iterator[Parameter]:  # noqa: ANN401
             for number, item in enumerate(value, 1):
                 yield from _walk(item, f"{key}.{number}.")
         else:
-            spec = field.metadata.get("spec")
-            label = spec.label if spec else field.name.replace("_", " ").capitalize()
-            yield Parameter(key, label, value, spec)
+            yield _leaf(key, field, value)
 
 
 def _known_name(design: Design, typed: str) -> str:
@@ -211,10 +206,31 @@ def _known_name(design: Design, typed: str) -> str:
 
 
 def _spec(design: Design, key: str) -> Spec | None:
-    for parameter in parameters(design):
-        if parameter.key == key:
-            return parameter.spec
-    raise _unknown(design, key)
+    return _parameter(design, key).spec
+
+
+def _parameter(design: Design, key: str) -> Parameter:
+    """The parameter with a dotted name, straight down to it."""
+    part: Any = design
+    field: dataclasses.Field[Any] | None = None
+    for name in key.split("."):
+        if isinstance(part, tuple):
+            members, field = {str(number): item for number, item in enumerate(part, 1)}, None
+        else:
+            field = getattr(part, "__dataclass_fields__", {}).get(name)
+            members = {} if field is None else {name: getattr(part, name)}
+        if name not in members:
+            raise _unknown(design, key)
+        part = members[name]
+    if field is None or dataclasses.is_dataclass(part) or isinstance(part, tuple):
+        raise _unknown(design, key)
+    return _leaf(key, field, part)
+
+
+def _leaf(key: str, field: dataclasses.Field[Any], value: Any) -> Parameter:  # noqa: ANN401
+    spec = field.metadata.get("spec")
+    label = spec.label if spec else field.name.replace("_", " ").capitalize()
+    return Parameter(key, label, value, spec)
 
 
 def _replaced_design(design: Design, key: str, value: Any) -> Design:  # noqa: ANN401

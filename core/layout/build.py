@@ -64,7 +64,7 @@ def build_layout(design: Design) -> Layout:
         dimensions=layout_dimensions(design, route),
         findings=(
             *(route.findings if route else ()),
-            *design_findings(design, route),
+            *design_findings(design, route, layout.feed),
             *copper_problems,
         ),
     )

@@ -9,7 +9,6 @@ import shapely
 
 from core.design.feed import DualEdge, ProbeFeed
 from core.findings import Finding, Severity
-from core.layout.network import feed_network
 from core.layout.plates import ground_reach, longest_turnover, rim_distance
 from core.shapes.outline import polygon
 from core.units import Quantity, format_quantity
@@ -18,13 +17,16 @@ if TYPE_CHECKING:
     from collections.abc import Iterator
 
     from core.design.model import Design
+    from core.layout.model import FeedNetwork
     from core.layout.route import Route
     from core.shapes.outline import Region
 
 _TOLERANCE = 1e-9  # m
 
 
-def design_findings(design: Design, route: Route | None) -> tuple[Finding, ...]:
+def design_findings(
+    design: Design, route: Route | None, network: FeedNetwork
+) -> tuple[Finding, ...]:
     """Findings that follow from lengths alone.
 
     Parameters
@@ -32,6 +34,8 @@ def design_findings(design: Design, route: Route | None) -> tuple[Finding, ...]:
     design : Design
     route : Route or None
         Of a dual-edge feed.
+    network : FeedNetwork
+        Of this design.
 
     Returns
     -------
@@ -41,7 +45,7 @@ def design_findings(design: Design, route: Route | None) -> tuple[Finding, ...]:
     if isinstance(design.feed, DualEdge) and route is not None:
         found += _strip_findings(design, design.feed)
         found += _landing_findings(design, design.feed, route)
-        found += _cover_findings(design, route)
+        found += _cover_findings(design, network)
         probe, field = route.probe, "stock.ground"
     else:
         found += _probe_findings(design)
@@ -232,8 +236,8 @@ def _landing_findings(design: Design, feed: DualEdge, route: Route) -> Iterator[
             )
 
 
-def _cover_findings(design: Design, route: Route) -> Iterator[Finding]:
-    if not feed_network(design, route).over_ground:
+def _cover_findings(design: Design, network: FeedNetwork) -> Iterator[Finding]:
+    if not network.over_ground:
         field = "diameter" if hasattr(design.stock.ground, "diameter") else "width"
         yield Finding(
             "strip-off-ground",

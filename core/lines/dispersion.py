@@ -6,31 +6,32 @@ Shapes: n frequencies. The published formulas take frequency times height in GHz
 from __future__ import annotations
 
 from math import exp
+from typing import TypeVar
 
 import numpy as np
 from numpy.typing import NDArray
 
 from core.lines.quasi_static import StaticLine, static_line
 
+Some = TypeVar("Some", float, NDArray[np.float64])
+
 _LIGHTEST = 1.3  # below this permittivity the impedance formula nears a pole, see docs
 _GHZ_MM = 1e6  # m/s
 
 
-def dispersed_permittivity(
-    line: StaticLine, frequency_height: NDArray[np.float64]
-) -> NDArray[np.float64]:
-    """Effective permittivity at each frequency.
+def dispersed_permittivity(line: StaticLine, frequency_height: Some) -> Some:
+    """Effective permittivity at each frequency, or at one.
 
     Parameters
     ----------
     line : StaticLine
         Width ratio 0.1 to 100, permittivity 1 to 20.
-    frequency_height : (n,) ndarray of float
+    frequency_height : (n,) ndarray of float, or float
         Frequency times height of the substrate, Hz m, up to 39e6 (0.13 wavelength).
 
     Returns
     -------
-    (n,) ndarray of float
+    (n,) ndarray of float, or float
         From the value at low frequency towards the permittivity of the substrate.
 
     Notes
@@ -50,7 +51,7 @@ def dispersed_permittivity(
     p3 = 0.0363 * exp(-4.6 * u) * (1.0 - np.exp(-((fn / 38.7) ** 4.97)))
     p4 = 1.0 + 2.751 * (1.0 - exp(-((eps_r / 15.916) ** 8)))
     p = p1 * p2 * ((0.1844 + p3 * p4) * fn) ** 1.5763
-    dispersed: NDArray[np.float64] = eps_r - (eps_r - line.eps_eff) / (1.0 + p)
+    dispersed: Some = eps_r - (eps_r - line.eps_eff) / (1.0 + p)
     return dispersed
 
 

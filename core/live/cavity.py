@@ -303,22 +303,14 @@ def _static_sum(one: Contact, other: Contact, step_x: float, step_y: float) -> f
     width = max(one.width_y, other.width_y)
     apart, together = abs(one.y - other.y), one.y + other.y
     a = m * (pi * step_x / step_y)
-    terms = np.zeros_like(m)
-    for distance in (apart, together, 2.0 - together, 2.0 - apart):
-        terms += _fall(a, distance, width)
-    terms /= -a * np.expm1(-2.0 * a)
+    near = np.array([[apart], [together], [2.0 - together], [2.0 - apart]]) - width / 2.0
+    terms = np.sum(np.exp(-a * near), axis=0) / (-a * np.expm1(-2.0 * a))
+    if width:  # each exp(-a d) averaged over d in a width around the distance
+        terms *= -np.expm1(-a * width) / (a * width)
     for contact in (one, other):
         terms *= _side_shape(contact.x, contact.width_x, m)
     even = 1.0 / 3.0 - (together + apart) / 2.0 + (together**2 + apart**2) / 4.0 + width**2 / 24.0
     return float((pi / step_y) ** 2 * (np.sum(terms) + even))
-
-
-def _fall(a: Floats, distance: float, width: float) -> Floats:
-    """exp(-a d) averaged over d in a width around the distance."""
-    if width == 0.0:
-        return np.asarray(np.exp(-a * distance))
-    near, far = distance - width / 2.0, distance + width / 2.0
-    return np.asarray((np.exp(-a * near) - np.exp(-a * far)) / (a * width))
 
 
 def _turned(contact: Contact) -> Contact:

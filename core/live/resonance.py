@@ -6,10 +6,10 @@ The length of a mode is the side along which its current flows, the width is the
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cache
 from math import pi, sqrt, tan
 from typing import TYPE_CHECKING, Final
 
-import numpy as np
 from scipy.optimize import brentq
 
 from core.constants import FREE_SPACE_IMPEDANCE, SPEED_OF_LIGHT, TWO_PI
@@ -73,7 +73,8 @@ def side_resonance(length: float, width: float, stack: tuple[Layer, ...]) -> tup
     Half a wavelength of the line between two extended ends, both at the frequency that is
     looked for. Measured errors: docs/live-errors.md.
     """
-    fringing = _fringing_over_frequency(length, width, stack)
+    # The search comes back to its first frequencies.
+    fringing = cache(_fringing_over_frequency(length, width, stack))
 
     def told(frequency: float) -> float:
         now = fringing(frequency)
@@ -134,8 +135,8 @@ def _fringing_over_frequency(
     edges = edge_pair(ratio * height, length, height, eps_r, charge)
 
     def fringing(frequency: float) -> Fringing:
-        dispersed = dispersed_permittivity(line, np.array([frequency * height]))
-        eps_eff = 1.0 + denser * (float(dispersed[0]) - 1.0)
+        dispersed = float(dispersed_permittivity(line, frequency * height))
+        eps_eff = 1.0 + denser * (dispersed - 1.0)
         thick = height * _slab_rise(height, across, frequency)
         end = open_end_extension_kirschning(ratio * height, thick, eps_r, eps_eff)
         return Fringing(eps_eff, max(end, edges.extension(frequency)))

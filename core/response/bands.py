@@ -105,7 +105,7 @@ def band_under(frequencies: Floats, values: Floats, frequency: float, limit: flo
         Edges are interpolated between neighbouring points. None where the quantity is over the
         limit at the frequency, or the frequency is outside what was computed.
     """
-    heights = np.nan_to_num(np.clip(values, None, _WORST), nan=_WORST) - limit
+    heights = np.fmin(values, _WORST) - limit  # what is unknown becomes the worst too
     here = float(np.interp(frequency, frequencies, heights))
     if here > 0.0 or not frequencies[0] <= frequency <= frequencies[-1]:
         return None

@@ -6,19 +6,31 @@ from dataclasses import dataclass
 from math import atan2, copysign, hypot, pi, tan
 from typing import TYPE_CHECKING
 
+import numpy as np
 import shapely
 from shapely.geometry.polygon import orient
 
 from core.errors import LayoutError
-from core.shapes.outline import SAGITTA, Outline, Region, Vertex, arc_centre, polygon
+from core.shapes.outline import (
+    SAGITTA,
+    Outline,
+    Region,
+    Vertex,
+    arc_centre,
+    facet_points,
+    polygon,
+)
 from core.units import Quantity, format_quantity
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
 
+    from numpy.typing import NDArray
+
 _COLLINEAR = 1e-6  # rad
 _FINE = SAGITTA / 50.0  # facets for the union alone: ends of arcs come out this true
 _NEAR = 4.0  # times the growth: a corner that fills up lies nearer than this to an open gap
+_GRID_DECIMALS = 10  # of a metre
 _ON_CIRCLE = 4.0 * _FINE  # equal-area points lie within one sagitta of their circle
 
 
@@ -28,9 +40,10 @@ class _Circle:
     y: float
     radius: float
 
-    def carries(self, point: tuple[float, float]) -> bool:
-        """Tell whether a point lies on the circle, to the accuracy of the facets."""
-        return abs(hypot(point[0] - self.x, point[1] - self.y) - self.radius) < _ON_CIRCLE
+    def carries(self, points: NDArray[np.float64]) -> NDArray[np.bool_]:
+        """Tell which points, shape (n, 2), lie on the circle, to the accuracy of the facets."""
+        away = np.hypot(points[:, 0] - self.x, points[:, 1] - self.y)
+        return np.asarray(np.abs(away - self.radius) < _ON_CIRCLE)
 
 
 def union(regions: Sequence[Region]) -> tuple[Region, ...]:
@@ -50,16 +63,31 @@ def union(regions: Sequence[Region]) -> tuple[Region, ...]:
     LayoutError
         If no valid area is left.
     """
-    try:
-        merged = shapely.union_all([polygon(region, _FINE) for region in regions], grid_size=1e-10)
-    except shapely.GEOSException as error:  # an outline that crosses itself
-        raise LayoutError("the pieces do not add up to a valid outline") from error
+    pieces = [_polygon_on_grid(region) for region in regions]
+    refusal = "the pieces do not add up to a valid outline"
+    if not np.all(shapely.is_valid(pieces)):  # an outline that crosses itself
+        raise LayoutError(refusal)
+    merged = shapely.transform(shapely.union_all(pieces), _on_grid)
+    merged = shapely.remove_repeated_points(merged)
     parts = [part for part in shapely.get_parts(merged) if isinstance(part, shapely.Polygon)]
     if not parts or not merged.is_valid:
-        raise LayoutError("the pieces do not add up to a valid outline")
+        raise LayoutError(refusal)
     circles = tuple({circle for region in regions for circle in _circles(region)})
     parts.sort(key=lambda part: -part.area)
     return tuple(_with_arcs(part, circles) for part in parts)
+
+
+def _polygon_on_grid(region: Region) -> shapely.Polygon:
+    """Polygon with its corners on a grid of 0.1 nm, so that those that are meant to meet do.
+
+    A union that looks for crossings on the grid gives the same in eight times the time.
+    """
+    rings = [_on_grid(facet_points(ring, _FINE)) for ring in (region.exterior, *region.holes)]
+    return shapely.Polygon(rings[0], rings[1:])
+
+
+def _on_grid(points: NDArray[np.float64]) -> NDArray[np.float64]:
+    return np.round(points, _GRID_DECIMALS)
 
 
 def grown(regions: Sequence[Region], by: float) -> tuple[Region, ...]:
@@ -130,35 +158,35 @@ def _with_arcs(part: shapely.Polygon, circles: tuple[_Circle, ...]) -> Region:
     """Region of a faceted polygon, runs of facets on known circles turned into arcs."""
     part = orient(part)
     return Region(
-        _outline_with_arcs(list(part.exterior.coords)[:-1], circles),
-        tuple(_outline_with_arcs(list(ring.coords)[:-1][::-1], circles) for ring in part.interiors),
+        _outline_with_arcs(shapely.get_coordinates(part.exterior)[:-1], circles),
+        tuple(
+            _outline_with_arcs(shapely.get_coordinates(ring)[:-1][::-1], circles)
+            for ring in part.interiors
+        ),
     )
 
 
-def _outline_with_arcs(points: list[tuple[float, ...]], circles: tuple[_Circle, ...]) -> Outline:
-    ring = [(point[0], point[1]) for point in points]
-    owners = [_owner(a, b, circles) for a, b in zip(ring, ring[1:] + ring[:1], strict=True)]
-    if owners[0] is not None and all(owner == owners[0] for owner in owners):
-        circle = owners[0]
+def _outline_with_arcs(points: NDArray[np.float64], circles: tuple[_Circle, ...]) -> Outline:
+    """Outline through points, shape (n, 2), in their order."""
+    owners = _owners(points, circles)
+    if owners[0] >= 0 and np.all(owners == owners[0]):
+        circle = circles[owners[0]]
         return Outline(
             (
                 Vertex(circle.x - circle.radius, circle.y, 1.0),
                 Vertex(circle.x + circle.radius, circle.y, 1.0),
             )
         )
-    # Start where a run starts, so that no arc is cut at the seam.
-    first = next(i for i in range(len(ring)) if owners[i] is None or owners[i] != owners[i - 1])
-    ring, owners = ring[first:] + ring[:first], owners[first:] + owners[:first]
-    vertices: list[Vertex] = []
-    i = 0
-    while i < len(ring):
-        owner, j = owners[i], i + 1
-        while owner is not None and j < len(ring) and owners[j] == owner:
-            j += 1
-        end = ring[j % len(ring)]
-        bulge = 0.0 if owner is None else _bulge(ring[i], ring[i + 1], end, owner)
-        vertices.append(Vertex(*ring[i], bulge))
-        i = j
+    # A run that goes on over the seam starts before it, so that no arc is cut there.
+    starts = np.flatnonzero((owners < 0) | (owners != np.roll(owners, 1)))
+    seconds = points[(starts + 1) % len(points)].tolist()
+    runs, corners = owners[starts].tolist(), points[starts].tolist()
+    vertices = []
+    for owner, here, second, end in zip(
+        runs, corners, seconds, corners[1:] + corners[:1], strict=True
+    ):
+        bulge = 0.0 if owner < 0 else _bulge(here, second, end, circles[owner])
+        vertices.append(Vertex(here[0], here[1], bulge))
     return Outline(_without_straight_corners(vertices))
 
 
@@ -175,20 +203,19 @@ def _without_straight_corners(ring: list[Vertex]) -> tuple[Vertex, ...]:
     return tuple(kept)
 
 
-def _owner(
-    a: tuple[float, float], b: tuple[float, float], circles: tuple[_Circle, ...]
-) -> _Circle | None:
-    """Circle that the facet from a to b stands for, if any."""
-    for circle in circles:
-        if circle.carries(a) and circle.carries(b):
-            middle = ((a[0] + b[0]) / 2.0, (a[1] + b[1]) / 2.0)
-            if circle.carries(middle):
-                return circle
-    return None
+def _owners(points: NDArray[np.float64], circles: tuple[_Circle, ...]) -> NDArray[np.intp]:
+    """Number of the circle that the facet from each point to the next stands for; -1 for none."""
+    ring = np.concatenate([points, points[:1]])
+    middles = (ring[:-1] + ring[1:]) / 2.0
+    owners = np.full(len(points), -1)
+    for number in reversed(range(len(circles))):  # so that the first of several stands
+        on = circles[number].carries(ring)
+        owners[on[:-1] & on[1:] & circles[number].carries(middles)] = number
+    return owners
 
 
 def _bulge(
-    start: tuple[float, float], second: tuple[float, float], end: tuple[float, float], on: _Circle
+    start: Sequence[float], second: Sequence[float], end: Sequence[float], on: _Circle
 ) -> float:
     """Bulge of the arc from start to end that sets out towards `second`."""
     begin = atan2(start[1] - on.y, start[0] - on.x)

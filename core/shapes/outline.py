@@ -8,13 +8,16 @@ counter-clockwise arc, 0 for a straight edge. Lengths are in metres.
 from __future__ import annotations
 
 from dataclasses import dataclass
-from math import acos, atan, ceil, cos, hypot, pi, sin, sqrt, tan
+from math import acos, atan, ceil, hypot, pi, sin, sqrt, tan
 from typing import TYPE_CHECKING
 
+import numpy as np
 import shapely
 
 if TYPE_CHECKING:
     from collections.abc import Iterable
+
+    from numpy.typing import NDArray
 
 SAGITTA = 5e-6
 """Largest distance between an arc and the facets that stand for it, m."""
@@ -179,13 +182,34 @@ def facets(outline: Outline, sagitta: float = SAGITTA) -> list[tuple[float, floa
     list of (float, float)
         m, not closed (the first point is not repeated).
     """
-    points: list[tuple[float, float]] = []
+    return [(x, y) for x, y in facet_points(outline, sagitta).tolist()]
+
+
+def facet_points(outline: Outline, sagitta: float = SAGITTA) -> NDArray[np.float64]:
+    """The points of `facets` as an array.
+
+    Parameters
+    ----------
+    outline : Outline
+    sagitta : float
+        Largest distance between arc and facets, m, > 0.
+
+    Returns
+    -------
+    (n, 2) ndarray of float
+        m, not closed.
+    """
     ring = outline.vertices
-    for start, end in zip(ring, (*ring[1:], ring[0]), strict=True):
-        points.append((start.x, start.y))
-        if start.bulge != 0.0:
-            points.extend(_arc_points(start, end, sagitta))
-    return points
+    corners = np.array([(corner.x, corner.y) for corner in ring])
+    parts, done = [], 0
+    for i, corner in enumerate(ring):
+        if corner.bulge != 0.0:
+            parts += [
+                corners[done : i + 1],
+                _arc_points(corner, ring[(i + 1) % len(ring)], sagitta),
+            ]
+            done = i + 1
+    return np.concatenate([*parts, corners[done:]]) if parts else corners
 
 
 def polygon(region: Region, sagitta: float = SAGITTA) -> shapely.Polygon:
@@ -203,29 +227,25 @@ def polygon(region: Region, sagitta: float = SAGITTA) -> shapely.Polygon:
         Coordinates in m.
     """
     return shapely.Polygon(
-        facets(region.exterior, sagitta), [facets(hole, sagitta) for hole in region.holes]
+        facet_points(region.exterior, sagitta),
+        [facet_points(hole, sagitta) for hole in region.holes],
     )
 
 
-def _arc_points(start: Vertex, end: Vertex, sagitta: float) -> list[tuple[float, float]]:
-    """Points between the ends of an arc, on the radius that keeps the sector's area."""
+def _arc_points(start: Vertex, end: Vertex, sagitta: float) -> NDArray[np.float64]:
+    """Points between the ends of an arc, on the radius that keeps the sector's area; (n, 2)."""
     x, y, radius = arc_centre(start, end)
     angle = 4.0 * atan(start.bulge)
     step = 2.0 * acos(max(0.0, 1.0 - min(sagitta, radius) / radius))
     count = max(2, ceil(abs(angle) / step))
     between = _equal_area_radius(radius, abs(angle), count)
     first = _direction(start.x - x, start.y - y)
-    result = []
-    for i in range(1, count):
-        turn = angle * i / count
-        c, s = cos(turn), sin(turn)
-        result.append(
-            (
-                x + between * (first[0] * c - first[1] * s),
-                y + between * (first[0] * s + first[1] * c),
-            )
-        )
-    return result
+    turn = angle * np.arange(1, count) / count
+    c, s = np.cos(turn), np.sin(turn)
+    points = np.empty((count - 1, 2))
+    points[:, 0] = x + between * (first[0] * c - first[1] * s)
+    points[:, 1] = y + between * (first[0] * s + first[1] * c)
+    return points
 
 
 def _equal_area_radius(radius: float, angle: float, count: int) -> float:
