@@ -58,7 +58,7 @@ if TYPE_CHECKING:
 MOST_AIR_LIKE: Final = 1.5
 """Thickness-averaged permittivity up to which the finite plate is meshed in free space."""
 
-_UNBALANCED = 0.02  # share of the power that may go missing in free space
+_UNBALANCED = 0.01  # share of the power that may go missing in free space
 
 
 @dataclass(frozen=True, eq=False)
