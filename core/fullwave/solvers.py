@@ -6,7 +6,7 @@ Shapes: d directions, t triangles.
 from __future__ import annotations
 
 from abc import ABC, abstractmethod
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from math import pi
 from typing import TYPE_CHECKING, ClassVar, Final
 
@@ -152,7 +152,11 @@ class _FreeSpace(Solver):
         return equations(self.system, frequency)
 
     def finished(self, posed: Equations, found: Complexes) -> Solution:
-        return solution(self.system, posed, found)
+        solved = solution(self.system, posed, found)
+        if self.level is not Level.QUICK:
+            return solved
+        # The power sent takes a part of the time that a fill without losses takes.
+        return replace(solved, losing=lambda: 1.0 - self._share_sent(solved))
 
     def far_field(self, theta: Floats, phi: Floats) -> tuple[Complexes, Complexes]:
         towards, along_theta, along_phi = direction_frame(theta, phi)
@@ -167,11 +171,9 @@ class _FreeSpace(Solver):
         return plate_currents(self.system, self.spot)
 
     def doubts(self) -> dict[Reading, Trust]:
-        if self.level is Level.QUICK:  # the balance takes as long as one more frequency
+        if self.level is Level.QUICK:  # the losses are what is missing
             return {}
-        widest = float(np.ptp(self.system.mesh.vertices, axis=0).max())
-        sent = sphere_power(self._radiated, self.spot.frequency, widest)
-        missing = abs(1.0 - self.spot.lost - 2.0 * sent / self.spot.admittance.real)
+        missing = abs(1.0 - self.spot.lost - self._share_sent(self.spot))
         if missing < _UNBALANCED:
             return {}
         reason = f"{100.0 * missing:.0f} % of the power that goes in is not found again"
@@ -180,6 +182,15 @@ class _FreeSpace(Solver):
 
     def _radiated(self, towards: Floats) -> Complexes:
         return radiated_field(self.system, self.spot.currents, self.spot.frequency, towards)
+
+    def _share_sent(self, solved: Solution) -> float:
+        """Power over a sphere, of the power that goes in."""
+
+        def field(towards: Floats) -> Complexes:
+            return radiated_field(self.system, solved.currents, solved.frequency, towards)
+
+        widest = float(np.ptp(self.system.mesh.vertices, axis=0).max())
+        return 2.0 * sphere_power(field, solved.frequency, widest) / solved.admittance.real
 
 
 @dataclass(frozen=True, eq=False)
