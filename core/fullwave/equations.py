@@ -10,6 +10,7 @@ from typing import TYPE_CHECKING, Final
 
 import numpy as np
 
+from core.constants import FREE_SPACE_IMPEDANCE, TWO_PI
 from core.fullwave.moments import currents
 
 if TYPE_CHECKING:
@@ -52,6 +53,12 @@ class Equations:
     def admittance(self, solved: Complexes) -> complex:
         """At the port, S, from (n,) currents."""
         return complex(self.excitation @ solved) + self.shunt
+
+    def boresight_field(self, solved: Complexes) -> tuple[complex, complex]:
+        """Far field at boresight along x and y in the scale of `Samples`, from (n,) currents."""
+        accepted = self.admittance(solved).real / 2.0
+        field = self.boresight @ solved * np.sqrt(TWO_PI / (FREE_SPACE_IMPEDANCE * accepted))
+        return complex(field[0]), complex(field[1])
 
 
 @dataclass(frozen=True, eq=False)

@@ -3,12 +3,11 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from math import pi
 from typing import TYPE_CHECKING, Final
 
 import numpy as np
 
-from core.constants import FREE_SPACE_IMPEDANCE, SPEED_OF_LIGHT, TWO_PI
+from core.constants import SPEED_OF_LIGHT, TWO_PI
 from core.fullwave.equations import Equations
 from core.fullwave.far_field import moment_weights
 from core.fullwave.layered_fields import BoardCurrents, boresight_of_moments, power_into_space
@@ -157,14 +156,13 @@ def layered_solution(system: LayeredSystem, posed: Equations, solved: Complexes)
     admittance = posed.admittance(solved)
     accepted = admittance.real / 2.0
     flowing = board_currents(system, solved, posed.frequency)
-    field = posed.boresight @ solved
-    field *= np.sqrt(4.0 * pi / (2.0 * FREE_SPACE_IMPEDANCE * accepted))
+    e_x, e_y = posed.boresight_field(solved)
     return Solution(
         frequency=posed.frequency,
         currents=solved,
         admittance=admittance,
-        e_x=complex(field[0]),
-        e_y=complex(field[1]),
+        e_x=e_x,
+        e_y=e_y,
         losing=lambda: 1.0 - power_into_space(flowing) / accepted,
     )
 

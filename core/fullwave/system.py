@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from core.constants import FREE_SPACE_IMPEDANCE, TWO_PI, VACUUM_PERMEABILITY
+from core.constants import TWO_PI, VACUUM_PERMEABILITY
 from core.errors import ModelError
 from core.fullwave.basis import build_basis
 from core.fullwave.equations import Equations
@@ -180,14 +180,13 @@ def solution(system: System, posed: Equations, solved: Complexes) -> Solution:
     frequency = posed.frequency  # alone: what is kept of this must not keep the matrix
     admittance = posed.admittance(solved)
     accepted = admittance.real / 2.0
-    field = posed.boresight @ solved
-    field *= np.sqrt(4.0 * pi / (2.0 * FREE_SPACE_IMPEDANCE * accepted))
+    e_x, e_y = posed.boresight_field(solved)
     return Solution(
         frequency=frequency,
         currents=solved,
         admittance=admittance,
-        e_x=complex(field[0]),
-        e_y=complex(field[1]),
+        e_x=e_x,
+        e_y=e_y,
         losing=lambda: _heat(system, solved, frequency, accepted) / accepted,
     )
 
